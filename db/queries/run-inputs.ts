@@ -1,0 +1,77 @@
+/** Everything a run is a function of, as it stands now. */
+import { and, asc, eq } from 'drizzle-orm';
+import type { Tx } from '../connect.ts';
+import { district } from '../schema/district.ts';
+import { applicationMethod, crop, cropCalendar, parcel, planting, reach, season, soil, turnout } from '../schema/land.ts';
+
+export async function findDistrict(tx: Tx, districtId: string) {
+  const [row] = await tx.select().from(district).where(eq(district.districtId, districtId));
+  return row ?? null;
+}
+
+export async function findSeason(tx: Tx, districtId: string, code: string) {
+  const [row] = await tx
+    .select()
+    .from(season)
+    .where(and(eq(season.districtId, districtId), eq(season.code, code)));
+  return row ?? null;
+}
+
+/** Parcels in map order, without their shapes. */
+export function listRunParcels(tx: Tx, districtId: string) {
+  return tx
+    .select({
+      code: parcel.code,
+      ordinal: parcel.ordinal,
+      turnoutCode: parcel.turnoutCode,
+      reachCode: parcel.reachCode,
+      soilCode: parcel.soilCode,
+      methodCode: parcel.methodCode,
+      area: parcel.area,
+      elevation: parcel.elevation,
+      longitude: parcel.longitude,
+      latitude: parcel.latitude,
+    })
+    .from(parcel)
+    .where(eq(parcel.districtId, districtId))
+    .orderBy(asc(parcel.ordinal));
+}
+
+export function listSeasonPlantings(tx: Tx, districtId: string, seasonCode: string) {
+  return tx
+    .select()
+    .from(planting)
+    .where(and(eq(planting.districtId, districtId), eq(planting.seasonCode, seasonCode)))
+    .orderBy(asc(planting.parcelCode), asc(planting.sequence));
+}
+
+/** The libraries of the district: soils, methods, crops, calendars. */
+export async function listLibraries(tx: Tx, districtId: string) {
+  const [soils, methods, crops, calendars] = await Promise.all([
+    tx.select().from(soil).where(eq(soil.districtId, districtId)).orderBy(asc(soil.code)),
+    tx.select().from(applicationMethod).where(eq(applicationMethod.districtId, districtId)).orderBy(asc(applicationMethod.code)),
+    tx.select().from(crop).where(eq(crop.districtId, districtId)).orderBy(asc(crop.code)),
+    tx.select().from(cropCalendar).where(eq(cropCalendar.districtId, districtId)).orderBy(asc(cropCalendar.code)),
+  ]);
+  return { soils, methods, crops, calendars };
+}
+
+export function listReaches(tx: Tx, districtId: string) {
+  return tx
+    .select({
+      code: reach.code,
+      name: reach.name,
+      parentCode: reach.parentCode,
+      kind: reach.kind,
+      capacity: reach.capacity,
+      lossRule: reach.lossRule,
+      length: reach.length,
+    })
+    .from(reach)
+    .where(eq(reach.districtId, districtId))
+    .orderBy(asc(reach.code));
+}
+
+export function listTurnouts(tx: Tx, districtId: string) {
+  return tx.select().from(turnout).where(eq(turnout.districtId, districtId)).orderBy(asc(turnout.code));
+}

@@ -1,0 +1,133 @@
+/** The life of a run: asked for, cut into slices, sliced through, finished, swapped in. */
+import { and, eq, getTableColumns, inArray, isNull, sql } from 'drizzle-orm';
+import type { Tx } from '../connect.ts';
+import { run, runParcel, runSlice } from '../schema/run.ts';
+
+export type RunRow = typeof run.$inferSelect;
+export type NewRun = typeof run.$inferInsert;
+
+/** Frozen inputs are large and read only by the slices. */
+const { frozen: _frozen, ...withoutFrozen } = getTableColumns(run);
+
+const one = (districtId: string, runId: string) => and(eq(run.districtId, districtId), eq(run.runId, runId));
+
+export async function insertRun(tx: Tx, values: NewRun): Promise<string> {
+  const [row] = await tx.insert(run).values(values).returning({ runId: run.runId });
+  return row.runId;
+}
+
+/** A run without its frozen inputs. */
+export async function findRun(tx: Tx, districtId: string, runId: string): Promise<Omit<RunRow, 'frozen'> | null> {
+  const [row] = await tx.select(withoutFrozen).from(run).where(one(districtId, runId));
+  return row ?? null;
+}
+
+export async function findFrozen(tx: Tx, districtId: string, runId: string): Promise<Uint8Array | null> {
+  const [row] = await tx.select({ frozen: run.frozen }).from(run).where(one(districtId, runId));
+  return row?.frozen ?? null;
+}
+
+/** Changes a run and tells listeners. Only a run that is still going is changed; answers whether it was. */
+export async function updateGoingRun(tx: Tx, districtId: string, runId: string, values: Partial<NewRun>): Promise<boolean> {
+  const rows = await tx
+    .update(run)
+    .set(values)
+    .where(and(one(districtId, runId), inArray(run.state, ['queued', 'running'])))
+    .returning({ runId: run.runId });
+  if (rows.length > 0) await notifyRun(tx, districtId, runId);
+  return rows.length > 0;
+}
+
+export async function notifyRun(tx: Tx, districtId: string, runId: string): Promise<void> {
+  await tx.execute(sql`select pg_notify('run_progress', ${JSON.stringify({ district: districtId, run: runId })})`);
+}
+
+export async function replaceSlices(tx: Tx, districtId: string, runId: string, count: number): Promise<void> {
+  await tx.delete(runSlice).where(and(eq(runSlice.districtId, districtId), eq(runSlice.runId, runId)));
+  await tx.delete(runParcel).where(and(eq(runParcel.districtId, districtId), eq(runParcel.runId, runId)));
+  const rows = Array.from({ length: count }, (_, slice) => ({ districtId, runId, slice }));
+  if (rows.length > 0) await tx.insert(runSlice).values(rows);
+}
+
+export async function insertRunParcels(tx: Tx, rows: (typeof runParcel.$inferInsert)[]): Promise<void> {
+  for (let from = 0; from < rows.length; from += 1000) await tx.insert(runParcel).values(rows.slice(from, from + 1000));
+}
+
+export function listSliceParcels(tx: Tx, districtId: string, runId: string, slice: number) {
+  return tx
+    .select({ position: runParcel.position, parcelCode: runParcel.parcelCode, input: runParcel.input })
+    .from(runParcel)
+    .where(and(eq(runParcel.districtId, districtId), eq(runParcel.runId, runId), eq(runParcel.slice, slice)))
+    .orderBy(runParcel.position);
+}
+
+export function listParcelInputs(tx: Tx, districtId: string, runId: string, positions: readonly number[]) {
+  return tx
+    .select({ position: runParcel.position, parcelCode: runParcel.parcelCode, input: runParcel.input })
+    .from(runParcel)
+    .where(and(eq(runParcel.districtId, districtId), eq(runParcel.runId, runId), inArray(runParcel.position, [...positions])))
+    .orderBy(runParcel.position);
+}
+
+/** Stores one slice's results in few statements. Doing it twice stores the same. */
+export async function saveSlice(
+  tx: Tx,
+  key: { districtId: string; runId: string; slice: number },
+  results: { positions: number[]; daily: Uint8Array[]; flags: Uint8Array[]; maxResidual: number },
+): Promise<void> {
+  const step = 250;
+  for (let from = 0; from < results.positions.length; from += step) {
+    const to = Math.min(from + step, results.positions.length);
+    const rows = [];
+    for (let i = from; i < to; i++)
+      rows.push(sql`(${results.positions[i]}::int, ${hex(results.daily[i])}::bytea, ${hex(results.flags[i])}::bytea)`);
+    await tx.execute(sql`update run_parcel p set daily = v.daily, flags = v.flags
+      from (values ${sql.join(rows, sql`, `)}) as v (position, daily, flags)
+      where p.district_id = ${key.districtId} and p.run_id = ${key.runId} and p.position = v.position`);
+  }
+  await tx
+    .update(runSlice)
+    .set({ done: true, maxResidual: results.maxResidual })
+    .where(and(eq(runSlice.districtId, key.districtId), eq(runSlice.runId, key.runId), eq(runSlice.slice, key.slice)));
+}
+
+function hex(bytes: Uint8Array): string {
+  return `\\x${Buffer.from(bytes.buffer, bytes.byteOffset, bytes.byteLength).toString('hex')}`;
+}
+
+export async function countSlices(tx: Tx, districtId: string, runId: string): Promise<{ done: number; all: number; maxResidual: number }> {
+  const [row] = await tx
+    .select({
+      done: sql<number>`count(*) filter (where ${runSlice.done})::int`,
+      all: sql<number>`count(*)::int`,
+      maxResidual: sql<number>`coalesce(max(${runSlice.maxResidual}), 0)::float8`,
+    })
+    .from(runSlice)
+    .where(and(eq(runSlice.districtId, districtId), eq(runSlice.runId, runId)));
+  return row;
+}
+
+export async function isSliceDone(tx: Tx, districtId: string, runId: string, slice: number): Promise<boolean> {
+  const [row] = await tx
+    .select({ done: runSlice.done })
+    .from(runSlice)
+    .where(and(eq(runSlice.districtId, districtId), eq(runSlice.runId, runId), eq(runSlice.slice, slice)));
+  return row?.done ?? false;
+}
+
+/** Makes a finished run the one readers see; the run it replaces stays readable by its id. */
+export async function makeStanding(tx: Tx, districtId: string, seasonCode: string, runId: string): Promise<void> {
+  await tx
+    .update(run)
+    .set({ standing: false })
+    .where(and(eq(run.districtId, districtId), eq(run.seasonCode, seasonCode), eq(run.standing, true)));
+  await tx.update(run).set({ standing: true }).where(one(districtId, runId));
+}
+
+/** Runs of a season that wait and have not begun: a newer request replaces them. */
+export async function cancelWaitingRuns(tx: Tx, districtId: string, seasonCode: string): Promise<void> {
+  await tx
+    .update(run)
+    .set({ state: 'cancelled', stage: 'replaced by a newer request', finishedAt: new Date() })
+    .where(and(eq(run.districtId, districtId), eq(run.seasonCode, seasonCode), eq(run.state, 'queued'), isNull(run.startedAt)));
+}

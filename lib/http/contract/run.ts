@@ -1,0 +1,295 @@
+import { z } from 'zod';
+import { isoDate, nullableNumber as n } from './common.ts';
+
+export const runSettings = z
+  .object({
+    method: z.enum(['fao56', 'asce2005']).default('fao56').meta({ description: 'combination equation, short surface' }),
+    interpolation: z.enum(['inverse-distance', 'nearest']).default('inverse-distance'),
+    power: z.number().min(0.5).max(6).default(2),
+    maximum_sites: z.number().int().min(1).max(8).default(6),
+    lapse_rate_c_per_m: z.number().min(0).max(0.012).default(0.0065),
+    initial_depletion: z.number().min(0).max(1).default(0.3).meta({ description: 'root-zone depletion on the first day, fraction of TAW' }),
+    irrigate: z.boolean().default(true),
+    runoff: z.boolean().default(true),
+    default_soil: z.string().default('loam'),
+    default_method: z.string().default('furrow'),
+    source: z.string().nullable().default(null).meta({ description: 'weather source by name; null takes every site of the district' }),
+  })
+  .meta({ id: 'RunSettings' });
+
+export const runRequest = z.object({ season: z.string(), settings: runSettings.partial().optional() }).meta({ id: 'RunRequest' });
+
+export const runAnswer = z
+  .object({
+    id: z.string(),
+    season: z.string(),
+    state: z.enum(['queued', 'running', 'done', 'failed', 'cancelled']),
+    stage: z.string(),
+    progress: z.number(),
+    standing: z.boolean(),
+    start_date: isoDate,
+    end_date: isoDate,
+    parcel_count: z.number().int(),
+    settings: runSettings,
+    manifest: z.record(z.string(), z.unknown()),
+    balance: z.object({
+      parcel_days: z.number().optional(),
+      max_residual_mm: z.number().optional(),
+      roll_up_relative: z.number().optional(),
+      /** share of parcel-days that rest on each fallback, 0–1 */
+      fallback_shares: z.record(z.string(), z.number()).optional(),
+      seconds: z.number().optional(),
+    }),
+    warnings: z.array(z.string()),
+    error: z.string().nullable(),
+    created_at: z.string(),
+    started_at: z.string().nullable(),
+    finished_at: z.string().nullable(),
+  })
+  .meta({ id: 'Run' });
+export type RunAnswer = z.infer<typeof runAnswer>;
+
+/** One parcel and period. Depths are over the parcel's area. */
+export const parcelPeriod = z
+  .object({
+    parcel: z.string(),
+    start: isoDate,
+    end: isoDate,
+    crops: z.string().meta({ description: 'names of the season’s crops on the parcel, joined by " + "' }),
+    turnout: z.string().nullable(),
+    reach: z.string().nullable(),
+    area_ha: z.number(),
+    reference_et_mm: n,
+    crop_et_mm: n,
+    adjusted_crop_et_mm: n,
+    precipitation_mm: n,
+    effective_precipitation_mm: n,
+    net_requirement_mm: n,
+    gross_requirement_mm: n,
+    deep_percolation_mm: n,
+    surface_runoff_mm: n,
+    root_zone_depletion_mm: n.meta({ description: 'at the end of the period' }),
+    total_available_water_mm: n,
+    readily_available_water_mm: n,
+    stress_coefficient: n.meta({ description: 'mean over the period' }),
+    net_volume_m3: n,
+    gross_volume_m3: n,
+    fallbacks: z.array(z.string()).meta({ description: 'what was estimated in the weather behind this row' }),
+  })
+  .meta({ id: 'ParcelPeriod' });
+export type ParcelPeriod = z.infer<typeof parcelPeriod>;
+
+export const parcelDay = z
+  .object({
+    date: isoDate,
+    reference_et_mm: n,
+    crop_et_mm: n,
+    adjusted_crop_et_mm: n,
+    evaporation_mm: n,
+    precipitation_mm: n,
+    surface_runoff_mm: n,
+    effective_precipitation_mm: n,
+    net_requirement_mm: n,
+    gross_requirement_mm: n,
+    deep_percolation_mm: n,
+    root_zone_depletion_mm: n,
+    total_available_water_mm: n,
+    readily_available_water_mm: n,
+    basal_crop_coefficient: n,
+    stress_coefficient: n,
+    gross_volume_m3: n,
+    fallbacks: z.array(z.string()),
+  })
+  .meta({ id: 'ParcelDay' });
+export type ParcelDay = z.infer<typeof parcelDay>;
+
+export const parcelSeason = z
+  .object({
+    parcel: z.string(),
+    name: z.string().nullable(),
+    run: z.string(),
+    season: z.string(),
+    area_ha: z.number(),
+    elevation_m: n,
+    longitude: z.number(),
+    latitude: z.number(),
+    soil: z.object({ code: z.string(), name: z.string(), field_capacity_m3_m3: z.number(), wilting_point_m3_m3: z.number() }),
+    method: z.object({ code: z.string(), name: z.string(), efficiency: z.number() }),
+    turnout: z.string().nullable(),
+    reach: z.string().nullable(),
+    plantings: z.array(
+      z.object({
+        crop: z.string(),
+        crop_name: z.string(),
+        calendar: z.string(),
+        planting_date: isoDate,
+        harvest_date: isoDate.nullable(),
+        cut_dates: z.array(isoDate),
+        area_share: z.number(),
+      }),
+    ),
+    weights: z.array(z.object({ site: z.string(), name: z.string(), weight: z.number(), distance_km: z.number(), elevation_m: n })),
+    days: z.array(parcelDay),
+  })
+  .meta({ id: 'ParcelSeason' });
+export type ParcelSeason = z.infer<typeof parcelSeason>;
+
+export const workingAnswer = z
+  .object({
+    run: z.string(),
+    parcel: z.string(),
+    date: isoDate,
+    inputs: z.array(
+      z.object({
+        site: z.string(),
+        site_name: z.string(),
+        weight: z.number(),
+        elevation_m: n,
+        values: z.record(z.string(), n),
+        fallbacks: z.array(z.string()),
+      }),
+    ),
+    steps: z.array(
+      z.object({
+        part: z.string(),
+        symbol: z.string(),
+        name: z.string(),
+        expression: z.string(),
+        inputs: z.array(z.object({ symbol: z.string(), value: n, unit: z.string() })),
+        result: n,
+        unit: z.string(),
+        source: z.string(),
+        strip: z.string().optional(),
+      }),
+    ),
+    results: z.record(z.string(), n),
+    stored: z.record(z.string(), n).meta({ description: 'the same variables as stored by the run' }),
+  })
+  .meta({ id: 'Working' });
+export type WorkingAnswer = z.infer<typeof workingAnswer>;
+
+export const reachPeriod = z
+  .object({
+    reach: z.string(),
+    name: z.string(),
+    parent: z.string().nullable(),
+    level: z.number().int().meta({ description: '0 at the headworks' }),
+    kind: z.string(),
+    start: isoDate,
+    end: isoDate,
+    length_km: z.number(),
+    turnout_demand_m3: n.meta({ description: 'taken by turnouts on this reach' }),
+    demand_below_m3: n.meta({ description: 'taken by every turnout on this reach and below it' }),
+    reach_loss_m3: n,
+    loss_below_m3: n.meta({ description: 'lost in this reach and every reach below it' }),
+    head_inflow_m3: n,
+    mean_inflow_m3_s: n,
+    peak_inflow_m3_s: n.meta({ description: 'greatest daily mean flow of the period' }),
+    capacity_m3_s: n,
+    capacity_share: n.meta({ description: 'peak inflow over capacity' }),
+    parcel_count: z.number().int(),
+    area_ha: z.number(),
+  })
+  .meta({ id: 'ReachPeriod' });
+export type ReachPeriod = z.infer<typeof reachPeriod>;
+
+const total = z.object({
+  code: z.string(),
+  name: z.string(),
+  parcel_count: z.number().int(),
+  area_ha: z.number(),
+  crop_et_mm: n,
+  adjusted_crop_et_mm: n,
+  precipitation_mm: n,
+  effective_precipitation_mm: n,
+  net_requirement_mm: n,
+  gross_requirement_mm: n,
+  net_volume_m3: n,
+  gross_volume_m3: n,
+});
+export const summaryAnswer = z
+  .object({
+    run: z.string(),
+    season: z.string(),
+    start_date: isoDate,
+    end_date: isoDate,
+    district: total.extend({ reference_et_mm: n, headworks_inflow_m3: n, conveyance_loss_m3: n }),
+    by_canal: z.array(total),
+    by_crop: z.array(total),
+    by_method: z.array(total),
+    weeks: z.array(
+      z.object({
+        start: isoDate,
+        end: isoDate,
+        reference_et_mm: n,
+        precipitation_mm: n,
+        crop_et_mm: n,
+        gross_volume_m3: n,
+        headworks_inflow_m3: n,
+        headworks_mean_m3_s: n,
+      }),
+    ),
+  })
+  .meta({ id: 'Summary' });
+export type SummaryAnswer = z.infer<typeof summaryAnswer>;
+
+/** One total of the summary as a flat row: what CSV holds. */
+export const summaryRow = z.object({
+  total_of: z.enum(['district', 'canal', 'crop', 'method']),
+  ...total.shape,
+  reference_et_mm: n,
+  headworks_inflow_m3: n,
+  conveyance_loss_m3: n,
+});
+export type SummaryTotal = z.infer<typeof total>;
+
+/** Canal numbers for the map, [period][reach]. */
+export const reachValues = z
+  .object({
+    reaches: z.array(z.string()),
+    periods: z.array(z.object({ start: isoDate, end: isoDate })),
+    mean_inflow_m3_s: z.array(z.array(n)),
+    capacity_share: z.array(z.array(n)),
+  })
+  .meta({ id: 'ReachValues' });
+export type ReachValues = z.infer<typeof reachValues>;
+
+/** What the map offers, and how to read its binary arrays. */
+export const MAP_VARIABLES = [
+  'gross_requirement',
+  'net_requirement',
+  'crop_et',
+  'adjusted_crop_et',
+  'reference_et',
+  'precipitation',
+  'effective_precipitation',
+  'root_zone_depletion',
+  'depletion_share',
+  'stress_coefficient',
+] as const;
+export const mapDescription = z
+  .object({
+    run: z.string(),
+    season: z.string(),
+    geometry_version: z.number().int(),
+    tiles: z.object({ parcels: z.string(), canals: z.string() }).meta({ description: 'URL templates with {z}/{x}/{y}' }),
+    bounds: z.tuple([z.number(), z.number(), z.number(), z.number()]),
+    variables: z.array(z.object({ id: z.string(), term: z.string(), unit: z.string(), aggregate: z.enum(['sum', 'end', 'mean']) })),
+    periods: z.object({
+      week: z.array(z.object({ start: isoDate, end: isoDate })),
+      month: z.array(z.object({ start: isoDate, end: isoDate })),
+    }),
+    /** in map-array order; `ordinal` is the feature id (property `o`) in the tiles */
+    parcels: z.object({
+      ordinal: z.array(z.number().int()),
+      code: z.array(z.string()),
+      area_m2: z.array(z.number()),
+      crops: z.array(z.string()),
+      reach: z.array(z.string().nullable()),
+    }),
+    reaches: z.array(z.object({ ordinal: z.number().int(), code: z.string(), name: z.string(), capacity_m3_s: n })),
+    sites: z.array(z.object({ code: z.string(), name: z.string(), longitude: z.number(), latitude: z.number(), elevation_m: n })),
+    boundary: z.unknown().nullable(),
+  })
+  .meta({ id: 'MapDescription' });
+export type MapDescription = z.infer<typeof mapDescription>;

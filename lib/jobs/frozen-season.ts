@@ -1,0 +1,126 @@
+/**
+ * The frozen inputs of a run: what its slices, its working and any later check read, whatever has changed in the district since.
+ * Layout: gzip of [uint32 header length][JSON header][Float64 arrays of the weather in WEATHER_ARRAYS order][Uint16 flags].
+ */
+import { gunzipSync, gzipSync } from 'node:zlib';
+import type { Tx } from '../../db/connect.ts';
+import { findFrozen, listParcelInputs, listSliceParcels } from '../../db/queries/run-state.ts';
+import { NotFound } from '../base/errors.ts';
+import { nanFromNull, nullFromNaN } from '../base/missing.ts';
+import type { SeasonInput, Soil } from '../season/types.ts';
+import type { CompletedWeather, Site } from '../weather/variable.ts';
+import { cropFromJson, type FrozenParcel, type Libraries, seasonInput } from './run-plan.ts';
+import type { RunSettings } from './run-settings.ts';
+
+/** Everything of a run but its parcels. */
+export interface FrozenSeason {
+  readonly startDate: string;
+  readonly settings: RunSettings;
+  readonly sites: readonly Site[];
+  readonly weather: CompletedWeather;
+  readonly libraries: Libraries;
+}
+
+const WEATHER_ARRAYS = [
+  'airTemperatureMax',
+  'airTemperatureMin',
+  'actualVapourPressure',
+  'solarRadiation',
+  'windSpeed2m',
+  'precipitation',
+] as const;
+
+export function packFrozenSeason(frozen: FrozenSeason): Uint8Array {
+  const header = Buffer.from(
+    JSON.stringify({
+      startDate: frozen.startDate,
+      settings: frozen.settings,
+      sites: frozen.sites.map((site) => ({ ...site, elevation: nullFromNaN(site.elevation), windHeight: nullFromNaN(site.windHeight) })),
+      siteCount: frozen.weather.siteCount,
+      dayCount: frozen.weather.dayCount,
+      libraries: frozen.libraries,
+    }),
+  );
+  const length = Buffer.alloc(4);
+  length.writeUInt32LE(header.length);
+  const arrays = WEATHER_ARRAYS.map((name) => bytesOf(frozen.weather[name]));
+  return gzipSync(Buffer.concat([length, header, ...arrays, bytesOf(frozen.weather.flags)]), { level: 3 });
+}
+
+function bytesOf(array: Float64Array | Uint16Array): Buffer {
+  return Buffer.from(array.buffer, array.byteOffset, array.byteLength);
+}
+
+export function unpackFrozenSeason(packed: Uint8Array): FrozenSeason {
+  const bytes = gunzipSync(packed);
+  const headerLength = bytes.readUInt32LE(0);
+  const header = JSON.parse(bytes.subarray(4, 4 + headerLength).toString('utf8'));
+  const count: number = header.siteCount * header.dayCount;
+  const body = Uint8Array.from(bytes.subarray(4 + headerLength)).buffer;
+  const array = (index: number) => new Float64Array(body, index * count * 8, count);
+  const weather = Object.fromEntries(WEATHER_ARRAYS.map((name, index) => [name, array(index)]));
+  return {
+    startDate: header.startDate,
+    settings: header.settings,
+    sites: header.sites.map((site: Record<'elevation' | 'windHeight', number | null>) => ({
+      ...site,
+      elevation: nanFromNull(site.elevation),
+      windHeight: nanFromNull(site.windHeight),
+    })),
+    weather: {
+      siteCount: header.siteCount,
+      dayCount: header.dayCount,
+      ...weather,
+      flags: new Uint16Array(body, WEATHER_ARRAYS.length * count * 8, count),
+    } as CompletedWeather,
+    libraries: librariesFromJson(header.libraries),
+  };
+}
+
+function librariesFromJson(libraries: Libraries): Libraries {
+  const soils = Object.entries(libraries.soils).map(([code, soil]): [string, Soil] => [
+    code,
+    { ...soil, curveNumber: nanFromNull(soil.curveNumber), rootLimit: nanFromNull(soil.rootLimit) },
+  ]);
+  const crops = Object.entries(libraries.crops).map(([code, crop]) => [code, cropFromJson(crop)]);
+  return { ...libraries, soils: Object.fromEntries(soils), crops: Object.fromEntries(crops) };
+}
+
+const HELD = new Map<string, FrozenSeason>();
+const HELD_LIMIT = 3;
+
+/** The frozen season of a run; the last few are kept in memory, since a run's inputs never change. @throws NotFound */
+export async function findFrozenSeason(tx: Tx, districtId: string, runId: string): Promise<FrozenSeason> {
+  const key = `${districtId}/${runId}`;
+  const held = HELD.get(key);
+  if (held) return held;
+  const packed = await findFrozen(tx, districtId, runId);
+  if (!packed) throw new NotFound(`Run ${runId} has no frozen inputs: it has not begun, or is not of this district.`);
+  const frozen = unpackFrozenSeason(packed);
+  HELD.set(key, frozen);
+  for (const oldest of HELD.keys()) {
+    if (HELD.size <= HELD_LIMIT) break;
+    HELD.delete(oldest);
+  }
+  return frozen;
+}
+
+/** The season input of some parcels of a run, in the order of the positions given. */
+export async function loadFrozenSeason(tx: Tx, districtId: string, runId: string, positions: readonly number[]): Promise<SeasonInput> {
+  const frozen = await findFrozenSeason(tx, districtId, runId);
+  const rows = await listParcelInputs(tx, districtId, runId, positions);
+  return seasonInput({ ...frozen, parcels: rows.map((row) => ({ code: row.parcelCode, input: row.input as FrozenParcel })) });
+}
+
+/** The season input of one slice with the positions of its parcels. */
+export async function loadFrozenSlice(
+  tx: Tx,
+  districtId: string,
+  runId: string,
+  slice: number,
+): Promise<{ input: SeasonInput; positions: number[] }> {
+  const frozen = await findFrozenSeason(tx, districtId, runId);
+  const rows = await listSliceParcels(tx, districtId, runId, slice);
+  const parcels = rows.map((row) => ({ code: row.parcelCode, input: row.input as FrozenParcel }));
+  return { input: seasonInput({ ...frozen, parcels }), positions: rows.map((row) => row.position) };
+}

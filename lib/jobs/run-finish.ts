@@ -1,0 +1,154 @@
+/** Last piece of a run: map arrays, canal roll-up, checks, and the swap that makes it the standing run. One transaction. */
+
+import type { Tx } from '../../db/connect.ts';
+import { findDistrict, listReaches, listTurnouts } from '../../db/queries/run-inputs.ts';
+import { listParcelDays, saveRunReaches, saveRunValues } from '../../db/queries/run-results.ts';
+import { countSlices, findRun, makeStanding, type RunRow, updateGoingRun } from '../../db/queries/run-state.ts';
+import { database } from '../access/database.ts';
+import { type Period, periodsOf } from '../base/civil-date.ts';
+import { depthToVolume } from '../base/units.ts';
+import type { LossRule } from '../canal/loss-rule.ts';
+import { rollUp, rollUpImbalance } from '../canal/roll-up.ts';
+import { buildTree } from '../canal/tree.ts';
+import { dailyValues, storedArray } from '../season/daily-store.ts';
+import { FALLBACK, type Fallback } from '../weather/variable.ts';
+import { MapArrays } from './map-arrays.ts';
+import { failRun, type RunJob } from './run-failure.ts';
+
+type FinishedRun = Omit<RunRow, 'frozen'>;
+const PAGE = 1000;
+
+/** The job: idempotent; a run already finished is left alone. */
+export async function finishRun(job: RunJob): Promise<void> {
+  await failRun(job, () => database().inDistrict(job.districtId, (tx) => closeRun(tx, job)));
+}
+
+async function closeRun(tx: Tx, job: RunJob): Promise<void> {
+  const run = await findRun(tx, job.districtId, job.runId);
+  if (run?.state !== 'running') return;
+  const slices = await countSlices(tx, job.districtId, job.runId);
+  if (slices.done < slices.all) return;
+  const district = await findDistrict(tx, job.districtId);
+  const periods = periodSets(run, district?.weekStart ?? 1);
+  const arrays = new MapArrays(run.parcelCount, run.dayCount, periods);
+  const demand = new ReachDemand(await canalsOf(tx, job.districtId), run.dayCount);
+  const fallbackDays = new Map<Fallback, number>();
+  await eachParcel(tx, job, (parcel) => {
+    const stored = storedArray(parcel.daily);
+    arrays.add(parcel.position, stored);
+    demand.add(parcel.reachCode, dailyValues(stored, run.dayCount, 'gross_requirement'), parcel.area);
+    countFallbacks(fallbackDays, parcel.flags);
+  });
+  await saveRunValues(tx, arrays.rows(job));
+  const canal = demand.rolledUp(job);
+  await saveRunReaches(tx, canal.rows);
+  const parcelDays = run.parcelCount * run.dayCount;
+  await makeStanding(tx, job.districtId, run.seasonCode, job.runId);
+  await updateGoingRun(tx, job.districtId, job.runId, {
+    state: 'done',
+    stage: 'finished',
+    progress: 1,
+    finishedAt: new Date(),
+    balance: {
+      parcel_days: parcelDays,
+      max_residual_mm: slices.maxResidual,
+      roll_up_relative: canal.relativeError,
+      fallback_shares: Object.fromEntries([...fallbackDays].map(([name, days]) => [name, days / parcelDays])),
+      seconds: run.startedAt ? (Date.now() - run.startedAt.getTime()) / 1000 : undefined,
+      parcels_without_canal: demand.withoutCanal,
+    },
+  });
+}
+
+function periodSets(run: FinishedRun, weekStart: number): { kind: 'week' | 'month' | 'season'; periods: Period[] }[] {
+  return (['week', 'month', 'season'] as const).map((kind) => ({ kind, periods: periodsOf(kind, run.startDate, run.endDate, weekStart) }));
+}
+
+async function eachParcel(
+  tx: Tx,
+  job: RunJob,
+  visit: (parcel: { position: number; area: number; reachCode: string | null; daily: Uint8Array; flags: Uint8Array }) => void,
+): Promise<void> {
+  let after = -1;
+  for (;;) {
+    const page = await listParcelDays(tx, job, after, PAGE);
+    for (const row of page) {
+      if (!row.daily || !row.flags)
+        throw new Error(`parcel position ${row.position} of run ${job.runId} has no days although its slice is done`);
+      visit({ ...row, daily: row.daily, flags: row.flags });
+    }
+    if (page.length < PAGE) return;
+    after = page[page.length - 1].position;
+  }
+}
+
+function countFallbacks(days: Map<Fallback, number>, bytes: Uint8Array): void {
+  const flags = storedArray(bytes);
+  for (const [name, bit] of Object.entries(FALLBACK) as [Fallback, number][]) {
+    let count = 0;
+    for (const flag of flags) if ((flag & bit) !== 0) count++;
+    if (count > 0) days.set(name, (days.get(name) ?? 0) + count);
+  }
+}
+
+async function canalsOf(tx: Tx, districtId: string) {
+  const [reaches, turnouts] = [await listReaches(tx, districtId), await listTurnouts(tx, districtId)];
+  return { reaches, turnouts };
+}
+
+/** Turnout demand of every reach and day, and its roll-up to the headworks. */
+class ReachDemand {
+  withoutCanal = 0;
+  private readonly demand: Float64Array;
+  private readonly index: Map<string, number>;
+
+  constructor(
+    private readonly canals: Awaited<ReturnType<typeof canalsOf>>,
+    private readonly dayCount: number,
+  ) {
+    this.index = new Map(canals.reaches.map((reach, ordinal) => [reach.code, ordinal]));
+    this.demand = new Float64Array(canals.reaches.length * dayCount);
+  }
+
+  add(reachCode: string | null, gross: Float64Array, area: number): void {
+    const ordinal = reachCode === null ? undefined : this.index.get(reachCode);
+    if (ordinal === undefined) {
+      this.withoutCanal++;
+      return;
+    }
+    for (let day = 0; day < this.dayCount; day++) this.demand[ordinal * this.dayCount + day] += depthToVolume(gross[day], area);
+  }
+
+  rolledUp(job: RunJob) {
+    const { reaches } = this.canals;
+    if (reaches.length === 0) return { rows: [], relativeError: 0 };
+    const tree = buildTree(reaches);
+    const flows = rollUp({
+      tree,
+      reaches: reaches.map((reach) => ({ length: reach.length, lossRule: reach.lossRule as LossRule })),
+      turnoutDemand: this.demand,
+    });
+    const rows = reaches.map((reach, ordinal) => ({
+      ...job,
+      ordinal,
+      reachCode: reach.code,
+      parentCode: reach.parentCode,
+      name: reach.name,
+      kind: reach.kind,
+      capacity: reach.capacity,
+      length: reach.length,
+      lossRule: reach.lossRule,
+      daily: this.dailyBytes(ordinal, flows),
+    }));
+    return { rows, relativeError: rollUpImbalance(tree, this.demand, flows) };
+  }
+
+  private dailyBytes(ordinal: number, flows: { reachLoss: Float64Array; headInflow: Float64Array }): Uint8Array {
+    const days = new Float64Array(3 * this.dayCount);
+    const span = [ordinal * this.dayCount, (ordinal + 1) * this.dayCount] as const;
+    days.set(this.demand.subarray(...span), 0);
+    days.set(flows.reachLoss.subarray(...span), this.dayCount);
+    days.set(flows.headInflow.subarray(...span), 2 * this.dayCount);
+    return new Uint8Array(days.buffer);
+  }
+}

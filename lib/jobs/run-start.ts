@@ -1,0 +1,131 @@
+/** First piece of a run: freeze every input, cut the parcels into slices, and queue the slices. */
+import { createHash } from 'node:crypto';
+import type { Tx } from '../../db/connect.ts';
+import {
+  findDistrict,
+  listLibraries,
+  listReaches,
+  listRunParcels,
+  listSeasonPlantings,
+  listTurnouts,
+} from '../../db/queries/run-inputs.ts';
+import { findRun, insertRunParcels, replaceSlices, updateGoingRun } from '../../db/queries/run-state.ts';
+import { database } from '../access/database.ts';
+import { addDays } from '../base/civil-date.ts';
+import { Refused } from '../base/errors.ts';
+import { packFrozenSeason } from './frozen-season.ts';
+import { loadObservations } from './observations.ts';
+import { enqueue } from './queue.ts';
+import { failRun, type RunJob } from './run-failure.ts';
+import { type FrozenParcel, frozenParcels, librariesOf, seasonInput, seasonWeather } from './run-plan.ts';
+import type { RunSettings } from './run-settings.ts';
+
+/** Parcels in a slice: about a second of work, far below the half minute a piece may take. */
+export const SLICE_PARCELS = 2000;
+
+/** Version of the computation; part of every manifest. Count up when a change can move a result. */
+export const KERNEL_VERSION = '1';
+
+/** The job: idempotent; a second go replaces the slices of the first. */
+export async function startRun(job: RunJob): Promise<void> {
+  await failRun(job, () =>
+    database().inDistrict(job.districtId, async (tx) => {
+      const slices = await planRun(tx, job);
+      for (let slice = 0; slice < slices; slice++)
+        await enqueue('run-slice', { ...job, slice }, { singletonKey: `${job.runId}/${slice}`, tx });
+    }),
+  );
+}
+
+async function planRun(tx: Tx, { districtId, runId }: RunJob): Promise<number> {
+  const run = await findRun(tx, districtId, runId);
+  if (!run || (run.state !== 'queued' && run.state !== 'running')) return 0;
+  const district = await findDistrict(tx, districtId);
+  if (!district) return 0;
+  const settings = run.settings as RunSettings;
+  const parcels = await listRunParcels(tx, districtId);
+  const plantings = await listSeasonPlantings(tx, districtId, run.seasonCode);
+  if (plantings.length === 0) {
+    throw new Refused(
+      `No parcel has a planting in season "${run.seasonCode}": import plantings, or parcels with a crop column and this season.`,
+    );
+  }
+  const libraries = librariesOf(await listLibraries(tx, districtId));
+  const observations = await loadObservations(tx, districtId, { source: settings.source });
+  if (observations.sites.length === 0 || observations.dayCount === 0) {
+    throw new Refused('The district has no weather yet: import stations, then their weather.');
+  }
+  const weather = seasonWeather(observations, run, {
+    defaultElevation: district.defaultElevation,
+    radiationCoefficient: district.radiationCoefficient,
+  });
+  const sites = observations.sites;
+  const frozen = frozenParcels({ parcels, plantings, sites, weather, settings, defaultElevation: district.defaultElevation });
+  seasonInput({
+    startDate: run.startDate,
+    settings,
+    sites,
+    weather,
+    libraries,
+    parcels: parcels.map((p, i) => ({ code: p.code, input: frozen[i] })),
+  });
+  const packed = packFrozenSeason({ startDate: run.startDate, settings, sites, weather, libraries });
+  const sliceCount = Math.ceil(parcels.length / SLICE_PARCELS);
+  await replaceSlices(tx, districtId, runId, sliceCount);
+  await insertRunParcels(tx, runParcelRows({ districtId, runId }, parcels, frozen));
+  const canal = { reaches: await listReaches(tx, districtId), turnouts: await listTurnouts(tx, districtId) };
+  await updateGoingRun(tx, districtId, runId, {
+    state: 'running',
+    stage: 'crop and soil water',
+    progress: 0.05,
+    startedAt: run.startedAt ?? new Date(),
+    parcelCount: parcels.length,
+    sliceCount,
+    geometryVersion: district.geometryVersion,
+    frozen: packed,
+    manifest: manifestOf({ packed, frozen, canal, settings, observations: { from: observations.startDate, days: observations.dayCount } }),
+  });
+  return sliceCount;
+}
+
+function runParcelRows(
+  key: { districtId: string; runId: string },
+  parcels: Awaited<ReturnType<typeof listRunParcels>>,
+  frozen: readonly FrozenParcel[],
+) {
+  return parcels.map((parcel, position) => ({
+    ...key,
+    position,
+    slice: Math.floor(position / SLICE_PARCELS),
+    parcelCode: parcel.code,
+    turnoutCode: parcel.turnoutCode,
+    reachCode: parcel.reachCode,
+    cropCodes: [...new Set(frozen[position].plantings.map((planting) => planting.crop))],
+    methodCode: frozen[position].method,
+    soilCode: frozen[position].soil,
+    area: parcel.area,
+    input: frozen[position],
+  }));
+}
+
+function manifestOf(parts: {
+  packed: Uint8Array;
+  frozen: readonly FrozenParcel[];
+  canal: unknown;
+  settings: RunSettings;
+  observations: { from: string; days: number };
+}) {
+  return {
+    kernel_version: KERNEL_VERSION,
+    weather_from: parts.observations.from,
+    weather_to: addDays(parts.observations.from, parts.observations.days - 1),
+    weather_and_library_sha256: sha256(parts.packed),
+    parcels_sha256: sha256(JSON.stringify(parts.frozen)),
+    canals_sha256: sha256(JSON.stringify(parts.canal)),
+    settings_sha256: sha256(JSON.stringify(parts.settings)),
+  };
+}
+
+function sha256(content: string | Uint8Array): string {
+  return createHash('sha256').update(content).digest('hex');
+}
