@@ -11,6 +11,8 @@ const schema = z.object({
   DATABASE_URL: z.url({ protocol: /^postgres(ql)?$/ }).optional(),
   TILLWATER_DATA: z.string().default('.tillwater'),
   TILLWATER_EMPTY: flag,
+  /** set by the launcher for its web process */
+  TILLWATER_DEMO_SHOWN: flag,
   TILLWATER_DEMO_TOKEN: z.string().min(20, 'TILLWATER_DEMO_TOKEN must have at least 20 characters').optional(),
   TILLWATER_DEMO_PASSWORD: z.string().min(10, 'TILLWATER_DEMO_PASSWORD must have at least 10 characters').optional(),
   TILLWATER_SECRET: z.string().min(32, 'TILLWATER_SECRET must have at least 32 characters').optional(),

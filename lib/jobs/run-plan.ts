@@ -6,6 +6,7 @@ import { Refused } from '../base/errors.ts';
 import { nanFromNull } from '../base/missing.ts';
 import { completeWeather } from '../energy/complete-weather.ts';
 import type { ApplicationMethod, Crop, CropCalendar, ParcelInput, SeasonInput, Soil } from '../season/types.ts';
+import { fillTemperatureGaps } from '../weather/gaps.ts';
 import { inverseDistanceWeights, nearestWeights } from '../weather/interpolation.ts';
 import type { CompletedWeather, Site, SiteObservations, SiteWeight } from '../weather/variable.ts';
 import { type RunSettings, seasonSettings } from './run-settings.ts';
@@ -70,7 +71,7 @@ export function seasonWeather(
   span: { startDate: string; dayCount: number },
   options: { defaultElevation: number; radiationCoefficient: number },
 ): CompletedWeather {
-  const whole = completeWeather(observations, options);
+  const whole = completeWeather(observations, { ...options, temperatures: fillTemperatureGaps(observations) });
   const offset = dayNumber(span.startDate) - dayNumber(observations.startDate);
   const weather = windowOf(whole, offset, span.dayCount);
   const empty = daysWithoutTemperature(weather);
@@ -141,8 +142,14 @@ export function siteWeights(
   const candidates = usable.map((index) => sites[index]);
   const weights =
     settings.interpolation === 'nearest'
-      ? nearestWeights(place, candidates)
-      : inverseDistanceWeights({ ...place, sites: candidates, power: settings.power, maximumSites: settings.maximum_sites });
+      ? nearestWeights([place.longitude, place.latitude], candidates)
+      : inverseDistanceWeights({
+          longitude: place.longitude,
+          latitude: place.latitude,
+          sites: candidates,
+          power: settings.power,
+          maximumSites: settings.maximum_sites,
+        });
   return weights.map((entry) => ({ site: usable[entry.site], weight: entry.weight }));
 }
 

@@ -1,8 +1,9 @@
-/** What a worker process does: every queue with its handler. */
-
-import { type JobData, workOn } from './queue.ts';
-import type { RunJob } from './run-failure.ts';
-import { endRun } from './run-failure.ts';
+/** What a worker process does: every queue with its handler, and the upkeep that lets nothing hang. */
+import { listGivenUpJobs } from '../../db/queries/queue-job.ts';
+import { database } from '../access/database.ts';
+import { workOnImports } from './import-work.ts';
+import { addUpkeep, type JobData, workOn } from './queue.ts';
+import { endRun, type RunJob } from './run-failure.ts';
 import { finishRun } from './run-finish.ts';
 import { computeSlice, type SliceJob } from './run-slice.ts';
 import { startRun } from './run-start.ts';
@@ -12,15 +13,13 @@ export async function startWork(threads: number): Promise<void> {
   await workOn<RunJob & JobData>('run-start', startRun);
   await workOn<SliceJob & JobData>('run-slice', computeSlice, { concurrency: threads });
   await workOn<RunJob & JobData>('run-finish', finishRun);
-  await workOn('given-up', giveUp);
+  addUpkeep(settleGivenUpRuns);
+  await workOnImports();
 }
 
-/** A job failed for the last time: what waits for it is told. */
-async function giveUp(job: JobData): Promise<void> {
-  if (typeof job.runId === 'string') {
-    await endRun(
-      { districtId: job.districtId, runId: job.runId },
-      'A part of this run failed several times; the service’s log has the cause. Start the run again.',
-    );
+/** No run stays "running" for ever: one whose piece failed for the last time is marked as failed. */
+async function settleGivenUpRuns(): Promise<void> {
+  for (const data of await listGivenUpJobs(database().outside, ['run-start', 'run-slice', 'run-finish'], 'runId')) {
+    await endRun(data as RunJob, 'A part of this run failed several times; the log of the service has the cause. Start the run again.');
   }
 }

@@ -75,7 +75,8 @@ try {
   (globalThis as { tillwaterEnvironment?: unknown }).tillwaterEnvironment = undefined;
   await migrateDatabase(ownerUrl, 'db/migrations');
   if (embedded) await releaseOrphans();
-  const first = await prepareFirstData();
+  const first = await prepareFirstData(ownerUrl);
+  first.computed.catch(() => {}); // awaited below; until then a failure must not end the process
   for (let i = 0; i < TILLWATER_WORKERS; i++) children.push(keepRunning('worker', 'lib/start/worker.ts', {}));
   if (!dev) {
     say('Tillwater: building the pages if they changed (about a minute the first time) …');

@@ -46,6 +46,8 @@ export const FALLBACK = {
   precipitationAssumedZero: 1 << 9,
   elevationAssumed: 1 << 10,
   radiationCappedAtClearSky: 1 << 11,
+  temperatureExtremesFromMean: 1 << 12,
+  windHeightAssumed: 1 << 13,
 } as const;
 export type Fallback = keyof typeof FALLBACK;
 
@@ -63,6 +65,8 @@ export const FALLBACK_TEXT: Record<Fallback, string> = {
   precipitationAssumedZero: 'no rain record: taken as zero',
   elevationAssumed: 'site elevation unknown: taken from the district setting',
   radiationCappedAtClearSky: 'estimated radiation held at the clear-sky value',
+  temperatureExtremesFromMean: 'no temperature extremes: both taken equal to the mean',
+  windHeightAssumed: 'height of the anemometer unknown: 10 m assumed',
 };
 
 /** Names of the bits set in `flags`, in the order of `FALLBACK`. */

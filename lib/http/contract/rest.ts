@@ -144,6 +144,12 @@ export const siteDayRow = z.object({
   ...Object.fromEntries(Object.keys(completedShape.shape).map((name) => [`completed_${name}`, n])),
 });
 
+/** A day as one flat row, for tables. */
+export function siteDayRowOf({ observed, completed, ...rest }: SiteDay): Record<string, unknown> {
+  const prefixed = (prefix: string, values: object) => Object.entries(values).map(([name, value]) => [`${prefix}_${name}`, value]);
+  return { ...rest, ...Object.fromEntries([...prefixed('observed', observed), ...prefixed('completed', completed)]) };
+}
+
 export const cropAnswer = z
   .object({
     code: z.string(),
@@ -271,3 +277,8 @@ export const memberAnswer = z
   .object({ user_id: z.string(), name: z.string(), email: z.string(), role, parcels: z.array(z.string()) })
   .meta({ id: 'Member' });
 export type MemberAnswer = z.infer<typeof memberAnswer>;
+export type DistrictRequest = z.infer<typeof districtRequest>;
+export type SeasonRequest = z.infer<typeof seasonRequest>;
+export type MemberRequest = z.infer<typeof memberRequest>;
+export type TokenRequest = z.infer<typeof tokenRequest>;
+export type PlantingAnswer = z.infer<typeof plantingAnswer>;

@@ -243,6 +243,13 @@ export const summaryRow = z.object({
 });
 export type SummaryTotal = z.infer<typeof total>;
 
+/** The totals as flat rows, for tables. */
+export function summaryRowsOf(summary: SummaryAnswer): Record<string, unknown>[] {
+  const { district, by_canal, by_crop, by_method } = summary;
+  const rows = (of: string, totals: readonly object[]) => totals.map((total) => ({ total_of: of, ...total }));
+  return [...rows('district', [district]), ...rows('canal', by_canal), ...rows('crop', by_crop), ...rows('method', by_method)];
+}
+
 /** Canal numbers for the map, [period][reach]. */
 export const reachValues = z
   .object({
@@ -293,3 +300,4 @@ export const mapDescription = z
   })
   .meta({ id: 'MapDescription' });
 export type MapDescription = z.infer<typeof mapDescription>;
+export type RunRequest = z.infer<typeof runRequest>;

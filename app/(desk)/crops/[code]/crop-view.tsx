@@ -1,0 +1,178 @@
+import type { UnitSystem } from '../../../../lib/base/units.ts';
+import type { CropAnswer } from '../../../../lib/http/contract/rest.ts';
+import type { ParcelPeriod } from '../../../../lib/http/contract/run.ts';
+import { CropCurve } from '../../../_components/crop-curve.tsx';
+import { calendarOf, coefficientsOf, numberOf } from '../../../_components/crop-values.ts';
+import { DataTable } from '../../../_components/data-table.tsx';
+import { figure, plain, unitOf } from '../../../_components/figures.ts';
+import { Go } from '../../../_components/go.tsx';
+import { PageHead, Section } from '../../../_components/page-head.tsx';
+
+const VALUES: readonly (readonly [string, string, string])[] = [
+  ['basalInitial', 'Basal coefficient Kcb, initial stage', '1'],
+  ['basalMid', 'Basal coefficient Kcb, mid-season', '1'],
+  ['basalEnd', 'Basal coefficient Kcb, end of the season', '1'],
+  ['heightMax', 'Greatest height', 'm'],
+  ['rootDepthMin', 'Root depth at the start', 'm'],
+  ['rootDepthMax', 'Greatest root depth', 'm'],
+  ['depletionFraction', 'Depletion fraction p, for a crop ET of 5 mm per day', '1'],
+  ['yieldResponse', 'Yield response factor Ky of the season', '1'],
+  ['lastIrrigation', 'Last irrigation, as a fraction of the late stage', '1'],
+];
+
+interface Grown {
+  readonly items: readonly ParcelPeriod[];
+  readonly total: number;
+}
+
+interface CropViewProps {
+  readonly crop: CropAnswer;
+  readonly grown: Grown | null;
+  readonly season: string | null;
+  readonly units: UnitSystem;
+}
+
+/** One crop of the library: values with their sources, curves, calendars, and where it grows. */
+export function CropView({ crop, grown, season, units }: CropViewProps) {
+  return (
+    <div className="page">
+      <PageHead
+        title={crop.name}
+        lead={`${crop.group}; ${String(crop.definition.type ?? '')}, on the ${String(crop.definition.surface ?? 'short')} reference surface.`}
+        crumbs={[['/crops', 'Crops']]}
+      />
+      {crop.notes ? <p className="notice">{crop.notes}</p> : null}
+      <Section id="values" title="Values and their sources">
+        <DataTable
+          caption={`Values of ${crop.name}`}
+          rows={VALUES}
+          rowKey={([key]) => key}
+          columns={[
+            { key: 'term', head: 'Value', rowHead: true, cell: ([, term]) => term },
+            { key: 'value', head: 'Number', numeric: true, cell: ([key]) => plain(numberOf(crop, key), 2) },
+            { key: 'unit', head: 'Unit', cell: ([, , unit]) => (unit === '1' ? '' : unit) },
+            { key: 'source', head: 'Source', cell: ([key]) => sourceOf(crop, key) },
+          ]}
+        />
+      </Section>
+      <Calendars crop={crop} />
+      <GrownOn crop={crop} grown={grown} season={season} units={units} />
+    </div>
+  );
+}
+
+function sourceOf(crop: CropAnswer, key: string): string {
+  return crop.sources[key] ?? (Number.isNaN(numberOf(crop, key)) ? 'not listed' : 'not stated');
+}
+
+function Calendars({ crop }: { crop: CropAnswer }) {
+  if (crop.calendars.length === 0) return <Section title="Calendars">No calendar: a planting of this crop needs one.</Section>;
+  return (
+    <Section id="calendars" title="Calendars" note="Curves before the adjustment to the climate of the season (FAO-56 Eq. 70).">
+      <CalendarTable crop={crop} />
+      <div className="columns">
+        {crop.calendars.map((calendar) => {
+          const { lengths, later } = calendarOf(calendar);
+          const coefficients = coefficientsOf(crop);
+          return (
+            <div key={calendar.code} className="stack">
+              <CropCurve id={`curve-${calendar.code}`} title={calendar.name} lengths={lengths} coefficients={coefficients} />
+              {later ? (
+                <CropCurve
+                  id={`curve-${calendar.code}-later`}
+                  title={`${calendar.name}, after a cut`}
+                  lengths={later}
+                  coefficients={coefficients}
+                />
+              ) : null}
+            </div>
+          );
+        })}
+      </div>
+    </Section>
+  );
+}
+
+function CalendarTable({ crop }: { crop: CropAnswer }) {
+  const stage = (key: 'initial' | 'development' | 'mid' | 'late', head: string) => ({
+    key,
+    head,
+    unit: 'd',
+    numeric: true,
+    cell: (calendar: CropAnswer['calendars'][number]) => {
+      const { lengths, later } = calendarOf(calendar);
+      return later ? `${lengths[key]}, then ${later[key]}` : lengths[key];
+    },
+  });
+  return (
+    <DataTable
+      caption={`Calendars of ${crop.name}`}
+      rows={crop.calendars}
+      rowKey={(calendar) => calendar.code}
+      columns={[
+        { key: 'name', head: 'Calendar', rowHead: true, cell: (calendar) => calendar.name },
+        { key: 'planting', head: 'Usual planting', cell: (calendar) => calendar.planting_day ?? 'as recorded' },
+        stage('initial', 'Initial'),
+        stage('development', 'Development'),
+        stage('mid', 'Mid-season'),
+        stage('late', 'Late'),
+        { key: 'source', head: 'Source', cell: (calendar) => calendar.source },
+      ]}
+    />
+  );
+}
+
+function GrownOn({ crop, grown, season, units }: CropViewProps) {
+  if (!grown || grown.items.length === 0) {
+    return (
+      <Section id="grown" title="Where it grows">
+        <p>{season ? `No parcel grows it in season ${season}.` : 'No season has been run yet.'}</p>
+      </Section>
+    );
+  }
+  const more = grown.total > grown.items.length;
+  return (
+    <Section
+      id="grown"
+      title={`Where it grows in season ${season}`}
+      note={more ? `The first ${grown.items.length} of ${grown.total} parcels.` : `${grown.total} parcels.`}
+    >
+      <DataTable
+        caption={`Parcels that grow ${crop.name}`}
+        rows={grown.items}
+        rowKey={(row) => `${row.parcel} ${row.start}`}
+        columns={[
+          {
+            key: 'parcel',
+            head: 'Parcel',
+            rowHead: true,
+            cell: (row) => <Go href={`/parcels/${encodeURIComponent(row.parcel)}`}>{row.parcel}</Go>,
+          },
+          { key: 'crops', head: 'Crops', cell: (row) => row.crops },
+          { key: 'area', head: 'Area', unit: unitOf('area', units), numeric: true, cell: (row) => figure(row.area_ha, 'area', units) },
+          {
+            key: 'et',
+            head: 'Crop ET',
+            unit: unitOf('depth', units),
+            numeric: true,
+            cell: (row) => figure(row.crop_et_mm, 'depth', units),
+          },
+          {
+            key: 'gross',
+            head: 'Gross',
+            unit: unitOf('depth', units),
+            numeric: true,
+            cell: (row) => figure(row.gross_requirement_mm, 'depth', units),
+          },
+          {
+            key: 'volume',
+            head: 'Volume',
+            unit: unitOf('volume', units),
+            numeric: true,
+            cell: (row) => figure(row.gross_volume_m3, 'volume', units),
+          },
+        ]}
+      />
+    </Section>
+  );
+}

@@ -1,0 +1,89 @@
+import { cookies } from 'next/headers';
+import Link from 'next/link';
+import type { ReactNode } from 'react';
+import { answerDistricts } from '../../lib/http/answers/district.ts';
+import { INVENTED_CAUTION } from '../../lib/report/cautions.ts';
+import { AccountMenu } from '../_components/account-menu.tsx';
+import { PreferenceChoice, PreferenceSelect } from '../_components/choice.tsx';
+import { callerInView, districtInView, runInView } from '../_components/in-view.ts';
+import { Mark } from '../_components/mark.tsx';
+import { PlaceBar, PlaceLine } from '../_components/navigation.tsx';
+
+export const dynamic = 'force-dynamic';
+
+const UNITS = [
+  { value: 'metric', label: 'mm, ha, m³' },
+  { value: 'us', label: 'in, ac, ac-ft' },
+];
+const THEMES = [
+  { value: 'system', label: 'As the system' },
+  { value: 'light', label: 'Light' },
+  { value: 'dark', label: 'Dark' },
+];
+const ROLES = { manager: 'Manager', operator: 'Operator', regulator: 'Regulator', grower: 'Grower' } as const;
+
+/** The season whose standing run the pages show: a choice when the district has several. */
+async function SeasonInView() {
+  const [district, run] = await Promise.all([districtInView(), runInView()]);
+  if (district.seasons.length > 1) {
+    const options = district.seasons.map((season) => ({ value: season.code, label: season.name || season.code }));
+    const value = run?.season ?? district.seasons[0].code;
+    return <PreferenceSelect cookie="tillwater_season" label="Season in view" options={options} value={value} />;
+  }
+  const season = district.seasons[0];
+  if (!season) return <Link href="/imports">No season yet</Link>;
+  return run ? (
+    <Link href={`/runs/${run.id}`}>{season.name || season.code}</Link>
+  ) : (
+    <Link href="/runs">{season.name || season.code}: no run yet</Link>
+  );
+}
+
+async function DistrictInView() {
+  const caller = await callerInView();
+  const districts = await answerDistricts(caller);
+  if (districts.length < 2) return <span className="head-district">{caller.district.name}</span>;
+  const options = districts.map((one) => ({ value: one.code, label: one.name }));
+  return (
+    <span className="head-district">
+      <PreferenceSelect cookie="tillwater_district" label="District in view" options={options} value={caller.district.code} />
+    </span>
+  );
+}
+
+/** The desk: whose water, which season, where to go; the page itself comes below. */
+export default async function DeskLayout({ children }: { children: ReactNode }) {
+  const caller = await callerInView();
+  const theme = (await cookies()).get('tillwater_theme')?.value ?? 'system';
+  return (
+    <>
+      <a className="skip" href="#main">
+        Skip to the content
+      </a>
+      <header>
+        <div className="head">
+          <div className="head-line">
+            <Link className="mark" href="/" aria-label="Tillwater, demand map">
+              <Mark />
+              <span className="mark-name">Tillwater</span>
+            </Link>
+            <DistrictInView />
+            <div className="head-end small">
+              <SeasonInView />
+              <AccountMenu name={caller.name} role={ROLES[caller.role]} email={caller.email}>
+                <PreferenceChoice cookie="tillwater_units" legend="Units" options={UNITS} value={caller.units} />
+                <PreferenceChoice cookie="tillwater_theme" legend="Colours" options={THEMES} value={theme} />
+              </AccountMenu>
+            </div>
+          </div>
+          <PlaceLine />
+        </div>
+        {caller.district.invented ? <p className="invented">{INVENTED_CAUTION}</p> : null}
+      </header>
+      <main id="main" tabIndex={-1}>
+        {children}
+      </main>
+      <PlaceBar />
+    </>
+  );
+}

@@ -1,0 +1,34 @@
+import type { Metadata } from 'next';
+import { answerMethods, answerSoils } from '../../../lib/http/answers/land.ts';
+import { callerInView, runInView } from '../../_components/in-view.ts';
+import { PageHead } from '../../_components/page-head.tsx';
+import { CodeDocs } from './code-docs-view.tsx';
+import { EquationList } from './equation-list.tsx';
+import { loadEquations } from './load-equations.ts';
+import { readCodeDocs } from './read-code-docs.ts';
+import { Rules } from './rules.tsx';
+import { Tables } from './tables.tsx';
+
+export const metadata: Metadata = { title: 'Methods' };
+
+export default async function MethodsPage() {
+  const [caller, run] = await Promise.all([callerInView(), runInView()]);
+  const [worked, docs, soils, methods] = await Promise.all([
+    run ? loadEquations(caller, run) : null,
+    readCodeDocs(),
+    answerSoils(caller),
+    answerMethods(caller),
+  ]);
+  return (
+    <div className="page">
+      <PageHead
+        title="Methods"
+        lead="Every equation, table and constant in use with its source. Equations and constants are read from the code that computes, not kept beside it."
+      />
+      <EquationList worked={worked} />
+      <Rules run={run} />
+      <Tables soils={soils} methods={methods} />
+      <CodeDocs rooms={docs} />
+    </div>
+  );
+}

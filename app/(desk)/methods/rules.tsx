@@ -1,0 +1,96 @@
+import { CONVEYANCE_PRESETS } from '../../../lib/canal/conveyance.ts';
+import { lossRuleText } from '../../../lib/canal/loss-rule.ts';
+import { TIGHT_SHARE } from '../../../lib/canal/reach-period.ts';
+import type { RunAnswer } from '../../../lib/http/contract/run.ts';
+import { cautionTexts, REPORT_CAUTIONS } from '../../../lib/report/cautions.ts';
+import { CLASS_METHODS } from '../../../lib/report/classes.ts';
+import { FALLBACK, FALLBACK_TEXT, type Fallback } from '../../../lib/weather/variable.ts';
+import { DataTable } from '../../_components/data-table.tsx';
+import { Caution } from '../../_components/empty-state.tsx';
+import { percent } from '../../_components/figures.ts';
+import { Section } from '../../_components/page-head.tsx';
+import { SETTINGS, settingText } from '../../_components/run-words.ts';
+
+/** What is done between the equations: weather to parcels, gaps, canals, classes, and the cautions. */
+export function Rules({ run }: { run: RunAnswer | null }) {
+  return (
+    <>
+      <Interpolation run={run} />
+      <Section
+        id="gaps"
+        title="What stands in for missing weather"
+        note="In the order in which they are tried for each quantity. Every figure that rests on one says so."
+      >
+        <ol>
+          {(Object.keys(FALLBACK) as Fallback[]).map((name) => (
+            <li key={name}>{FALLBACK_TEXT[name]}</li>
+          ))}
+        </ol>
+      </Section>
+      <Canals />
+      <Section id="classes" title="Classes of the map">
+        <p>
+          {Object.values(CLASS_METHODS).join(', ')}. Class i holds the values from its lower limit up to, but not including, its upper; the
+          last class holds its upper limit too. Natural breaks are the partition with the least sum of squares (Fisher 1958; Jenks 1967;
+          recalled, not re-read).
+        </p>
+      </Section>
+      <Section id="cautions" title="Cautions">
+        {cautionTexts(REPORT_CAUTIONS).map((text) => (
+          <Caution key={text}>{text}</Caution>
+        ))}
+      </Section>
+    </>
+  );
+}
+
+function Interpolation({ run }: { run: RunAnswer | null }) {
+  return (
+    <Section id="interpolation" title="From weather sites to parcels">
+      <p className="formula">wᵢ = dᵢ⁻ᵖ / Σ dⱼ⁻ᵖ over the nearest sites; T at the parcel = Σ wᵢ (Tᵢ + Γ (zᵢ − z))</p>
+      <p className="source">
+        Shepard (1968), Proceedings of the 23rd ACM National Conference, 517–524 (recalled, not re-read); Γ of the international standard
+        atmosphere, ISO 2533.
+      </p>
+      {run ? (
+        <DataTable
+          caption={`Settings of the run that stands, season ${run.season}`}
+          showCaption
+          rows={SETTINGS}
+          rowKey={(setting) => setting.key}
+          columns={[
+            { key: 'name', head: 'Setting', rowHead: true, cell: (setting) => setting.name },
+            { key: 'value', head: 'Value', cell: (setting) => settingText(run.settings[setting.key as keyof RunAnswer['settings']]) },
+            { key: 'help', head: 'What it does', cell: (setting) => setting.help },
+          ]}
+        />
+      ) : null}
+    </Section>
+  );
+}
+
+/** A canal of a usual size, to write a preset's rule out in numbers. */
+const SAMPLE = { length: 1000, wettedPerimeter: 4 };
+
+function Canals() {
+  return (
+    <Section
+      id="canals"
+      title="Canal losses and capacity"
+      note={`Inflow of a reach = what it passes on + what its turnouts take + what it loses; sums go up the tree to the headworks. A reach is tight from ${percent(TIGHT_SHARE)} of its capacity and over above it, judged by the day that asks most.`}
+    >
+      <p className="formula">I = a O + b T + c, with O outflow, T taken by turnouts; a, b, c from the loss rule of the reach</p>
+      <DataTable
+        caption={`Loss rules offered where nothing has been measured, for a canal of ${SAMPLE.length} m and a wetted perimeter of ${SAMPLE.wettedPerimeter} m`}
+        showCaption
+        rows={CONVEYANCE_PRESETS}
+        rowKey={(preset) => preset.code}
+        columns={[
+          { key: 'name', head: 'Canal', rowHead: true, cell: (preset) => preset.name },
+          { key: 'rule', head: 'Rule', cell: (preset) => lossRuleText(preset.rule(SAMPLE)) },
+          { key: 'source', head: 'Source', cell: (preset) => preset.source },
+        ]}
+      />
+    </Section>
+  );
+}

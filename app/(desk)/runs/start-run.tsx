@@ -1,0 +1,46 @@
+import type { DistrictAnswer } from '../../../lib/http/contract/rest.ts';
+import { EmptyState } from '../../_components/empty-state.tsx';
+import { Go } from '../../_components/go.tsx';
+import { Section } from '../../_components/page-head.tsx';
+import { type Named, RunForm } from '../../_components/run-form.tsx';
+
+interface StartRunProps {
+  readonly district: DistrictAnswer;
+  readonly soils: readonly Readonly<Record<string, unknown>>[];
+  readonly methods: readonly Readonly<Record<string, unknown>>[];
+  readonly sources: readonly string[];
+  readonly allowed: boolean;
+}
+
+/** The form that starts a run, or what is missing before one can start. */
+export function StartRun({ district, soils, methods, sources, allowed }: StartRunProps) {
+  if (!allowed) return <p className="muted">Operators and managers start runs.</p>;
+  const { parcels, sites } = district.counts;
+  if (district.seasons.length === 0 || parcels === 0 || sites === 0) {
+    const missing = [district.seasons.length ? null : 'a season', parcels ? null : 'parcels', sites ? null : 'weather sites']
+      .filter(Boolean)
+      .join(', ');
+    return (
+      <EmptyState title="A run cannot start yet">
+        The district has no {missing}. <Go href="/imports">Bring them in</Go> first; a season comes with its plantings or through the API.
+      </EmptyState>
+    );
+  }
+  return (
+    <Section id="start" title="Start a run" note="Settings left as they are take the usual values.">
+      <RunForm
+        seasons={district.seasons.map((season) => ({
+          code: season.code,
+          name: `${season.name || season.code}, ${season.start_date} to ${season.end_date}`,
+        }))}
+        soils={soils.map(named)}
+        methods={methods.map(named)}
+        sources={sources}
+      />
+    </Section>
+  );
+}
+
+function named(row: Readonly<Record<string, unknown>>): Named {
+  return { code: String(row.code), name: String(row.name ?? row.code) };
+}

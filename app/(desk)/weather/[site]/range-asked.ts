@@ -1,0 +1,24 @@
+import { addDays, isIsoDate } from '../../../../lib/base/civil-date.ts';
+import type { SiteAnswer } from '../../../../lib/http/contract/rest.ts';
+import type { RunAnswer } from '../../../../lib/http/contract/run.ts';
+import { one, type Query } from '../../../_components/query.ts';
+import { type DayRange, usualRange } from '../load-site-series.ts';
+
+/** Longest range of one answer [d]. */
+export const LONGEST_RANGE = 400;
+
+/** The range of days that the address asks for, kept in order and within `LONGEST_RANGE`; without one the usual range of the site. */
+export function rangeAsked(query: Query, site: SiteAnswer, run: RunAnswer | null): DayRange | null {
+  const usual = usualRange(site, run);
+  if (!usual) return null;
+  const [from, to] = [one(query, 'from'), one(query, 'to')];
+  const first = from && isIsoDate(from) ? from : usual.from;
+  const last = to && isIsoDate(to) ? to : usual.to;
+  if (first > last) return usual;
+  const limit = addDays(first, LONGEST_RANGE - 1);
+  return { from: first, to: earlier(last, limit) };
+}
+
+function earlier(a: string, b: string): string {
+  return [a, b].sort()[0];
+}

@@ -1,0 +1,66 @@
+import type { UnitSystem } from '../../../../lib/base/units.ts';
+import type { SiteAnswer, SiteDay } from '../../../../lib/http/contract/rest.ts';
+import { type Column, DataTable, FiguresBelow } from '../../../_components/data-table.tsx';
+import { fallbackText } from '../../../_components/fallback-words.tsx';
+import { figure, type Maybe, plain, type Quantity, unitOf } from '../../../_components/figures.ts';
+import { Go } from '../../../_components/go.tsx';
+import { hrefWith } from '../../../_components/query.ts';
+import { METHODS } from '../../../_components/reference-et.tsx';
+import type { DayRange } from '../load-site-series.ts';
+
+interface SiteDayTableProps {
+  readonly site: SiteAnswer;
+  readonly days: readonly SiteDay[];
+  readonly range: DayRange;
+  readonly units: UnitSystem;
+}
+
+/** Every day with what was estimated on it, in words. */
+export function SiteDayTable({ site, days, range, units }: SiteDayTableProps) {
+  return (
+    <FiguresBelow summary={`Every day as a table (${days.length} days)`}>
+      <DataTable
+        caption={`Weather at ${site.name}, day by day`}
+        rows={days}
+        rowKey={(day) => day.date}
+        columns={columnsOf(site, range, units)}
+      />
+    </FiguresBelow>
+  );
+}
+
+function columnsOf(site: SiteAnswer, range: DayRange, units: UnitSystem): Column<SiteDay>[] {
+  const path = `/weather/${encodeURIComponent(site.code)}`;
+  const inReaders = (key: string, head: string, quantity: Quantity, pick: (day: SiteDay) => Maybe): Column<SiteDay> => ({
+    key,
+    head,
+    unit: unitOf(quantity, units),
+    numeric: true,
+    cell: (day) => figure(pick(day), quantity, units),
+  });
+  const fixed = (key: string, head: string, unit: string, pick: (day: SiteDay) => Maybe): Column<SiteDay> => ({
+    key,
+    head,
+    unit,
+    numeric: true,
+    cell: (day) => plain(pick(day), 2),
+  });
+  return [
+    {
+      key: 'date',
+      head: 'Day',
+      rowHead: true,
+      cell: (day) => <Go href={`${hrefWith(path, {}, { ...range, day: day.date })}#budget`}>{day.date}</Go>,
+    },
+    inReaders('tmax', 'Maximum', 'temperature', (day) => day.completed.air_temperature_max_c),
+    inReaders('tmin', 'Minimum', 'temperature', (day) => day.completed.air_temperature_min_c),
+    fixed('ea', 'Vapour pressure', 'kPa', (day) => day.completed.vapour_pressure_kpa),
+    fixed('rs', 'Solar radiation', 'MJ m⁻² d⁻¹', (day) => day.completed.solar_radiation_mj_m2_d),
+    fixed('rso', 'Clear sky', 'MJ m⁻² d⁻¹', (day) => day.clear_sky_radiation_mj_m2_d),
+    fixed('ra', 'Extraterrestrial', 'MJ m⁻² d⁻¹', (day) => day.extraterrestrial_radiation_mj_m2_d),
+    inReaders('u2', 'Wind at 2 m', 'speed', (day) => day.completed.wind_speed_2m_m_s),
+    inReaders('rain', 'Rain', 'depth', (day) => day.completed.precipitation_mm),
+    ...METHODS.map((method) => inReaders(method.key, method.name, 'depth', (day) => day[method.key])),
+    { key: 'estimated', head: 'Estimated', cell: (day) => day.fallbacks.map(fallbackText).join('; ') || 'nothing' },
+  ];
+}

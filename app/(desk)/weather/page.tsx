@@ -1,0 +1,23 @@
+import type { Metadata } from 'next';
+import { answerSites } from '../../../lib/http/answers/weather.ts';
+import { callerInView, runInView } from '../../_components/in-view.ts';
+import { PageHead } from '../../_components/page-head.tsx';
+import { loadSiteSeries } from './load-site-series.ts';
+import { SiteTable } from './site-table.tsx';
+
+export const metadata: Metadata = { title: 'Weather' };
+
+export default async function WeatherPage() {
+  const [caller, run] = await Promise.all([callerInView(), runInView()]);
+  const sites = await answerSites(caller);
+  const series = await loadSiteSeries(caller, sites, run);
+  return (
+    <div className="page">
+      <PageHead
+        title="Weather"
+        lead="Every site the district’s weather comes from, how complete its record is, and the reference ET that follows from it."
+      />
+      <SiteTable sites={sites} series={series} season={run?.season ?? null} units={caller.units} />
+    </div>
+  );
+}

@@ -1,0 +1,154 @@
+/** What can be brought in, in the order a new district needs it: the columns each takes, and a file to start from. */
+
+export interface ImportKindText {
+  readonly kind: 'canals' | 'parcels' | 'stations' | 'weather' | 'plantings' | 'soils';
+  readonly name: string;
+  readonly format: 'CSV' | 'GeoJSON';
+  readonly says: string;
+  readonly columns: string;
+  /** the template's file name and content; invented */
+  readonly template: { readonly name: string; readonly text: string };
+}
+
+const rows = (...lines: readonly string[]) => `${lines.join('\r\n')}\r\n`;
+
+function features(...list: readonly { readonly properties: object; readonly geometry: object }[]): string {
+  const collection = { type: 'FeatureCollection', features: list.map((one) => ({ type: 'Feature', ...one })) };
+  return `${JSON.stringify(collection, null, 2)}\n`;
+}
+
+const line = (...coordinates: readonly number[][]) => ({ type: 'LineString', coordinates });
+const square = (west: number, south: number, size: number) => ({
+  type: 'Polygon',
+  coordinates: [
+    [
+      [west, south],
+      [west + size, south],
+      [west + size, south + size],
+      [west, south + size],
+      [west, south],
+    ],
+  ],
+});
+
+export const IMPORT_KINDS: readonly ImportKindText[] = [
+  {
+    kind: 'canals',
+    name: 'Canals',
+    format: 'GeoJSON',
+    says: 'Lines drawn from head to tail, one feature per reach. The reach at the headworks has no parent.',
+    columns:
+      'reach, parent, name, kind, capacity_m3_s, loss_rule (none, fraction_per_km, efficiency, seepage_mm_d), loss_value, wetted_perimeter_m',
+    template: {
+      name: 'canals-template.geojson',
+      text: features(
+        {
+          properties: {
+            reach: 'MAIN',
+            parent: null,
+            name: 'Main canal',
+            kind: 'main',
+            capacity_m3_s: 4.5,
+            loss_rule: 'fraction_per_km',
+            loss_value: 0.01,
+          },
+          geometry: line([-120.2, 45.1], [-120.15, 45.12]),
+        },
+        {
+          properties: {
+            reach: 'L1',
+            parent: 'MAIN',
+            name: 'First lateral',
+            kind: 'lateral',
+            capacity_m3_s: 1.2,
+            loss_rule: 'efficiency',
+            loss_value: 0.9,
+          },
+          geometry: line([-120.15, 45.12], [-120.13, 45.15]),
+        },
+      ),
+    },
+  },
+  {
+    kind: 'parcels',
+    name: 'Parcels',
+    format: 'GeoJSON',
+    says: 'Polygons, one feature per parcel. Area is measured on the ellipsoid; a crop column also makes plantings of the chosen season.',
+    columns: 'parcel, name, turnout, reach, soil, method, crop, elevation_m',
+    template: {
+      name: 'parcels-template.geojson',
+      text: features(
+        {
+          properties: { parcel: '0001', name: 'Home', turnout: 'T1', reach: 'L1', soil: 'loam', method: 'furrow', crop: 'maize' },
+          geometry: square(-120.14, 45.14, 0.004),
+        },
+        {
+          properties: { parcel: '0002', name: null, turnout: 'T1', reach: 'L1', soil: 'loam', method: 'drip', crop: 'alfalfa' },
+          geometry: square(-120.135, 45.14, 0.004),
+        },
+      ),
+    },
+  },
+  {
+    kind: 'stations',
+    name: 'Weather stations',
+    format: 'CSV',
+    says: 'One row per station. Weather can be read only for stations the district has.',
+    columns: 'site, name, latitude, longitude, elevation, wind_height, zone',
+    template: {
+      name: 'stations-template.csv',
+      text: rows('site,name,latitude,longitude,elevation_m,wind_height_m', '001,Invented station,45.12,-120.15,240,2'),
+    },
+  },
+  {
+    kind: 'weather',
+    name: 'Daily weather',
+    format: 'CSV',
+    says: 'One row per station and day, in any order. Later imports replace earlier values of the same station and day.',
+    columns:
+      'site, date, and any of: air temperature max/min/mean, dew point, vapour pressure, relative humidity max/min/mean, specific humidity, wind speed, solar radiation, sunshine hours, net radiation, precipitation, pressure, reference ET. Units from the headers, or chosen afterwards',
+    template: {
+      name: 'weather-template.csv',
+      text: rows(
+        'site,date,tmax_c,tmin_c,rhmax_pct,rhmin_pct,wind_m_s,solar_mj_m2_d,rain_mm',
+        '001,2023-04-01,18.2,4.1,92,38,2.1,17.5,0',
+        '001,2023-04-02,16.9,5.0,95,44,2.8,15.1,1.2',
+      ),
+    },
+  },
+  {
+    kind: 'plantings',
+    name: 'Plantings',
+    format: 'CSV',
+    says: 'What stands on each parcel in a season. Plantings of a parcel and season are replaced as a whole.',
+    columns: 'parcel, season, crop, calendar, planting_date, harvest_date, cut_dates (divided by ;), area_share',
+    template: {
+      name: 'plantings-template.csv',
+      text: rows(
+        'parcel,season,crop,planting_date,harvest_date,cut_dates,area_share',
+        '0001,2023,maize,2023-04-20,,,1',
+        '0002,2023,alfalfa,2023-03-10,,2023-05-25;2023-07-05,1',
+      ),
+    },
+  },
+  {
+    kind: 'soils',
+    name: 'Soils',
+    format: 'CSV',
+    says: 'One row per soil class; parcels name them by code.',
+    columns: 'code, name, field_capacity, wilting_point, rew_mm, tew_mm, ze_m, curve_number, root_limit_m, source',
+    template: {
+      name: 'soils-template.csv',
+      text: rows('code,name,field_capacity,wilting_point,rew_mm,curve_number', 'SL,Sandy loam,0.23,0.11,8,75'),
+    },
+  },
+];
+
+export function kindName(kind: string): string {
+  return IMPORT_KINDS.find((one) => one.kind === kind)?.name ?? kind;
+}
+
+export function templateHref(kind: ImportKindText): string {
+  const type = kind.format === 'CSV' ? 'text/csv' : 'application/geo+json';
+  return `data:${type};charset=utf-8,${encodeURIComponent(kind.template.text)}`;
+}

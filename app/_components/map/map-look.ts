@@ -1,0 +1,132 @@
+/** How the demand map is drawn: the district's map style, with what only the screen needs (faint classes, nought, dashes over full canals). */
+
+import { schemeBlues, schemeOrRd, schemePurples, schemeYlOrBr } from 'd3-scale-chromatic';
+import type { Feature, FeatureCollection } from 'geojson';
+import type { ExpressionSpecification, LayerSpecification, StyleSpecification } from 'maplibre-gl';
+import { classColours, MISSING_COLOUR, type Theme } from '../../../lib/report/colour-scale.ts';
+import { mapStyle } from '../../../lib/report/map-style.ts';
+import type { ScaleName } from './map-variables.ts';
+
+/** What lies under the map: land of the district, dashes over canals, and fills of parcels whose value is nought. */
+const GROUND: Record<Theme, { readonly land: string; readonly dash: string; readonly nought: string }> = {
+  light: { land: '#fbfaf6', dash: '#ffffff', nought: '#efede4' },
+  dark: { land: '#1b2023', dash: '#15181c', nought: '#262c30' },
+};
+
+export const NO_VALUE = 255;
+export const NOUGHT = 254;
+/** Deepest zoom the tiles are made for; deeper views stretch them. */
+const TILE_ZOOM = 16;
+
+/** Sequential schemes that their authors mark as safe for colour-blind readers (Harrower & Brewer 2003); demand keeps the colours of the printed map. */
+const SCHEMES: Record<Exclude<ScaleName, 'irrigation'>, readonly (readonly string[])[]> = {
+  et: schemeYlOrBr,
+  rain: schemeBlues,
+  soil: schemeOrRd,
+  stress: schemePurples,
+};
+
+/**
+ * Colours low to high; the end nearest to the ground is left out. The low values of the stress coefficient are the stressed ones, so they stand out.
+ */
+export function coloursOf(scale: ScaleName, count: number, theme: Theme): string[] {
+  if (count === 0) return [];
+  if (scale === 'irrigation') return classColours(count, 'amount', theme);
+  const steps = SCHEMES[scale][Math.min(9, Math.max(3, count + 1))];
+  const colours = (theme === 'light' ? [...steps] : steps.toReversed()).slice(-count);
+  return scale === 'stress' ? colours.reverse() : colours;
+}
+
+export function noughtColour(theme: Theme): string {
+  return GROUND[theme].nought;
+}
+
+export interface FillLook {
+  /** one per class, low to high */
+  readonly colours: readonly string[];
+  /** drawn faint because the legend picked others: one per class, then nought, then missing */
+  readonly faint: readonly boolean[];
+  readonly theme: Theme;
+}
+
+const CLASS: ExpressionSpecification = ['feature-state', 'class'];
+const FAINT = 0.14;
+const FULL = 0.94;
+
+function fillColour({ colours, theme }: FillLook): ExpressionSpecification {
+  const cases = colours.flatMap((colour, index) => [index, colour]);
+  return ['match', CLASS, ...cases, NOUGHT, GROUND[theme].nought, MISSING_COLOUR[theme]] as unknown as ExpressionSpecification;
+}
+
+/** Stays an expression even when every class is full: feature state that arrives before a tile is repainted finds it evaluable. */
+function fillOpacity({ colours, faint }: FillLook): ExpressionSpecification {
+  const opacity = (index: number) => (faint[index] ? FAINT : FULL);
+  const cases = colours.flatMap((_, index) => [index, opacity(index)]);
+  return ['match', CLASS, ...cases, NOUGHT, opacity(colours.length), opacity(colours.length + 1)] as unknown as ExpressionSpecification;
+}
+
+/** Names of the layers a reader can switch, and the style layers each holds. */
+export const LAYER_GROUPS = {
+  parcels: ['parcels', 'parcel-edges'],
+  canals: ['canal-casing', 'canals', 'canal-over'],
+  boundary: ['land', 'district-outline'],
+} as const;
+
+export interface StyleSources {
+  /** absolute URL templates with {z}/{x}/{y} */
+  readonly parcels: string;
+  readonly canals: string;
+  readonly bounds: [number, number, number, number];
+  readonly boundary: unknown;
+}
+
+const NOTHING: FeatureCollection = { type: 'FeatureCollection', features: [] };
+
+/** The whole style of the screen's map. Stations are links over the map, so they are no layer. */
+export function demandStyle(sources: StyleSources, look: FillLook): StyleSpecification {
+  const style = mapStyle({
+    parcelTiles: sources.parcels,
+    canalTiles: sources.canals,
+    maxZoom: TILE_ZOOM,
+    bounds: sources.bounds,
+    sites: NOTHING,
+    outline: asFeature(sources.boundary),
+    colours: look.colours,
+    theme: look.theme,
+  });
+  return { ...style, layers: style.layers.flatMap((layer) => forScreen(layer, look)) };
+}
+
+/** The district keeps its boundary as a geometry or as a feature. */
+function asFeature(boundary: unknown): Feature | FeatureCollection {
+  if (!boundary) return NOTHING;
+  const given = boundary as Feature | FeatureCollection | Feature['geometry'];
+  return given.type === 'Feature' || given.type === 'FeatureCollection' ? given : { type: 'Feature', properties: {}, geometry: given };
+}
+
+function forScreen(layer: LayerSpecification, look: FillLook): LayerSpecification[] {
+  const ground = GROUND[look.theme];
+  if (layer.id === 'sites') return [];
+  if (layer.id === 'district-outline')
+    return [{ id: 'land', type: 'fill', source: 'district', paint: { 'fill-color': ground.land } }, layer];
+  if (layer.id === 'parcels' && layer.type === 'fill') {
+    return [{ ...layer, paint: { ...layer.paint, 'fill-color': fillColour(look), 'fill-opacity': fillOpacity(look) } }];
+  }
+  return layer.id === 'canals' ? [layer, overLayer(ground.dash)] : [layer];
+}
+
+/** Dashes along a canal that carries more than its capacity: seen without colour. */
+function overLayer(dash: string): LayerSpecification {
+  return {
+    id: 'canal-over',
+    type: 'line',
+    source: 'canals',
+    'source-layer': 'canals',
+    paint: {
+      'line-color': dash,
+      'line-width': ['interpolate', ['linear'], ['zoom'], 9, 0.8, 14, 3],
+      'line-dasharray': [3, 2],
+      'line-opacity': ['case', ['>', ['coalesce', ['feature-state', 'share'], -1], 1], 1, 0],
+    },
+  };
+}

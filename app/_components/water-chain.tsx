@@ -1,0 +1,190 @@
+import { depthToVolume, type UnitSystem, volumeToFlow } from '../../lib/base/units.ts';
+import type { ParcelDay, ParcelSeason } from '../../lib/http/contract/run.ts';
+import { dayMonth } from './date-words.ts';
+import { figure, type Maybe, percent, plain, sumOf, unitOf } from './figures.ts';
+import { Go } from './go.tsx';
+import styles from './water-chain.module.css';
+
+type Water = 'rain' | 'et' | 'soil' | 'irrigation';
+
+interface Link {
+  readonly name: string;
+  readonly note: string;
+  readonly water: Water;
+  /** part of the working that derives it */
+  readonly part: string;
+  readonly unit: string;
+  readonly value: (days: readonly ParcelDay[]) => string;
+}
+
+export interface ChainSpan {
+  readonly name: string;
+  readonly days: readonly ParcelDay[];
+}
+
+/** From weather to turnout demand, link by link, over several spans side by side. Every number leads to the working of the day picked. */
+export function WaterChain({ season, spans, date, units, workingHref }: WaterChainProps) {
+  const links = linksOf(season, units);
+  return (
+    // biome-ignore lint/a11y/noNoninteractiveTabindex: a region that scrolls must be reachable from the keyboard
+    <section className="table-region" tabIndex={0} aria-label="The water chain of this parcel">
+      <table className={`data ${styles.chain}`}>
+        <caption>Each number opens the working of {dayMonth(date)}, at the part that derives it.</caption>
+        <thead>
+          <tr>
+            <th scope="col">Link of the chain</th>
+            {spans.map((span) => (
+              <th scope="col" key={span.name} className="num">
+                {span.name}
+              </th>
+            ))}
+            <th scope="col">Unit</th>
+          </tr>
+        </thead>
+        <tbody>
+          {links.map((link) => (
+            <tr key={link.name}>
+              <th scope="row" data-water={link.water}>
+                <span className="chain-name">{link.name}</span>
+                <span className="chain-note">{link.note}</span>
+              </th>
+              {spans.map((span) => (
+                <td key={span.name} className="num">
+                  <Go href={`${workingHref}#${link.part}`}>{link.value(span.days)}</Go>
+                </td>
+              ))}
+              <td className="unit">{link.unit}</td>
+            </tr>
+          ))}
+        </tbody>
+      </table>
+    </section>
+  );
+}
+
+interface WaterChainProps {
+  readonly season: ParcelSeason;
+  readonly spans: readonly ChainSpan[];
+  readonly date: string;
+  readonly units: UnitSystem;
+  /** address of the working of `date` */
+  readonly workingHref: string;
+}
+
+function linksOf(season: ParcelSeason, units: UnitSystem): readonly Link[] {
+  const area = season.area_ha * 1e4;
+  const depth = (pick: (day: ParcelDay) => Maybe) => (days: readonly ParcelDay[]) => figure(sumOf(days, pick), 'depth', units);
+  const volume = (days: readonly ParcelDay[]) =>
+    depthToVolume(
+      sumOf(days, (day) => day.gross_requirement_mm),
+      area,
+    );
+  const mm = unitOf('depth', units);
+  return [
+    {
+      name: 'Reference ET',
+      note: 'weather → energy balance → a grass surface',
+      water: 'et',
+      part: 'reference-et',
+      unit: mm,
+      value: depth((day) => day.reference_et_mm),
+    },
+    {
+      name: 'Crop ET',
+      note: '× crop coefficients, no stress',
+      water: 'et',
+      part: 'coefficient',
+      unit: mm,
+      value: depth((day) => day.crop_et_mm),
+    },
+    {
+      name: 'Crop ET, adjusted',
+      note: '× stress coefficient: what the crop takes',
+      water: 'et',
+      part: 'root-zone',
+      unit: mm,
+      value: depth((day) => day.adjusted_crop_et_mm),
+    },
+    {
+      name: 'Rain',
+      note: 'measured, weighted over the sites',
+      water: 'rain',
+      part: 'weather',
+      unit: mm,
+      value: depth((day) => day.precipitation_mm),
+    },
+    {
+      name: 'Effective rain',
+      note: 'rain − runoff − what drains: stays for the crop',
+      water: 'rain',
+      part: 'root-zone',
+      unit: mm,
+      value: depth((day) => day.effective_precipitation_mm),
+    },
+    {
+      name: 'Drawn from the soil',
+      note: 'depletion at the end − depletion at the start',
+      water: 'soil',
+      part: 'balance',
+      unit: mm,
+      value: (days) => figure(soilDrawn(season.days, days), 'depth', units),
+    },
+    {
+      name: 'Net requirement',
+      note: 'water that must reach the root zone',
+      water: 'irrigation',
+      part: 'irrigation',
+      unit: mm,
+      value: depth((day) => day.net_requirement_mm),
+    },
+    {
+      name: '÷ Application efficiency',
+      note: `${season.method.name}`,
+      water: 'irrigation',
+      part: 'irrigation',
+      unit: '1',
+      value: () => percent(season.method.efficiency),
+    },
+    {
+      name: 'Gross requirement',
+      note: 'net ÷ efficiency',
+      water: 'irrigation',
+      part: 'irrigation',
+      unit: mm,
+      value: depth((day) => day.gross_requirement_mm),
+    },
+    {
+      name: 'Turnout demand',
+      note: 'gross depth × area',
+      water: 'irrigation',
+      part: 'irrigation',
+      unit: unitOf('volume', units),
+      value: (days) => figure(volume(days), 'volume', units),
+    },
+    {
+      name: 'As a steady flow',
+      note: 'the volume spread over all hours of the days',
+      water: 'irrigation',
+      part: 'irrigation',
+      unit: flowUnit(units),
+      value: (days) => steadyFlow(volumeToFlow(volume(days), days.length), units),
+    },
+  ];
+}
+
+function flowUnit(units: UnitSystem): string {
+  return units === 'us' ? unitOf('flow', units) : 'L/s';
+}
+
+function steadyFlow(flow: number, units: UnitSystem): string {
+  return units === 'us' ? figure(flow, 'flow', units) : plain(flow * 1000, 2);
+}
+
+/** Growth of depletion over a span: closing depletion minus the depletion the span opened with; NaN on the first day of the run. */
+function soilDrawn(all: readonly ParcelDay[], days: readonly ParcelDay[]): number {
+  if (days.length === 0) return Number.NaN;
+  const opening = all.findIndex((day) => day.date === days[0].date) - 1;
+  const before = opening >= 0 ? all[opening].root_zone_depletion_mm : days[0].root_zone_depletion_mm;
+  const after = days[days.length - 1].root_zone_depletion_mm;
+  return before === null || after === null ? Number.NaN : after - before;
+}

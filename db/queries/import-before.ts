@@ -1,0 +1,277 @@
+/**
+ * Rows an import replaces, with the rows as they were kept beside them: what undo puts back.
+ *
+ * The before-image of a row is the row itself as JSON, made and read back by the database, so that a restored row equals the old one to
+ * the last bit. Rows that an import would leave as they are, are not touched and have no image.
+ */
+import { type SQL, sql } from 'drizzle-orm';
+import type { Tx } from '../connect.ts';
+import { jsonText, storableText } from './json-text.ts';
+
+/** Key columns of the tables an import writes row by row. Plantings are replaced as all the plantings of a parcel and season. */
+const TABLES = {
+  weather_source: { key: { source_id: 'int' } },
+  site: { key: { source_id: 'int', ordinal: 'int' } },
+  reach: { key: { code: 'text' } },
+  turnout: { key: { code: 'text' } },
+  parcel: { key: { code: 'text' } },
+  soil: { key: { code: 'text' } },
+  crop_mapping: { key: { foreign_code: 'text' } },
+  planting: { key: { season_code: 'text', parcel_code: 'text' }, order: 'sequence' },
+} as const satisfies Record<string, { key: Record<string, 'int' | 'text'>; order?: string }>;
+
+export type ImportTable = keyof typeof TABLES;
+
+export const BLOCK_TABLE = 'weather_block';
+
+/** What the changes of one import are filed under. */
+export interface ImportKey {
+  readonly districtId: string;
+  readonly importId: string;
+}
+
+export interface RowChanges {
+  readonly added: number;
+  readonly changed: number;
+}
+
+interface Shape {
+  readonly table: SQL;
+  readonly names: readonly string[];
+  readonly types: readonly string[];
+  readonly keyOf: (alias: string) => SQL;
+  readonly same: (left: string, right: string) => SQL;
+  readonly isKey: (alias: string, image: string) => SQL;
+  readonly order: SQL;
+}
+
+type Row = Readonly<Record<string, unknown>>;
+
+function shapeOf(name: ImportTable): Shape {
+  const { key, order } = TABLES[name] as { key: Record<string, string>; order?: string };
+  const names = Object.keys(key);
+  return {
+    table: sql.raw(`public.${name}`),
+    names,
+    types: Object.values(key),
+    keyOf: (alias) => sql.raw(`jsonb_build_object(${names.map((column) => `'${column}', ${alias}.${column}`).join(', ')})`),
+    same: (left, right) => sql.raw(names.map((column) => `${left}.${column} = ${right}.${column}`).join(' and ')),
+    isKey: (alias, image) =>
+      sql.raw(names.map((column) => `${alias}.${column} = (${image}.key ->> '${column}')::${key[column]}`).join(' and ')),
+    order: sql.raw(order ?? names[0]),
+  };
+}
+
+async function lastOrdinal(tx: Tx, own: ImportKey): Promise<number> {
+  const [row] = await tx.execute<{ last: number }>(
+    sql`select coalesce(max(ordinal), -1)::int as last from import_before where district_id = ${own.districtId} and import_id = ${own.importId}`,
+  );
+  return row.last;
+}
+
+/**
+ * Makes a table hold `rows` for the keys they bear, and files what was there before. Rows already so are left alone.
+ *
+ * @param rows database column → value, without the district
+ */
+export async function replaceRows(tx: Tx, own: ImportKey, name: ImportTable, rows: readonly Row[]): Promise<RowChanges> {
+  if (rows.length === 0) return { added: 0, changed: 0 };
+  const shape = shapeOf(name);
+  const keys = [...new Map(rows.map((row) => [keyText(shape, row), keyOf(shape, row)])).values()];
+  const known = new Set((await listKnownKeys(tx, own, name, keys)).map((key) => keyText(shape, key)));
+  const fresh = keys.filter((key) => !known.has(keyText(shape, key)));
+  await fileAbsent(tx, own, name, fresh);
+  const changed = await fileChanging(
+    tx,
+    own,
+    name,
+    rows.filter((row) => known.has(keyText(shape, row))),
+  );
+  await deleteKeys(tx, own, name, changed);
+  const wanted = new Set([...fresh, ...changed].map((key) => keyText(shape, key)));
+  const incoming = rows.filter((row) => wanted.has(keyText(shape, row)));
+  if (incoming.length > 0) await tx.execute(sql`insert into ${shape.table} select r.* from ${records(shape, own, incoming)} r`);
+  return { added: fresh.length, changed: changed.length };
+}
+
+/** Which of some keys have rows. */
+async function listKnownKeys(tx: Tx, own: ImportKey, name: ImportTable, keys: readonly Row[]): Promise<Row[]> {
+  const shape = shapeOf(name);
+  const found = await tx.execute<{ key: string }>(sql`
+    select ${shape.keyOf('k')}::text as key from ${records(shape, own, keys)} k
+    where exists (select 1 from ${shape.table} t where t.district_id = ${own.districtId}::uuid and ${shape.same('t', 'k')})`);
+  return found.map((row) => JSON.parse(row.key) as Row);
+}
+
+/** Files that there was nothing under some keys. */
+async function fileAbsent(tx: Tx, own: ImportKey, name: ImportTable, keys: readonly Row[]): Promise<void> {
+  if (keys.length === 0) return;
+  const shape = shapeOf(name);
+  const from = await lastOrdinal(tx, own);
+  await tx.execute(sql`
+    insert into import_before (district_id, import_id, ordinal, table_name, key, before)
+    select ${own.districtId}::uuid, ${own.importId}::uuid, ${from}::int + row_number() over (order by ${shape.keyOf('k')}::text), ${name}::text, ${shape.keyOf('k')}, null
+    from ${records(shape, own, keys)} k`);
+}
+
+/** Files the stored rows that differ from the incoming ones, and answers their keys. */
+async function fileChanging(tx: Tx, own: ImportKey, name: ImportTable, rows: readonly Row[]): Promise<Row[]> {
+  if (rows.length === 0) return [];
+  const shape = shapeOf(name);
+  const from = await lastOrdinal(tx, own);
+  const keys = sql.raw(shape.names.map((column) => `r.${column}`).join(', '));
+  const filed = await tx.execute<{ key: string }>(sql`
+    insert into import_before (district_id, import_id, ordinal, table_name, key, before)
+    select ${own.districtId}::uuid, ${own.importId}::uuid, ${from}::int + row_number() over (order by ${shape.keyOf('n')}::text), ${name}::text, ${shape.keyOf('n')}, o.rows
+    from (select ${keys}, jsonb_agg(to_jsonb(r) order by r.${shape.order}) as rows from ${records(shape, own, rows)} r group by ${keys}) n
+    cross join lateral (
+      select jsonb_agg(to_jsonb(t) order by t.${shape.order}) as rows from ${shape.table} t
+      where t.district_id = ${own.districtId}::uuid and ${shape.same('t', 'n')}
+    ) o
+    where n.rows is distinct from o.rows
+    returning key::text as key`);
+  return filed.map((row) => JSON.parse(row.key) as Row);
+}
+
+function keyOf(shape: Shape, row: Row): Row {
+  return Object.fromEntries(shape.names.map((column) => [column, row[column]]));
+}
+
+function records(shape: Shape, own: ImportKey, rows: readonly Row[]): SQL {
+  const json = jsonText(rows.map((row) => ({ ...row, district_id: own.districtId })));
+  return sql`jsonb_populate_recordset(null::${shape.table}, ${json}::jsonb)`;
+}
+
+function keyText(shape: Shape, row: Row): string {
+  return JSON.stringify(shape.names.map((column) => storableText(String(row[column]))));
+}
+
+async function deleteKeys(tx: Tx, own: ImportKey, name: ImportTable, keys: readonly Row[]): Promise<void> {
+  if (keys.length === 0) return;
+  const shape = shapeOf(name);
+  const lists = shape.names.map((column, i) => {
+    const list = jsonText(keys.map((key) => key[column]));
+    return sql`array(select jsonb_array_elements_text(${list}::jsonb))::${sql.raw(shape.types[i])}[]`;
+  });
+  await tx.execute(sql`
+    delete from ${shape.table} t using unnest(${sql.join(lists, sql`, `)}) as k (${sql.raw(shape.names.join(', '))})
+    where t.district_id = ${own.districtId}::uuid and ${shape.same('t', 'k')}`);
+}
+
+/** Removes the rows of some keys, filing what was there. Answers how many keys had rows. */
+export async function removeRows(tx: Tx, own: ImportKey, name: ImportTable, keys: readonly Row[]): Promise<number> {
+  if (keys.length === 0) return 0;
+  const shape = shapeOf(name);
+  const from = await lastOrdinal(tx, own);
+  const filed = await tx.execute<{ key: string }>(sql`
+    insert into import_before (district_id, import_id, ordinal, table_name, key, before)
+    select ${own.districtId}::uuid, ${own.importId}::uuid, ${from}::int + row_number() over (order by ${shape.keyOf('k')}::text), ${name}::text, ${shape.keyOf('k')}, o.rows
+    from ${records(shape, own, keys)} k
+    cross join lateral (
+      select jsonb_agg(to_jsonb(t) order by t.${shape.order}) as rows from ${shape.table} t
+      where t.district_id = ${own.districtId}::uuid and ${shape.same('t', 'k')}
+    ) o
+    where o.rows is not null
+    returning key::text as key`);
+  await deleteKeys(
+    tx,
+    own,
+    name,
+    filed.map((row) => JSON.parse(row.key) as Row),
+  );
+  return filed.length;
+}
+
+async function deleteImaged(tx: Tx, own: ImportKey, name: ImportTable): Promise<void> {
+  const shape = shapeOf(name);
+  await tx.execute(sql`
+    delete from ${shape.table} t using (
+      select distinct key from import_before
+      where district_id = ${own.districtId}::uuid and import_id = ${own.importId}::uuid and table_name = ${name}
+    ) b
+    where t.district_id = ${own.districtId}::uuid and ${shape.isKey('t', 'b')}`);
+}
+
+/** Puts every row-by-row table back as it was before an import. The oldest image of a key counts. Answers the tables touched. */
+export async function restoreRows(tx: Tx, own: ImportKey): Promise<ImportTable[]> {
+  const touched = await tx.execute<{ table_name: string }>(
+    sql`select distinct table_name from import_before where district_id = ${own.districtId} and import_id = ${own.importId}`,
+  );
+  const names = (Object.keys(TABLES) as ImportTable[]).filter((name) => touched.some((row) => row.table_name === name));
+  for (const name of names) {
+    await deleteImaged(tx, own, name);
+    await tx.execute(sql`
+      insert into ${shapeOf(name).table} select r.* from (
+        select distinct on (key) key, before from import_before
+        where district_id = ${own.districtId}::uuid and import_id = ${own.importId}::uuid and table_name = ${name}
+        order by key, ordinal
+      ) b, jsonb_populate_recordset(null::${shapeOf(name).table}, b.before) r
+      where b.before is not null`);
+  }
+  return names;
+}
+
+/** Files the before-image of a weather block; see `BlockImage` of the jobs room for its shape. */
+export async function fileBlockImage(tx: Tx, own: ImportKey, key: Record<string, unknown>, image: unknown): Promise<void> {
+  const ordinal = (await lastOrdinal(tx, own)) + 1;
+  await tx.execute(sql`
+    insert into import_before (district_id, import_id, ordinal, table_name, key, before)
+    values (${own.districtId}, ${own.importId}, ${ordinal}, ${BLOCK_TABLE}, ${jsonText(key)}::jsonb, ${jsonText(image)}::jsonb)`);
+}
+
+/** Before-images of weather blocks, newest first, so that the oldest is put back last. */
+export async function listBlockImages(tx: Tx, own: ImportKey): Promise<{ key: unknown; before: unknown }[]> {
+  const rows = await tx.execute<{ key: string; before: string }>(sql`
+    select key::text as key, before::text as before from import_before
+    where district_id = ${own.districtId} and import_id = ${own.importId} and table_name = ${BLOCK_TABLE} order by ordinal desc`);
+  return rows.map((row) => ({ key: JSON.parse(row.key), before: JSON.parse(row.before) }));
+}
+
+export interface LaterImport {
+  readonly importId: string;
+  readonly kind: string;
+  readonly file: string;
+  readonly appliedAt: string;
+  /** one of the things both imports changed */
+  readonly example: string;
+}
+
+/** The newest import applied after this one that changed a row this one changed; for weather, the same station and month. */
+export async function findLaterImport(tx: Tx, own: ImportKey): Promise<LaterImport | null> {
+  // the planner knows nothing of fresh images and would compare each with each
+  await tx.execute(sql`select set_config('enable_nestloop', 'off', true)`);
+  const [row] = await tx.execute<Record<string, string>>(sql`
+    select i.import_id, i.kind, to_char(i.applied_at at time zone d.time_zone, 'YYYY-MM-DD HH24:MI') as applied_at, a.table_name, a.key::text as key,
+      (select f.name from import_file f where f.district_id = i.district_id and f.import_id = i.import_id order by f.ordinal limit 1) as file
+    from import mine
+    join district d on d.district_id = mine.district_id
+    join import_before a on a.district_id = mine.district_id and a.import_id = mine.import_id
+    join import_before b on b.district_id = a.district_id and b.table_name = a.table_name and b.key = a.key and b.import_id <> a.import_id
+    join import i on i.district_id = b.district_id and i.import_id = b.import_id
+    where mine.district_id = ${own.districtId}::uuid and mine.import_id = ${own.importId}::uuid
+      and i.state in ('applied', 'undoing') and i.applied_order > mine.applied_order
+      and (a.table_name <> ${BLOCK_TABLE}
+        or exists (select 1 from jsonb_object_keys(a.before -> 'rows') k where jsonb_exists(b.before -> 'rows', k)))
+    order by i.applied_order desc limit 1`);
+  await tx.execute(sql`select set_config('enable_nestloop', 'on', true)`);
+  return row ? laterImport(row) : null;
+}
+
+/** The newest import applied after this one that changed a given table. */
+export async function findLaterImportOf(tx: Tx, own: ImportKey, name: string): Promise<LaterImport | null> {
+  const [row] = await tx.execute<Record<string, string>>(sql`
+    select i.import_id, i.kind, to_char(i.applied_at at time zone d.time_zone, 'YYYY-MM-DD HH24:MI') as applied_at, ${name}::text as table_name, '{}' as key,
+      (select f.name from import_file f where f.district_id = i.district_id and f.import_id = i.import_id order by f.ordinal limit 1) as file
+    from import mine join district d on d.district_id = mine.district_id
+    join import i on i.district_id = mine.district_id and i.applied_order > mine.applied_order and i.state in ('applied', 'undoing')
+    where mine.district_id = ${own.districtId}::uuid and mine.import_id = ${own.importId}::uuid
+      and exists (select 1 from import_before b where b.district_id = i.district_id and b.import_id = i.import_id and b.table_name = ${name})
+    order by i.applied_order desc limit 1`);
+  return row ? laterImport(row) : null;
+}
+
+function laterImport(row: Record<string, string>): LaterImport {
+  const key = Object.values(JSON.parse(row.key) as Record<string, unknown>).join(' ');
+  const example = `${row.table_name.replace('_', ' ')} ${key}`.trim();
+  return { importId: row.import_id, kind: row.kind, file: row.file ?? '', appliedAt: row.applied_at, example };
+}

@@ -1,0 +1,112 @@
+/** What a district already knows, for a reader to check and join against. */
+import { and, asc, eq, sql } from 'drizzle-orm';
+import type { ImportContext } from '../../lib/files/reading.ts';
+import type { Tx } from '../connect.ts';
+import { district } from '../schema/district.ts';
+import { applicationMethod, crop, cropCalendar, cropMapping, parcel, planting, reach, season, soil, turnout } from '../schema/land.ts';
+import { site, weatherBlock, weatherSource } from '../schema/weather.ts';
+
+export async function findImportContext(tx: Tx, districtId: string): Promise<ImportContext> {
+  const [own] = await tx.select({ units: district.units }).from(district).where(eq(district.districtId, districtId));
+  const sites = await tx
+    .select({ code: site.code, name: site.name })
+    .from(site)
+    .where(eq(site.districtId, districtId))
+    .orderBy(asc(site.code));
+  const parcels = await tx.select({ code: parcel.code }).from(parcel).where(eq(parcel.districtId, districtId)).orderBy(asc(parcel.code));
+  const reaches = await tx.select({ code: reach.code, parentCode: reach.parentCode }).from(reach).where(eq(reach.districtId, districtId));
+  const turnouts = await tx
+    .select({ code: turnout.code, reachCode: turnout.reachCode })
+    .from(turnout)
+    .where(eq(turnout.districtId, districtId));
+  return {
+    districtUnits: own?.units ?? 'metric',
+    knownSites: sites.filter((one, i) => one.code !== sites[i - 1]?.code),
+    knownParcels: parcels.map((row) => row.code),
+    knownReaches: reaches,
+    knownTurnouts: turnouts,
+    districtBox: await districtBox(tx, districtId),
+    ...(await libraries(tx, districtId)),
+  };
+}
+
+async function libraries(tx: Tx, districtId: string) {
+  const crops = await tx
+    .select({ code: crop.code, name: crop.name })
+    .from(crop)
+    .where(eq(crop.districtId, districtId))
+    .orderBy(asc(crop.code));
+  const calendars = await tx
+    .select({ code: cropCalendar.code, cropCode: cropCalendar.cropCode, plantingDay: cropCalendar.plantingDay })
+    .from(cropCalendar)
+    .where(eq(cropCalendar.districtId, districtId))
+    .orderBy(asc(cropCalendar.code));
+  const soils = await tx.select({ code: soil.code }).from(soil).where(eq(soil.districtId, districtId)).orderBy(asc(soil.code));
+  const methods = await tx
+    .select({ code: applicationMethod.code })
+    .from(applicationMethod)
+    .where(eq(applicationMethod.districtId, districtId));
+  const seasons = await tx
+    .select({ code: season.code, startDate: season.startDate, endDate: season.endDate })
+    .from(season)
+    .where(eq(season.districtId, districtId))
+    .orderBy(asc(season.startDate));
+  const mappings = await tx.select().from(cropMapping).where(eq(cropMapping.districtId, districtId));
+  return {
+    crops,
+    calendars,
+    soils: soils.map((row) => row.code),
+    methods: methods.map((row) => row.code),
+    seasons,
+    cropMappings: Object.fromEntries(mappings.map((row) => [row.foreignCode, row.cropCode])),
+  };
+}
+
+async function districtBox(tx: Tx, districtId: string): Promise<[number, number, number, number] | null> {
+  const [box] = await tx
+    .select({
+      west: sql<number | null>`min(${parcel.west})`,
+      south: sql<number | null>`min(${parcel.south})`,
+      east: sql<number | null>`max(${parcel.east})`,
+      north: sql<number | null>`max(${parcel.north})`,
+    })
+    .from(parcel)
+    .where(eq(parcel.districtId, districtId));
+  if (!box || box.west === null || box.south === null || box.east === null || box.north === null) return null;
+  return [box.west, box.south, box.east, box.north];
+}
+
+/** Seasons that could be computed now: the district has parcels, the season has plantings, and some weather falls in it. */
+export async function listComputableSeasons(tx: Tx, districtId: string) {
+  return tx
+    .select({ code: season.code, startDate: season.startDate, endDate: season.endDate })
+    .from(season)
+    .where(
+      and(
+        eq(season.districtId, districtId),
+        sql`exists (select 1 from ${parcel} where ${parcel.districtId} = ${districtId})`,
+        sql`exists (select 1 from ${planting} where ${planting.districtId} = ${districtId} and ${planting.seasonCode} = ${season.code})`,
+        sql`exists (select 1 from ${weatherBlock} where ${weatherBlock.districtId} = ${districtId}
+              and ${weatherBlock.month} <= ${season.endDate} and ${weatherBlock.month} + interval '1 month' > ${season.startDate})`,
+      ),
+    )
+    .orderBy(asc(season.startDate));
+}
+
+/** Sites with the name of their source. */
+export function listSourceSites(tx: Tx, districtId: string) {
+  return tx
+    .select({ sourceId: site.sourceId, source: weatherSource.name, ordinal: site.ordinal, code: site.code })
+    .from(site)
+    .innerJoin(weatherSource, and(eq(weatherSource.districtId, site.districtId), eq(weatherSource.sourceId, site.sourceId)))
+    .where(eq(site.districtId, districtId))
+    .orderBy(asc(site.sourceId), asc(site.ordinal));
+}
+
+export function listSources(tx: Tx, districtId: string) {
+  return tx
+    .select({ sourceId: weatherSource.sourceId, name: weatherSource.name })
+    .from(weatherSource)
+    .where(eq(weatherSource.districtId, districtId))
+    .orderBy(asc(weatherSource.sourceId));
+}

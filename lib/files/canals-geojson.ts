@@ -1,0 +1,159 @@
+/**
+ * Canals as lines in GeoJSON → the reaches of one conveyance tree.
+ */
+import type { LineString, MultiLineString, Position } from 'geojson';
+import { geodesicLength } from '../geo/geodesic.ts';
+import { samePosition } from '../geo/ring.ts';
+import { checkTree, inferParents, type TreeReach } from './canal-tree.ts';
+import { type BoundProperties, bindWithCode, numberOf, textOf } from './feature-properties.ts';
+import { FindingList, shown } from './finding-list.ts';
+import { hasHeight, type RawFeature, readFeatures } from './geojson.ts';
+import { lossRuleOf } from './loss-rule-columns.ts';
+import { MapPreviewFeatures } from './map-preview.ts';
+import type { ImportContext, ImportFile, ImportOptions, ImportReading, Progress, StagedReach } from './reading.ts';
+import { NOTHING_UNDERSTOOD } from './reading.ts';
+import type { TableRole } from './table-columns.ts';
+
+/** Largest reach that is believed [m³ s⁻¹]. */
+const CAPACITY_HIGH = 5000;
+const CODE_LENGTH = 80;
+
+export const CANAL_ROLES: readonly TableRole[] = [
+  { role: 'code', names: ['reach', 'reach code', 'reach id', 'code', 'id'] },
+  { role: 'name', names: ['name', 'reach name', 'canal', 'canal name'] },
+  { role: 'parent', names: ['parent', 'parent code', 'parent reach', 'upstream', 'from reach'] },
+  { role: 'kind', names: ['kind', 'type', 'class', 'canal type'] },
+  { role: 'capacity', names: ['capacity', 'design capacity', 'design flow', 'max flow'], kind: 'flow' },
+  { role: 'loss_rule', names: ['loss rule', 'loss kind', 'loss'] },
+  { role: 'loss_value', names: ['loss value', 'loss rate'] },
+  { role: 'wetted_perimeter', names: ['wetted perimeter'], kind: 'length' },
+];
+
+interface Work {
+  readonly findings: FindingList;
+  readonly preview: MapPreviewFeatures;
+  readonly reaches: { reach: StagedReach; row: number; file: string }[];
+  readonly byCode: Map<string, number>;
+  heights: number;
+}
+
+/** Reads canals from one or more GeoJSON files. */
+export async function readCanals(
+  files: readonly ImportFile[],
+  options: ImportOptions,
+  context: ImportContext,
+  progress: Progress,
+): Promise<ImportReading> {
+  const findings = new FindingList();
+  const opened = files.map((file) => readFeatures(file, ['LineString', 'MultiLineString'], findings)).filter((part) => part !== null);
+  const features = opened.flatMap((part) => part.features);
+  const assumed = { flow: context.districtUnits === 'us' ? 'cfs' : 'm³/s' };
+  const request = { roles: CANAL_ROLES, options, chosen: { code: options.codeColumn }, assumed };
+  const properties = bindWithCode(features, request, { thing: 'reach', numbered: 'R001, R002' }, findings);
+  const work: Work = { findings, preview: new MapPreviewFeatures(), reaches: [], byCode: new Map(), heights: 0 };
+  for (const feature of features) takeFeature(feature, properties, work);
+  await progress(0.5);
+  if (work.heights > 0)
+    findings.note({ code: 'line-height-dropped', message: `${work.heights} lines carried heights, which are dropped.` });
+  const reaches = asTree(work, properties);
+  await progress(1);
+  return {
+    understood: {
+      ...NOTHING_UNDERSTOOD,
+      format: opened.length > 0 ? 'geojson' : 'unknown',
+      encoding: opened[0]?.encoding ?? null,
+      columns: properties.columns,
+      rowCount: features.length,
+      usableRows: reaches.length,
+      featureCount: features.length,
+      boundingBox: boxOfLines(reaches),
+      crs: opened[0]?.crs ?? null,
+    },
+    findings: findings.list(),
+    findingCounts: findings.totals(),
+    preview: work.preview.preview(),
+    staged: { kind: 'canals', reaches: findings.fatal ? [] : reaches },
+  };
+}
+
+function takeFeature(feature: RawFeature, properties: BoundProperties, work: Work) {
+  const { findings, preview, byCode } = work;
+  const { row, file } = feature;
+  const { bound } = properties;
+  const code = bound.has('code') ? (textOf(feature, bound, 'code')?.slice(0, CODE_LENGTH) ?? null) : `R${String(row).padStart(3, '0')}`;
+  const refuse = (rule: string, reason: string, advice: string): void => {
+    findings.error({ code: rule, message: reason, file, row, value: code ?? undefined, advice });
+    preview.add({ row, code, status: 'refused', reason }, feature.geometry);
+  };
+  if (!feature.geometry) return preview.add({ row, code, status: 'refused', reason: feature.problem }, null);
+  if (code === null) return refuse('missing-code', 'The reach has no code.', 'Give it a code.');
+  const earlier = byCode.get(code);
+  if (earlier !== undefined)
+    return refuse(
+      'duplicate-code',
+      `Reach ${shown(code)} stands in feature ${work.reaches[earlier].row} already; the first is kept.`,
+      'Join both lines, or give another code.',
+    );
+  const line = cleanLine(feature.geometry as LineString | MultiLineString, work);
+  const length = line ? geodesicLength(line) : 0;
+  if (!line || !(length > 0)) return refuse('zero-length', `Reach ${shown(code)} has no length.`, 'Draw the line again.');
+  byCode.set(code, work.reaches.length);
+  preview.add({ row, code, status: 'ok', reason: null }, line);
+  const reach: StagedReach = {
+    code,
+    name: textOf(feature, bound, 'name') ?? code,
+    parentCode: textOf(feature, bound, 'parent'),
+    kind: textOf(feature, bound, 'kind')?.toLowerCase() ?? 'lateral',
+    capacity: numberOf(feature, bound, { role: 'capacity', low: 0, high: CAPACITY_HIGH, unit: 'm³/s' }, findings),
+    lossRule: lossRuleOf(feature, bound, findings),
+    length: Math.round(length * 1000) / 1000,
+    geometry: line,
+  };
+  work.reaches.push({ reach, row, file });
+}
+
+/** Drops heights, repeated vertices and parts of a single point; null when nothing is left. */
+function cleanLine(shape: LineString | MultiLineString, work: Work): LineString | MultiLineString | null {
+  const parts = shape.type === 'LineString' ? [shape.coordinates] : shape.coordinates;
+  if (hasHeight(parts)) work.heights++;
+  const cleaned = parts.map(withoutRepeats).filter((part) => part.length >= 2);
+  if (cleaned.length === 0) return null;
+  return cleaned.length === 1 ? { type: 'LineString', coordinates: cleaned[0] } : { type: 'MultiLineString', coordinates: cleaned };
+}
+
+function withoutRepeats(part: readonly Position[]): Position[] {
+  const kept: Position[] = [];
+  for (const [x, y] of part) {
+    const last = kept[kept.length - 1];
+    if (!last || !samePosition(last, [x, y])) kept.push([x, y]);
+  }
+  return kept;
+}
+
+function asTree({ reaches, findings }: Work, { bound }: BoundProperties): StagedReach[] {
+  const tree: TreeReach[] = reaches.map(({ reach, row, file }) => ({
+    code: reach.code,
+    parentCode: reach.parentCode,
+    geometry: reach.geometry,
+    row,
+    file,
+  }));
+  const parents = bound.has('parent') || tree.length === 0 ? tree : inferParents(tree, findings);
+  const staged = reaches.map(({ reach }, index) => ({ ...reach, parentCode: parents[index].parentCode }));
+  return checkTree(parents, findings) ? staged : [];
+}
+
+function boxOfLines(reaches: readonly StagedReach[]): [number, number, number, number] | null {
+  if (reaches.length === 0) return null;
+  const box: [number, number, number, number] = [180, 90, -180, -90];
+  for (const { geometry } of reaches) {
+    const parts = geometry.type === 'LineString' ? [geometry.coordinates] : geometry.coordinates;
+    for (const [x, y] of parts.flat()) {
+      box[0] = Math.min(box[0], x);
+      box[1] = Math.min(box[1], y);
+      box[2] = Math.max(box[2], x);
+      box[3] = Math.max(box[3], y);
+    }
+  }
+  return box;
+}

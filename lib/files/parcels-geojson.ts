@@ -1,0 +1,309 @@
+/**
+ * Parcels as polygons in GeoJSON → parcels with area, inside point and codes, the turnouts they name, and their plantings.
+ */
+import type { MultiPolygon, Polygon } from 'geojson';
+import { findOverlaps } from '../geo/overlap.ts';
+import { boxOf, pointInside } from '../geo/point-inside.ts';
+import {
+  AREA_CHANGE_LIMIT,
+  AREA_MINIMUM,
+  type RepairedPolygon,
+  type RepairFault,
+  type RepairNote,
+  repairPolygon,
+} from '../geo/polygon-repair.ts';
+import { attributesOf, type BoundProperties, bindWithCode, numberOf, textOf } from './feature-properties.ts';
+import { FindingList, shown } from './finding-list.ts';
+import { type RawFeature, readFeatures } from './geojson.ts';
+import { MapPreviewFeatures } from './map-preview.ts';
+import { parcelJoins } from './parcel-joins.ts';
+import { cropsOf, mappingsOf, plantingsOf } from './parcel-plantings.ts';
+import type { CropCount, ImportContext, ImportFile, ImportOptions, ImportReading, Progress, StagedParcel } from './reading.ts';
+import { NOTHING_UNDERSTOOD } from './reading.ts';
+import type { TableRole } from './table-columns.ts';
+
+/** Overlap of two parcels that is worth a warning, as a share of the smaller one. */
+const OVERLAP_LIMIT = 0.01;
+const OVERLAPS_REPORTED = 1000;
+const BREATH = 500;
+const CODE_LENGTH = 80;
+
+export const PARCEL_ROLES: readonly TableRole[] = [
+  {
+    role: 'code',
+    names: [
+      'parcel',
+      'parcel code',
+      'parcel id',
+      'parcel no',
+      'parcel number',
+      'apn',
+      'code',
+      'uniqueid',
+      'unique id',
+      'field id',
+      'field code',
+      'id',
+    ],
+  },
+  { role: 'name', names: ['name', 'parcel name', 'field name'] },
+  { role: 'turnout', names: ['turnout', 'turnout code', 'turnout id', 'gate', 'outlet'] },
+  { role: 'reach', names: ['reach', 'reach code', 'reach id', 'canal', 'lateral'] },
+  { role: 'turnout_capacity', names: ['turnout capacity', 'gate capacity'], kind: 'flow' },
+  { role: 'soil', names: ['soil', 'soil code', 'soil class', 'soil type'] },
+  {
+    role: 'method',
+    names: ['method', 'irrigation method', 'method code', 'application method', 'irrigation', 'irrigation system', 'system type'],
+  },
+  { role: 'crop', names: ['crop', 'crop code', 'crop type', 'crop name', 'main crop', 'maincrop', 'croptype'] },
+  { role: 'elevation', names: ['elevation', 'elev', 'altitude'], kind: 'length' },
+];
+
+const FAULT_TEXT: Record<RepairFault, { message: string; advice: string; limit?: string }> = {
+  'too-few-vertices': { message: 'The polygon has fewer than three different corners.', advice: 'Draw the parcel again.' },
+  'zero-area': {
+    message: 'The polygon has no area.',
+    advice: 'Draw the parcel again, or delete it.',
+    limit: `at least ${AREA_MINIMUM} m²`,
+  },
+  'self-intersection': {
+    message: 'The outline crosses itself so that it is not clear what is inside.',
+    advice: 'Correct the outline.',
+    limit: `area change of ${AREA_CHANGE_LIMIT * 100} % at most`,
+  },
+  antimeridian: {
+    message: 'The polygon is more than 180 degrees wide: it crosses the 180th meridian or mixes signs of longitude.',
+    advice: 'Cut it at the 180th meridian, or correct the sign.',
+  },
+};
+
+const NOTE_TEXT: Record<RepairNote, string> = {
+  closed: 'had an open outline, which is closed',
+  oriented: 'had an outline in the other direction, which is turned',
+  'duplicates-removed': 'had repeated corners, which are removed',
+  'height-dropped': 'carried heights, which are dropped',
+  'hole-dropped': 'had a hole of fewer than three corners, which is dropped',
+};
+
+interface Work {
+  readonly options: ImportOptions;
+  readonly context: ImportContext;
+  readonly findings: FindingList;
+  readonly preview: MapPreviewFeatures;
+  readonly parcels: StagedParcel[];
+  readonly rows: { row: number; file: string }[];
+  readonly byCode: Map<string, number>;
+  readonly repairs: Map<RepairNote, number>;
+  readonly joins: ReturnType<typeof parcelJoins>;
+}
+
+/** Reads parcels from one or more GeoJSON files. */
+export async function readParcels(
+  files: readonly ImportFile[],
+  options: ImportOptions,
+  context: ImportContext,
+  progress: Progress,
+): Promise<ImportReading> {
+  const findings = new FindingList();
+  const opened = files.map((file) => readFeatures(file, ['Polygon', 'MultiPolygon'], findings)).filter((part) => part !== null);
+  const features = opened.flatMap((part) => part.features);
+  const chosen = { code: options.codeColumn, crop: options.cropColumn };
+  const assumed = { length: context.districtUnits === 'us' ? 'ft' : 'm', flow: context.districtUnits === 'us' ? 'cfs' : 'm³/s' };
+  const properties = bindWithCode(
+    features,
+    { roles: PARCEL_ROLES, options, chosen, assumed },
+    { thing: 'parcel', numbered: 'P0001, P0002' },
+    findings,
+  );
+  const crops = cropsOf(features, properties, options, context);
+  const work: Work = {
+    options,
+    context,
+    findings,
+    preview: new MapPreviewFeatures(),
+    parcels: [],
+    rows: [],
+    byCode: new Map(),
+    repairs: new Map(),
+    joins: parcelJoins(context, findings),
+  };
+  for (const [index, feature] of features.entries()) {
+    takeFeature(feature, properties, crops, work);
+    if (index % BREATH === 0) await progress((0.9 * index) / features.length);
+  }
+  finishNotes(work, properties, features);
+  const plantings = plantingsOf(work, crops, properties);
+  await progress(1);
+  const keep = !findings.fatal;
+  return {
+    understood: {
+      ...NOTHING_UNDERSTOOD,
+      format: opened.length > 0 ? 'geojson' : 'unknown',
+      encoding: opened[0]?.encoding ?? null,
+      columns: properties.columns,
+      rowCount: features.length,
+      usableRows: work.parcels.length,
+      featureCount: features.length,
+      crops: [...crops.values()],
+      boundingBox: boxOfAll(work.parcels),
+      crs: opened[0]?.crs ?? null,
+    },
+    findings: findings.list(),
+    findingCounts: findings.totals(),
+    preview: work.preview.preview(),
+    staged: {
+      kind: 'parcels',
+      parcels: keep ? work.parcels : [],
+      turnouts: keep ? work.joins.turnouts() : [],
+      plantings: keep ? plantings : [],
+      cropMappings: keep ? mappingsOf(crops) : {},
+    },
+  };
+}
+
+function takeFeature(feature: RawFeature, properties: BoundProperties, crops: ReadonlyMap<string, CropCount>, work: Work) {
+  const { preview, findings, byCode } = work;
+  const { row, file } = feature;
+  const code = codeOf(feature, properties);
+  const refuse = (reason: string) => preview.add({ row, code, status: 'refused', reason }, feature.geometry);
+  if (!feature.geometry) return refuse(feature.problem ?? 'no geometry');
+  if (code === null) {
+    findings.error({
+      code: 'missing-code',
+      message: 'The parcel has no code.',
+      file,
+      row,
+      column: properties.bound.get('code')?.header,
+      advice: 'Give it a code.',
+    });
+    return refuse('The parcel has no code.');
+  }
+  const earlier = byCode.get(code);
+  if (earlier !== undefined) {
+    const message = `Parcel ${shown(code)} stands in feature ${work.rows[earlier].row} already; the first is kept.`;
+    findings.error({
+      code: 'duplicate-code',
+      message,
+      file,
+      row,
+      column: properties.bound.get('code')?.header,
+      value: shown(code),
+      limit: 'one feature per parcel',
+      advice: 'Make one multipolygon of both, or give another code.',
+    });
+    return refuse(message);
+  }
+  const repaired = repairPolygon(feature.geometry as Polygon | MultiPolygon);
+  if (repaired.geometry === null) return refuse(reportFault(feature, code, repaired, findings));
+  for (const note of repaired.notes) work.repairs.set(note, (work.repairs.get(note) ?? 0) + 1);
+  const change = reportCrossing(feature, code, repaired, findings);
+  preview.add({ row, code, status: change ? 'repaired' : 'ok', reason: change }, repaired.geometry);
+  byCode.set(code, work.parcels.length);
+  work.rows.push({ row, file });
+  work.parcels.push(parcelOf(feature, code, repaired, { properties, crops, work }));
+}
+
+function codeOf(feature: RawFeature, { bound }: BoundProperties): string | null {
+  if (!bound.has('code')) return `P${String(feature.row).padStart(4, '0')}`;
+  return textOf(feature, bound, 'code')?.slice(0, CODE_LENGTH) ?? null;
+}
+
+function reportFault(feature: RawFeature, code: string, { fault, areaChange }: RepairedPolygon, findings: FindingList): string {
+  const text = FAULT_TEXT[fault ?? 'zero-area'];
+  const change =
+    fault === 'self-intersection' && Number.isFinite(areaChange) ? ` A repair would change its area by ${percent(areaChange)}.` : '';
+  const message = `Parcel ${shown(code)}: ${text.message}${change}`;
+  findings.error({
+    code: fault ?? 'zero-area',
+    message,
+    file: feature.file,
+    row: feature.row,
+    value: shown(code),
+    limit: text.limit,
+    advice: text.advice,
+  });
+  return message;
+}
+
+function reportCrossing(
+  feature: RawFeature,
+  code: string,
+  { crossingRepaired, areaChange }: RepairedPolygon,
+  findings: FindingList,
+): string | null {
+  if (!crossingRepaired) return null;
+  const message = `Parcel ${shown(code)}: the outline crossed itself and is repaired; its area changes by ${percent(areaChange)}.`;
+  findings.warn({
+    code: 'self-intersection-repaired',
+    message,
+    file: feature.file,
+    row: feature.row,
+    value: shown(code),
+    limit: `area change of ${AREA_CHANGE_LIMIT * 100} % at most`,
+    advice: 'Look at it on the map.',
+  });
+  return message;
+}
+
+function percent(change: number): string {
+  return `${change >= 0 ? '+' : '−'}${Math.abs(change * 100).toPrecision(2)} %`;
+}
+
+function parcelOf(
+  feature: RawFeature,
+  code: string,
+  { geometry, area }: RepairedPolygon,
+  { properties, crops, work }: { properties: BoundProperties; crops: ReadonlyMap<string, CropCount>; work: Work },
+): StagedParcel {
+  const shape = geometry as Polygon | MultiPolygon;
+  const { bound } = properties;
+  const [west, south, east, north] = boxOf(shape);
+  const [longitude, latitude] = pointInside(shape);
+  const foreign = textOf(feature, bound, 'crop');
+  const joined = work.joins.join(feature, bound);
+  return {
+    code,
+    name: textOf(feature, bound, 'name'),
+    ...joined,
+    area: Math.round(area * 1000) / 1000,
+    elevation: numberOf(feature, bound, { role: 'elevation', low: -450, high: 9000, unit: 'm' }, work.findings),
+    ...{ longitude, latitude, west, south, east, north },
+    geometry: shape,
+    attributes: attributesOf(feature, properties),
+    crop: foreign === null ? null : (crops.get(foreign)?.cropCode ?? null),
+  };
+}
+
+function finishNotes(work: Work, properties: BoundProperties, features: readonly RawFeature[]): void {
+  const { findings, parcels, rows } = work;
+  for (const [note, count] of work.repairs)
+    findings.note({ code: `polygon-${note}`, message: `${count} ${count === 1 ? 'polygon' : 'polygons'} ${NOTE_TEXT[note]}.` });
+  work.joins.finish(parcels.length);
+  if (features.length > 0 && !properties.bound.has('crop'))
+    findings.note({ code: 'no-crop-column', message: 'No property holds a crop; the parcels come without plantings.' });
+  const shapes = parcels.map((parcel) => parcel.geometry);
+  const areas = parcels.map((parcel) => parcel.area);
+  for (const { first, second, share } of findOverlaps(shapes, areas, { threshold: OVERLAP_LIMIT, limit: OVERLAPS_REPORTED })) {
+    findings.warn({
+      code: 'parcels-overlap',
+      message: `Parcels ${shown(parcels[first].code)} and ${shown(parcels[second].code)} overlap by ${(share * 100).toPrecision(2)} % of the smaller one.`,
+      file: rows[second].file,
+      row: rows[second].row,
+      value: shown(parcels[second].code),
+      limit: `${OVERLAP_LIMIT * 100} % of the smaller parcel`,
+      advice: 'Water would be counted twice on the shared land: correct the outlines.',
+    });
+  }
+}
+
+function boxOfAll(parcels: readonly StagedParcel[]): [number, number, number, number] | null {
+  if (parcels.length === 0) return null;
+  const box: [number, number, number, number] = [180, 90, -180, -90];
+  for (const { west, south, east, north } of parcels) {
+    box[0] = Math.min(box[0], west);
+    box[1] = Math.min(box[1], south);
+    box[2] = Math.max(box[2], east);
+    box[3] = Math.max(box[3], north);
+  }
+  return box;
+}

@@ -1,0 +1,314 @@
+/**
+ * What goes into reading a file and what comes out: the contract between the readers and the import pipeline.
+ *
+ * A reader is bytes → { understood, findings, preview, staged }. It knows no database and stores nothing.
+ */
+import type { Geometry, LineString, MultiLineString, MultiPolygon, Polygon } from 'geojson';
+import type { Finding } from '../base/errors.ts';
+import type { WeatherVariable } from '../weather/variable.ts';
+
+export type ImportKind = 'stations' | 'weather' | 'parcels' | 'canals' | 'plantings' | 'soils';
+
+/** One uploaded file. */
+export interface ImportFile {
+  readonly name: string;
+  readonly bytes: Uint8Array;
+}
+
+/** What the district already knows, so that codes can be checked and joined. */
+export interface ImportContext {
+  readonly districtUnits: 'metric' | 'us';
+  readonly knownSites: readonly { readonly code: string; readonly name: string }[];
+  readonly knownParcels: readonly string[];
+  readonly knownReaches: readonly { readonly code: string; readonly parentCode: string | null }[];
+  readonly knownTurnouts: readonly { readonly code: string; readonly reachCode: string }[];
+  readonly crops: readonly { readonly code: string; readonly name: string }[];
+  /** `plantingDay` is MM-DD */
+  readonly calendars: readonly { readonly code: string; readonly cropCode: string; readonly plantingDay: string | null }[];
+  readonly soils: readonly string[];
+  readonly methods: readonly string[];
+  readonly seasons: readonly { readonly code: string; readonly startDate: string; readonly endDate: string }[];
+  /** foreign crop code → crop of the library, or null for "no crop of ours" */
+  readonly cropMappings: Readonly<Record<string, string | null>>;
+  /** bounding box of the district's parcels [west, south, east, north], when it has any */
+  readonly districtBox?: readonly [number, number, number, number] | null;
+}
+
+export type DateOrder = 'ymd' | 'dmy' | 'mdy';
+
+/** The user's corrections to what was understood. Anything left out is sniffed. */
+export interface ColumnPlan {
+  /** keyed by the header as written, or by the column's index from 0 as text; `role: null` ignores the column */
+  readonly columns?: Readonly<Record<string, { readonly role: string | null; readonly unit?: string | null; readonly hour?: number }>>;
+  readonly dateOrder?: DateOrder;
+  readonly delimiter?: ',' | ';' | '\t' | '|';
+  readonly decimalComma?: boolean;
+  /** a name iconv knows: utf-8, utf-16le, utf-16be, windows-1252 … */
+  readonly encoding?: string;
+  /** line of the header, from 1 */
+  readonly headerRow?: number;
+}
+
+/** Choices for one import. Every member is checked; a bad one becomes a finding. */
+export interface ImportOptions {
+  readonly plan?: ColumnPlan;
+  /** season that plantings belong to when the file does not say (parcels with a crop column, plantings without a season column) */
+  readonly season?: string;
+  /** name of the weather source; default: the name of the first file without its ending */
+  readonly source?: string;
+  /** weather: site of a file without a site column */
+  readonly site?: string;
+  /** the pipeline's choice to overwrite stored values; readers only carry it */
+  readonly replace?: boolean;
+  /** further cell texts that mean missing, e.g. "-99.9" */
+  readonly missingCodes?: readonly string[];
+  /** order of day, month and year in dates with separators; same as `plan.dateOrder` */
+  readonly dateOrder?: DateOrder;
+  /** parcels: property that holds the crop */
+  readonly cropColumn?: string;
+  /** parcels and canals: property that holds the code */
+  readonly codeColumn?: string;
+  /** foreign crop code → crop of the library, or null; goes before the stored mappings */
+  readonly cropMappings?: Readonly<Record<string, string | null>>;
+  /** stations: anemometer height [m] of stations that bring none */
+  readonly windHeight?: number;
+}
+
+/** One column of a table, or one property of the features of a vector file. */
+export interface UnderstoodColumn {
+  readonly index: number;
+  readonly header: string;
+  /** unit as written in the header or the units row */
+  readonly unitText: string | null;
+  readonly role: string | null;
+  /** unit the values are read in */
+  readonly unit: string | null;
+  /** 0–1 */
+  readonly confidence: number;
+  readonly sample: readonly string[];
+  /** hour of day of a reading such as 9am */
+  readonly hour?: number;
+  /** why the column has this role or none */
+  readonly reason?: string;
+}
+
+export interface CropCount {
+  readonly foreignCode: string;
+  readonly count: number;
+  readonly cropCode: string | null;
+  /** how the crop was found; `similar` is a proposal that is not applied until it is confirmed */
+  readonly by: 'option' | 'stored' | 'code' | 'name' | 'similar' | null;
+  readonly proposed: string | null;
+}
+
+/** What the reader made of the file, for the user to check. */
+export interface Understood {
+  readonly format: 'csv' | 'geojson' | 'unknown';
+  readonly encoding: string | null;
+  readonly delimiter: string | null;
+  readonly decimalComma: boolean | null;
+  readonly dateOrder: DateOrder | null;
+  readonly headerRow: number | null;
+  readonly columns: readonly UnderstoodColumn[];
+  readonly rowCount: number;
+  readonly usableRows: number;
+  readonly dateRange: { readonly start: string; readonly end: string } | null;
+  readonly siteCount: number | null;
+  readonly featureCount: number | null;
+  readonly crops: readonly CropCount[];
+  /** [west, south, east, north] */
+  readonly boundingBox: readonly [number, number, number, number] | null;
+  readonly crs: string | null;
+}
+
+export interface TablePreview {
+  readonly kind: 'table';
+  readonly header: readonly string[];
+  readonly rows: readonly {
+    readonly row: number;
+    readonly cells: readonly string[];
+    readonly status: 'ok' | 'bad';
+    readonly reason: string | null;
+  }[];
+}
+
+export interface MapPreview {
+  readonly kind: 'map';
+  readonly collection: {
+    readonly type: 'FeatureCollection';
+    readonly features: readonly {
+      readonly type: 'Feature';
+      readonly properties: {
+        readonly row: number;
+        readonly code: string | null;
+        readonly status: 'ok' | 'repaired' | 'refused';
+        readonly reason: string | null;
+      };
+      readonly geometry: Geometry | null;
+    }[];
+  };
+}
+
+export type Preview = TablePreview | MapPreview;
+
+export interface StagedSite {
+  readonly code: string;
+  readonly name: string;
+  readonly longitude: number;
+  readonly latitude: number;
+  /** m */
+  readonly elevation: number | null;
+  /** m */
+  readonly windHeight: number | null;
+  readonly zone: string | null;
+}
+
+/** One variable of one month: values [site][day of month] in the unit of `WEATHER_VARIABLES`, null where missing. */
+export interface StagedBlock {
+  readonly variable: WeatherVariable;
+  /** YYYY-MM-01 */
+  readonly month: string;
+  /** sorted */
+  readonly siteCodes: readonly string[];
+  readonly values: readonly (readonly (number | null)[])[];
+}
+
+export interface StagedParcel {
+  readonly code: string;
+  readonly name: string | null;
+  readonly turnoutCode: string | null;
+  readonly reachCode: string | null;
+  readonly soilCode: string | null;
+  readonly methodCode: string | null;
+  /** m², on the WGS 84 ellipsoid */
+  readonly area: number;
+  /** m */
+  readonly elevation: number | null;
+  /** of a point inside */
+  readonly longitude: number;
+  readonly latitude: number;
+  readonly west: number;
+  readonly south: number;
+  readonly east: number;
+  readonly north: number;
+  readonly geometry: Polygon | MultiPolygon;
+  readonly attributes: Readonly<Record<string, string | number | boolean | null>>;
+  readonly crop: string | null;
+}
+
+export interface StagedTurnout {
+  readonly code: string;
+  readonly reachCode: string;
+  /** m³ s⁻¹ */
+  readonly capacity: number | null;
+}
+
+export interface StagedPlanting {
+  readonly parcelCode: string;
+  readonly seasonCode: string;
+  /** order within parcel and season, from 1 */
+  readonly sequence: number;
+  readonly cropCode: string;
+  readonly calendarCode: string;
+  readonly plantingDate: string;
+  readonly harvestDate: string | null;
+  readonly cutDates: readonly string[];
+  readonly areaShare: number;
+}
+
+/** How a reach loses water. Fractions 0–1; `rate` [mm d⁻¹] over the wetted perimeter [m]. */
+export type StagedLossRule =
+  | { readonly kind: 'none' }
+  | { readonly kind: 'fraction-per-km'; readonly fraction: number }
+  | { readonly kind: 'efficiency'; readonly efficiency: number }
+  | { readonly kind: 'seepage'; readonly rate: number; readonly wettedPerimeter: number };
+
+export interface StagedReach {
+  readonly code: string;
+  readonly name: string;
+  readonly parentCode: string | null;
+  readonly kind: string;
+  /** m³ s⁻¹ */
+  readonly capacity: number | null;
+  readonly lossRule: StagedLossRule;
+  /** m, on the ellipsoid */
+  readonly length: number;
+  readonly geometry: LineString | MultiLineString;
+}
+
+export interface StagedSoil {
+  readonly code: string;
+  readonly name: string;
+  /** m³ m⁻³ */
+  readonly fieldCapacity: number;
+  readonly wiltingPoint: number;
+  /** m */
+  readonly evaporationDepth: number;
+  /** mm */
+  readonly readilyEvaporableWater: number;
+  readonly totalEvaporableWater: number;
+  readonly curveNumber: number | null;
+  /** m */
+  readonly rootLimit: number | null;
+  readonly source: string;
+}
+
+export type StagedImport =
+  | { readonly kind: 'stations'; readonly sites: readonly StagedSite[] }
+  | {
+      readonly kind: 'weather';
+      readonly source: string;
+      readonly blocks: readonly StagedBlock[];
+      /** rows kept */
+      readonly rows: number;
+      /** sites with at least one value */
+      readonly sites: number;
+    }
+  | {
+      readonly kind: 'parcels';
+      readonly parcels: readonly StagedParcel[];
+      readonly turnouts: readonly StagedTurnout[];
+      readonly plantings: readonly StagedPlanting[];
+      /** crop codes of the file that were mapped by the user or by exact match: worth storing */
+      readonly cropMappings: Readonly<Record<string, string | null>>;
+    }
+  | { readonly kind: 'canals'; readonly reaches: readonly StagedReach[] }
+  | { readonly kind: 'plantings'; readonly plantings: readonly StagedPlanting[] }
+  | { readonly kind: 'soils'; readonly soils: readonly StagedSoil[] };
+
+export interface FindingCounts {
+  readonly error: number;
+  readonly warning: number;
+  readonly note: number;
+}
+
+export interface ImportReading {
+  readonly understood: Understood;
+  /** at most 1,000 kept; `findingCounts` has the true totals */
+  readonly findings: readonly Finding[];
+  readonly findingCounts: FindingCounts;
+  readonly preview: Preview;
+  /** empty when a file-level error was found */
+  readonly staged: StagedImport;
+}
+
+/** Told how far a reading is, 0–1. May wait, so that a cancel can be seen. */
+export type Progress = (fraction: number) => void | Promise<void>;
+
+export const NOTHING_UNDERSTOOD: Understood = {
+  format: 'unknown',
+  encoding: null,
+  delimiter: null,
+  decimalComma: null,
+  dateOrder: null,
+  headerRow: null,
+  columns: [],
+  rowCount: 0,
+  usableRows: 0,
+  dateRange: null,
+  siteCount: null,
+  featureCount: null,
+  crops: [],
+  boundingBox: null,
+  crs: null,
+};

@@ -1,0 +1,125 @@
+import { z } from 'zod';
+import { finding } from '../contract/common.ts';
+import { importAnswer } from '../contract/rest.ts';
+import { operation } from '../operation.ts';
+
+const tag = 'Imports';
+const id = z.guid();
+
+/** Choices for one import. Members given in a PATCH replace those of the same name; null takes one away. What is not known is passed on to the reader. */
+export const importOptions = z
+  .looseObject({
+    plan: z
+      .looseObject({})
+      .nullable()
+      .optional()
+      .meta({ description: 'column plan: roles, units, date order, delimiter, encoding, header row' }),
+    season: z.string().max(40).nullable().optional().meta({ description: 'season of plantings that name none' }),
+    source: z.string().max(120).nullable().optional().meta({ description: 'weather source for new stations' }),
+    replace: z.boolean().nullable().optional().meta({ description: 'parcels: remove parcels that the file does not have' }),
+    recompute: z.boolean().nullable().optional().meta({ description: 'false: applying starts no run; true unless said' }),
+    cropMappings: z
+      .record(z.string(), z.string().nullable())
+      .nullable()
+      .optional()
+      .meta({ description: 'crop code of the file → crop of the library, or null' }),
+  })
+  .meta({ id: 'ImportOptions' });
+
+export const createImportOperation = operation({
+  method: 'POST',
+  path: '/api/v1/imports',
+  tag,
+  summary: 'Upload files to be read',
+  description:
+    'multipart/form-data: `kind` (stations, weather, parcels, canals, plantings, soils), one or more `file`, and `options` (JSON). ' +
+    'Nothing of the district changes until the import is applied. stations, weather, plantings and soils are CSV; parcels and canals are GeoJSON.',
+  scope: 'write',
+  status: 202,
+  answer: importAnswer,
+  refusals: [413, 415],
+});
+
+export const listImportsOperation = operation({
+  method: 'GET',
+  path: '/api/v1/imports',
+  tag,
+  summary: 'The newest 200 imports, without findings and previews',
+  scope: 'read',
+  answer: z.object({ items: z.array(importAnswer) }),
+});
+
+export const readImportOperation = operation({
+  method: 'GET',
+  path: '/api/v1/imports/{id}',
+  tag,
+  summary: 'One import: state, progress, what was understood, findings, preview',
+  scope: 'read',
+  params: { id },
+  query: { preview: z.enum(['0', '1']).default('1').meta({ description: '0 leaves the preview out' }) },
+  answer: importAnswer,
+  refusals: [404],
+});
+
+export const patchImportOperation = operation({
+  method: 'PATCH',
+  path: '/api/v1/imports/{id}',
+  tag,
+  summary: 'Change the plan and read the files again',
+  scope: 'write',
+  params: { id },
+  body: importOptions,
+  status: 202,
+  answer: importAnswer,
+  refusals: [404, 409, 413, 415],
+});
+
+export const applyImportOperation = operation({
+  method: 'POST',
+  path: '/api/v1/imports/{id}/apply',
+  tag,
+  summary: 'Apply what was read, in one transaction',
+  description:
+    '202 when it has been started, 200 when it is already applied. When done, `understood.applied` says what changed and which runs were started.',
+  scope: 'write',
+  params: { id },
+  status: 202,
+  answer: importAnswer,
+  refusals: [404, 409, 422],
+});
+
+export const undoImportOperation = operation({
+  method: 'POST',
+  path: '/api/v1/imports/{id}/undo',
+  tag,
+  summary: 'Put back everything an applied import changed, in one transaction',
+  description: '202 when it has been started, 200 when it is already undone. 409 names the later import that changed the same rows.',
+  scope: 'write',
+  params: { id },
+  status: 202,
+  answer: importAnswer,
+  refusals: [404, 409],
+});
+
+export const cancelImportOperation = operation({
+  method: 'POST',
+  path: '/api/v1/imports/{id}/cancel',
+  tag,
+  summary: 'Call an import off before it is applied',
+  scope: 'write',
+  params: { id },
+  answer: importAnswer,
+  refusals: [404, 409],
+});
+
+export const importFindingsOperation = operation({
+  method: 'GET',
+  path: '/api/v1/imports/{id}/findings',
+  tag,
+  summary: 'Findings of an import, errors first; at most a thousand are kept',
+  scope: 'read',
+  params: { id },
+  answer: z.object({ items: z.array(finding) }),
+  table: { row: finding },
+  refusals: [404],
+});

@@ -1,0 +1,168 @@
+/**
+ * The job that applies an import, and the one that undoes it: each one transaction, so that a process killed at any moment leaves the
+ * district either as it was or with all of it, and doing either again changes nothing.
+ */
+import type { Tx } from '../../db/connect.ts';
+import type { ImportKey, RowChanges } from '../../db/queries/import-before.ts';
+import { countGeometryUp, listDangling } from '../../db/queries/import-land.ts';
+import { changeImport, findImport, holdDistrict, type ImportRow, type ImportState, nextAppliedOrder } from '../../db/queries/import-row.ts';
+import { database } from '../access/database.ts';
+import { Refused, TillwaterError } from '../base/errors.ts';
+import { type ApplyCounts, countsChanged, type Touched } from './import-counts.ts';
+import { applyCropMappings, applyPlantings, applyReaches, applySoils, applyTurnouts, checkTree, ParcelWriter } from './import-land.ts';
+import { refuseDangling } from './import-references.ts';
+import { seasonsTouched, startImportRuns } from './import-runs.ts';
+import { findStagedHead, type StagedHead, type StagedPart, stagedParts } from './import-staged.ts';
+import { performUndo } from './import-undo.ts';
+import { applyBlocks, applySites } from './import-weather.ts';
+import type { JobData } from './queue.ts';
+
+export interface ImportApplyData extends JobData {
+  readonly importId: string;
+  readonly act: 'apply' | 'undo';
+}
+
+/** Told the name of each step inside the transaction, after it is done. */
+export type OnStep = (step: string) => void | Promise<void>;
+
+const PROGRESS_MS = 250;
+
+/** Applies or undoes, as the job says. */
+export async function performAct(data: ImportApplyData): Promise<void> {
+  if (data.act === 'undo') await performUndo(data);
+  else await performApply(data);
+}
+
+/**
+ * Applies what was staged. A refusal leaves the import "failed" with the reason and nothing changed; any other fault throws, and the
+ * queue tries again.
+ */
+export async function performApply(own: ImportKey, onStep: OnStep = () => {}): Promise<void> {
+  try {
+    await database().inDistrict(own.districtId, (tx) => applyInside(tx, own, onStep));
+  } catch (error) {
+    if (!(error instanceof TillwaterError) || error.status >= 500) throw error;
+    await settle(own, 'applying', { state: 'failed', error: error.message });
+    return;
+  }
+  await startImportRuns(own);
+}
+
+async function settle(own: ImportKey, from: ImportState, change: { state: ImportState; error: string }): Promise<void> {
+  await database().inDistrict(own.districtId, (tx) => changeImport(tx, { ...own, from: [from] }, change));
+}
+
+async function applyInside(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void> {
+  await holdDistrict(tx, own.districtId);
+  const row = await findImport(tx, own.districtId, own.importId);
+  if (row?.state !== 'applying') return;
+  const head = await findStagedHead(tx, own.districtId, own.importId);
+  if (!head) throw new Refused('There is nothing staged to apply: read the files again.');
+  await onStep('opened');
+  const danglingBefore = await listDangling(tx, own.districtId);
+  const result = await new Applier(tx, own, row, head, onStep).apply();
+  await refuseDangling(tx, own, { before: danglingBefore, doing: 'apply' });
+  await onStep('checked');
+  const touched = countsChanged(result.counts) ? await seasonsTouched(tx, own.districtId, result.touched) : [];
+  const applied = { ...result.counts, seasons: touched, runs: null };
+  const done = await changeImport(
+    tx,
+    { ...own, from: ['applying'] },
+    {
+      state: 'applied',
+      progress: 1,
+      error: null,
+      appliedAt: new Date(),
+      appliedOrder: await nextAppliedOrder(tx, own.districtId),
+      understood: { ...(row.understood as object), applied },
+    },
+  );
+  if (!done) throw new Error(`import ${own.importId} was moved while it was applied`);
+  await onStep('marked');
+}
+
+/** Writes the staged pieces of one import, one after the other. */
+class Applier {
+  private readonly counts: ApplyCounts = {};
+  private readonly months = new Set<string>();
+  private readonly seasons = new Set<string>();
+  private parcels: ParcelWriter | null = null;
+  private lastProgress = 0;
+
+  constructor(
+    private readonly tx: Tx,
+    private readonly own: ImportKey,
+    private readonly row: ImportRow,
+    private readonly head: StagedHead,
+    private readonly onStep: OnStep,
+  ) {}
+
+  async apply(): Promise<{ counts: ApplyCounts; touched: Touched }> {
+    let done = 0;
+    for await (const part of stagedParts(this.tx, this.own.districtId, this.own.importId)) {
+      await this.write(part);
+      await this.onStep(`${part.part} ${++done}`);
+      await this.tell(done / Math.max(1, this.head.pieces));
+    }
+    this.count('crop_mappings', await applyCropMappings(this.tx, this.own, this.head.cropMappings));
+    await this.finish();
+    const everything = this.head.kind !== 'weather' && this.head.kind !== 'plantings';
+    return { counts: this.counts, touched: { everything, months: [...this.months], seasons: [...this.seasons] } };
+  }
+
+  private async write(part: StagedPart): Promise<void> {
+    const { tx, own } = this;
+    switch (part.part) {
+      case 'sites':
+        return this.count('sites', await applySites(tx, own, part.items, this.sourceOption()));
+      case 'blocks': {
+        const { blocks, months } = await applyBlocks(tx, own, part.items, this.sourceOption() ?? this.head.source);
+        this.counts.weather_blocks_changed = (this.counts.weather_blocks_changed ?? 0) + blocks;
+        for (const month of months) this.months.add(month);
+        return;
+      }
+      case 'turnouts':
+        return this.count('turnouts', await applyTurnouts(tx, own, part.items));
+      case 'parcels':
+        this.parcels ??= await ParcelWriter.open(tx, own.districtId);
+        return this.count('parcels', await this.parcels.write(tx, own, part.items));
+      case 'plantings':
+        for (const planting of part.items) this.seasons.add(planting.seasonCode);
+        return this.count('plantings', await applyPlantings(tx, own, part.items));
+      case 'reaches':
+        return this.count('reaches', await applyReaches(tx, own, part.items));
+      case 'soils':
+        return this.count('soils', await applySoils(tx, own, part.items));
+    }
+  }
+
+  private async finish(): Promise<void> {
+    const { tx, own } = this;
+    const replace = (this.row.options as { replace?: unknown }).replace === true;
+    if (replace && this.parcels) this.counts.parcels_removed = await this.parcels.removeAbsent(tx, own);
+    if (this.head.kind === 'canals') await checkTree(tx, own.districtId);
+    const land = this.head.kind === 'parcels' || this.head.kind === 'canals';
+    if (land && countsChanged(this.counts)) await countGeometryUp(tx, own.districtId);
+    await this.onStep('finished');
+  }
+
+  private sourceOption(): string | null {
+    const { source } = this.row.options as { source?: unknown };
+    return typeof source === 'string' && source.trim() ? source.trim() : null;
+  }
+
+  private count(thing: string, changes: RowChanges): void {
+    this.counts[`${thing}_added`] = (this.counts[`${thing}_added`] ?? 0) + changes.added;
+    this.counts[`${thing}_changed`] = (this.counts[`${thing}_changed`] ?? 0) + changes.changed;
+  }
+
+  /** Progress is written beside the transaction, so that it can be seen before the end. */
+  private async tell(progress: number): Promise<void> {
+    const now = Date.now();
+    if (now - this.lastProgress < PROGRESS_MS) return;
+    this.lastProgress = now;
+    await database().inDistrict(this.own.districtId, (tx) =>
+      changeImport(tx, { ...this.own, from: ['applying'] }, { progress: Math.min(0.99, progress) }),
+    );
+  }
+}

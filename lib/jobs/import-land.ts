@@ -1,0 +1,157 @@
+/** Applying parcels, plantings, canals and soils. */
+import type { Tx } from '../../db/connect.ts';
+import { type ImportKey, type RowChanges, removeRows, replaceRows } from '../../db/queries/import-before.ts';
+import { listPlantingKeys, listTreeNodes, mapStoredParcels, mapTurnouts, nextParcelOrdinal } from '../../db/queries/import-land.ts';
+import { checkLossRule } from '../canal/loss-rule.ts';
+import { buildTree } from '../canal/tree.ts';
+import type { StagedParcel, StagedPlanting, StagedReach, StagedSoil, StagedTurnout } from '../files/reading.ts';
+
+type StoredParcels = Awaited<ReturnType<typeof mapStoredParcels>>;
+type StoredTurnouts = Awaited<ReturnType<typeof mapTurnouts>>;
+
+/** Hands out places to new parcels and remembers which codes the file had. */
+export class ParcelWriter {
+  private readonly seen = new Set<string>();
+
+  private constructor(
+    private readonly stored: StoredParcels,
+    private readonly turnouts: StoredTurnouts,
+    private next: number,
+  ) {}
+
+  static async open(tx: Tx, districtId: string): Promise<ParcelWriter> {
+    return new ParcelWriter(
+      await mapStoredParcels(tx, districtId),
+      await mapTurnouts(tx, districtId),
+      await nextParcelOrdinal(tx, districtId),
+    );
+  }
+
+  /** Adds parcels, and changes known ones: what the file does not say (name, turnout, soil …) stays as it is. */
+  async write(tx: Tx, own: ImportKey, parcels: readonly StagedParcel[]): Promise<RowChanges> {
+    return replaceRows(
+      tx,
+      own,
+      'parcel',
+      parcels.map((parcel) => this.row(parcel)),
+    );
+  }
+
+  private row(parcel: StagedParcel): Record<string, unknown> {
+    this.seen.add(parcel.code);
+    const stored = this.stored.get(parcel.code);
+    return {
+      code: parcel.code,
+      ordinal: stored?.ordinal ?? this.next++,
+      name: parcel.name ?? stored?.name ?? null,
+      turnout_code: parcel.turnoutCode ?? this.keptTurnout(parcel),
+      reach_code: parcel.reachCode ?? stored?.reachCode ?? null,
+      soil_code: parcel.soilCode ?? stored?.soilCode ?? null,
+      method_code: parcel.methodCode ?? stored?.methodCode ?? null,
+      area_m2: parcel.area,
+      elevation_m: parcel.elevation ?? stored?.elevation ?? null,
+      longitude: parcel.longitude,
+      latitude: parcel.latitude,
+      west: parcel.west,
+      south: parcel.south,
+      east: parcel.east,
+      north: parcel.north,
+      geometry: parcel.geometry,
+      attributes: parcel.attributes,
+    };
+  }
+
+  /** The stored turnout, unless the file moves the parcel to another reach. */
+  private keptTurnout(parcel: StagedParcel): string | null {
+    const kept = this.stored.get(parcel.code)?.turnoutCode ?? null;
+    if (kept === null || parcel.reachCode === null) return kept;
+    return this.turnouts.get(kept)?.reachCode === parcel.reachCode ? kept : null;
+  }
+
+  /** Removes the parcels that the file did not have, with their plantings. */
+  async removeAbsent(tx: Tx, own: ImportKey): Promise<number> {
+    const absent = [...this.stored.keys()].filter((code) => !this.seen.has(code));
+    for (let from = 0; from < absent.length; from += 1000) {
+      const codes = absent.slice(from, from + 1000);
+      await removeRows(tx, own, 'planting', await listPlantingKeys(tx, own.districtId, codes));
+      await removeRows(
+        tx,
+        own,
+        'parcel',
+        codes.map((code) => ({ code })),
+      );
+    }
+    return absent.length;
+  }
+}
+
+/** Adds turnouts and moves known ones; a capacity the file does not say stays. */
+export async function applyTurnouts(tx: Tx, own: ImportKey, turnouts: readonly StagedTurnout[]): Promise<RowChanges> {
+  const stored = await mapTurnouts(tx, own.districtId);
+  const rows = turnouts.map((turnout) => ({
+    code: turnout.code,
+    reach_code: turnout.reachCode,
+    capacity_m3_s: turnout.capacity ?? stored.get(turnout.code)?.capacity ?? null,
+  }));
+  return replaceRows(tx, own, 'turnout', rows);
+}
+
+/** Replaces the plantings of each parcel and season named, as a whole. */
+export function applyPlantings(tx: Tx, own: ImportKey, plantings: readonly StagedPlanting[]): Promise<RowChanges> {
+  const rows = plantings.map((planting) => ({
+    parcel_code: planting.parcelCode,
+    season_code: planting.seasonCode,
+    sequence: planting.sequence,
+    crop_code: planting.cropCode,
+    calendar_code: planting.calendarCode,
+    planting_date: planting.plantingDate,
+    harvest_date: planting.harvestDate,
+    cut_dates: planting.cutDates,
+    area_share: planting.areaShare,
+  }));
+  return replaceRows(tx, own, 'planting', rows);
+}
+
+export function applyReaches(tx: Tx, own: ImportKey, reaches: readonly StagedReach[]): Promise<RowChanges> {
+  const rows = reaches.map((reach) => {
+    checkLossRule(reach.lossRule, `loss rule of reach ${reach.code}`);
+    return {
+      code: reach.code,
+      name: reach.name,
+      parent_code: reach.parentCode,
+      kind: reach.kind,
+      capacity_m3_s: reach.capacity,
+      loss_rule: reach.lossRule,
+      length_m: reach.length,
+      geometry: reach.geometry,
+    };
+  });
+  return replaceRows(tx, own, 'reach', rows);
+}
+
+/** Proves that the reaches as they now stand are one tree. @throws TreeError naming the codes at fault */
+export async function checkTree(tx: Tx, districtId: string): Promise<void> {
+  const nodes = await listTreeNodes(tx, districtId);
+  if (nodes.length > 0) buildTree(nodes);
+}
+
+export function applySoils(tx: Tx, own: ImportKey, soils: readonly StagedSoil[]): Promise<RowChanges> {
+  const rows = soils.map((soil) => ({
+    code: soil.code,
+    name: soil.name,
+    field_capacity_m3_m3: soil.fieldCapacity,
+    wilting_point_m3_m3: soil.wiltingPoint,
+    evaporation_depth_m: soil.evaporationDepth,
+    readily_evaporable_water_mm: soil.readilyEvaporableWater,
+    total_evaporable_water_mm: soil.totalEvaporableWater,
+    curve_number: soil.curveNumber,
+    root_limit_m: soil.rootLimit,
+    source: soil.source,
+  }));
+  return replaceRows(tx, own, 'soil', rows);
+}
+
+export function applyCropMappings(tx: Tx, own: ImportKey, mappings: Readonly<Record<string, string | null>>): Promise<RowChanges> {
+  const rows = Object.entries(mappings).map(([foreign_code, crop_code]) => ({ foreign_code, crop_code }));
+  return replaceRows(tx, own, 'crop_mapping', rows);
+}

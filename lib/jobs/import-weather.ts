@@ -1,0 +1,167 @@
+/** Applying and undoing stations and their weather. */
+import type { Tx } from '../../db/connect.ts';
+import { fileBlockImage, type ImportKey, listBlockImages, type RowChanges, replaceRows } from '../../db/queries/import-before.ts';
+import { listSourceSites, listSources } from '../../db/queries/import-context.ts';
+import { nextSiteOrdinal, nextSourceId } from '../../db/queries/import-land.ts';
+import { type BlockKey, deleteBlock, findBlock, listBlocksBeyond, listSiteKeys, saveBlock } from '../../db/queries/import-weather.ts';
+import { daysInMonth } from '../base/civil-date.ts';
+import { Conflict, type Finding, Refused } from '../base/errors.ts';
+import type { StagedBlock, StagedSite } from '../files/reading.ts';
+import { type BlockImage, mergeBlock, restoreBlock } from './import-block.ts';
+
+interface Place {
+  readonly sourceId: number;
+  readonly ordinal: number;
+}
+
+/** Where each station lives: in the named source when it is there, else in the first source that has it. */
+class SitePlaces {
+  private readonly known = new Map<string, Place>();
+
+  constructor(sites: Awaited<ReturnType<typeof listSourceSites>>, preferred: string | null) {
+    for (const site of sites) {
+      if (!this.known.has(site.code) || site.source === preferred)
+        this.known.set(site.code, { sourceId: site.sourceId, ordinal: site.ordinal });
+    }
+  }
+
+  find(code: string): Place | null {
+    return this.known.get(code) ?? null;
+  }
+}
+
+const DEFAULT_SOURCE = 'Stations';
+
+/**
+ * Adds stations and changes those already known by their code. New ones are appended: a station's place in its source never changes.
+ *
+ * @param source name of the source for new stations; null takes the district's only source, or makes "Stations"
+ */
+export async function applySites(tx: Tx, own: ImportKey, sites: readonly StagedSite[], source: string | null): Promise<RowChanges> {
+  const places = new SitePlaces(await listSourceSites(tx, own.districtId), source);
+  const isNew = sites.some((site) => !places.find(site.code));
+  const target = isNew ? await ensureSource(tx, own, source) : 0;
+  let next = isNew ? await nextSiteOrdinal(tx, own.districtId, target) : 0;
+  const rows = sites.map((site) => {
+    const place = places.find(site.code) ?? { sourceId: target, ordinal: next++ };
+    return {
+      source_id: place.sourceId,
+      ordinal: place.ordinal,
+      code: site.code,
+      name: site.name,
+      longitude: site.longitude,
+      latitude: site.latitude,
+      elevation_m: site.elevation,
+      wind_height_m: site.windHeight,
+      zone: site.zone,
+    };
+  });
+  return replaceRows(tx, own, 'site', rows);
+}
+
+async function ensureSource(tx: Tx, own: ImportKey, name: string | null): Promise<number> {
+  const sources = await listSources(tx, own.districtId);
+  if (name === null && sources.length === 1) return sources[0].sourceId;
+  const wanted = name ?? DEFAULT_SOURCE;
+  const found = sources.find((source) => source.name === wanted);
+  if (found) return found.sourceId;
+  const sourceId = await nextSourceId(tx, own.districtId);
+  await replaceRows(tx, own, 'weather_source', [{ source_id: sourceId, name: wanted, kind: 'stations' }]);
+  return sourceId;
+}
+
+export interface BlockChanges {
+  /** blocks made or changed */
+  readonly blocks: number;
+  readonly months: readonly string[];
+}
+
+/**
+ * Merges staged months into the stored blocks.
+ *
+ * @throws Refused naming the stations that are not in the district
+ */
+export async function applyBlocks(tx: Tx, own: ImportKey, blocks: readonly StagedBlock[], source: string | null): Promise<BlockChanges> {
+  const places = new SitePlaces(await listSourceSites(tx, own.districtId), source);
+  refuseUnknown(blocks, places);
+  const months = new Set<string>();
+  let count = 0;
+  for (const block of blocks) {
+    for (const [sourceId, rows] of rowsBySource(block, places)) {
+      const key = { sourceId, variable: block.variable, month: block.month };
+      const merged = mergeBlock(await findBlock(tx, own.districtId, key), daysOf(block.month), rows);
+      if (!merged) continue;
+      await saveBlock(tx, own.districtId, key, merged.block);
+      await fileBlockImage(tx, own, { ...key }, merged.image);
+      months.add(block.month);
+      count++;
+    }
+  }
+  return { blocks: count, months: [...months] };
+}
+
+function rowsBySource(block: StagedBlock, places: SitePlaces) {
+  const bySource = new Map<number, { ordinal: number; values: readonly (number | null)[] }[]>();
+  block.siteCodes.forEach((code, i) => {
+    const place = places.find(code) as Place;
+    const rows = bySource.get(place.sourceId) ?? [];
+    rows.push({ ordinal: place.ordinal, values: block.values[i] });
+    bySource.set(place.sourceId, rows);
+  });
+  return bySource;
+}
+
+function refuseUnknown(blocks: readonly StagedBlock[], places: SitePlaces): void {
+  const unknown = new Set(blocks.flatMap((block) => block.siteCodes.filter((code) => !places.find(code))));
+  if (unknown.size === 0) return;
+  const findings: Finding[] = [...unknown].slice(0, 100).map((code) => ({
+    severity: 'error',
+    code: 'unknown-site',
+    message: `Station "${code}" is not in this district`,
+    column: 'site',
+    value: code,
+    advice: 'Import it as a station first, with its longitude and latitude.',
+  }));
+  const some = [...unknown].slice(0, 5).join(', ');
+  throw new Refused(
+    `The weather is of ${unknown.size} station${unknown.size === 1 ? '' : 's'} that this district does not have (${some}${unknown.size > 5 ? ' …' : ''}). Import the stations first, then read this file again.`,
+    findings,
+  );
+}
+
+function daysOf(month: string): number {
+  return daysInMonth(Number(month.slice(0, 4)), Number(month.slice(5, 7)));
+}
+
+/** Puts the blocks an import changed back. */
+export async function restoreBlocks(tx: Tx, own: ImportKey): Promise<boolean> {
+  const images = (await listBlockImages(tx, own)) as { key: BlockKey; before: BlockImage }[];
+  for (const { key, before } of images) {
+    const now = await findBlock(tx, own.districtId, key);
+    if (!now) continue;
+    const restored = restoreBlock(now, before);
+    if (restored) await saveBlock(tx, own.districtId, key, restored);
+    else await deleteBlock(tx, own.districtId, key);
+  }
+  return images.length > 0;
+}
+
+/**
+ * Refuses to leave weather behind without its station.
+ *
+ * @param before the stations as they were before the undo
+ * @throws Conflict naming the first station that still has weather
+ */
+export async function refuseLostWeather(tx: Tx, districtId: string, before: Awaited<ReturnType<typeof listSiteKeys>>): Promise<void> {
+  const now = new Set((await listSiteKeys(tx, districtId)).map((site) => `${site.sourceId} ${site.ordinal}`));
+  for (const site of before) {
+    if (now.has(`${site.sourceId} ${site.ordinal}`)) continue;
+    const blocks = await listBlocksBeyond(tx, districtId, site.sourceId, site.ordinal);
+    const hasWeather = blocks.some((block) =>
+      block.quality.subarray(site.ordinal * block.dayCount, (site.ordinal + 1) * block.dayCount).some((q) => q !== 0),
+    );
+    if (hasWeather) {
+      throw new Conflict(`Station "${site.code}" has weather that was imported after it. Undo the weather import first, then this one.`);
+    }
+  }
+}

@@ -1,0 +1,171 @@
+/**
+ * A season made ready for the loop over parcels: checked input, calendar, and scratch arrays that every parcel uses again.
+ */
+import { type DayNumber, dayNumber, dayOfYear } from '../base/civil-date.ts';
+import { type DailyConstants, dailyConstants, emptyReferenceDay, type ReferenceDay } from '../energy/combination.ts';
+import { type SolarGeometry, solarGeometry } from '../energy/sun.ts';
+import { type Checked, checkSeason, RUN_SURFACE } from './check.ts';
+import { emptyStripDay, emptyStripState, type StripDay, type StripState } from './day.ts';
+import { DAILY_VARIABLE_COUNT, type SeasonInput } from './types.ts';
+
+/** Weather and what follows from it at one parcel, each [day]; overwritten by the next parcel. */
+export interface ParcelWeather {
+  /** sum of the weights of the sites present */
+  readonly weightSum: Float64Array;
+  /** °C */
+  readonly airTemperatureMax: Float64Array;
+  /** °C */
+  readonly airTemperatureMin: Float64Array;
+  /** kPa */
+  readonly actualVapourPressure: Float64Array;
+  /** MJ m⁻² d⁻¹ */
+  readonly solarRadiation: Float64Array;
+  /** m s⁻¹ */
+  readonly windSpeed2m: Float64Array;
+  /** mm d⁻¹ */
+  readonly precipitation: Float64Array;
+  /** mm d⁻¹ */
+  readonly surfaceRunoff: Float64Array;
+  /** % */
+  readonly humidityMinimum: Float64Array;
+  /** climate part of Kc max */
+  readonly climate: Float64Array;
+  /** mm d⁻¹ */
+  readonly referenceEt: Float64Array;
+  /** sums of u2 and RHmin over the days before, [day + 1] */
+  readonly windSum: Float64Array;
+  readonly humiditySum: Float64Array;
+}
+
+/** The sites a parcel's weather is mixed from; overwritten by the next parcel. */
+export interface Mix {
+  readonly days: number;
+  /** 1 where the site has weather that day, [site × day] */
+  readonly present: Uint8Array;
+  /** sites in use */
+  count: number;
+  /** none of them has a gap */
+  complete: boolean;
+  /** place of a site's first day in the weather arrays, per site in use */
+  readonly start: Int32Array;
+  readonly weight: Float64Array;
+  /** temperature correction [°C] */
+  readonly lapse: Float64Array;
+  /** zeros: the correction of every other variable */
+  readonly none: Float64Array;
+}
+
+/** Bits of `StripCurve.mark`. */
+export const MARK = { planted: 1, firstDay: 2, mayIrrigate: 4 } as const;
+
+/** A strip's crops over the run, each [day]; overwritten by the next strip. */
+export interface StripCurve {
+  readonly basal: Float64Array;
+  readonly height: Float64Array;
+  readonly heightFactor: Float64Array;
+  readonly rootDepth: Float64Array;
+  readonly tableFraction: Float64Array;
+  readonly mark: Uint8Array;
+}
+
+export interface PackedSeason {
+  readonly input: SeasonInput;
+  readonly firstDay: DayNumber;
+  readonly dayOfYear: Uint16Array;
+  /** 1 where the site has weather that day, [site × day] */
+  readonly present: Uint8Array;
+  /** true for a site with weather on every day, [site] */
+  readonly complete: readonly boolean[];
+  readonly checked: Checked;
+  readonly sun: SolarGeometry;
+  readonly constants: DailyConstants;
+  readonly reference: ReferenceDay;
+  readonly mix: Mix;
+  readonly weather: ParcelWeather;
+  readonly flags: Uint16Array;
+  readonly curve: StripCurve;
+  readonly state: StripState;
+  readonly day: StripDay;
+  /** the parcel's daily variables in double precision, [variable × day] */
+  readonly daily: Float64Array;
+}
+
+/**
+ * Checks what the parcels share and sets up the arrays of the loop.
+ *
+ * @throws {ShapeError} when arrays do not agree
+ * @throws {RangeViolation} for a setting outside its limits
+ */
+export function packSeason(input: SeasonInput): PackedSeason {
+  checkSeason(input);
+  const days = input.dayCount;
+  const firstDay = dayNumber(input.startDate);
+  const { present, complete } = presence(input);
+  return {
+    input,
+    firstDay,
+    dayOfYear: Uint16Array.from({ length: days }, (_, d) => dayOfYear(firstDay + d)),
+    present,
+    complete,
+    checked: new WeakSet(),
+    sun: solarGeometry(0),
+    constants: dailyConstants(input.settings.method, RUN_SURFACE),
+    reference: emptyReferenceDay(),
+    mix: emptyMix(input, present),
+    weather: emptyParcelWeather(days),
+    flags: new Uint16Array(days),
+    curve: emptyCurve(days),
+    state: emptyStripState(),
+    day: emptyStripDay(),
+    daily: new Float64Array(DAILY_VARIABLE_COUNT * days),
+  };
+}
+
+/** A site-day counts as present when every variable the season needs is there: one missing number must not leak into a parcel. */
+function presence(input: SeasonInput): { present: Uint8Array; complete: boolean[] } {
+  const { weather, dayCount } = input;
+  const present = new Uint8Array(weather.siteCount * dayCount);
+  const complete: boolean[] = [];
+  for (let site = 0; site < weather.siteCount; site++) {
+    let count = 0;
+    for (let i = site * dayCount; i < (site + 1) * dayCount; i++) {
+      const sum = weather.airTemperatureMax[i] + weather.airTemperatureMin[i] + weather.actualVapourPressure[i];
+      const rest = weather.solarRadiation[i] + weather.windSpeed2m[i] + weather.precipitation[i];
+      present[i] = Number.isFinite(sum + rest) ? 1 : 0;
+      count += present[i];
+    }
+    complete.push(count === dayCount);
+  }
+  return { present, complete };
+}
+
+function emptyMix(input: SeasonInput, present: Uint8Array): Mix {
+  const most = input.parcels.reduce((count, parcel) => Math.max(count, parcel.weights.length), 0);
+  const perSite = () => new Float64Array(most);
+  const start = new Int32Array(most);
+  return { days: input.dayCount, present, count: 0, complete: true, start, weight: perSite(), lapse: perSite(), none: perSite() };
+}
+
+function emptyParcelWeather(days: number): ParcelWeather {
+  const row = () => new Float64Array(days);
+  return {
+    weightSum: row(),
+    airTemperatureMax: row(),
+    airTemperatureMin: row(),
+    actualVapourPressure: row(),
+    solarRadiation: row(),
+    windSpeed2m: row(),
+    precipitation: row(),
+    surfaceRunoff: row(),
+    humidityMinimum: row(),
+    climate: row(),
+    referenceEt: row(),
+    windSum: new Float64Array(days + 1),
+    humiditySum: new Float64Array(days + 1),
+  };
+}
+
+function emptyCurve(days: number): StripCurve {
+  const row = () => new Float64Array(days);
+  return { basal: row(), height: row(), heightFactor: row(), rootDepth: row(), tableFraction: row(), mark: new Uint8Array(days) };
+}

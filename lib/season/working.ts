@@ -1,0 +1,174 @@
+/**
+ * The working of one parcel and day: the season is replayed from its first day by the same code, with a recorder on that day.
+ */
+import { isoDate } from '../base/civil-date.ts';
+import { RangeViolation } from '../base/errors.ts';
+import { type Cycle, developmentProgress, stageOf } from '../crop/curve.ts';
+import { referenceEtDay } from '../energy/reference-day.ts';
+import { fallbackNames } from '../weather/variable.ts';
+import { RUN_SURFACE } from './check.ts';
+import { recordCoefficients } from './coefficient-working.ts';
+import { quantity } from './day-working.ts';
+import { walkParcel } from './kernel.ts';
+import { type PackedSeason, packSeason } from './pack.ts';
+import { lapseCorrection } from './parcel-weather.ts';
+import { type PlantedCycles, type StripPlan, stageClimates } from './strip-curve.ts';
+import {
+  DAILY_VARIABLES,
+  type DailyVariable,
+  type ParcelInput,
+  type SeasonInput,
+  type Trace,
+  type Working,
+  type WorkingStep,
+} from './types.ts';
+import { weatherSteps } from './weather-working.ts';
+
+/**
+ * Derives one parcel's day: the site values with their weights and flags, every equation with the numbers put in, and the results.
+ *
+ * Results are those of `runSeason` before rounding, to the last bit. All numbers are finite.
+ *
+ * @param input the season as it was run (other parcels may be left out)
+ * @param parcelIndex index into `input.parcels`
+ * @param dayOffset day of the run, 0 on the start date
+ * @throws {RangeViolation} when parcel or day lie outside the input; else as `runSeason`
+ */
+export function explainDay(input: SeasonInput, parcelIndex: number, dayOffset: number): Working {
+  const parcel = input.parcels[parcelIndex];
+  if (!parcel) throw new RangeViolation(`parcel index ${parcelIndex} is not within 0 … ${input.parcels.length - 1}`);
+  if (!(dayOffset >= 0 && dayOffset < input.dayCount)) {
+    throw new RangeViolation(`day ${dayOffset} is not within 0 … ${input.dayCount - 1} of the season that starts on ${input.startDate}`);
+  }
+  const season = packSeason(input);
+  const weather: WorkingStep[] = [];
+  const strips: WorkingStep[] = [];
+  const recorder: Trace = { step: (step) => strips.push(step) };
+  walkParcel(season, parcel, {
+    day: dayOffset,
+    strip(plan, index, count) {
+      const trace = count === 1 ? recorder : labelled(recorder, stripLabel(season, plan, index, dayOffset));
+      recordPlanting(season, plan, dayOffset, trace);
+      return trace;
+    },
+  });
+  for (const step of weatherSteps(season, parcel, dayOffset)) weather.push(step);
+  referenceEtDay(referenceInput(season, parcel, dayOffset), { step: (step) => weather.push(step) });
+  const results = resultsOf(season, dayOffset);
+  return {
+    parcel: parcel.code,
+    date: isoDate(season.firstDay + dayOffset),
+    inputs: siteInputs(season, parcel, dayOffset),
+    steps: [...weather, ...strips, ...parcelSteps(parcel, results)],
+    results,
+  };
+}
+
+function labelled(trace: Trace, strip: string): Trace {
+  return { step: (step) => trace.step({ ...step, strip }) };
+}
+
+function stripLabel(_season: PackedSeason, plan: StripPlan, index: number, day: number): string {
+  const standing = plan.planted.find((planted) => findCycle(planted, day) !== null);
+  const share = `${Number((plan.share * 100).toFixed(2))} % of the parcel`;
+  if (standing) return `${standing.planting.crop.name} of ${standing.planting.plantingDate}, ${share}`;
+  return plan.planted.length > 0 ? `strip ${index + 1} between crops, ${share}` : `bare ground, ${share}`;
+}
+
+function findCycle(planted: PlantedCycles, day: number): Cycle | null {
+  return planted.cycles.find((cycle) => cycle.start <= day && day < cycle.end) ?? null;
+}
+
+function recordPlanting(season: PackedSeason, plan: StripPlan, day: number, trace: Trace): void {
+  for (const planted of plan.planted) {
+    const cycle = findCycle(planted, day);
+    if (cycle === null) continue;
+    const dayOfCycle = day - cycle.start + 1;
+    recordCoefficients(
+      {
+        crop: planted.planting.crop,
+        cycle,
+        climates: stageClimates(season.weather, cycle),
+        dayOfCycle,
+        stage: stageOf(cycle.lengths, dayOfCycle),
+        progress: developmentProgress(cycle.lengths, dayOfCycle),
+        basal: season.curve.basal[day],
+        height: season.curve.height[day],
+        rootDepth: season.curve.rootDepth[day],
+      },
+      trace,
+    );
+  }
+}
+
+function referenceInput(season: PackedSeason, parcel: ParcelInput, day: number): Parameters<typeof referenceEtDay>[0] {
+  const { weather } = season;
+  return {
+    method: season.input.settings.method,
+    surface: RUN_SURFACE,
+    dayOfYear: season.dayOfYear[day],
+    latitude: parcel.latitude,
+    elevation: parcel.elevation,
+    airTemperatureMax: weather.airTemperatureMax[day],
+    airTemperatureMin: weather.airTemperatureMin[day],
+    actualVapourPressure: weather.actualVapourPressure[day],
+    solarRadiation: weather.solarRadiation[day],
+    windSpeed2m: weather.windSpeed2m[day],
+  };
+}
+
+function resultsOf(season: PackedSeason, day: number): Record<DailyVariable, number> {
+  const rows = DAILY_VARIABLES.map(({ id }, v) => [id, season.daily[v * season.input.dayCount + day]] as const);
+  return Object.fromEntries(rows) as Record<DailyVariable, number>;
+}
+
+/** The sites that made the parcel's weather that day, with the weight each had after absent ones dropped out. */
+function siteInputs(season: PackedSeason, parcel: ParcelInput, day: number): Working['inputs'] {
+  const { input } = season;
+  const present = parcel.weights.filter(({ site, weight }) => weight > 0 && season.present[site * input.dayCount + day] === 1);
+  return present.map(({ site, weight }) => {
+    const at = site * input.dayCount + day;
+    const { code, name, elevation } = input.sites[site];
+    return {
+      site: code,
+      siteName: name,
+      weight: weight / season.weather.weightSum[day],
+      elevation: Number.isFinite(elevation) ? elevation : parcel.elevation,
+      values: {
+        air_temperature_max_c: input.weather.airTemperatureMax[at],
+        air_temperature_min_c: input.weather.airTemperatureMin[at],
+        temperature_correction_c: lapseCorrection(input.sites[site], parcel, input.settings.lapseRate),
+        vapour_pressure_kpa: input.weather.actualVapourPressure[at],
+        solar_radiation_mj_m2_d: input.weather.solarRadiation[at],
+        wind_speed_2m_m_s: input.weather.windSpeed2m[at],
+        precipitation_mm: input.weather.precipitation[at],
+      },
+      flags: fallbackNames(input.weather.flags[at]),
+    };
+  });
+}
+
+function parcelSteps(parcel: ParcelInput, results: Record<DailyVariable, number>): WorkingStep[] {
+  return [
+    {
+      part: 'irrigation',
+      symbol: 'Ig',
+      name: 'Gross irrigation requirement of the parcel',
+      expression: 'Ig = I / Ea, strips weighted by share',
+      inputs: [quantity('I', results.net_requirement, 'mm'), quantity('Ea', parcel.method.efficiency, '1')],
+      result: results.gross_requirement,
+      unit: 'mm',
+      source: 'definition of application efficiency',
+    },
+    {
+      part: 'balance',
+      symbol: 'ETc adj',
+      name: 'Crop ET of the parcel, adjusted for stress',
+      expression: 'ETc adj = T + E, strips weighted by share',
+      inputs: [quantity('T', results.adjusted_crop_et - results.evaporation, 'mm'), quantity('E', results.evaporation, 'mm')],
+      result: results.adjusted_crop_et,
+      unit: 'mm',
+      source: 'FAO-56 Eq. 80',
+    },
+  ];
+}

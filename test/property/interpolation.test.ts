@@ -1,0 +1,199 @@
+/**
+ * Weights from sites to parcels: what holds for any set of sites, and one published worked case.
+ */
+import fc from 'fast-check';
+import { describe, expect, test } from 'vitest';
+import {
+  dailyWeightsAt,
+  greatCircleDistance,
+  inverseDistanceWeights,
+  lapseCorrected,
+  nearestWeights,
+  placeSites,
+} from '../../lib/weather/interpolation.ts';
+import type { Site, SiteWeight } from '../../lib/weather/variable.ts';
+
+const SEEDED = { seed: 20260401, numRuns: 400 };
+
+function between(min: number, max: number): fc.Arbitrary<number> {
+  return fc.double({ min, max, noNaN: true });
+}
+
+function siteAt(code: string, longitude: number, latitude: number): Site {
+  return { code, name: `Site ${code} (invented)`, longitude, latitude, elevation: 100, windHeight: 2 };
+}
+
+const sitesNearby = fc
+  .array(fc.tuple(between(-120, -118), between(35, 37)), { minLength: 1, maxLength: 14 })
+  .map((places) => places.map(([longitude, latitude], i) => siteAt(`S${i}`, longitude, latitude)));
+
+const asked = fc.record({
+  longitude: between(-120, -118),
+  latitude: between(35, 37),
+  sites: sitesNearby,
+  power: between(0.2, 6),
+  maximumSites: fc.integer({ min: 1, max: 8 }),
+});
+
+function total(weights: readonly SiteWeight[]): number {
+  return weights.reduce((sum, { weight }) => sum + weight, 0);
+}
+
+function byCode(weights: readonly SiteWeight[], sites: readonly Site[]): Map<string, number> {
+  return new Map(weights.map(({ site, weight }) => [sites[site].code, weight]));
+}
+
+describe('inverse distance', () => {
+  test('weights are not negative, sum to 1, and are at most as many as asked for', () => {
+    fc.assert(
+      fc.property(asked, (input) => {
+        const weights = inverseDistanceWeights(input);
+        expect(weights.every(({ weight }) => weight >= 0)).toBe(true);
+        expect(Math.abs(total(weights) - 1)).toBeLessThan(1e-12);
+        expect(weights.length).toBeLessThanOrEqual(Math.min(input.maximumSites, input.sites.length));
+      }),
+      SEEDED,
+    );
+  });
+  test('a constant field comes back as that constant', () => {
+    fc.assert(
+      fc.property(asked, between(-40, 50), (input, value) => {
+        const field = inverseDistanceWeights(input).reduce((sum, { weight }) => sum + weight * value, 0);
+        expect(Math.abs(field - value)).toBeLessThan(1e-10);
+      }),
+      SEEDED,
+    );
+  });
+  test('the order of the sites does not matter', () => {
+    fc.assert(
+      fc.property(asked, fc.infiniteStream(fc.nat()), (input, keys) => {
+        const order = input.sites.map((site) => ({ site, key: keys.next().value as number }));
+        const shuffled = order.toSorted((a, b) => a.key - b.key).map(({ site }) => site);
+        const here = byCode(inverseDistanceWeights(input), input.sites);
+        const there = byCode(inverseDistanceWeights({ ...input, sites: shuffled }), shuffled);
+        expect(there).toEqual(here);
+      }),
+      SEEDED,
+    );
+  });
+  test('a parcel on a site has that site alone', () => {
+    fc.assert(
+      fc.property(asked, fc.nat(), (input, pick) => {
+        const site = input.sites[pick % input.sites.length];
+        const weights = inverseDistanceWeights({ ...input, longitude: site.longitude, latitude: site.latitude });
+        expect(weights).toHaveLength(1);
+        expect(weights[0].weight).toBe(1);
+        const chosen = input.sites[weights[0].site];
+        expect([chosen.longitude, chosen.latitude]).toEqual([site.longitude, site.latitude]);
+      }),
+      SEEDED,
+    );
+  });
+  test('sites made ready once give the same weights', () => {
+    fc.assert(
+      fc.property(asked, (input) => {
+        expect(inverseDistanceWeights({ ...input, sites: placeSites(input.sites) })).toEqual(inverseDistanceWeights(input));
+      }),
+      SEEDED,
+    );
+  });
+  test('a nearer site never weighs less', () => {
+    fc.assert(
+      fc.property(asked, (input) => {
+        const weights = inverseDistanceWeights(input).map(({ weight }) => weight);
+        expect(weights).toEqual(weights.toSorted((a, b) => b - a));
+      }),
+      SEEDED,
+    );
+  });
+});
+
+describe('inverse distance on the seven samples of Isaaks & Srivastava (1989), chapter 11', () => {
+  // Samples recalled from the book, not re-read; estimates recomputed independently. Metres of the book stand as ten-thousandths of a degree at the equator, where the sphere is as good as flat.
+  const samples: [x: number, y: number, value: number][] = [
+    [61, 139, 477],
+    [63, 140, 696],
+    [64, 129, 227],
+    [68, 128, 646],
+    [71, 140, 606],
+    [73, 141, 791],
+    [75, 128, 783],
+  ];
+  const sites = samples.map(([x, y], i) => siteAt(`V${i}`, x / 1e4, y / 1e4));
+  const rows: [power: number, estimate: number][] = [
+    [0.2, 600.6],
+    [0.5, 597.0],
+    [1, 594.0],
+    [2, 597.6],
+    [5, 635.4],
+    [10, 673.0],
+  ];
+  test.each(rows)('power %d: %d', (power, estimate) => {
+    const weights = inverseDistanceWeights({ longitude: 65 / 1e4, latitude: 137 / 1e4, sites, power, maximumSites: 8 });
+    const value = weights.reduce((sum, { site, weight }) => sum + weight * samples[site][2], 0);
+    expect(Math.abs(value - estimate)).toBeLessThanOrEqual(0.06);
+  });
+});
+
+describe('nearest site', () => {
+  test('no other site is nearer', () => {
+    fc.assert(
+      fc.property(asked, ({ longitude, latitude, sites }) => {
+        const [{ site, weight }] = nearestWeights([longitude, latitude], sites);
+        const distances = sites.map((s) => greatCircleDistance([longitude, latitude], [s.longitude, s.latitude]));
+        expect(weight).toBe(1);
+        expect(distances[site] - Math.min(...distances)).toBeLessThan(1e-3);
+      }),
+      SEEDED,
+    );
+  });
+});
+
+describe('a day on which some sites are missing', () => {
+  test('the others take over in proportion; none left gives null', () => {
+    fc.assert(
+      fc.property(asked, fc.array(fc.boolean(), { minLength: 14, maxLength: 14 }), (input, there) => {
+        const weights = inverseDistanceWeights(input);
+        const today = dailyWeightsAt(weights, (site) => there[site]);
+        const left = weights.filter(({ site }) => there[site]);
+        expect(today === null).toBe(left.length === 0);
+        if (today === null) return;
+        expect(Math.abs(total(today) - 1)).toBeLessThan(1e-12);
+        expect(today.map(({ site }) => site)).toEqual(left.map(({ site }) => site));
+        const share = left[0].weight / total(left);
+        expect(Math.abs(today[0].weight - share)).toBeLessThan(1e-12);
+      }),
+      SEEDED,
+    );
+  });
+});
+
+describe('refusals name the value and the limit', () => {
+  const sites = [siteAt('A', 0, 0)];
+  test('power', () => {
+    expect(() => inverseDistanceWeights({ longitude: 0, latitude: 0, sites, power: 0, maximumSites: 1 })).toThrow('limit 0');
+  });
+  test('number of sites', () => {
+    expect(() => inverseDistanceWeights({ longitude: 0, latitude: 0, sites, power: 2, maximumSites: 9 })).toThrow('limits 1–8');
+  });
+  test('no site with a place', () => {
+    expect(() => nearestWeights([0, 0], [siteAt('A', Number.NaN, 0)])).toThrow('no site with a known place');
+  });
+});
+
+describe('distance and lapse', () => {
+  test('a quarter of the meridian is 10 007.5 km on the mean sphere (π R / 2, R = 6371.0088 km, Moritz 2000)', () => {
+    expect(Math.abs(greatCircleDistance([0, 0], [0, 90]) - 10_007_557)).toBeLessThan(1);
+  });
+  test('the standard atmosphere loses 6.5 °C in 1000 m (ISO 2533)', () => {
+    expect(lapseCorrected(15, 0, 1000, 0.0065)).toBe(8.5);
+  });
+  test('there and back again returns the temperature', () => {
+    fc.assert(
+      fc.property(between(-30, 45), between(-100, 3000), between(-100, 3000), (t, low, high) => {
+        expect(Math.abs(lapseCorrected(lapseCorrected(t, low, high, 0.0065), high, low, 0.0065) - t)).toBeLessThan(1e-9);
+      }),
+      SEEDED,
+    );
+  });
+});

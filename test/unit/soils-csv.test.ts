@@ -1,0 +1,68 @@
+import { describe, expect, test } from 'vitest';
+import { readImport } from '../../lib/files/read-import.ts';
+import { defaultReadilyEvaporableWater, totalEvaporableWater } from '../../lib/files/soils-csv.ts';
+import { importContext, textFile } from '../support/import-context.ts';
+
+async function soils(text: string) {
+  const reading = await readImport('soils', [textFile(text)], {}, importContext());
+  return { ...reading, soils: reading.staged.kind === 'soils' ? reading.staged.soils : [] };
+}
+
+describe('a table of soils', () => {
+  test('percent and fraction, TEW by FAO-56 Eq. 73, REW by texture', async () => {
+    // FAO-56 Example 35: loamy sand θFC 0.15, θWP 0.06, Ze 0.10 m has TEW 12 mm
+    const { soils: rows, findings } = await soils(
+      'code,name,field_capacity,wilting_point,rew,tew,ze_m,curve_number,root_limit_m\nls,Loamy sand,15,6,,,0.1,70,\nsl,Sandy loam,0.23,0.11,8,20,,,1.2\n',
+    );
+    expect(rows[0]).toMatchObject({
+      code: 'ls',
+      fieldCapacity: 0.15,
+      wiltingPoint: 0.06,
+      totalEvaporableWater: 12,
+      readilyEvaporableWater: 6,
+      curveNumber: 70,
+      rootLimit: null,
+    });
+    expect(rows[1]).toMatchObject({
+      fieldCapacity: 0.23,
+      readilyEvaporableWater: 8,
+      totalEvaporableWater: 20,
+      evaporationDepth: 0.1,
+      rootLimit: 1.2,
+    });
+    expect(findings.map(({ code }) => code)).toEqual(['tew-derived', 'rew-derived']);
+  });
+
+  test('defaults lie in the ranges of FAO-56 Table 19', () => {
+    // texture, middle field capacity, REW low, REW high [mm], as printed in Table 19
+    const rows: [string, number, number, number][] = [
+      ['sand', 0.12, 2, 7],
+      ['loamy sand', 0.15, 4, 8],
+      ['sandy loam', 0.23, 6, 10],
+      ['loam', 0.25, 8, 10],
+      ['silt loam', 0.29, 8, 11],
+      ['silt', 0.32, 8, 11],
+      ['clay', 0.36, 8, 12],
+    ];
+    for (const [, fieldCapacity, low, high] of rows) {
+      expect(defaultReadilyEvaporableWater(fieldCapacity)).toBeGreaterThanOrEqual(low);
+      expect(defaultReadilyEvaporableWater(fieldCapacity)).toBeLessThanOrEqual(high);
+    }
+    expect(totalEvaporableWater(0.15, 0.06, 0.1)).toBeCloseTo(12, 9);
+  });
+
+  test('what cannot be is refused by row', async () => {
+    const reading = await soils(
+      'code,fc,wp,rew,tew,cn\na,0.1,0.2,,,\nb,,0.1,,,\nc,0.3,0.1,40,,\nd,0.3,0.1,25,20,\ne,0.3,0.1,,,20\nf,0.3,0.1,,,\nf,0.3,0.1,,,\n',
+    );
+    expect(reading.findings.filter(({ severity }) => severity === 'error').map(({ row, code }) => [row, code])).toEqual([
+      [2, 'wilting-above-field-capacity'],
+      [3, 'missing-value'],
+      [4, 'value-out-of-range'],
+      [5, 'rew-above-tew'],
+      [6, 'value-out-of-range'],
+      [8, 'duplicate-code'],
+    ]);
+    expect(reading.soils.map(({ code }) => code)).toEqual(['f']);
+  });
+});
