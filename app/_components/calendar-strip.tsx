@@ -97,8 +97,8 @@ function StageTable({ spans }: { spans: readonly StageSpan[] }) {
         columns={[
           { key: 'planting', head: 'Planting', rowHead: true, cell: (span) => span.planting },
           { key: 'stage', head: 'Stage', cell: (span) => NAMES[span.stage] },
-          { key: 'start', head: 'From', cell: (span) => longDate(span.start) },
-          { key: 'end', head: 'To', cell: (span) => longDate(span.end) },
+          { key: 'start', oneLine: true, head: 'From', cell: (span) => longDate(span.start) },
+          { key: 'end', oneLine: true, head: 'To', cell: (span) => longDate(span.end) },
         ]}
       />
     </FiguresBelow>

@@ -42,6 +42,8 @@ interface ChartFrameProps {
   /** id that is unique on the page: names the title, description and patterns */
   readonly id: string;
   readonly legend?: readonly LegendItem[];
+  /** narrowest the drawing may become before it scrolls [px]; 820 unless told */
+  readonly narrowest?: number;
   readonly children: ReactNode;
   readonly below?: ReactNode;
 }
@@ -58,7 +60,7 @@ export function ChartFrame(props: ChartFrameProps) {
         <svg
           className={styles.svg}
           viewBox={`0 0 ${width} ${height}`}
-          style={{ minWidth: Math.min(width, 640) }}
+          style={{ minWidth: Math.min(width, props.narrowest ?? 820) }}
           role="img"
           aria-labelledby={`${id}-title ${id}-desc`}
         >
@@ -130,7 +132,7 @@ export function ValueAxis({
   const decimals = decimalsOf(values);
   return (
     <g>
-      <text className={styles.axisLabel} x={0} y={box.top - 8}>
+      <text className={styles.axisLabel} x={0} y={box.top - 16}>
         {label}
       </text>
       {values.map((value) => (

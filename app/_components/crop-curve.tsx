@@ -3,7 +3,7 @@ import { type StageCoefficients, type StageLengths, stageCoefficient, totalLengt
 import { type Box, ChartFrame, markClass, NamedAxis, seriesPath, ValueAxis, valueScale } from './chart-frame.tsx';
 import { plain } from './figures.ts';
 
-const BOX: Box = { left: 48, right: 720, top: 24, bottom: 190 };
+const BOX: Box = { left: 48, right: 720, top: 30, bottom: 190 };
 const STAGES = ['initial', 'development', 'mid', 'late'] as const;
 const NAMES = { initial: 'initial', development: 'development', mid: 'mid-season', late: 'late' } as const;
 
@@ -25,7 +25,7 @@ export function CropCurve({
   const y = valueScale([values, [1]], BOX);
   const edges = stageEdges(lengths);
   return (
-    <ChartFrame id={id} title={title} description={chartWords(lengths, coefficients)} width={740} height={230}>
+    <ChartFrame id={id} title={title} description={chartWords(lengths, coefficients)} width={740} height={230} narrowest={420}>
       <ValueAxis scale={y} box={BOX} label="Basal crop coefficient Kcb" />
       {edges.map((edge) => (
         <g key={edge.stage}>

@@ -7,7 +7,7 @@ import { longDate, monthTicks } from './date-words.ts';
 import { figureWithUnit, inUnits, sumOf, unitOf } from './figures.ts';
 
 const WIDTH = 960;
-const UPPER: Box = { left: 48, right: 950, top: 24, bottom: 190 };
+const UPPER: Box = { left: 48, right: 950, top: 30, bottom: 190 };
 const LOWER: Box = { left: 48, right: 950, top: 240, bottom: 400 };
 
 const LEGEND: readonly LegendItem[] = [

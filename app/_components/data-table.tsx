@@ -7,6 +7,8 @@ export interface Column<Row> {
   readonly unit?: string;
   /** figures are set flush right in tabular numerals */
   readonly numeric?: boolean;
+  /** kept on one line: dates, codes */
+  readonly oneLine?: boolean;
   /** the cell that names its row */
   readonly rowHead?: boolean;
   readonly cell: (row: Row) => ReactNode;
@@ -93,9 +95,22 @@ function HeadCell<Row>({ column, sort }: { column: Column<Row>; sort?: SortState
   );
 }
 
+const ONE_LINE = { whiteSpace: 'nowrap' } as const;
+
 function BodyCell<Row>({ column, row }: { column: Column<Row>; row: Row }) {
-  if (column.rowHead) return <th scope="row">{column.cell(row)}</th>;
-  return <td className={column.numeric ? 'num' : undefined}>{column.cell(row)}</td>;
+  const style = column.oneLine ? ONE_LINE : undefined;
+  if (column.rowHead) {
+    return (
+      <th scope="row" style={style}>
+        {column.cell(row)}
+      </th>
+    );
+  }
+  return (
+    <td className={column.numeric ? 'num' : undefined} style={style}>
+      {column.cell(row)}
+    </td>
+  );
 }
 
 function Foot<Row>({ columns }: { columns: readonly Column<Row>[] }) {

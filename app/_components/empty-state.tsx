@@ -1,4 +1,5 @@
 import type { ReactNode } from 'react';
+import { type Caution as CautionName, cautionTexts } from '../../lib/report/cautions.ts';
 import { Go } from './go.tsx';
 
 /** Nothing to show yet, and what to do about it. */
@@ -36,7 +37,18 @@ export function Caution({ children }: { children: ReactNode }) {
   );
 }
 
-/** The same as a whole page. */
+/** The product's own cautions, in its own words. */
+export function Cautions({ which }: { which: readonly CautionName[] }) {
+  return (
+    <div className="stack">
+      {cautionTexts(which).map((text) => (
+        <Caution key={text}>{text}</Caution>
+      ))}
+    </div>
+  );
+}
+
+/** `NoRun` as a whole page. */
 export function NoRunPage() {
   return (
     <div className="page">

@@ -26,7 +26,7 @@ export function FallbackShares({ shares, of }: { shares: Readonly<Record<string,
     .sort((a, b) => b[1] - a[1]);
   if (shown.length === 0) return <p className="muted">Nothing in the weather was estimated.</p>;
   return (
-    <ul className="stack">
+    <ul className="small">
       {shown.map(([name, share]) => (
         <li key={name}>
           {share < 0.005 ? 'under 1\u00a0%' : percent(share)} of {of}: {fallbackText(name)}

@@ -6,7 +6,7 @@ import { DataTable, FiguresBelow } from './data-table.tsx';
 import { figure, figureWithUnit, inUnits, plain, unitOf } from './figures.ts';
 import { type DrawnReach, drawnTree, mainCanal } from './reach-order.ts';
 
-const BOX: Box = { left: 54, right: 950, top: 24, bottom: 250 };
+const BOX: Box = { left: 54, right: 950, top: 30, bottom: 250 };
 const LEGEND: readonly LegendItem[] = [
   { label: 'Mean inflow of the reach', mark: 'first' },
   { label: 'Peak daily inflow', mark: 'second' },

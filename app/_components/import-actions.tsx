@@ -8,13 +8,15 @@ import type { ImportAct } from './use-import.ts';
 
 interface ImportActionsProps {
   readonly now: ImportAnswer;
+  /** false when nothing in the files is usable */
+  readonly mayApply: boolean;
   readonly act: (name: ImportAct) => Promise<void>;
   readonly reread: () => Promise<void>;
   readonly busy: boolean;
 }
 
 /** What can be done with an import in its present state. */
-export function ImportActions({ now, act, reread, busy }: ImportActionsProps) {
+export function ImportActions({ now, mayApply, act, reread, busy }: ImportActionsProps) {
   const { state } = now;
   const name = kindName(now.kind).toLowerCase();
   return (
@@ -37,7 +39,7 @@ export function ImportActions({ now, act, reread, busy }: ImportActionsProps) {
           <p>Nothing has been changed, and nothing will be. The files would have to be uploaded again.</p>
         </Ask>
       ) : null}
-      {state === 'ready' ? (
+      {state === 'ready' && mayApply ? (
         <Ask
           verb="Apply"
           title={`Apply ${name}?`}

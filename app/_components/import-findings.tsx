@@ -4,6 +4,7 @@ import { useState } from 'react';
 import type { ImportAnswer } from '../../lib/http/contract/rest.ts';
 import { Choice } from './choice.tsx';
 import { type Column, DataTable } from './data-table.tsx';
+import styles from './import.module.css';
 
 type Finding = ImportAnswer['findings'][number];
 
@@ -15,10 +16,10 @@ const COLUMNS: readonly Column<Finding>[] = [
   { key: 'severity', head: 'Severity', cell: (one) => <span className={`tag ${TONES[one.severity]}`}>{one.severity}</span> },
   { key: 'row', head: 'Row', numeric: true, cell: (one) => one.row ?? '–' },
   { key: 'column', head: 'Column', cell: (one) => one.column ?? '–' },
-  { key: 'message', head: 'What is wrong', rowHead: true, cell: (one) => one.message },
+  { key: 'message', head: 'What is wrong', rowHead: true, cell: (one) => <div className={styles.message}>{one.message}</div> },
   { key: 'value', head: 'Value', cell: (one) => (one.value === undefined ? '–' : <code>{one.value}</code>) },
   { key: 'limit', head: 'Limit', cell: (one) => one.limit ?? '–' },
-  { key: 'advice', head: 'What to do', cell: (one) => one.advice ?? '' },
+  { key: 'advice', head: 'What to do', cell: (one) => <div className={styles.message}>{one.advice}</div> },
   { key: 'file', head: 'File', cell: (one) => one.file ?? '' },
 ];
 

@@ -39,7 +39,7 @@ export function ColumnPlanTable({ now, roles, mayChange, patch, busy }: PlanProp
     { key: 'why', head: 'Why', cell: (column) => column.reason ?? '' },
   ];
   const plan = (now.options.plan ?? {}) as { columns?: object };
-  const apply = () => patch({ plan: { ...plan, columns: { ...plan.columns, ...changed }, ...(dateOrder ? { dateOrder } : {}) } });
+  const apply = () => patch({ plan: { ...plan, columns: { ...plan.columns, ...wishesOf(changed) }, ...(dateOrder ? { dateOrder } : {}) } });
   return (
     <Section title="Columns" note={mayChange ? 'Correct what was taken wrongly; the files are then read again.' : undefined}>
       <DataTable
@@ -58,6 +58,11 @@ export function ColumnPlanTable({ now, roles, mayChange, patch, busy }: PlanProp
       ) : null}
     </Section>
   );
+}
+
+/** A unit that was not chosen is left unsaid, so that the header still speaks. */
+function wishesOf(changed: Readonly<Record<number, Chosen>>): Record<string, Partial<Chosen>> {
+  return Object.fromEntries(Object.entries(changed).map(([index, { role, unit }]) => [index, unit === null ? { role } : { role, unit }]));
 }
 
 interface CellProps {

@@ -23,26 +23,39 @@ export function PreviewPart({ preview }: { preview: TablePreview | MapPreview | 
   return preview.collection.features.length > 0 ? <FeaturesPreview preview={preview} /> : null;
 }
 
-type Row = TablePreview['rows'][number];
+type Row = TablePreview['rows'][number] & { readonly at: number };
+
+/** One line for each row of the file: a row with several faults has all its reasons. */
+function mergedRows(rows: TablePreview['rows']): Row[] {
+  const merged: Row[] = [];
+  for (const row of rows) {
+    const last = merged.at(-1);
+    const same = last?.row === row.row && last.cells.join() === row.cells.join();
+    if (last && same) merged[merged.length - 1] = { ...last, status: 'bad', reason: [last.reason, row.reason].filter(Boolean).join('; ') };
+    else merged.push({ ...row, at: merged.length });
+  }
+  return merged;
+}
 
 function RowsPreview({ preview }: { preview: TablePreview }) {
   const columns: readonly Column<Row>[] = [
     { key: 'row', head: 'Row', numeric: true, cell: (row) => row.row },
     {
       key: 'status',
-      head: 'Reason it is left out',
-      cell: (row) => (row.status === 'bad' ? <span className={styles.reason}>✕ {row.reason}</span> : ''),
+      head: 'At fault',
+      cell: (row) => (row.status === 'bad' ? <span className={styles.reason}>{row.reason}</span> : ''),
     },
     ...preview.header.map((head, i): Column<Row> => ({ key: `c${i}`, head: head || `(${i + 1})`, cell: (row) => row.cells[i] ?? '' })),
   ];
-  const bad = preview.rows.filter((row) => row.status === 'bad').length;
+  const rows = mergedRows(preview.rows);
+  const bad = rows.filter((row) => row.status === 'bad').length;
   return (
-    <Section title="Sample" note={`${preview.rows.length} rows, ${bad} of them at fault and marked in the margin.`}>
+    <Section title="Sample" note={`${rows.length} rows, ${bad} of them at fault and marked in the margin.`}>
       <DataTable
         caption="Sample of rows"
         columns={columns}
-        rows={preview.rows}
-        rowKey={(row) => `${row.row} ${row.cells.join('\u001f')}`}
+        rows={rows}
+        rowKey={(row) => String(row.at)}
         rowClass={(row) => (row.status === 'bad' ? styles.bad : undefined)}
       />
     </Section>

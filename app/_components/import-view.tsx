@@ -39,7 +39,7 @@ export function ImportView(props: ImportViewProps) {
         lead={now.files.map((file) => `${file.name} (${sizeWords(file.size_bytes)})`).join(', ')}
       >
         <StateTag state={now.state} />
-        {props.mayWrite ? <ImportActions now={now} act={act} reread={() => patch({})} busy={busy} /> : null}
+        {props.mayWrite ? <ImportActions now={now} mayApply={!nothingUsable(now)} act={act} reread={() => patch({})} busy={busy} /> : null}
       </PageHead>
       <Progress now={now} />
       {now.error ? (
@@ -50,6 +50,11 @@ export function ImportView(props: ImportViewProps) {
       {fault ? (
         <p className="notice bad" role="alert">
           {fault}
+        </p>
+      ) : null}
+      {nothingUsable(now) ? (
+        <p className="notice caution">
+          Nothing in these files can be applied as they were understood. The findings say why; correct the columns below, or the file.
         </p>
       ) : null}
       <ImportChanges now={now} when={{ applied: moment(now.applied_at, props.timeZone), undone: moment(now.undone_at, props.timeZone) }} />
@@ -84,6 +89,11 @@ export function ImportView(props: ImportViewProps) {
       ) : null}
     </div>
   );
+}
+
+/** Read, but no row of it is usable. */
+function nothingUsable(now: ImportAnswer): boolean {
+  return now.state === 'ready' && (now.understood as { usableRows?: number } | null)?.usableRows === 0;
 }
 
 const WORKING: Readonly<Record<string, string>> = { reading: 'Reading the files', applying: 'Applying', undoing: 'Putting back' };

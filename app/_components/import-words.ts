@@ -18,6 +18,13 @@ export function isWorking(state: ImportStateName): boolean {
   return state === 'reading' || state === 'applying' || state === 'undoing';
 }
 
+/** True while there is something to wait for: also the runs that follow an import, which are asked for just after it. */
+export function isGoingOn({ state, understood }: Pick<ImportAnswer, 'state' | 'understood'>): boolean {
+  if (isWorking(state)) return true;
+  const outcome = state === 'applied' || state === 'undone' ? (understood?.[state] as { runs?: unknown } | undefined) : undefined;
+  return outcome !== undefined && outcome.runs === null;
+}
+
 /** @example countWords({ error: 2, warning: 0, note: 1 }) // '2 errors, 1 note' */
 export function countWords(counts: ImportAnswer['finding_counts']): string {
   const parts = (['error', 'warning', 'note'] as const)

@@ -29,11 +29,11 @@ export function PeriodPicker({ path, query, choice }: { path: string; query: Que
       {choice.kind === 'season' ? (
         <span className={styles.span}>{periodName('season', choice.period)}</span>
       ) : (
-        <>
+        <div className={styles.which}>
           <Step href={choice.index > 0 ? at(choice.index - 1) : null} label={`Earlier ${choice.kind}`} sign="‹" />
           <PeriodForm path={path} query={query} choice={choice} />
           <Step href={choice.index < choice.periods.length - 1 ? at(choice.index + 1) : null} label={`Later ${choice.kind}`} sign="›" />
-        </>
+        </div>
       )}
     </div>
   );

@@ -32,7 +32,7 @@ export function ReachDiagram({ reaches, units, period }: { reaches: readonly Rea
   const longest = Math.max(...drawn.map((reach) => reach.to), 0.1);
   const x = scaleLinear()
     .domain([0, longest])
-    .range([LEFT, WIDTH - 210]);
+    .range([LEFT, WIDTH - 265]);
   const greatest = Math.max(...reaches.map((reach) => reach.mean_inflow_m3_s ?? 0), 1e-9);
   const width = scaleSqrt().domain([0, greatest]).range([1.25, 14]);
   const lines = Math.max(...drawn.map((reach) => reach.line)) + 1;

@@ -44,7 +44,6 @@ function columnsOf(units: UnitSystem): Column<ReachPeriod>[] {
       numeric: true,
       cell: (row) => figure(row.length_km, 'distance', units),
     },
-    { key: 'parcels', head: 'Parcels', numeric: true, cell: (row) => row.parcel_count },
     volume('demand', 'Turnouts', (row) => row.turnout_demand_m3),
     volume('loss', 'Lost', (row) => row.reach_loss_m3),
     volume('inflow', 'Head inflow', (row) => row.head_inflow_m3),

@@ -16,7 +16,7 @@ import {
 import { longDate, monthTicks } from './date-words.ts';
 import { inUnits, plain, unitOf } from './figures.ts';
 
-const BOX: Box = { left: 48, right: 950, top: 24, bottom: 170 };
+const BOX: Box = { left: 48, right: 950, top: 30, bottom: 170 };
 
 interface Series {
   readonly label: string;

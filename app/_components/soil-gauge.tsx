@@ -17,7 +17,7 @@ export function SoilGauge({ day, units }: { day: ParcelDay; units: UnitSystem })
   const stressAt = Math.min(1, raw / taw);
   return (
     <div className={styles.gauge}>
-      <ChartFrame id="soil" title={`Soil water on ${longDate(day.date)}`} description={words(day, units)} width={250} height={176}>
+      <ChartFrame id="soil" title={`Soil water on ${longDate(day.date)}`} description={words(day, units)} width={285} height={176}>
         <rect className={styles.vessel} x={10} y={TOP} width={70} height={HEIGHT} />
         <rect className={styles.water} x={10} y={TOP + gone * HEIGHT} width={70} height={(1 - gone) * HEIGHT} />
         <rect className={markClass('depletion')} x={10} y={TOP} width={70} height={gone * HEIGHT} />

@@ -56,6 +56,6 @@ function standsInName(text: string, at: number): boolean {
 /** Juxtaposed factors become products with a sign, since two numbers side by side cannot be read. */
 function withProducts(text: string): string {
   return text
-    .replace(/([\p{N}\uE000-\uF8FF)]) +(?=[\p{N}(\uE000-\uF8FF√]|exp\b|ln\b|sin\b|cos\b|tan\b|max\(|min\()/gu, '$1 · ')
-    .replace(/([\p{N}\uE000-\uF8FF)])(?=[(\uE000-\uF8FF])/gu, '$1 · ');
+    .replace(/([\p{N}\uE000-\uF8FFπ)\]]) +(?=[\p{N}([\uE000-\uF8FF√]|exp\b|ln\b|sin\b|cos\b|tan\b|max\(|min\()/gu, '$1 · ')
+    .replace(/([\p{N}\uE000-\uF8FF)\]])(?=[([\uE000-\uF8FF])/gu, '$1 · ');
 }

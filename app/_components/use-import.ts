@@ -1,7 +1,7 @@
 import { useRouter } from 'next/navigation';
 import { useEffect, useState } from 'react';
 import type { ImportAnswer } from '../../lib/http/contract/rest.ts';
-import { isWorking } from './import-words.ts';
+import { isGoingOn } from './import-words.ts';
 import { messageOf, problemText, sendJson } from './problem-text.ts';
 
 /** Polling while something is going on [ms]: soon at first, then at leisure. */
@@ -26,7 +26,7 @@ function watchImport(id: string, tell: (answer: ImportAnswer) => void, over: () 
   const look = async () => {
     const answer = await fetchImport(id, false).catch(() => null);
     if (stopped) return;
-    if (answer && !isWorking(answer.state)) {
+    if (answer && !isGoingOn(answer)) {
       const full = await fetchImport(id, true).catch(() => answer);
       if (stopped) return;
       tell(full);
@@ -49,7 +49,7 @@ export function useImport(first: ImportAnswer) {
   const [now, setNow] = useState(first);
   const [fault, setFault] = useState<string | null>(null);
   const [busy, setBusy] = useState(false);
-  const working = isWorking(now.state);
+  const working = isGoingOn(now);
   useEffect(() => {
     if (!working) return;
     const tell = (answer: ImportAnswer) => setNow((before) => ({ ...answer, preview: answer.preview ?? before.preview }));

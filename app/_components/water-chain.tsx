@@ -123,7 +123,7 @@ function linksOf(season: ParcelSeason, units: UnitSystem): readonly Link[] {
     },
     {
       name: 'Drawn from the soil',
-      note: 'depletion at the end − depletion at the start',
+      note: 'depletion at the end − at the start; below 0: refilled',
       water: 'soil',
       part: 'balance',
       unit: mm,

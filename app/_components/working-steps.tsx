@@ -69,7 +69,7 @@ export function WorkingSteps({ working }: { working: WorkingAnswer }) {
 }
 
 function StepItem({ step, number }: { step: Step; number: string }) {
-  const numbers = substituted(step.expression, step.inputs);
+  const numbers = step.inputs.length > 0 ? substituted(step.expression, step.inputs) : null;
   return (
     <li className={styles.step}>
       <h3 className={styles.name}>
@@ -142,6 +142,7 @@ const COMPLETED: Readonly<Record<string, readonly [string, string]>> = {
   windSpeed2m: ['Wind speed at 2 m', 'm/s'],
   wind_speed_2m_m_s: ['Wind speed at 2 m', 'm/s'],
   precipitation: ['Rain', 'mm'],
+  temperature_correction_c: ['Correction to the parcel’s elevation', '°C'],
 };
 
 function variableTerm(name: string): string {

@@ -86,7 +86,7 @@ function initialOf(row: CropRow): number {
 /** Roots of what stands for years do not start anew; annuals start at the depth of the seedbed. */
 function rootDepthMin(row: CropRow): number {
   if (row.type !== 'annual') return row.rootDepthMax;
-  return row.rootDepthMax < 0.5 ? 0.15 : 0.2;
+  return row.rootDepthMax < 0.6 ? 0.2 : 0.3;
 }
 
 function sourcesOf(row: CropRow): Partial<Record<keyof Crop, string>> {

@@ -79,8 +79,7 @@ export async function saveSlice(
   for (let from = 0; from < results.positions.length; from += step) {
     const to = Math.min(from + step, results.positions.length);
     const rows = [];
-    for (let i = from; i < to; i++)
-      rows.push(sql`(${results.positions[i]}::int, ${hex(results.daily[i])}::bytea, ${hex(results.flags[i])}::bytea)`);
+    for (let i = from; i < to; i++) rows.push(sql`(${results.positions[i]}::int, ${results.daily[i]}::bytea, ${results.flags[i]}::bytea)`);
     await tx.execute(sql`update run_parcel p set daily = v.daily, flags = v.flags
       from (values ${sql.join(rows, sql`, `)}) as v (position, daily, flags)
       where p.district_id = ${key.districtId} and p.run_id = ${key.runId} and p.position = v.position`);
@@ -89,10 +88,6 @@ export async function saveSlice(
     .update(runSlice)
     .set({ done: true, maxResidual: results.maxResidual })
     .where(and(eq(runSlice.districtId, key.districtId), eq(runSlice.runId, key.runId), eq(runSlice.slice, key.slice)));
-}
-
-function hex(bytes: Uint8Array): string {
-  return `\\x${Buffer.from(bytes.buffer, bytes.byteOffset, bytes.byteLength).toString('hex')}`;
 }
 
 export async function countSlices(tx: Tx, districtId: string, runId: string): Promise<{ done: number; all: number; maxResidual: number }> {

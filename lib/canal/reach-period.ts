@@ -7,6 +7,9 @@ import { SECONDS_PER_DAY, volumeToFlow } from '../base/units.ts';
 import type { RollUp } from './roll-up.ts';
 import { type ConveyanceTree, reachesBelow } from './tree.ts';
 
+/** Days over which turns level out demand. Common practice, no source: the delivery week. */
+export const BUSIEST_DAYS = 7;
+
 export type CapacityStatus = 'within' | 'tight' | 'over';
 
 /** Share of capacity from which a reach counts as tight; above 1 it is over. Common practice, no source. */
@@ -30,10 +33,12 @@ export interface ReachPeriod {
   readonly peakFlow: number;
   /** m³ s⁻¹, NaN when not known */
   readonly capacity: number;
-  /** peak and mean flow over capacity, NaN when the capacity is not known */
-  readonly peakShare: number;
+  /** mean flow of the busiest seven days in a row, or of the whole period when it is shorter [m³ s⁻¹] */
+  readonly busiestFlow: number;
+  /** busiest and mean flow over capacity, NaN when the capacity is not known */
+  readonly capacityShare: number;
   readonly meanShare: number;
-  /** by the peak share; null when the capacity is not known */
+  /** by the capacity share; null when the capacity is not known */
   readonly status: CapacityStatus | null;
 }
 
@@ -62,6 +67,7 @@ export function capacityStatus(share: number): CapacityStatus | null {
  * One row per reach and period, reaches outer, in the order of the tree's codes.
  *
  * Volumes are sums of daily volumes [m³]; mean flow = volume/(86 400 · days); peak flow = largest daily volume/86 400.
+ * A reach is held against its capacity by the busiest seven days, because turns within a week level out single days; the peak day stands beside it.
  * Missing: a day of NaN makes the sums and the peak of its period NaN. A capacity of zero or less counts as not known.
  *
  * @throws {ShapeError} when arrays do not fit the tree and the days.
@@ -91,7 +97,8 @@ function reachPeriod(input: ReachPeriodInput, below: Float64Array, reach: number
   const meanFlow = volumeToFlow(inflow, to - from + 1);
   const peakFlow = largest(headInflow, a, b) / SECONDS_PER_DAY;
   const capacity = input.capacity[reach] > 0 ? input.capacity[reach] : Number.NaN;
-  const peakShare = peakFlow / capacity;
+  const busiestFlow = volumeToFlow(busiest(headInflow, a, b), Math.min(BUSIEST_DAYS, to - from + 1));
+  const capacityShare = busiestFlow / capacity;
   return {
     reach,
     period,
@@ -102,9 +109,10 @@ function reachPeriod(input: ReachPeriodInput, below: Float64Array, reach: number
     meanFlow,
     peakFlow,
     capacity,
-    peakShare,
+    busiestFlow,
+    capacityShare,
     meanShare: meanFlow / capacity,
-    status: capacityStatus(peakShare),
+    status: capacityStatus(capacityShare),
   };
 }
 
@@ -123,6 +131,18 @@ function sum(values: Float64Array, from: number, to: number): number {
   let total = 0;
   for (let i = from; i <= to; i++) total += values[i];
   return total;
+}
+
+/** Largest sum of seven values in a row, or of all when there are fewer. */
+function busiest(values: Float64Array, from: number, to: number): number {
+  const length = Math.min(BUSIEST_DAYS, to - from + 1);
+  let most = Number.NEGATIVE_INFINITY;
+  for (let i = from; i + length - 1 <= to; i++) {
+    const window = sum(values, i, i + length - 1);
+    if (Number.isNaN(window)) return Number.NaN;
+    most = Math.max(most, window);
+  }
+  return most;
 }
 
 function largest(values: Float64Array, from: number, to: number): number {

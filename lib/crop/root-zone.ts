@@ -97,6 +97,28 @@ export function drainage(depletion: number, infiltration: number, irrigation: nu
   return Math.max(0, infiltration + irrigation - depletion);
 }
 
+/** Share of the mature root depth over which irrigation of a young crop is scheduled. Common practice, no source. */
+export const SCHEDULE_SHARE = 0.5;
+
+/**
+ * Depth of soil over which irrigation is scheduled: the root zone, but never less than the upper half of the mature one.
+ *
+ * The roots of a seedling are so shallow that a bare, drying surface would call for water every few days, and each watering would only feed
+ * evaporation again. A crop is watered for the soil it is about to root in.
+ *   Zs = max(Zr, 0.5 Zmax)
+ *
+ * Missing: NaN in any input gives NaN out.
+ *
+ * @param rootDepth Zr of the day [m]
+ * @param rootDepthMax Zmax of the crop [m]
+ * @returns [m]
+ * @example scheduleDepth(0.3, 1.2) // 0.6
+ * Source: common practice, no source.
+ */
+export function scheduleDepth(rootDepth: number, rootDepthMax: number): number {
+  return Math.max(rootDepth, SCHEDULE_SHARE * rootDepthMax);
+}
+
 /**
  * Depletion that changes hands when the lower edge of the root zone moves.
  *

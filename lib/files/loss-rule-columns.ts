@@ -45,7 +45,7 @@ export function lossRuleOf(feature: RawFeature, bound: BoundTable['bound'], find
     );
   if (rule === 'fraction_per_km') return { kind: 'fraction-per-km', fraction: value };
   if (rule === 'efficiency') return { kind: 'efficiency', efficiency: value };
-  const wettedPerimeter = numberOf(feature, bound, { role: 'wetted_perimeter', low: 0.1, high: 500, unit: 'm' }, findings);
+  const wettedPerimeter = numberOf(feature, bound, { role: 'wetted_perimeter', low: 0.1, high: 200, unit: 'm' }, findings);
   return wettedPerimeter === null
     ? bad('Seepage needs a wetted perimeter.', 'Give it in "wetted_perimeter_m".')
     : { kind: 'seepage', rate: value, wettedPerimeter };

@@ -53,7 +53,7 @@ export function geodesicRingArea(ring: readonly Position[]): number {
  * Area of a polygon, holes taken off; the orientation of its rings does not matter.
  *
  * @returns [m²]
- * @example geodesicArea({ type: 'Polygon', coordinates: [[[0, 0], [0.01, 0], [0.01, 0.01], [0, 0.01], [0, 0]]] }) // 1230907.15
+ * @example geodesicArea({ type: 'Polygon', coordinates: [[[0, 0], [0.01, 0], [0.01, 0.01], [0, 0.01], [0, 0]]] }) // 1230907.2
  * Source: Karney (2013) section 6.
  */
 export function geodesicArea(shape: Polygon | MultiPolygon): number {

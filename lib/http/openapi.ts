@@ -116,6 +116,7 @@ function operationMembers(operation: Operation): Json {
     ...(operation.scope === 'open' ? { security: [] } : {}),
     parameters: parametersOf(operation),
     ...(operation.body ? { requestBody: bodyOf(operation.body) } : {}),
+    ...(operation.form ? { requestBody: formOf(operation.form) } : {}),
     responses: { ...successOf(operation), ...problemsOf(operation) },
   };
 }
@@ -160,6 +161,16 @@ function parameter(place: 'path' | 'query', name: string, schema: z.ZodType): Js
 
 function bodyOf(schema: z.ZodType): Json {
   return { required: true, content: { 'application/json': { schema: schemaOf(schema, 'input') } } };
+}
+
+function formOf(form: Readonly<Record<string, string>>): Json {
+  const part = (name: string, description: string) =>
+    name === 'file'
+      ? { type: 'array', items: { type: 'string', contentMediaType: 'application/octet-stream' }, description }
+      : { type: 'string', description };
+  const properties = Object.fromEntries(Object.entries(form).map(([name, text]) => [name, part(name, text)]));
+  const required = Object.keys(form).filter((name) => name !== 'options');
+  return { required: true, content: { 'multipart/form-data': { schema: { type: 'object', properties, required } } } };
 }
 
 const CSV = { 'text/csv': { schema: { type: 'string', description: 'RFC 4180, UTF-8, one header row' } } };

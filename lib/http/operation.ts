@@ -27,6 +27,8 @@ export interface Operation<
   readonly params?: Params;
   readonly query?: Query;
   readonly body?: Body;
+  /** parts of a multipart/form-data body with what each holds; `file` may come more than once */
+  readonly form?: Readonly<Record<string, string>>;
   /** most bytes a body may have; 256 KiB unless said */
   readonly bodyLimit?: number;
   /** status of success; 200 unless said */

@@ -3,7 +3,7 @@
  * taken out, renewed and put back, which needs no more than row rights on the queue's tables.
  *
  * A job is leased: its process renews the lease while it works, so a job may take longer than the lease, and a job whose process died is
- * tried again when the lease has run out (`expireInSeconds` of its queue).
+ * tried again when the lease has run out.
  */
 import PgBoss from 'pg-boss';
 import type { Tx } from '../../db/connect.ts';
@@ -44,7 +44,9 @@ interface QueueState {
 }
 
 const POLL_MS = 1000;
-const RENEW_MS = 15_000;
+/** A process that says nothing for so long is taken for dead. */
+const LEASE_SECONDS = 60;
+const RENEW_MS = 10_000;
 const MAINTENANCE_MS = 10_000;
 const held = globalThis as unknown as { tillwaterQueue?: QueueState };
 
@@ -93,7 +95,7 @@ export async function enqueue(
   const executor = options.tx ?? database().outside;
   if (options.singletonKey && (await isJobWaiting(executor, name, options.singletonKey))) return null;
   const keyed = options.singletonKey ? { singletonKey: options.singletonKey } : {};
-  const id = await boss.send(name, data, { ...keyed, db: queueExecutor(executor) });
+  const id = await boss.send(name, data, { ...keyed, expireInSeconds: LEASE_SECONDS, db: queueExecutor(executor) });
   await notifyJob(executor, name);
   return id;
 }

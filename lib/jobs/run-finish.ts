@@ -1,7 +1,7 @@
 /** Last piece of a run: map arrays, canal roll-up, checks, and the swap that makes it the standing run. One transaction. */
 
 import type { Tx } from '../../db/connect.ts';
-import { findDistrict, listReaches, listTurnouts } from '../../db/queries/run-inputs.ts';
+import { listReaches, listTurnouts } from '../../db/queries/run-inputs.ts';
 import { listParcelDays, saveRunReaches, saveRunValues } from '../../db/queries/run-results.ts';
 import { countSlices, findRun, makeStanding, type RunRow, updateGoingRun } from '../../db/queries/run-state.ts';
 import { database } from '../access/database.ts';
@@ -28,8 +28,8 @@ async function closeRun(tx: Tx, job: RunJob): Promise<void> {
   if (run?.state !== 'running') return;
   const slices = await countSlices(tx, job.districtId, job.runId);
   if (slices.done < slices.all) return;
-  const district = await findDistrict(tx, job.districtId);
-  const periods = periodSets(run, district?.weekStart ?? 1);
+  const { week_start: weekStart } = run.manifest as { week_start: number };
+  const periods = periodSets(run, weekStart);
   const arrays = new MapArrays(run.parcelCount, run.dayCount, periods);
   const demand = new ReachDemand(await canalsOf(tx, job.districtId), run.dayCount);
   const fallbackDays = new Map<Fallback, number>();

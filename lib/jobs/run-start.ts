@@ -83,7 +83,14 @@ async function planRun(tx: Tx, { districtId, runId }: RunJob): Promise<number> {
     sliceCount,
     geometryVersion: district.geometryVersion,
     frozen: packed,
-    manifest: manifestOf({ packed, frozen, canal, settings, observations: { from: observations.startDate, days: observations.dayCount } }),
+    manifest: manifestOf({
+      packed,
+      frozen,
+      canal,
+      settings,
+      weekStart: district.weekStart,
+      observations: { from: observations.startDate, days: observations.dayCount },
+    }),
   });
   return sliceCount;
 }
@@ -113,10 +120,12 @@ function manifestOf(parts: {
   frozen: readonly FrozenParcel[];
   canal: unknown;
   settings: RunSettings;
+  weekStart: number;
   observations: { from: string; days: number };
 }) {
   return {
     kernel_version: KERNEL_VERSION,
+    week_start: parts.weekStart,
     weather_from: parts.observations.from,
     weather_to: addDays(parts.observations.from, parts.observations.days - 1),
     weather_and_library_sha256: sha256(parts.packed),

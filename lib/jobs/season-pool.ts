@@ -110,10 +110,9 @@ function sharedWeather(weather: CompletedWeather): CompletedWeather {
   return copy;
 }
 
-/** A thread entry in TypeScript needs its loader registered inside the thread; a bundle has compiled it already. */
+/** A thread entry in TypeScript needs its loader registered inside the thread. Threads run in worker processes, which are never bundled. */
 function startThread(): Worker {
-  if (process.env.NEXT_RUNTIME) return new Worker(new URL('./season-thread.ts', import.meta.url));
-  const loaderPackage = createRequire(import.meta.url).resolve(['tsx', 'package.json'].join('/'));
+  const loaderPackage = createRequire(import.meta.url).resolve('tsx/package.json');
   const loader = new URL('./dist/esm/api/index.mjs', pathToFileURL(loaderPackage)).href;
   const entry = new URL('./season-thread.ts', import.meta.url).href;
   const boot = `import(${JSON.stringify(loader)}).then((tsx) => { tsx.register(); return import(${JSON.stringify(entry)}); })`;

@@ -142,7 +142,7 @@ const CANAL_PLANS: readonly ColumnPlan<ReachPeriodRow>[] = [
   { name: 'head_inflow', header: 'Head inflow', quantity: 'm3', value: (row) => row.headInflow },
   { name: 'peak_flow', header: 'Peak flow', quantity: 'm3_s', value: (row) => row.peakFlow },
   { name: 'capacity', header: 'Capacity', quantity: 'm3_s', value: (row) => row.capacity },
-  { name: 'peak_share', header: 'Peak', quantity: 'percent', value: (row) => row.peakShare },
+  { name: 'capacity_share', header: 'Busiest week', quantity: 'percent', value: (row) => row.capacityShare },
   { name: 'status', header: 'Status', quantity: 'text', value: (row) => row.status },
 ];
 

@@ -21,7 +21,7 @@ export interface ReachPeriodRow {
   readonly peakFlow: number;
   readonly capacity: number;
   /** peak and mean flow over capacity, 0–1 and above */
-  readonly peakShare: number;
+  readonly capacityShare: number;
   readonly meanShare: number;
   readonly status: CapacityStatus | null;
 }
@@ -40,7 +40,7 @@ const PLANS: readonly ColumnPlan<ReachPeriodRow>[] = [
   { name: 'mean_flow', header: 'Mean flow', quantity: 'm3_s', value: (row) => row.meanFlow },
   { name: 'peak_flow', header: 'Peak flow', quantity: 'm3_s', value: (row) => row.peakFlow },
   { name: 'capacity', header: 'Capacity', quantity: 'm3_s', value: (row) => row.capacity },
-  { name: 'peak_share', header: 'Peak of capacity', quantity: 'percent', value: (row) => row.peakShare },
+  { name: 'capacity_share', header: 'Busiest week of capacity', quantity: 'percent', value: (row) => row.capacityShare },
   { name: 'mean_share', header: 'Mean of capacity', quantity: 'percent', value: (row) => row.meanShare },
   { name: 'status', header: 'Status', quantity: 'text', value: (row) => row.status },
 ];

@@ -17,7 +17,7 @@ export function storedValue(value: number, scale: number): number {
 
 /** The bytes of one parcel as a view on 16-bit numbers; copies only when the bytes are not aligned. */
 export function storedArray(bytes: Uint8Array): Uint16Array {
-  const aligned = bytes.byteOffset % 2 === 0 ? bytes : bytes.slice();
+  const aligned = bytes.byteOffset % 2 === 0 ? bytes : Uint8Array.from(bytes); // a Buffer's slice would not copy
   return new Uint16Array(aligned.buffer, aligned.byteOffset, aligned.byteLength >> 1);
 }
 

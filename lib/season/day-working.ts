@@ -103,10 +103,47 @@ function irrigationSteps(ground: StripGround, day: StripDay, wetting: WettingRec
     },
     {
       part,
-      symbol: 'Dr,start',
+      symbol: 'Ds',
+      name: 'Depletion of the soil irrigation is scheduled over',
+      expression: 'Ds = Dr,rain + Db,rain (Zs − Zr) / (Zmax − Zr), Zs at least half the mature root depth',
+      inputs: [
+        mm('Dr,rain', wetting.rainedDepletion),
+        mm('Db,rain', wetting.openingBelow - wetting.moved - wetting.rainExcess + day.deepPercolation),
+        quantity('Zs', wetting.scheduleDepth, 'm'),
+        quantity('Zr', day.rootDepth, 'm'),
+        quantity('Zmax', ground.deepestRoot, 'm'),
+      ],
+      result: wetting.scheduleDepletion,
+      unit: 'mm',
+      source: 'common practice: the upper half of the mature root zone is watered while roots are shallow',
+    },
+    {
+      part,
+      symbol: 'Dc',
+      name: 'Depletion that calls for water',
+      expression: 'Dc = max(0, Ds − few,yesterday De,rain), De,rain = max(0, De,yesterday − Pi)',
+      inputs: [
+        mm('Ds', wetting.scheduleDepletion),
+        one('few,yesterday', wetting.openingExposed),
+        mm('De, yesterday', wetting.openingSurface),
+        mm('Pi', wetting.infiltration),
+      ],
+      result: wetting.drawnDepletion,
+      unit: 'mm',
+      source: 'common practice: the dryness of the bare surface does not by itself call for water',
+    },
+    {
+      part,
+      symbol: 'D,start',
       name: 'Depletion at which an irrigation starts',
-      expression: 'Dr,start = f p TAW, p of the day before (of the table on the first day)',
-      inputs: [one('f', ground.triggerFraction), one('p', wetting.triggerDepletionFraction), mm('TAW', day.available)],
+      expression: 'D,start = f p 1000 (θFC − θWP) Zs, p of the day before (of the table on the first day)',
+      inputs: [
+        one('f', ground.triggerFraction),
+        one('p', wetting.triggerDepletionFraction),
+        quantity('θFC', ground.fieldCapacity, 'm³ m⁻³'),
+        quantity('θWP', ground.wiltingPoint, 'm³ m⁻³'),
+        quantity('Zs', wetting.scheduleDepth, 'm'),
+      ],
       result: wetting.trigger,
       unit: 'mm',
       source: 'FAO-56 Eq. 83; f from the application method',
@@ -116,19 +153,31 @@ function irrigationSteps(ground: StripGround, day: StripDay, wetting: WettingRec
       symbol: 'I',
       name: 'Net irrigation',
       expression: irrigationText(day, wetting),
-      inputs: [mm('Dr,rain', wetting.rainedDepletion), mm('Dr,start', wetting.trigger), mm('I max', ground.maximumDailyDepth)],
+      inputs: [
+        mm('Ds', wetting.scheduleDepletion),
+        mm('Dc', wetting.drawnDepletion),
+        mm('D,start', wetting.trigger),
+        mm('Dr,rain', wetting.rainedDepletion),
+        mm('p TAW', wetting.stressFrom),
+        mm('I max', ground.maximumDailyDepth),
+      ],
       result: day.irrigation,
       unit: 'mm',
-      source: 'irrigation to requirement: start at Dr,start, refill, at most I max a day',
+      source: 'irrigation to requirement: start at D,start or when Dr,rain passes p TAW, refill Ds, at most I max a day',
     },
   ];
 }
 
 function irrigationText(day: StripDay, wetting: WettingRecord): string {
-  if (day.irrigation > 0)
-    return `I = min(Dr,rain, I max); ${wetting.wasIrrigating ? 'goes on from yesterday' : 'starts: Dr,rain ≥ Dr,start'}`;
+  if (day.irrigation > 0) return `I = min(Ds, I max); ${wetting.wasIrrigating ? 'goes on from yesterday' : startReason(wetting)}`;
   if (!day.planted) return 'I = 0; nothing is planted';
-  return day.mayIrrigate ? 'I = 0; Dr,rain is below Dr,start or already refilled' : 'I = 0; rain-fed or past the last irrigation';
+  return day.mayIrrigate
+    ? 'I = 0; Dc is below D,start and Dr,rain below p TAW, or the soil is already refilled'
+    : 'I = 0; rain-fed or past the last irrigation';
+}
+
+function startReason(wetting: WettingRecord): string {
+  return wetting.rainedDepletion > wetting.stressFrom ? 'starts: Dr,rain > p TAW, the crop would run short' : 'starts: Dc ≥ D,start';
 }
 
 function refillSteps(day: StripDay, wetting: WettingRecord): WorkingStep[] {
@@ -148,10 +197,10 @@ function refillSteps(day: StripDay, wetting: WettingRecord): WorkingStep[] {
     {
       part,
       symbol: 'DR',
-      name: 'Drainage out of the root zone',
-      expression: 'DR = max(0, Pi + I − Dr,0)',
-      inputs: given,
-      result: wetting.excess,
+      name: 'Rain draining out of the root zone',
+      expression: 'DR = max(0, Pi − Dr,0)',
+      inputs: [mm('Pi', wetting.infiltration), mm('Dr,0', wetting.grownDepletion)],
+      result: wetting.rainExcess,
       unit: 'mm',
       source: 'FAO-56 Eq. 88',
     },
@@ -160,10 +209,20 @@ function refillSteps(day: StripDay, wetting: WettingRecord): WorkingStep[] {
       symbol: 'DP',
       name: 'Deep percolation, past the deepest root',
       expression: 'DP = DR − min(DR, Db)',
-      inputs: [mm('DR', wetting.excess), mm('Db, before', wetting.openingBelow - wetting.moved)],
+      inputs: [mm('DR', wetting.rainExcess), mm('Db, before', wetting.openingBelow - wetting.moved)],
       result: day.deepPercolation,
       unit: 'mm',
       source: 'FAO-56 Eq. 88, with the soil below the root zone refilled first',
+    },
+    {
+      part,
+      symbol: 'DI',
+      name: 'Irrigation kept in the soil below the root zone',
+      expression: 'DI = max(0, I − Dr,rain)',
+      inputs: [mm('I', day.irrigation), mm('Dr,rain', wetting.rainedDepletion)],
+      result: wetting.irrigationExcess,
+      unit: 'mm',
+      source: 'continuity; never more than the depletion there',
     },
   ];
 }

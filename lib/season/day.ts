@@ -3,7 +3,10 @@
  *
  * Order of the day: roots grow → rain and its runoff → irrigation is decided → the root zone refills and drains → the surface
  * layer is wetted → evaporation and transpiration → the balance is drawn up. Rain and irrigation fall early in the day, and
- * water above field capacity drains before the day's ET (see `refilledDepletion`).
+ * water above field capacity drains before the day's ET (see `refilledDepletion`). Irrigation refills the soil down to the scheduling depth
+ * (see `scheduleDepth`), so what of it passes a shallow root zone is kept below it and nothing of it is lost. The dryness of the bare surface does
+ * not by itself call for water: watering it would only feed evaporation again; but a root zone so dry that the crop runs short
+ * always does (common practice, no source).
  *
  * Two stores close the balance exactly while the root depth changes: the root zone (depletion Dr) and the soil below it down to the deepest root of
  * the run (depletion Db). The surface layer (depletion De) is the separate account that FAO-56 keeps of the top of the root zone.
@@ -62,6 +65,8 @@ export interface StripState {
   surfaceDepletion: number;
   /** fw of the last wetting */
   wettedFraction: number;
+  /** few of the last day: share of the surface that evaporates */
+  exposedWetted: number;
   /** p of the last cropped day; the table value on the first day of a planting */
   depletionFraction: number;
   /** an irrigation is under way and goes on until the root zone is refilled */
@@ -84,6 +89,8 @@ export interface StripDay {
   heightFactor: number;
   /** Zr of the day [m] */
   rootDepth: number;
+  /** Zs, depth irrigation is scheduled over [m]; taken between Zr and the deepest root of the run */
+  scheduleDepth: number;
   /** p of the table */
   tableFraction: number;
   planted: boolean;
@@ -100,7 +107,7 @@ export interface StripDay {
   refilled: number;
   /** De after wetting */
   wettedSurface: number;
-  /** infiltrated rain less the drainage out of the root zone, not below 0 */
+  /** infiltrated rain less what of it drains out of the root zone */
   effectivePrecipitation: number;
   deepPercolation: number;
   /** ETc, unstressed */
@@ -126,13 +133,27 @@ export interface WettingRecord {
   readonly grownDepletion: number;
   readonly infiltration: number;
   readonly rainedDepletion: number;
+  /** Zs [m], within the soil of the run */
+  readonly scheduleDepth: number;
+  /** depletion of the soil down to Zs after rain */
+  readonly scheduleDepletion: number;
+  /** De after rain */
+  readonly rainedSurface: number;
+  /** few of the day before */
+  readonly openingExposed: number;
+  /** depletion that is not the dryness of the bare surface: what calls for water */
+  readonly drawnDepletion: number;
   /** p that the trigger was taken with */
   readonly triggerDepletionFraction: number;
   /** depletion at which an irrigation starts */
   readonly trigger: number;
+  /** root-zone depletion above which the crop runs short: starts an irrigation too */
+  readonly stressFrom: number;
   readonly wasIrrigating: boolean;
-  /** water leaving the root zone downwards */
-  readonly excess: number;
+  /** rain leaving the root zone downwards */
+  readonly rainExcess: number;
+  /** irrigation leaving the root zone downwards, kept in the soil below */
+  readonly irrigationExcess: number;
   readonly openingSurface: number;
 }
 
@@ -185,16 +206,29 @@ function wetStrip(ground: StripGround, state: StripState, day: StripDay, trace: 
   const infiltration = day.precipitation - day.surfaceRunoff;
   const rainedDepletion = refilledDepletion(grownDepletion, infiltration, 0);
   const triggerDepletionFraction = day.firstDay ? day.tableFraction : state.depletionFraction;
-  const trigger = ground.triggerFraction * triggerDepletionFraction * available;
-  const irrigates = day.mayIrrigate && rainedDepletion > REFILLED && (wasIrrigating || rainedDepletion >= trigger);
-  const irrigation = irrigates ? Math.min(rainedDepletion, ground.maximumDailyDepth) : 0;
+  const rainExcess = drainage(grownDepletion, infiltration, 0);
+  const rainKept = Math.min(below, rainExcess);
+  const rainedBelow = below - rainKept;
 
-  const excess = drainage(grownDepletion, infiltration, irrigation);
-  const kept = Math.min(below, excess);
+  const schedule = Math.max(day.rootDepth, Math.min(day.scheduleDepth, ground.deepestRoot));
+  const underRoots =
+    schedule > day.rootDepth ? movedDepletion(rainedBelow, ground.deepestRoot - day.rootDepth, schedule - day.rootDepth) : 0;
+  const scheduleDepletion = rainedDepletion + underRoots;
+  const held = totalAvailableWater(ground.fieldCapacity, ground.wiltingPoint, schedule);
+  const trigger = ground.triggerFraction * triggerDepletionFraction * held;
+  const stressFrom = triggerDepletionFraction * available;
+  const rainedSurface = wettedSurfaceDepletion(openingSurface, infiltration, 0, 1);
+  const openingExposed = state.exposedWetted;
+  const drawnDepletion = Math.max(0, scheduleDepletion - openingExposed * rainedSurface);
+  const irrigates =
+    day.mayIrrigate && scheduleDepletion > REFILLED && (wasIrrigating || drawnDepletion >= trigger || rainedDepletion > stressFrom);
+  const irrigation = irrigates ? Math.min(scheduleDepletion, ground.maximumDailyDepth) : 0;
+  const irrigationExcess = drainage(rainedDepletion, 0, irrigation);
+
   state.rootDepth = day.rootDepth;
-  state.belowDepletion = below - kept;
+  state.belowDepletion = Math.max(0, rainedBelow - irrigationExcess);
   state.depletionFraction = triggerDepletionFraction;
-  state.irrigating = irrigates && rainedDepletion - irrigation > REFILLED;
+  state.irrigating = irrigates && scheduleDepletion - irrigation > REFILLED;
   if (irrigates) state.wettedFraction = ground.methodWetted;
   else if (day.precipitation > WETTING_RAIN) state.wettedFraction = 1;
 
@@ -203,12 +237,14 @@ function wetStrip(ground: StripGround, state: StripState, day: StripDay, trace: 
   day.irrigation = irrigation;
   day.refilled = refilledDepletion(grownDepletion, infiltration, irrigation);
   day.wettedSurface = wettedSurfaceDepletion(openingSurface, infiltration, irrigation, ground.methodWetted);
-  day.effectivePrecipitation = Math.max(0, infiltration - excess);
-  day.deepPercolation = excess - kept;
+  day.effectivePrecipitation = infiltration - rainExcess;
+  day.deepPercolation = rainExcess - rainKept;
   if (trace === null) return;
   const roots = { openingRootDepth, openingDepletion, openingBelow, moved, grownDepletion };
-  const water = { infiltration, rainedDepletion, triggerDepletionFraction, trigger, wasIrrigating, excess, openingSurface };
-  recordWetting(ground, day, { ...roots, ...water }, trace);
+  const water = { infiltration, rainedDepletion, rainExcess, irrigationExcess, openingSurface };
+  const surface = { rainedSurface, openingExposed, drawnDepletion };
+  const decision = { ...surface, scheduleDepth: schedule, scheduleDepletion, triggerDepletionFraction, trigger, stressFrom, wasIrrigating };
+  recordWetting(ground, day, { ...roots, ...water, ...decision }, trace);
 }
 
 /**
@@ -233,6 +269,7 @@ function spendWater(ground: StripGround, state: StripState, day: StripDay, trace
   const closingSurface = driedSurfaceDepletion(wettedSurface, evaporation, exposedWetted, ground.totalEvaporable);
   const closingDepletion = Math.min(available, refilled + transpiration + evaporation);
   state.depletionFraction = fraction;
+  state.exposedWetted = exposedWetted;
   state.surfaceDepletion = closingSurface;
   state.depletion = closingDepletion;
 
@@ -261,6 +298,7 @@ export function emptyStripDay(): StripDay {
     height: unset,
     heightFactor: unset,
     rootDepth: unset,
+    scheduleDepth: unset,
     tableFraction: unset,
     planted: false,
     firstDay: false,
@@ -291,6 +329,7 @@ export function emptyStripState(): StripState {
     belowDepletion: unset,
     surfaceDepletion: unset,
     wettedFraction: unset,
+    exposedWetted: unset,
     depletionFraction: unset,
     irrigating: false,
   };

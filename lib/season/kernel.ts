@@ -115,6 +115,7 @@ function openStrip(season: PackedSeason, ground: StripGround): void {
   state.belowDepletion = initialDepletion * perMetre * (ground.deepestRoot - state.rootDepth);
   state.surfaceDepletion = initialDepletion * ground.totalEvaporable;
   state.wettedFraction = 1;
+  state.exposedWetted = 1;
   state.depletionFraction = curve.tableFraction[0];
   state.irrigating = false;
 }
@@ -134,6 +135,7 @@ function walkStrip(season: PackedSeason, ground: StripGround, shares: Shares, he
     day.height = curve.height[d];
     day.heightFactor = curve.heightFactor[d];
     day.rootDepth = curve.rootDepth[d];
+    day.scheduleDepth = curve.scheduleDepth[d];
     day.tableFraction = curve.tableFraction[d];
     day.planted = (mark & MARK.planted) !== 0;
     day.firstDay = (mark & MARK.firstDay) !== 0;

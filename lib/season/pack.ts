@@ -64,6 +64,8 @@ export interface StripCurve {
   readonly height: Float64Array;
   readonly heightFactor: Float64Array;
   readonly rootDepth: Float64Array;
+  /** depth irrigation is scheduled over, see `scheduleDepth`; 0 where nothing is planted */
+  readonly scheduleDepth: Float64Array;
   readonly tableFraction: Float64Array;
   readonly mark: Uint8Array;
 }
@@ -167,5 +169,13 @@ function emptyParcelWeather(days: number): ParcelWeather {
 
 function emptyCurve(days: number): StripCurve {
   const row = () => new Float64Array(days);
-  return { basal: row(), height: row(), heightFactor: row(), rootDepth: row(), tableFraction: row(), mark: new Uint8Array(days) };
+  return {
+    basal: row(),
+    height: row(),
+    heightFactor: row(),
+    rootDepth: row(),
+    scheduleDepth: row(),
+    tableFraction: row(),
+    mark: new Uint8Array(days),
+  };
 }

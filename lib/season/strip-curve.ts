@@ -13,6 +13,7 @@ import {
   type StageCoefficients,
   stageCoefficient,
 } from '../crop/curve.ts';
+import { scheduleDepth } from '../crop/root-zone.ts';
 import { findOverfullDay, type PlantingSpan, planStrips } from '../crop/strips.ts';
 import type { StripGround } from './day.ts';
 import { MARK, type PackedSeason, type ParcelWeather, type StripCurve } from './pack.ts';
@@ -167,6 +168,7 @@ function clearCurve(curve: StripCurve, soil: Soil, plan: StripPlan): void {
   curve.mark.fill(0);
   curve.tableFraction.fill(plan.planted[0]?.planting.crop.depletionFraction ?? BARE_FRACTION);
   curve.rootDepth.fill(bareDepth(soil));
+  curve.scheduleDepth.fill(0);
 }
 
 /** Depth of the store of ground that carries nothing all run: as deep as it takes to hold the evaporable water, at least Ze, at most the hard layer. */
@@ -203,6 +205,7 @@ function drawCycle(season: PackedSeason, soil: Soil, planted: PlantedCycles, cyc
     curve.height[d] = height;
     curve.heightFactor[d] = factor;
     curve.rootDepth[d] = limited(rootDepthOf(crop, progress), soil);
+    curve.scheduleDepth[d] = limited(scheduleDepth(curve.rootDepth[d], crop.rootDepthMax), soil);
     curve.tableFraction[d] = crop.depletionFraction;
     curve.mark[d] = MARK.planted | (d === plantingDay ? MARK.firstDay : 0) | (d < planted.lastIrrigation ? MARK.mayIrrigate : 0);
   }

@@ -85,6 +85,17 @@ describe('who asks', () => {
     await refusal(await district(request('/api/v1/district', { cookie })), 401);
   });
 
+  it('has no second way in, and no sign-up', async () => {
+    const { POST } = await import('../../app/api/auth/[...all]/route.ts');
+    const headers = { origin: `http://${HOST}` };
+    const body = { name: 'X', email: 'olga@example.org', password: PASSWORD };
+    for (const path of ['sign-in/email', 'sign-up/email']) {
+      const response = await POST(request(`/api/auth/${path}`, { body, headers }));
+      expect(response.status, path).toBe(404);
+      expect(response.headers.getSetCookie()).toEqual([]);
+    }
+  });
+
   it('marks the cookie Secure under https', async () => {
     const headers = { 'x-forwarded-proto': 'https' };
     const response = await signInRoute(request('/api/v1/sign-in', { body: { email: 'reg@example.org', password: PASSWORD }, headers }));

@@ -87,8 +87,7 @@ describe('a whole run', () => {
       expect(day.adjusted_crop_et_mm).toBeLessThanOrEqual(day.crop_et_mm);
       expect(day.root_zone_depletion_mm).toBeGreaterThanOrEqual(0);
       expect(day.root_zone_depletion_mm).toBeLessThanOrEqual(day.total_available_water_mm + 0.01);
-      console.log(JSON.stringify(day));
-    expect(Math.abs(day.gross_requirement_mm - day.net_requirement_mm / season.method.efficiency)).toBeLessThan(0.02);
+      expect(Math.abs(day.gross_requirement_mm - day.net_requirement_mm / season.method.efficiency)).toBeLessThan(0.02);
     }
     const lines = (await (await daily(request(`${base}/parcels/P-1/daily.csv?units=us`, { token }))).text()).trim().split('\r\n');
     expect(lines).toHaveLength(15);

@@ -1,5 +1,5 @@
 /** Vector tiles, read back with a reader of its own. Tile numbers: OGC 17-083r4 WebMercatorQuad; format: Mapbox Vector Tile Specification 2.1. */
-import { VectorTile } from '@mapbox/vector-tile';
+import { VectorTile, type VectorTileFeature } from '@mapbox/vector-tile';
 import { PbfReader } from 'pbf';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { GET as tile } from '../../app/api/v1/tiles/[layer]/[version]/[z]/[x]/[y]/route.ts';
@@ -50,7 +50,7 @@ describe('tiles', () => {
     const [z, x, y] = tileOf(-115.994, 43.6015, 12).split('/').map(Number);
     const read = await features(response, 'parcels');
     const second = read.find((feature) => feature.properties.code === 'P-2');
-    const { geometry } = second?.toGeoJSON(x, y, z) as { geometry: { coordinates: number[][][] } };
+    const { geometry } = (second as VectorTileFeature).toGeoJSON(x, y, z) as { geometry: { coordinates: number[][][] } };
     const longitudes = geometry.coordinates[0].map(([longitude]) => longitude);
     expect(Math.min(...longitudes)).toBeCloseTo(-115.996, 4);
     expect(Math.max(...longitudes)).toBeCloseTo(-115.993, 4);

@@ -51,7 +51,7 @@ export function reachRows(): ReachPeriodRow[] {
       headInflow: 750_000,
       peakFlow: 1.1,
       capacity: 1,
-      peakShare: 1.1,
+      capacityShare: 1.1,
       status: 'over',
     },
     {
@@ -66,7 +66,7 @@ export function reachRows(): ReachPeriodRow[] {
       headInflow: 240_000,
       peakFlow: 0.46,
       capacity: 0.5,
-      peakShare: 0.92,
+      capacityShare: 0.92,
       status: 'tight',
     },
     {
@@ -81,7 +81,7 @@ export function reachRows(): ReachPeriodRow[] {
       headInflow: 450_000,
       peakFlow: 0.64,
       capacity: Number.NaN,
-      peakShare: Number.NaN,
+      capacityShare: Number.NaN,
       meanShare: Number.NaN,
       status: null,
     },

@@ -314,6 +314,7 @@ function runLand(input: SeasonInput, parcel: ParcelInput, land: Land, weather: W
   let fw = 1;
   let p = land.history[0]?.planting.crop.depletionFraction ?? 0.5;
   let underWay = false;
+  let exposed = 1;
   return weather.map((w, d) => {
     const crop = land.days[d];
     // roots
@@ -331,14 +332,20 @@ function runLand(input: SeasonInput, parcel: ParcelInput, land: Land, weather: W
     // rain and irrigation
     if (crop?.first) p = crop.crop.depletionFraction;
     const pi = w.rain - w.runoff;
-    const dry = Math.max(0, dr - pi);
-    const starts = underWay || dry >= method.triggerFraction * p * taw;
+    const throughRoots = Math.max(0, pi - dr);
+    dr = Math.max(0, dr - pi);
+    const percolation = Math.max(0, throughRoots - below);
+    below = Math.max(0, below - throughRoots);
+    // irrigation, decided over at least half the mature root depth
+    const half = crop ? 0.5 * crop.crop.rootDepthMax : 0;
+    const zs = Math.max(z, Math.min(soil.rootLimit > 0 ? Math.min(half, soil.rootLimit) : half, zMax));
+    const dry = dr + (zs > z ? (below * (zs - z)) / (zMax - z) : 0);
+    const callsFor = Math.max(0, dry - exposed * Math.max(0, de - pi)); // the bare surface does not count
+    const starts = underWay || callsFor >= method.triggerFraction * p * perMetre * zs || dr > p * taw;
     const irrigation = settings.irrigate && crop?.mayIrrigate && dry > 0.5 && starts ? Math.min(dry, method.maximumDailyDepth) : 0;
     underWay = irrigation > 0 && dry - irrigation > 0.5;
-    const drained = Math.max(0, pi + irrigation - dr);
-    dr = Math.max(0, dr - pi - irrigation);
-    const percolation = Math.max(0, drained - below);
-    below = Math.max(0, below - drained);
+    below = Math.max(0, below - Math.max(0, irrigation - dr));
+    dr = Math.max(0, dr - irrigation);
     // surface
     de = clamp(de - pi - irrigation / method.wettedFraction, 0, soil.totalEvaporableWater); // Eq. 77
     if (irrigation > 0) fw = method.wettedFraction;
@@ -359,8 +366,9 @@ function runLand(input: SeasonInput, parcel: ParcelInput, land: Land, weather: W
     const transpiration = Math.min(ks * kcb * w.eto, taw - dr);
     const evaporation = Math.min(ke * w.eto, taw - dr - transpiration);
     de = Math.min(soil.totalEvaporableWater, de + evaporation / few);
+    exposed = few;
     dr += transpiration + evaporation;
-    const effective = Math.max(0, pi - drained);
+    const effective = pi - throughRoots;
     return { etc, transpiration, evaporation, effective, irrigation, percolation, depletion: dr, taw, raw: p * taw, kcb, ks };
   });
 }

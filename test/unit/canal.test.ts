@@ -146,7 +146,7 @@ describe('reach periods', () => {
   turnoutDemand[6] = 86400;
   const flows = rollUp({ tree, reaches, turnoutDemand });
   const periods = periodsOf('week', '2024-04-01', '2024-04-14', 1);
-  const rows = reachPeriods({ tree, turnoutDemand, flows, capacity: [2.1, 4, Number.NaN, 0], periods });
+  const rows = reachPeriods({ tree, turnoutDemand, flows, capacity: [0.3, 0.6, Number.NaN, 0], periods });
   const row = (code: string, period: number) => rows.find((each) => tree.codes[each.reach] === code && each.period === period);
 
   test('volumes, flows and share of a reach that runs one day of seven', () => {
@@ -156,18 +156,25 @@ describe('reach periods', () => {
       loss: 86400,
       headInflow: 172800,
       peakFlow: 2,
-      capacity: 2.1,
+      capacity: 0.3,
     });
     expect(row('C', 0)?.meanFlow).toBeCloseTo(2 / 7, 12);
-    expect(row('C', 0)?.peakShare).toBeCloseTo(2 / 2.1, 12);
+    expect(row('C', 0)?.busiestFlow).toBeCloseTo(2 / 7, 12);
+    expect(row('C', 0)?.capacityShare).toBeCloseTo(2 / 7 / 0.3, 12);
     expect(row('C', 0)?.status).toBe('tight');
     expect(row('A', 0)).toMatchObject({ turnoutDemand: 0, demandBelow: 86400, headInflow: 345600, peakFlow: 4, status: 'tight' });
     expect(row('C', 1)).toMatchObject({ headInflow: 0, peakFlow: 0, status: 'within' });
   });
 
   test('a capacity not known, or zero, gives no share and no status', () => {
-    expect(row('M', 0)).toMatchObject({ peakFlow: 8, capacity: Number.NaN, peakShare: Number.NaN, meanShare: Number.NaN, status: null });
-    expect(row('B', 0)).toMatchObject({ peakShare: Number.NaN, status: null });
+    expect(row('M', 0)).toMatchObject({
+      peakFlow: 8,
+      capacity: Number.NaN,
+      capacityShare: Number.NaN,
+      meanShare: Number.NaN,
+      status: null,
+    });
+    expect(row('B', 0)).toMatchObject({ capacityShare: Number.NaN, status: null });
   });
 
   test.each([

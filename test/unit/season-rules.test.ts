@@ -108,15 +108,35 @@ function rows(input: SeasonInput, p = 0): (variable: DailyVariable) => Float64Ar
 
 describe('irrigation', () => {
   test('refills the root zone when depletion has reached the trigger, and gross is net over efficiency', () => {
-    const get = rows(season([parcel()]));
+    const standing = planting({}, { type: 'perennial' });
+    const get = rows(season([parcel({ plantings: [standing] })]));
     const net = get('net_requirement');
     const days = net.findIndex((depth) => depth > 0);
     const before = get('root_zone_depletion')[days - 1];
-    expect(before).toBeGreaterThanOrEqual(get('readily_available_water')[days - 1]);
-    expect(get('root_zone_depletion')[days - 2]).toBeLessThan(get('readily_available_water')[days - 2]);
+    const raw = get('readily_available_water');
+    expect(before).toBeGreaterThanOrEqual(raw[days - 1]);
+    // the dryness of the bare surface, at most TEW, does not count
+    expect(get('root_zone_depletion')[days - 2]).toBeLessThan(raw[days - 2] + parcel().soil.totalEvaporableWater);
     expect(net[days]).toBeCloseTo(before, 9);
     expect(get('gross_requirement')[days]).toBeCloseTo(2 * net[days], 9);
     expect(net[days + 1]).toBe(0);
+  });
+
+  test('the drying of a bare surface does not by itself call for water', () => {
+    const get = rows(season([parcel({ plantings: [planting({}, { rootDepthMin: 0.4 })] })]));
+    const first = get('net_requirement').findIndex((depth) => depth > 0);
+    // bare soil loses REW of 9 mm in two days and most of TEW in a week, more than a tenth of what the soil holds; no water is called for yet
+    expect(first).toBeGreaterThan(7);
+    expect(get('stress_coefficient')[first - 1]).toBe(1);
+  });
+
+  test('a young crop that would run short is watered for the soil it is about to root in', () => {
+    const get = rows(season([parcel()]));
+    const first = get('net_requirement').findIndex((depth) => depth > 0);
+    expect(get('root_zone_depletion')[first - 1]).toBeGreaterThan(0.45 * get('total_available_water')[first - 1] * 0.9);
+    // the refill reaches half the mature depth, so it is more than the shallow root zone had lost, and none of it is lost
+    expect(get('net_requirement')[first]).toBeGreaterThanOrEqual(get('root_zone_depletion')[first - 1]);
+    expect(get('deep_percolation').every((depth) => depth === 0)).toBe(true);
   });
 
   test('a system that cannot refill in a day goes on until it has', () => {

@@ -10,22 +10,22 @@ async function soils(text: string) {
 
 describe('a table of soils', () => {
   test('percent and fraction, TEW by FAO-56 Eq. 73, REW by texture', async () => {
-    // FAO-56 Example 35: loamy sand θFC 0.15, θWP 0.06, Ze 0.10 m has TEW 12 mm
+    // FAO-56 Example 35: sandy loam θFC 0.23, θWP 0.10, Ze 0.1 m has TEW 18 mm and REW 8 mm
     const { soils: rows, findings } = await soils(
-      'code,name,field_capacity,wilting_point,rew,tew,ze_m,curve_number,root_limit_m\nls,Loamy sand,15,6,,,0.1,70,\nsl,Sandy loam,0.23,0.11,8,20,,,1.2\n',
+      'code,name,field_capacity,wilting_point,rew,tew,ze_m,curve_number,root_limit_m\nsl,Sandy loam,23,10,,,0.1,70,\nlo,Loam,0.25,0.12,9,20,,,1.2\n',
     );
     expect(rows[0]).toMatchObject({
-      code: 'ls',
-      fieldCapacity: 0.15,
-      wiltingPoint: 0.06,
-      totalEvaporableWater: 12,
-      readilyEvaporableWater: 6,
+      code: 'sl',
+      fieldCapacity: 0.23,
+      wiltingPoint: 0.1,
+      totalEvaporableWater: 18,
+      readilyEvaporableWater: 8,
       curveNumber: 70,
       rootLimit: null,
     });
     expect(rows[1]).toMatchObject({
-      fieldCapacity: 0.23,
-      readilyEvaporableWater: 8,
+      fieldCapacity: 0.25,
+      readilyEvaporableWater: 9,
       totalEvaporableWater: 20,
       evaporationDepth: 0.1,
       rootLimit: 1.2,
@@ -48,7 +48,7 @@ describe('a table of soils', () => {
       expect(defaultReadilyEvaporableWater(fieldCapacity)).toBeGreaterThanOrEqual(low);
       expect(defaultReadilyEvaporableWater(fieldCapacity)).toBeLessThanOrEqual(high);
     }
-    expect(totalEvaporableWater(0.15, 0.06, 0.1)).toBeCloseTo(12, 9);
+    expect(totalEvaporableWater(0.23, 0.1, 0.1)).toBeCloseTo(18, 9);
   });
 
   test('what cannot be is refused by row', async () => {

@@ -1,7 +1,7 @@
 import type { UnitSystem } from '../../../lib/base/units.ts';
 import type { ReachPeriod, RunAnswer } from '../../../lib/http/contract/run.ts';
 import { periodName } from '../../_components/date-words.ts';
-import { Caution, EmptyState } from '../../_components/empty-state.tsx';
+import { Caution, Cautions, EmptyState } from '../../_components/empty-state.tsx';
 import { figure, unitOf } from '../../_components/figures.ts';
 import { FlowProfile } from '../../_components/flow-profile.tsx';
 import { Go } from '../../_components/go.tsx';
@@ -61,6 +61,7 @@ export function CanalView({ run, reaches, choice, query, grower, units }: CanalV
         These flows follow from computed demand. They do not replace canal operation rules, measured flow, water law or licensed engineering
         judgement, and leave out the time that water takes to arrive.
       </Caution>
+      <Cautions which={['decisions', 'losses']} />
     </div>
   );
 }

@@ -13,22 +13,13 @@ export const metadata: Metadata = { title: 'Methods' };
 
 export default async function MethodsPage() {
   const [caller, run] = await Promise.all([callerInView(), runInView()]);
-  const [worked, docs, soils, methods] = await Promise.all([
-    run ? loadEquations(caller, run) : null,
-    readCodeDocs(),
-    answerSoils(caller),
-    answerMethods(caller),
-  ]);
   return (
     <div className="page">
-      <PageHead
-        title="Methods"
-        lead="Every equation, table and constant in use with its source. Equations and constants are read from the code that computes, not kept beside it."
-      />
-      <EquationList worked={worked} />
+      <PageHead title="Methods" lead="Every equation, table and constant in use with its source, read from the code that computes." />
+      <EquationList worked={run ? await loadEquations(caller, run) : null} />
       <Rules run={run} />
-      <Tables soils={soils} methods={methods} />
-      <CodeDocs rooms={docs} />
+      <Tables soils={await answerSoils(caller)} methods={await answerMethods(caller)} />
+      <CodeDocs rooms={await readCodeDocs()} />
     </div>
   );
 }

@@ -2,11 +2,11 @@ import { CONVEYANCE_PRESETS } from '../../../lib/canal/conveyance.ts';
 import { lossRuleText } from '../../../lib/canal/loss-rule.ts';
 import { TIGHT_SHARE } from '../../../lib/canal/reach-period.ts';
 import type { RunAnswer } from '../../../lib/http/contract/run.ts';
-import { cautionTexts, REPORT_CAUTIONS } from '../../../lib/report/cautions.ts';
+import { REPORT_CAUTIONS } from '../../../lib/report/cautions.ts';
 import { CLASS_METHODS } from '../../../lib/report/classes.ts';
 import { FALLBACK, FALLBACK_TEXT, type Fallback } from '../../../lib/weather/variable.ts';
 import { DataTable } from '../../_components/data-table.tsx';
-import { Caution } from '../../_components/empty-state.tsx';
+import { Cautions } from '../../_components/empty-state.tsx';
 import { percent } from '../../_components/figures.ts';
 import { Section } from '../../_components/page-head.tsx';
 import { SETTINGS, settingText } from '../../_components/run-words.ts';
@@ -36,9 +36,7 @@ export function Rules({ run }: { run: RunAnswer | null }) {
         </p>
       </Section>
       <Section id="cautions" title="Cautions">
-        {cautionTexts(REPORT_CAUTIONS).map((text) => (
-          <Caution key={text}>{text}</Caution>
-        ))}
+        <Cautions which={REPORT_CAUTIONS} />
       </Section>
     </>
   );

@@ -1,5 +1,5 @@
 import type { Metadata } from 'next';
-import { EmptyState, NoRun } from '../../_components/empty-state.tsx';
+import { NoRunPage } from '../../_components/empty-state.tsx';
 import { callerInView } from '../../_components/in-view.ts';
 import { PageHead } from '../../_components/page-head.tsx';
 import type { PageProps } from '../../_components/page-props.ts';
@@ -13,18 +13,13 @@ export const metadata: Metadata = { title: 'Parcels' };
 export default async function ParcelsPage({ searchParams }: PageProps) {
   const [caller, query] = await Promise.all([callerInView(), searchParams]);
   const run = await runAsked(caller, query);
-  const choice = run ? choosePeriod(query, run, weekStartOf(run, caller.district)) : null;
-  const list = run && choice ? await loadParcelPage({ caller, run, choice, query }) : null;
+  if (!run) return <NoRunPage />;
+  const choice = choosePeriod(query, run, weekStartOf(run, caller.district));
+  const list = await loadParcelPage({ caller, run, choice, query });
   return (
     <div className="page">
-      <PageHead
-        title="Parcels"
-        lead="What each parcel needs over a period. Open one for its water chain, its season and the working of any day."
-      />
-      {run && choice && list ? <ParcelTable run={run} choice={choice} list={list} query={query} units={caller.units} /> : <NoRun />}
-      {list && list.count === 0 && !query.search && !query.reach ? (
-        <EmptyState title="No parcels to show">Ask the district’s manager to give you parcels.</EmptyState>
-      ) : null}
+      <PageHead title="Parcels" lead="What each parcel needs over a period. Open one for its season and the working of any day." />
+      <ParcelTable run={run} choice={choice} list={list} query={query} units={caller.units} />
     </div>
   );
 }

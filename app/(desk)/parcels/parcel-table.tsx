@@ -69,6 +69,7 @@ function columnsOf(list: ParcelListResult, units: UnitSystem, detail: Readonly<R
       key: 'parcel',
       head: 'Parcel',
       rowHead: true,
+      oneLine: true,
       cell: (row) => <Go href={hrefWith(`/parcels/${encodeURIComponent(row.code)}`, {}, detail)}>{row.code}</Go>,
       total: 'All found',
     },

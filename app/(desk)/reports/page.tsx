@@ -1,6 +1,5 @@
 import type { Metadata } from 'next';
-import { cautionTexts, REPORT_CAUTIONS } from '../../../lib/report/cautions.ts';
-import { Caution, NoRunPage } from '../../_components/empty-state.tsx';
+import { Cautions, NoRunPage } from '../../_components/empty-state.tsx';
 import { callerInView } from '../../_components/in-view.ts';
 import { PageHead } from '../../_components/page-head.tsx';
 import type { PageProps } from '../../_components/page-props.ts';
@@ -15,14 +14,9 @@ export default async function ReportsPage({ searchParams }: PageProps) {
   if (!run) return <NoRunPage />;
   return (
     <div className="page">
-      <PageHead
-        title="Reports"
-        lead={`Documents of season ${run.season}, made from the same figures as the screens. Choose period and units, then download.`}
-      />
+      <PageHead title="Reports" lead={`Documents of season ${run.season}, from the same figures as the screens.`} />
       <ReportLinks run={run.id} units={caller.units} />
-      {cautionTexts(REPORT_CAUTIONS).map((text) => (
-        <Caution key={text}>{text}</Caution>
-      ))}
+      <Cautions which={['decisions', 'estimates', 'losses']} />
     </div>
   );
 }

@@ -39,6 +39,7 @@ function columnsOf(timeZone: string): Column<RunAnswer>[] {
       key: 'started',
       head: 'Asked for',
       rowHead: true,
+      oneLine: true,
       cell: (run) => <Go href={`/runs/${run.id}`}>{moment(run.created_at, timeZone)}</Go>,
     },
     { key: 'season', head: 'Season', cell: (run) => run.season },

@@ -4,7 +4,7 @@ import { Go } from '../../_components/go.tsx';
 import { Section } from '../../_components/page-head.tsx';
 import { type Named, RunForm } from '../../_components/run-form.tsx';
 
-interface StartRunProps {
+export interface StartRunProps {
   readonly district: DistrictAnswer;
   readonly soils: readonly Readonly<Record<string, unknown>>[];
   readonly methods: readonly Readonly<Record<string, unknown>>[];

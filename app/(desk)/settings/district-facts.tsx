@@ -32,10 +32,10 @@ export function DistrictFacts({ district, units, manages }: { district: District
             rows={district.seasons}
             rowKey={(season) => season.code}
             columns={[
-              { key: 'code', head: 'Season', rowHead: true, cell: (season) => season.code },
+              { key: 'code', head: 'Season', rowHead: true, oneLine: true, cell: (season) => season.code },
               { key: 'name', head: 'Name', cell: (season) => season.name },
-              { key: 'start', head: 'First day', cell: (season) => longDate(season.start_date) },
-              { key: 'end', head: 'Last day', cell: (season) => longDate(season.end_date) },
+              { key: 'start', oneLine: true, head: 'First day', cell: (season) => longDate(season.start_date) },
+              { key: 'end', oneLine: true, head: 'Last day', cell: (season) => longDate(season.end_date) },
             ]}
           />
         )}

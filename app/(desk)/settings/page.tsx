@@ -11,20 +11,15 @@ export const metadata: Metadata = { title: 'Settings' };
 export default async function SettingsPage() {
   const [caller, district] = await Promise.all([callerInView(), districtInView()]);
   const manages = caller.scope === 'administer';
-  const [members, tokens] = manages ? await Promise.all([answerMembers(caller), answerTokens(caller)]) : [null, null];
   return (
     <div className="page">
       <PageHead
         title="Settings"
-        lead={
-          manages
-            ? 'The district, its people, and the tokens its scripts use.'
-            : 'What the district is set to. Managers change it, add people and make tokens.'
-        }
+        lead="How the district is set. Managers change it, look after its people and make tokens for its scripts."
       />
       <DistrictFacts district={district} units={caller.units} manages={manages} />
-      {members ? <MemberTable members={members} /> : null}
-      {tokens ? <TokenSection tokens={tokens} timeZone={caller.district.timeZone} /> : null}
+      {manages ? <MemberTable members={await answerMembers(caller)} /> : null}
+      {manages ? <TokenSection tokens={await answerTokens(caller)} timeZone={caller.district.timeZone} /> : null}
     </div>
   );
 }

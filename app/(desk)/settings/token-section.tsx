@@ -31,9 +31,19 @@ function TokenTable({ tokens, timeZone }: { tokens: readonly TokenAnswer[]; time
         { key: 'name', head: 'Name', rowHead: true, cell: (token) => token.name },
         { key: 'prefix', head: 'Begins with', cell: (token) => <code>{token.prefix}…</code> },
         { key: 'scope', head: 'May', cell: (token) => token.scope },
-        { key: 'made', head: 'Made', cell: (token) => moment(token.created_at, timeZone) },
-        { key: 'used', head: 'Last used', cell: (token) => (token.last_used_at ? moment(token.last_used_at, timeZone) : 'never') },
-        { key: 'expires', head: 'Expires', cell: (token) => (token.expires_at ? moment(token.expires_at, timeZone) : 'never') },
+        { key: 'made', oneLine: true, head: 'Made', cell: (token) => moment(token.created_at, timeZone) },
+        {
+          key: 'used',
+          oneLine: true,
+          head: 'Last used',
+          cell: (token) => (token.last_used_at ? moment(token.last_used_at, timeZone) : 'never'),
+        },
+        {
+          key: 'expires',
+          oneLine: true,
+          head: 'Expires',
+          cell: (token) => (token.expires_at ? moment(token.expires_at, timeZone) : 'never'),
+        },
         { key: 'withdraw', head: 'Withdraw', cell: (token) => <WithdrawToken id={token.id} name={token.name} /> },
       ]}
     />

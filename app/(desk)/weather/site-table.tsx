@@ -49,7 +49,13 @@ export function SiteTable({ sites, series, season, units }: SiteTableProps) {
 function siteColumns(series: SiteTableProps['series'], units: UnitSystem): Column<SiteAnswer>[] {
   const days = (site: SiteAnswer) => series.get(site.code) ?? [];
   const columns: Column<SiteAnswer>[] = [
-    { key: 'code', head: 'Site', rowHead: true, cell: (site) => <Go href={`/weather/${encodeURIComponent(site.code)}`}>{site.code}</Go> },
+    {
+      key: 'code',
+      head: 'Site',
+      rowHead: true,
+      oneLine: true,
+      cell: (site) => <Go href={`/weather/${encodeURIComponent(site.code)}`}>{site.code}</Go>,
+    },
     { key: 'name', head: 'Name', cell: (site) => site.name },
     { key: 'source', head: 'Source', cell: (site) => site.source },
     {
@@ -66,14 +72,14 @@ function siteColumns(series: SiteTableProps['series'], units: UnitSystem): Colum
       numeric: true,
       cell: (site) => figure(site.wind_height_m, 'length', units),
     },
-    { key: 'first', head: 'First day', cell: (site) => site.first_day ?? '–' },
-    { key: 'last', head: 'Last day', cell: (site) => site.last_day ?? '–' },
+    { key: 'first', oneLine: true, head: 'First day', cell: (site) => site.first_day ?? '–' },
+    { key: 'last', oneLine: true, head: 'Last day', cell: (site) => site.last_day ?? '–' },
     { key: 'days', head: 'Days', numeric: true, cell: (site) => plain(site.day_count, 0) },
   ];
   if (series.size === 0) return columns;
   return [
     ...columns,
-    { key: 'estimated', head: 'Days with an estimate', numeric: true, cell: (site) => percent(estimatedShare(days(site))) },
+    { key: 'estimated', head: 'Days with an estimate', numeric: true, cell: (site) => percent(estimatedShare(days(site)), 1) },
     {
       key: 'series',
       head: 'Reference ET',
@@ -93,12 +99,12 @@ function coverageColumns(sites: readonly SiteAnswer[]): Column<SiteAnswer>[] {
     sites.some((site) => (site.coverage_days[name] ?? 0) > 0),
   );
   return [
-    { key: 'code', head: 'Site', rowHead: true, cell: (site) => site.code },
+    { key: 'code', head: 'Site', rowHead: true, oneLine: true, cell: (site) => site.code },
     ...present.map((name) => ({
       key: name,
       head: WEATHER_VARIABLES[name].term,
       numeric: true,
-      cell: (site: SiteAnswer) => (site.coverage_days[name] ? percent(site.coverage_days[name] / site.day_count) : 'none'),
+      cell: (site: SiteAnswer) => (site.coverage_days[name] ? percent(site.coverage_days[name] / site.day_count, 1) : 'none'),
     })),
   ];
 }

@@ -29,5 +29,5 @@ export function DemandMapLoader({ run, units }: { run: string; units: UnitSystem
     );
   }
   if (!data) return <Drawing />;
-  return <DemandMap key={`${run} ${units}`} description={data} units={units} />;
+  return <DemandMap key={run} description={data} units={units} />;
 }

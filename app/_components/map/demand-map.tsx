@@ -1,6 +1,7 @@
 'use client';
 
 import { useCallback, useEffect, useMemo, useRef, useState } from 'react';
+import { flushSync } from 'react-dom';
 import type { UnitSystem } from '../../../lib/base/units.ts';
 import type { MapDescription } from '../../../lib/http/contract/run.ts';
 import { CAUTIONS } from '../../../lib/report/cautions.ts';
@@ -13,14 +14,14 @@ import { CanalLegend, LayerSwitches, type Layers } from './layer-switches.tsx';
 import { type ClassChoice, classIndexes, legendRows, limitsOf } from './map-classes.ts';
 import { coloursOf, NO_VALUE, NOUGHT } from './map-look.ts';
 import { MapStage, type StageHandle } from './map-stage.tsx';
-import { dayCounts, valuesOver, type WeekRange, type WeekValues, weekVolumes } from './map-values.ts';
+import { dayCounts, valuesOver, type WeekRange, weekVolumes } from './map-values.ts';
 import { type MapVariable, offeredVariables, unitOfVariable, writeValue } from './map-variables.ts';
 import { ParcelCard } from './parcel-card.tsx';
 import { ParcelSearch } from './parcel-search.tsx';
 import { flowsOver, greatestFlow, type ReachWeeks } from './reach-flows.ts';
 import { rangeWords, SeasonStrip } from './season-strip.tsx';
 import { useDark, useMapAddress } from './use-map-address.ts';
-import { useAnswer, useWeekValues } from './use-map-data.ts';
+import { useAnswer, useValueStore, useWeekValues, type ValueStore } from './use-map-data.ts';
 
 export interface DemandMapProps {
   readonly description: MapDescription;
@@ -31,13 +32,18 @@ const START_CLASSES: ClassChoice = { method: 'quantile', count: 6, own: [], hold
 const START_LAYERS: Layers = { parcels: true, canals: true, stations: true, boundary: true };
 
 /** Everything the map shows for one variable and one range of weeks. */
-function useChoropleth(description: MapDescription, variable: MapVariable, range: WeekRange, choice: ClassChoice) {
+function useChoropleth(given: {
+  description: MapDescription;
+  store: ValueStore;
+  variable: MapVariable;
+  range: WeekRange;
+  choice: ClassChoice;
+}) {
+  const { description, store, variable, range, choice } = given;
   const { area_m2: area } = description.parcels;
   const weeks = description.periods.week;
-  const shape = { weeks: weeks.length, parcels: area.length };
-  const loaded = useWeekValues(description.run, variable.source, shape);
+  const { data: stored, fault } = useWeekValues(store, variable.source);
   const days = useMemo(() => dayCounts(weeks), [weeks]);
-  const stored: WeekValues | null = loaded.variable === variable.source ? loaded.data : null;
   const values = useMemo(
     () => (stored ? valuesOver(stored, variable, range, { days, area }) : null),
     [stored, variable, range, days, area],
@@ -53,7 +59,7 @@ function useChoropleth(description: MapDescription, variable: MapVariable, range
   );
   const breaks = held ?? own;
   const classes = useMemo(() => (values && breaks ? classIndexes(values, breaks, variable.zeroApart) : null), [values, breaks, variable]);
-  return { values, classes, breaks, days, fault: loaded.fault };
+  return { values, classes, breaks, days, fault };
 }
 
 /** The home screen: the season strip above, the map, its legend at one side and the chosen parcel at the other. */
@@ -68,11 +74,15 @@ export function DemandMap({ description, units }: DemandMapProps) {
   const [layers, setLayers] = useState(START_LAYERS);
   const [patterns, setPatterns] = useState(false);
   const [picked, setPicked] = useState<ReadonlySet<number>>(new Set());
-  const theme = useDark() ? 'dark' : 'light';
+  const [paper, setPaper] = useState(false);
+  const dark = useDark();
+  const theme: Theme = dark && !paper ? 'dark' : 'light';
+  const patterned = patterns || paper;
   const stage = useRef<StageHandle | null>(null);
+  const store = useValueStore(description.run, weeks.length, area.length);
 
-  const { values, classes, breaks, days, fault } = useChoropleth(description, variable, range, choice);
-  const gross = useWeekValues(description.run, 'gross_requirement', { weeks: weeks.length, parcels: area.length });
+  const { values, classes, breaks, days, fault } = useChoropleth({ description, store, variable, range, choice });
+  const gross = useWeekValues(store, 'gross_requirement');
   const volumes = useMemo(() => (gross.data ? weekVolumes(gross.data, area) : null), [gross.data, area]);
   const reachWeeks = useAnswer<ReachWeeks>(`/api/v1/runs/${description.run}/reach-values/weeks`);
   const reaches = useMemo(() => {
@@ -81,10 +91,9 @@ export function DemandMap({ description, units }: DemandMapProps) {
   }, [reachWeeks.data, range, days]);
 
   const classCount = breaks ? Math.max(0, breaks.length - 1) : choice.count;
-  const [look, paperLook] = useMemo(() => {
+  const look = useMemo(() => {
     const faint = [...Array(classCount).keys(), NOUGHT, NO_VALUE].map((id) => picked.size > 0 && !picked.has(id));
-    const lookIn = (ink: Theme) => ({ colours: coloursOf(variable.scale, classCount, ink), faint, theme: ink });
-    return [lookIn(theme), lookIn('light')];
+    return { colours: coloursOf(variable.scale, classCount, theme), faint, theme };
   }, [variable.scale, classCount, picked, theme]);
   const rows = useMemo(
     () => (classes && breaks ? legendRows({ classes, breaks, area, variable, units, theme }) : []),
@@ -112,7 +121,7 @@ export function DemandMap({ description, units }: DemandMapProps) {
             rows={rows}
             variable={variable}
             units={units}
-            patterns={patterns}
+            patterns={patterned}
             picked={picked}
             onPick={(index) => setPicked(toggled(picked, index))}
             onClear={() => setPicked(new Set())}
@@ -120,16 +129,15 @@ export function DemandMap({ description, units }: DemandMapProps) {
           <ClassControls choice={choice} breaks={breaks ?? []} variable={variable} units={units} onChoice={setChoice} />
           <CanalLegend most={reaches?.most ?? 0} units={units} theme={theme} />
           <LayerSwitches layers={layers} patterns={patterns} onLayers={setLayers} onPatterns={setPatterns} />
-          <Ways stage={stage} span={span} whole={range.from === 0 && range.to === weeks.length - 1} />
+          <Ways stage={stage} onPaper={setPaper} span={span} whole={range.from === 0 && range.to === weeks.length - 1} />
         </div>
         <MapStage
           description={description}
           classes={classes}
           look={look}
-          paperLook={paperLook}
           reaches={reaches}
           layers={layers}
-          patterns={patterns}
+          patterns={patterned}
           units={units}
           chosen={chosen}
           label={`Map of ${variable.name.toLowerCase()} by parcel, ${words}. The search box opens a parcel without the pointer.`}
@@ -186,12 +194,19 @@ function VariableSelect(props: { variables: readonly MapVariable[]; variable: Ma
   );
 }
 
-/** The same figures as a table, the whole district again, and paper. */
-function Ways({ stage, span, whole }: { stage: React.RefObject<StageHandle | null>; span: { start: string }; whole: boolean }) {
+/** The same figures as a table, the whole district again, and paper: light, with patterns, once that is drawn. */
+function Ways(props: {
+  stage: React.RefObject<StageHandle | null>;
+  onPaper: (on: boolean) => void;
+  span: { start: string };
+  whole: boolean;
+}) {
+  const { stage, onPaper, span, whole } = props;
   const print = async () => {
-    await stage.current?.forPaper(true);
+    flushSync(() => onPaper(true));
+    await stage.current?.settled();
     window.print();
-    await stage.current?.forPaper(false);
+    onPaper(false);
   };
   return (
     <p className={`${styles.ways} no-print`}>

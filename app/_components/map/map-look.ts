@@ -49,20 +49,19 @@ export interface FillLook {
   readonly theme: Theme;
 }
 
-const CLASS: ExpressionSpecification = ['feature-state', 'class'];
-const FAINT = 0.14;
-const FULL = 0.94;
+/** Opacity of the classes that the legend left out, as the last two digits of a colour. */
+const FAINT = '24';
 
-function fillColour({ colours, theme }: FillLook): ExpressionSpecification {
-  const cases = colours.flatMap((colour, index) => [index, colour]);
-  return ['match', CLASS, ...cases, NOUGHT, GROUND[theme].nought, MISSING_COLOUR[theme]] as unknown as ExpressionSpecification;
-}
-
-/** Stays an expression even when every class is full: feature state that arrives before a tile is repainted finds it evaluable. */
-function fillOpacity({ colours, faint }: FillLook): ExpressionSpecification {
-  const opacity = (index: number) => (faint[index] ? FAINT : FULL);
-  const cases = colours.flatMap((_, index) => [index, opacity(index)]);
-  return ['match', CLASS, ...cases, NOUGHT, opacity(colours.length), opacity(colours.length + 1)] as unknown as ExpressionSpecification;
+/**
+ * Colour by class, faintness within the colour. One property that follows feature state, and always an expression: each further one would be
+ * recomputed for every parcel at every step of the season.
+ */
+function fillColour({ colours, faint, theme }: FillLook): ExpressionSpecification {
+  const shown = (colour: string, index: number) => (faint[index] ? colour + FAINT : colour);
+  const cases = colours.flatMap((colour, index) => [index, shown(colour, index)]);
+  const nought = shown(GROUND[theme].nought, colours.length);
+  const missing = shown(MISSING_COLOUR[theme], colours.length + 1);
+  return ['match', ['feature-state', 'class'], ...cases, NOUGHT, nought, missing] as unknown as ExpressionSpecification;
 }
 
 /** Names of the layers a reader can switch, and the style layers each holds. */
@@ -80,6 +79,12 @@ export interface StyleSources {
   readonly boundary: unknown;
 }
 
+/**
+ * The parcels once more, for their outlines: hovering and choosing change the state of one outline, a step of the season that of every fill,
+ * and apart neither recomputes the other.
+ */
+export const OUTLINES = 'outlines';
+
 const NOTHING: FeatureCollection = { type: 'FeatureCollection', features: [] };
 
 /** The whole style of the screen's map. Stations are links over the map, so they are no layer. */
@@ -94,7 +99,11 @@ export function demandStyle(sources: StyleSources, look: FillLook): StyleSpecifi
     colours: look.colours,
     theme: look.theme,
   });
-  return { ...style, layers: style.layers.flatMap((layer) => forScreen(layer, look)) };
+  return {
+    ...style,
+    sources: { ...style.sources, [OUTLINES]: style.sources.parcels },
+    layers: style.layers.flatMap((layer) => forScreen(layer, look)),
+  };
 }
 
 /** The district keeps its boundary as a geometry or as a feature. */
@@ -110,8 +119,9 @@ function forScreen(layer: LayerSpecification, look: FillLook): LayerSpecificatio
   if (layer.id === 'district-outline')
     return [{ id: 'land', type: 'fill', source: 'district', paint: { 'fill-color': ground.land } }, layer];
   if (layer.id === 'parcels' && layer.type === 'fill') {
-    return [{ ...layer, paint: { ...layer.paint, 'fill-color': fillColour(look), 'fill-opacity': fillOpacity(look) } }];
+    return [{ ...layer, paint: { ...layer.paint, 'fill-color': fillColour(look) } }];
   }
+  if (layer.id === 'parcel-edges' && layer.type === 'line') return [{ ...layer, source: OUTLINES }];
   return layer.id === 'canals' ? [layer, overLayer(ground.dash)] : [layer];
 }
 

@@ -13,16 +13,14 @@ import type { ReachFlow } from './reach-flows.ts';
 export interface StageHandle {
   show(longitude: number, latitude: number): void;
   showAll(): void;
-  /** draws for paper (light, with patterns) and resolves when that is on the canvas */
-  forPaper(on: boolean): Promise<void>;
+  /** resolves when all that was asked for is on the canvas */
+  settled(): Promise<void>;
 }
 
 interface StageProps {
   readonly description: MapDescription;
   readonly classes: Uint8Array | null;
   readonly look: FillLook;
-  /** the same in the colours for paper */
-  readonly paperLook: FillLook;
   readonly reaches: { readonly flows: readonly ReachFlow[]; readonly codes: readonly string[]; readonly most: number } | null;
   readonly layers: Layers;
   readonly patterns: boolean;
@@ -50,7 +48,7 @@ export function MapStage(props: StageProps) {
   now.current = props;
   useEffect(() => {
     if (!container.current) return;
-    const { description, look, units } = now.current;
+    const { description, look } = now.current;
     const events = {
       onChoose: (position: number | null) => now.current.onChoose(position),
       onPoint: (position: number | null, x: number, y: number) =>
@@ -60,7 +58,7 @@ export function MapStage(props: StageProps) {
     let gone = false;
     let made: ParcelMap;
     try {
-      made = new ParcelMap({ container: container.current, description, look, units, events });
+      made = new ParcelMap({ container: container.current, description, look, events });
     } catch (error) {
       setFault(
         `The map needs WebGL 2, which this browser does not offer here (${(error as Error).message}). The table below has the same figures.`,
@@ -96,7 +94,7 @@ export function MapStage(props: StageProps) {
 
 /** Tells the map what changed, each part on its own so that a step of the season touches nothing but classes and canals. */
 function useMapState(map: ParcelMap | null, props: StageProps): void {
-  const { classes, look, reaches, layers, patterns, chosen } = props;
+  const { classes, look, reaches, layers, patterns, chosen, units } = props;
   useEffect(() => map?.setLook(look), [map, look]);
   useEffect(() => {
     if (classes) map?.setClasses(classes);
@@ -104,20 +102,18 @@ function useMapState(map: ParcelMap | null, props: StageProps): void {
   useEffect(() => {
     if (reaches) map?.setReaches(reaches.flows, reaches.codes, reaches.most);
   }, [map, reaches]);
+  useEffect(() => map?.setUnits(units), [map, units]);
   useEffect(() => map?.setLayers(layers), [map, layers]);
   useEffect(() => map?.choose(chosen), [map, chosen]);
   // biome-ignore lint/correctness/useExhaustiveDependencies: patterns carry the classes, so they are redrawn with them
-  useEffect(() => void map?.setPatterns(patterns, look), [map, patterns, look, classes]);
+  useEffect(() => map?.setPatterns(patterns, look), [map, patterns, look, classes]);
   useImperativeHandle(
     props.handle,
     () => ({
       show: (longitude, latitude) => map?.show(longitude, latitude),
       showAll: () => map?.showAll(),
-      forPaper: async (on) => {
-        map?.setLook(on ? props.paperLook : look);
-        await map?.setPatterns(on || patterns, look);
-      },
+      settled: async () => map?.settled(),
     }),
-    [map, look, props.paperLook, patterns],
+    [map],
   );
 }

@@ -20,13 +20,8 @@ export interface WeekValues {
 }
 
 /** Fetches every week of a variable. Throws with what the server said, or when the length does not fit the map. */
-export async function fetchWeekValues(
-  run: string,
-  variable: string,
-  shape: { weeks: number; parcels: number },
-  signal: AbortSignal,
-): Promise<WeekValues> {
-  const response = await fetch(`/api/v1/runs/${run}/values/${variable}/weeks`, { signal });
+export async function fetchWeekValues(run: string, variable: string, shape: { weeks: number; parcels: number }): Promise<WeekValues> {
+  const response = await fetch(`/api/v1/runs/${run}/values/${variable}/weeks`);
   if (!response.ok) throw new Error(await refusalText(response));
   const bytes = await response.arrayBuffer();
   if (bytes.byteLength !== shape.weeks * shape.parcels * 4) {

@@ -1,9 +1,10 @@
 /** The MapLibre map of parcels and canals: shapes from tiles, numbers as feature state, so that a step of the season moves no geometry. */
 import * as maplibregl from 'maplibre-gl';
+import type { UnitSystem } from '../../../lib/base/units.ts';
 import type { MapDescription } from '../../../lib/http/contract/run.ts';
 import { PRINT_PATTERNS, patternOf } from '../../../lib/report/colour-scale.ts';
 import { PATTERN_RATIO, patternImage, patternName } from './class-pattern.ts';
-import { demandStyle, type FillLook, LAYER_GROUPS, NO_VALUE, NOUGHT } from './map-look.ts';
+import { demandStyle, type FillLook, LAYER_GROUPS, NO_VALUE, NOUGHT, OUTLINES } from './map-look.ts';
 import type { ReachFlow } from './reach-flows.ts';
 
 maplibregl.setWorkerUrl(new URL('maplibre-gl/dist/maplibre-gl-worker.mjs', import.meta.url).toString());
@@ -21,11 +22,11 @@ interface Options {
   readonly container: HTMLElement;
   readonly description: MapDescription;
   readonly look: FillLook;
-  readonly units: 'metric' | 'us';
   readonly events: ParcelMapEvents;
 }
 
 const PARCELS = { source: 'parcels', sourceLayer: 'parcels' } as const;
+const EDGES = { source: OUTLINES, sourceLayer: 'parcels' } as const;
 const CANALS = { source: 'canals', sourceLayer: 'canals' } as const;
 
 export class ParcelMap {
@@ -36,6 +37,7 @@ export class ParcelMap {
   /** tile ordinal → position in the map arrays */
   private readonly positionOf = new Map<number, number>();
   private readonly stations: maplibregl.Marker[] = [];
+  private readonly scale = new maplibregl.ScaleControl();
   private classes: Uint8Array | null = null;
   private readonly styled: Promise<void>;
   private near: number | null = null;
@@ -63,7 +65,7 @@ export class ParcelMap {
     this.styled = new Promise((resolve) => this.map.once('style.load', () => resolve()));
     this.map.touchZoomRotate.disableRotation();
     this.map.addControl(new maplibregl.NavigationControl({ showCompass: false }), 'top-right');
-    this.map.addControl(new maplibregl.ScaleControl({ unit: options.units === 'us' ? 'imperial' : 'metric' }), 'bottom-left');
+    this.map.addControl(this.scale, 'bottom-left');
     this.listen();
     this.addStations();
     if (navigator.webdriver) Object.assign(window, { __tillwaterMap: this.map });
@@ -104,7 +106,7 @@ export class ParcelMap {
   }
 
   private markParcel(position: number | null, state: Record<string, boolean>): void {
-    if (position !== null) this.map.setFeatureState({ ...PARCELS, id: this.description.parcels.ordinal[position] }, state);
+    if (position !== null) this.map.setFeatureState({ ...EDGES, id: this.description.parcels.ordinal[position] }, state);
   }
 
   private addStations(): void {
@@ -167,6 +169,10 @@ export class ParcelMap {
     }
   }
 
+  setUnits(units: UnitSystem): void {
+    this.scale.setUnit(units === 'us' ? 'imperial' : 'metric');
+  }
+
   setLayers(shown: Readonly<Record<LayerName, boolean>>): void {
     for (const [group, layers] of Object.entries(LAYER_GROUPS)) {
       const visibility = shown[group as LayerName] ? 'visible' : 'none';
@@ -175,8 +181,8 @@ export class ParcelMap {
     for (const marker of this.stations) marker.getElement().hidden = !shown.stations;
   }
 
-  /** Patterns over the fills for paper; resolves when they are drawn. Patterns cannot follow feature state, so they carry the classes by ordinal. */
-  async setPatterns(on: boolean, look: FillLook): Promise<void> {
+  /** Patterns over the fills for paper. They cannot follow feature state, so they carry the classes by ordinal. */
+  setPatterns(on: boolean, look: FillLook): void {
     if (this.map.getLayer('parcel-pattern')) this.map.removeLayer('parcel-pattern');
     if (on && this.classes) {
       for (const pattern of PRINT_PATTERNS.keys()) {
@@ -195,7 +201,12 @@ export class ParcelMap {
         'parcel-edges',
       );
     }
-    await new Promise<void>((resolve) => {
+  }
+
+  /** Resolves when everything asked for is on the canvas; leaves the height it was drawn at for the print sheet, so that nothing is cropped. */
+  settled(): Promise<void> {
+    this.container.parentElement?.style.setProperty('--drawn-height', `${this.container.clientHeight}px`);
+    return new Promise((resolve) => {
       this.map.once('idle', () => resolve());
       this.map.triggerRepaint();
     });

@@ -218,7 +218,8 @@ function StripBars(props: StripProps & { onPoint: (week: number | null) => void 
 function MonthLine({ weeks }: { weeks: readonly WeekSpan[] }) {
   const names = weeks
     .map((week, index) => ({ index, name: monthName(week.end).slice(0, 3), month: week.end.slice(0, 7) }))
-    .filter((week, index, all) => index === 0 || week.month !== all[index - 1].month);
+    .filter((week, index, all) => index === 0 || week.month !== all[index - 1].month)
+    .filter((week) => week.index < weeks.length - 1);
   return (
     <div className={styles.months} aria-hidden="true">
       {names.map((month) => (

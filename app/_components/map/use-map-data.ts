@@ -1,6 +1,6 @@
 'use client';
 
-import { useEffect, useRef, useState } from 'react';
+import { useEffect, useMemo, useState } from 'react';
 import { fetchWeekValues, refusalText, type WeekValues } from './map-values.ts';
 
 interface Loaded<T> {
@@ -8,37 +8,40 @@ interface Loaded<T> {
   readonly fault: string | null;
 }
 
-/** Week values of a variable, kept for as long as the map is open. The former variable's values stay in `data` until the new ones are there. */
-export function useWeekValues(
-  run: string,
-  variable: string,
-  shape: { weeks: number; parcels: number },
-): Loaded<WeekValues> & { variable: string | null } {
-  const kept = useRef(new Map<string, WeekValues>());
-  const [state, setState] = useState<{ data: WeekValues | null; variable: string | null; fault: string | null }>({
-    data: null,
-    variable: null,
-    fault: null,
-  });
-  const { weeks, parcels } = shape;
+export interface ValueStore {
+  readonly load: (variable: string) => Promise<WeekValues>;
+}
+
+/** Fetches the arrays of a run, each at most once for as long as the map is open; a refusal is asked again the next time. */
+export function useValueStore(run: string, weeks: number, parcels: number): ValueStore {
+  return useMemo(() => {
+    const asked = new Map<string, Promise<WeekValues>>();
+    const load = (variable: string) => {
+      const known = asked.get(variable);
+      if (known) return known;
+      const fresh = fetchWeekValues(run, variable, { weeks, parcels });
+      asked.set(variable, fresh);
+      fresh.catch(() => asked.delete(variable));
+      return fresh;
+    };
+    return { load };
+  }, [run, weeks, parcels]);
+}
+
+/** Week values of a variable; null until they are there. */
+export function useWeekValues(store: ValueStore, variable: string): Loaded<WeekValues> {
+  const [state, setState] = useState<Loaded<WeekValues> & { variable: string | null }>({ data: null, variable: null, fault: null });
   useEffect(() => {
-    const known = kept.current.get(variable);
-    if (known) {
-      setState({ data: known, variable, fault: null });
-      return;
-    }
-    const abort = new AbortController();
-    fetchWeekValues(run, variable, { weeks, parcels }, abort.signal)
-      .then((data) => {
-        kept.current.set(variable, data);
-        setState({ data, variable, fault: null });
-      })
-      .catch((error: Error) => {
-        if (!abort.signal.aborted) setState((former) => ({ ...former, fault: error.message }));
-      });
-    return () => abort.abort();
-  }, [run, variable, weeks, parcels]);
-  return state;
+    let wanted = true;
+    store.load(variable).then(
+      (data) => wanted && setState({ data, variable, fault: null }),
+      (error: Error) => wanted && setState({ data: null, variable, fault: error.message }),
+    );
+    return () => {
+      wanted = false;
+    };
+  }, [store, variable]);
+  return state.variable === variable ? state : { data: null, fault: null };
 }
 
 /** One JSON answer; null address asks for nothing. */

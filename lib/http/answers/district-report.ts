@@ -105,7 +105,7 @@ function parcelRow(row: ParcelPeriod, tables: Tables | undefined): ParcelRow {
 
 function reachRow(row: ReachPeriod): ReachRow {
   const capacity = nanFromNull(row.capacity_m3_s);
-  const peakShare = nanFromNull(row.capacity_share);
+  const capacityShare = nanFromNull(row.capacity_share);
   const meanFlow = nanFromNull(row.mean_inflow_m3_s);
   return {
     reach: row.reach,
@@ -121,9 +121,9 @@ function reachRow(row: ReachPeriod): ReachRow {
     meanFlow,
     peakFlow: nanFromNull(row.peak_inflow_m3_s),
     capacity,
-    peakShare,
+    capacityShare,
     meanShare: meanFlow / capacity,
-    status: capacityStatus(peakShare),
+    status: capacityStatus(capacityShare),
   };
 }
 
@@ -134,7 +134,7 @@ function methodParagraphs({ settings, balance }: RunAnswer): string[] {
     balance.max_residual_mm === undefined ? '' : ` The largest daily balance residual is ${balance.max_residual_mm.toExponential(1)} mm.`;
   return [
     `Reference ET of a short surface by ${equation}; weather of each parcel from ${weather}, temperature corrected for elevation.`,
-    'Crop ET by the dual crop coefficient (FAO-56 chapters 7 and 8) with a daily soil-water balance of each parcel.' + residual,
+    `Crop ET by the dual crop coefficient (FAO-56 chapters 7 and 8) with a daily soil-water balance of each parcel.${residual}`,
     'Gross requirement is the net requirement over the application efficiency of the parcel; reach losses compound from the parcels up to the headworks.',
   ];
 }

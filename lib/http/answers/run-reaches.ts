@@ -100,8 +100,9 @@ function flowMembers(flow: CanalPeriod, lossBelow: number) {
     head_inflow_m3: roundOrNull(flow.headInflow, 3),
     mean_inflow_m3_s: round(flow.meanFlow),
     peak_inflow_m3_s: round(flow.peakFlow),
+    busiest_week_inflow_m3_s: round(flow.busiestFlow),
     capacity_m3_s: nullFromNaN(flow.capacity),
-    capacity_share: round(flow.peakShare),
+    capacity_share: round(flow.capacityShare),
   };
 }
 
@@ -125,7 +126,7 @@ export function reachValues(caller: Caller, runId: string, which: keyof typeof K
       reaches,
       periods: periods.map(({ start, end }) => ({ start, end })),
       mean_inflow_m3_s: table((flow) => flow.meanFlow),
-      capacity_share: table((flow) => flow.peakShare),
+      capacity_share: table((flow) => flow.capacityShare),
     };
   });
 }

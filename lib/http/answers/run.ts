@@ -101,8 +101,8 @@ export function periodsWanted(run: RunHead, caller: Caller, wanted: SpanWanted):
   const { from = run.startDate, to = run.endDate } = wanted;
   for (const date of [from, to]) if (!isIsoDate(date)) throw new Malformed(`"${date}" is not a day of the calendar`);
   if (from > to) throw new Malformed(`from ${from} is after to ${to}`);
-  const start = from > run.startDate ? from : run.startDate;
-  const end = to < run.endDate ? to : run.endDate;
+  const [, start] = [run.startDate, from].sort();
+  const [end] = [run.endDate, to].sort();
   const offset = dayNumber(start) - dayNumber(run.startDate);
   return periodsOf(wanted.period, start, end, weekStartOf(run, caller)).map((period) => ({
     ...period,

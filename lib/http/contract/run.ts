@@ -186,7 +186,10 @@ export const reachPeriod = z
     mean_inflow_m3_s: n,
     peak_inflow_m3_s: n.meta({ description: 'greatest daily mean flow of the period' }),
     capacity_m3_s: n,
-    capacity_share: n.meta({ description: 'peak inflow over capacity' }),
+    busiest_week_inflow_m3_s: n.meta({
+      description: 'mean inflow of the busiest seven days of the period (of the whole period when shorter)',
+    }),
+    capacity_share: n.meta({ description: 'busiest-week inflow over capacity: turns within a week level out single days' }),
     parcel_count: z.number().int(),
     area_ha: z.number(),
   })

@@ -35,6 +35,11 @@ export const createImportOperation = operation({
     'multipart/form-data: `kind` (stations, weather, parcels, canals, plantings, soils), one or more `file`, and `options` (JSON). ' +
     'Nothing of the district changes until the import is applied. stations, weather, plantings and soils are CSV; parcels and canals are GeoJSON.',
   scope: 'write',
+  form: {
+    kind: 'stations, weather, parcels, canals, plantings or soils',
+    file: 'one or more files',
+    options: 'ImportOptions as JSON; may be left out',
+  },
   status: 202,
   answer: importAnswer,
   refusals: [413, 415],

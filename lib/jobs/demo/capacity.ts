@@ -16,16 +16,16 @@ export interface SizedReach {
   readonly lossRule: LossRule;
 }
 
-/** Gross need in the peak month over all crops [m³ s⁻¹ per m²]: about 0.95 L/s per hectare. */
-const PEAK_DUTY = 0.95e-7;
-/** A parcel takes water one day in this many at the peak, then all at once. */
-const TURN_DAYS = 8;
+/** Gross need in the peak week over all crops [m³ s⁻¹ per m²]: 1.65 L/s per hectare. Invented district, invented value. */
+const PEAK_DUTY = 1.65e-7;
+/** Share of the weeks in which a parcel takes water at the peak, as one in so many. */
+const TURN_WEEKS = 2;
 /** Standard normal deviate of the design quality, 95 %. */
 const QUALITY = 1.645;
 
 /**
- * Design flow of each reach: the mean need of the parcels below plus a margin for those that draw on the same day, losses rolled up.
- *   Q = Σ pq + U √(Σ p (1 − p) q²),  p = 1/TURN_DAYS
+ * Design flow of each reach: the mean need of the parcels below plus a margin for those that draw in the same week, losses rolled up.
+ *   Q = Σ pq + U √(Σ p (1 − p) q²),  p = 1/TURN_WEEKS
  *
  * @param areas of the parcels of each reach [m²], by reach
  * Source: Clément (1966), La Houille Blanche 5, first demand formula (recalled, not re-read).
@@ -37,7 +37,7 @@ export function demoCapacities(reaches: readonly SizedReach[], areas: readonly (
   return reaches.map((_, reach) => {
     const served = reachesBelow(tree, reach).flatMap((each) => areas[each]);
     const squares = served.reduce((sum, area) => sum + (area * PEAK_DUTY) ** 2, 0);
-    const flow = headInflow[reach] / SECONDS_PER_DAY + QUALITY * Math.sqrt((TURN_DAYS - 1) * squares);
+    const flow = headInflow[reach] / SECONDS_PER_DAY + QUALITY * Math.sqrt((TURN_WEEKS - 1) * squares);
     return standardSize(flow * allowance(reaches[reach].kind, random));
   });
 }

@@ -39,7 +39,7 @@ export const RAIN = {
 };
 
 /** m s⁻¹ at 2 m; coefficient of variation and day-to-day correlation of the logarithm. */
-export const WIND = { mean: { mean: 2.05, amplitude: 0.55, peakDay: SPRING }, variation: 0.4, persistence: 0.35 };
+export const WIND = { mean: { mean: 2.05, amplitude: 0.55, peakDay: SPRING }, variation: 0.26, persistence: 0.35 };
 
 /** Dew point below the minimum temperature [°C]: least in winter, most in summer; almost none on wet days. */
 export const DEW_POINT_DEPRESSION = { dry: { mean: 2.2, amplitude: 1.3, peakDay: SUMMER }, wet: 0.4, noise: 1.1 };

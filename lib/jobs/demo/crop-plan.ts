@@ -187,10 +187,10 @@ export function methodFor(crop: CropPlan, ground: Ground, random: Random): strin
   return draw < 0.62 ? 'furrow' : draw < 0.85 ? 'set-sprinkler' : 'border';
 }
 
-/** Plantings of one parcel in one season (water year `year`), sown within a week or so of the custom. One in thirty is shared by two crops. */
+/** Plantings of one parcel in one season (water year `year`), sown within twelve days of the custom. One in thirty is shared by two crops. */
 export function plantingsOf(parcelCode: string, year: number, crop: CropPlan, random: Random): DemoPlanting[] {
-  const shift = Math.round((random() - 0.5) * 14);
-  const base = { parcelCode, year, shift };
+  const shift = Math.round((random() - 0.5) * 24);
+  const base = { parcelCode, year, shift, haste: Math.round(random() * 14) };
   const draw = random();
   if (crop === 'wheat-double') {
     const second = draw < 0.4 ? 'sweet-maize' : draw < 0.7 ? 'green-bean' : 'sudan';
@@ -212,9 +212,11 @@ interface PlantingPlace {
   readonly year: number;
   /** days from the customary day */
   readonly shift: number;
+  /** days a cut is brought forward, from the customary */
+  readonly haste: number;
 }
 
-function planting({ parcelCode, year, shift }: PlantingPlace, habit: Habit, sequence: number, areaShare = 1): DemoPlanting {
+function planting({ parcelCode, year, shift, haste }: PlantingPlace, habit: Habit, sequence: number, areaShare = 1): DemoPlanting {
   const customary = addDays(`${habit.autumn ? year - 1 : year}-${habit.plantingDay}`, shift);
   const first = `${year - 1}-10-01`;
   const plantingDate = customary < first ? first : customary;
@@ -227,7 +229,7 @@ function planting({ parcelCode, year, shift }: PlantingPlace, habit: Habit, sequ
     calendarCode: habit.calendarCode,
     plantingDate,
     harvestDate: harvest,
-    cutDates: habit.cuts.map((days) => addDays(plantingDate, days)),
+    cutDates: habit.cuts.map((days) => addDays(plantingDate, days - haste)),
     areaShare,
   };
 }

@@ -63,6 +63,7 @@ function columnsOf(season: ParcelSeason, units: UnitSystem, run: string | null):
       key: 'date',
       head: 'Day',
       rowHead: true,
+      oneLine: true,
       cell: (day) => <Go href={hrefWith(`${path}/${day.date}`, {}, { run })}>{day.date}</Go>,
       total: 'Season',
     },

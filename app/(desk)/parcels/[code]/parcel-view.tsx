@@ -5,7 +5,7 @@ import type { ParcelDay, ParcelSeason, RunAnswer } from '../../../../lib/http/co
 import { CalendarStrip } from '../../../_components/calendar-strip.tsx';
 import { DailyChart } from '../../../_components/daily-chart.tsx';
 import { dateRange, longDate } from '../../../_components/date-words.ts';
-import { Caution, EmptyState } from '../../../_components/empty-state.tsx';
+import { Cautions, EmptyState } from '../../../_components/empty-state.tsx';
 import { FallbackShares, FallbackWords, fallbackSharesOf } from '../../../_components/fallback-words.tsx';
 import { Section } from '../../../_components/page-head.tsx';
 import { choosePeriod } from '../../../_components/period-choice.ts';
@@ -74,9 +74,7 @@ export function ParcelView({ run, season, crops, query, weekStart, units }: Parc
         <SiteWeights weights={season.weights} elevation={season.elevation_m} units={units} />
         <FallbackShares shares={fallbackSharesOf(season.days)} of="days" />
       </Section>
-      <Caution>
-        Figures support the district’s decisions. They do not replace its rules, water law, metering or licensed engineering judgement.
-      </Caution>
+      <Cautions which={['decisions', 'estimates']} />
     </div>
   );
 }

@@ -19,7 +19,7 @@ export function PlantingTable({ plantings }: { plantings: ParcelSeason['planting
           cell: (planting) => <Go href={`/crops/${encodeURIComponent(planting.crop)}`}>{planting.crop_name}</Go>,
         },
         { key: 'calendar', head: 'Calendar', cell: (planting) => planting.calendar },
-        { key: 'planted', head: 'Planted', cell: (planting) => longDate(planting.planting_date) },
+        { key: 'planted', oneLine: true, head: 'Planted', cell: (planting) => longDate(planting.planting_date) },
         {
           key: 'harvest',
           head: 'Harvest',

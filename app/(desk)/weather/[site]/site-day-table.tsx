@@ -50,6 +50,7 @@ function columnsOf(site: SiteAnswer, range: DayRange, units: UnitSystem): Column
       key: 'date',
       head: 'Day',
       rowHead: true,
+      oneLine: true,
       cell: (day) => <Go href={`${hrefWith(path, {}, { ...range, day: day.date })}#budget`}>{day.date}</Go>,
     },
     inReaders('tmax', 'Maximum', 'temperature', (day) => day.completed.air_temperature_max_c),

@@ -1,9 +1,10 @@
 import { addDays } from '../../../../../../lib/base/civil-date.ts';
 import type { RunAnswer, WorkingAnswer } from '../../../../../../lib/http/contract/run.ts';
 import { longDate } from '../../../../../_components/date-words.ts';
-import { Caution } from '../../../../../_components/empty-state.tsx';
+import { Caution, EmptyState } from '../../../../../_components/empty-state.tsx';
 import { Go } from '../../../../../_components/go.tsx';
 import { PageHead } from '../../../../../_components/page-head.tsx';
+import { decoded } from '../../../../../_components/page-props.ts';
 import { hrefWith, one, type Query } from '../../../../../_components/query.ts';
 import { groupSteps, partName, WorkingSteps } from '../../../../../_components/working-steps.tsx';
 
@@ -40,6 +41,17 @@ export function WorkingView({ run, working, query }: { run: RunAnswer; working: 
         Coefficients describe well-managed crops in published conditions. Where a field differs, the figures differ with it; they do not
         replace measurement.
       </Caution>
+    </div>
+  );
+}
+
+/** The date is none, or lies outside the run. */
+export function NoSuchDay({ run, date }: { run: RunAnswer; date: string }) {
+  return (
+    <div className="page">
+      <EmptyState title={`${decoded(date)} is not a day of this run`}>
+        Choose a day from {longDate(run.start_date)} to {longDate(run.end_date)}.
+      </EmptyState>
     </div>
   );
 }
