@@ -66,6 +66,8 @@ export function DataTable<Row>(props: DataTableProps<Row>) {
   );
 }
 
+const MAY_WRAP = { whiteSpace: 'normal' } as const;
+
 function HeadCell<Row>({ column, sort }: { column: Column<Row>; sort?: SortState }) {
   const sortable = sort?.keys.includes(column.key);
   const active = sort?.by === column.key;
@@ -82,7 +84,7 @@ function HeadCell<Row>({ column, sort }: { column: Column<Row>; sort?: SortState
     </>
   );
   return (
-    <th scope="col" className={column.numeric ? 'num' : undefined} aria-sort={order}>
+    <th scope="col" className={column.numeric ? 'num' : undefined} style={MAY_WRAP} aria-sort={order}>
       {sortable && sort ? (
         <Go href={sort.href(column.key, active ? !sort.descending : Boolean(column.numeric))}>
           {label}

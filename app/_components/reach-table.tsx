@@ -73,7 +73,7 @@ export function CapacityBar({ share }: { share: number | null }) {
     <>
       {word ? <span className={`tag ${word === 'tight' ? 'caution' : 'bad'}`}>{word}</span> : null}{' '}
       <span className="bar" data-over={share > 1} style={{ '--share': share } as React.CSSProperties}>
-        {percent(share)}
+        {percent(share, Math.abs(share - 1) < 0.005 ? 1 : 0)}
       </span>
     </>
   );

@@ -67,7 +67,7 @@ function MonthTotals({ days, units }: { days: readonly SiteDay[]; units: UnitSys
       rowKey={(month) => month.start}
       foot
       columns={[
-        { key: 'month', head: 'Month', rowHead: true, cell: (month) => periodName('month', month), total: 'Together' },
+        { key: 'month', head: 'Month', rowHead: true, oneLine: true, cell: (month) => periodName('month', month), total: 'Together' },
         { key: 'days', head: 'Days', numeric: true, cell: (month) => month.days.length, total: days.length },
         ...METHODS.map((method) => ({
           key: method.key,

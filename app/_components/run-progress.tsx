@@ -52,7 +52,7 @@ export function RunProgress(props: Progress & { id: string; season: string; mayC
       <div className="spread">
         <p aria-live="polite">
           <strong>Season {props.season}</strong>: {STATES[now.state]}
-          {now.stage ? `, ${now.stage}` : ''}, {Math.round(now.progress * 100)} %
+          {now.state === 'running' && now.stage ? `, ${now.stage}` : ''}, {Math.round(now.progress * 100)} %
         </p>
         {props.mayCancel && !isOver(now.state) ? (
           <button type="button" className="button danger" onClick={cancel}>

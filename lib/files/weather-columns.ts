@@ -47,6 +47,13 @@ export interface WeatherColumns {
   readonly values: readonly ValueColumn[];
 }
 
+/** Columns that cannot be read as they are; still described, so that the user can choose other roles. */
+export interface UnusableColumns {
+  readonly columns: UnderstoodColumn[];
+  readonly date: null;
+  readonly dateOrder: null;
+}
+
 export interface ColumnRequest {
   readonly head: TableHead;
   readonly options: ImportOptions;
@@ -78,11 +85,12 @@ export function isWeatherHeader(header: string): boolean {
 }
 
 /** Gives every column its role and unit; null after a file-level finding. */
-export function bindWeatherColumns(request: ColumnRequest, findings: FindingList): WeatherColumns | null {
+export function bindWeatherColumns(request: ColumnRequest, findings: FindingList): WeatherColumns | UnusableColumns {
   const assigned = assignRoles(request, findings);
   const find = (role: WeatherRole) => assigned.find((column) => column.role === role)?.index ?? -1;
   const date = dateColumns(find, request, findings);
-  if (!date || refusedAsHourly(find('hour'), date, request, findings)) return null;
+  const unusable = (): UnusableColumns => ({ columns: describeColumns(assigned, [], request), date: null, dateOrder: null });
+  if (!date || refusedAsHourly(find('hour'), date, request, findings)) return unusable();
   const dateOrder = dateOrderOf(date, request, findings);
   const values = bindValues(assigned, request, findings);
   if (values.length === 0) {
@@ -92,7 +100,7 @@ export function bindWeatherColumns(request: ColumnRequest, findings: FindingList
       file: request.file,
       advice: 'Choose the role of each column in the column plan.',
     });
-    return null;
+    return unusable();
   }
   return { columns: describeColumns(assigned, values, request), site: find('site'), date, dateOrder, values };
 }

@@ -119,8 +119,8 @@ async function readFile(
   const head = openTable({ file, plan: options.plan ?? {}, recognise: isWeatherHeader }, findings);
   if (!head) return null;
   const columns = bindWeatherColumns({ head, options, context, file: file.name }, findings);
-  const understood = { ...understoodHead(head), columns: columns?.columns ?? [], dateOrder: columns?.dateOrder ?? null };
-  if (!columns || !checkSite(columns, file, reading)) return { understood, header: head.header };
+  const understood = { ...understoodHead(head), columns: columns.columns, dateOrder: columns.dateOrder };
+  if (columns.date === null || !checkSite(columns, file, reading)) return { understood, header: head.header };
   noteColumns(columns, file.name, findings);
   const rows = rowSink(file, head, columns, reading);
   const count = await readRows(

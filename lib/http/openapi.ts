@@ -54,9 +54,14 @@ const SECURITY = {
 
 const refOf = (id: string) => `#/components/schemas/${id}`;
 
-/** Every schema that has an id, by its id. */
+/**
+ * Every schema that has an id and that an operation uses, by its id. Not the global registry itself: the pages and the routes are bundled apart,
+ * and each bundle would put its own copy of every schema there.
+ */
 function componentSchemas(): Json {
-  const { schemas } = z.toJSONSchema(z.globalRegistry, { uri: refOf, io: 'output', unrepresentable: 'any' });
+  const registry = z.registry<{ id?: string; description?: string }>();
+  for (const [schema] of knownSchemas()) registry.add(schema, { ...z.globalRegistry.get(schema) });
+  const { schemas } = z.toJSONSchema(registry, { uri: refOf, io: 'output', unrepresentable: 'any' });
   return Object.fromEntries(Object.entries(schemas).map(([id, schema]) => [id, tidied(schema)]));
 }
 
@@ -80,8 +85,11 @@ function knownSchemas(): [z.ZodType, { id: string }][] {
     if (id) found.set(schema, { id });
     if (schema instanceof z.ZodObject) Object.values(schema.shape).forEach(visit);
     if (schema instanceof z.ZodArray) visit(schema.element);
-    if (schema instanceof z.ZodOptional || schema instanceof z.ZodNullable) visit(schema.unwrap());
+    if (schema instanceof z.ZodRecord) visit(schema.valueType);
+    if (schema instanceof z.ZodUnion) schema.options.forEach(visit);
+    if (schema instanceof z.ZodOptional || schema instanceof z.ZodNullable || schema instanceof z.ZodDefault) visit(schema.unwrap());
   };
+  visit(problem);
   for (const operation of OPERATIONS) for (const schema of [operation.answer, operation.body]) visit(schema);
   return [...found];
 }

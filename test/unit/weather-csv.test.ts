@@ -224,3 +224,11 @@ describe('open data', () => {
     expect(reading.findings.find(({ code }) => code === 'missing-value')?.message).toContain('"-9999" treated as missing');
   });
 });
+
+test('a table without a date column is refused with its columns described, so that a role can be chosen', async () => {
+  const reading = await weather('Station,when,tmax_c\n04127,2024-02-29,20\n');
+  expect(reading.findingCounts.error).toBeGreaterThan(0);
+  expect(reading.understood.columns.map((column) => column.header)).toEqual(['Station', 'when', 'tmax_c']);
+  const planned = await weather('Station,when,tmax_c\n04127,2024-02-29,20\n', { plan: { columns: { when: { role: 'date' } } } });
+  expect(value(planned, 'air_temperature_max_c', '04127', '2024-02-29')).toBe(20);
+});
