@@ -5,6 +5,7 @@ const browser = await findBrowser();
 
 export default defineConfig({
   testDir: '.',
+  testMatch: '*.spec.ts',
   outputDir: 'output/results',
   fullyParallel: false,
   workers: 1,

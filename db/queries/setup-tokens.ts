@@ -14,8 +14,19 @@ export async function hasSetupToken(outside: Outside, hash: string): Promise<boo
   return rows.length > 0;
 }
 
+/** True while any token waits to be used: the installation has no district yet. */
+export async function hasAnySetupToken(outside: Outside): Promise<boolean> {
+  const rows = await outside.select({ hash: setupToken.hash }).from(setupToken).limit(1);
+  return rows.length > 0;
+}
+
 /** Takes the token out of use; false when somebody else was first. */
 export async function deleteSetupToken(outside: Outside, hash: string): Promise<boolean> {
   const rows = await outside.delete(setupToken).where(eq(setupToken.hash, hash)).returning({ hash: setupToken.hash });
   return rows.length > 0;
+}
+
+/** Takes every token out of use. */
+export async function deleteEverySetupToken(outside: Outside): Promise<void> {
+  await outside.delete(setupToken);
 }

@@ -1,7 +1,13 @@
 /** API tokens: shown once, stored as a hash, tied to one district, expiring. */
 import { createHash, randomBytes } from 'node:crypto';
 import { saveToken, type TokenRow } from '../../db/queries/api-tokens.ts';
-import { deleteSetupToken, hasSetupToken, insertSetupToken } from '../../db/queries/setup-tokens.ts';
+import {
+  deleteEverySetupToken,
+  deleteSetupToken,
+  hasAnySetupToken,
+  hasSetupToken,
+  insertSetupToken,
+} from '../../db/queries/setup-tokens.ts';
 import { database } from './database.ts';
 
 export type Scope = 'read' | 'write' | 'administer';
@@ -55,4 +61,14 @@ export function isSetupToken(token: string): Promise<boolean> {
 /** Takes a set-up token out of use; false when it is gone already. */
 export function spendSetupToken(token: string): Promise<boolean> {
   return deleteSetupToken(database().outside, tokenHash(token));
+}
+
+/** True while the first district is still to be made: a set-up token waits to be used. */
+export function isSetUpOpen(): Promise<boolean> {
+  return hasAnySetupToken(database().outside);
+}
+
+/** Takes every set-up token out of use, those of earlier starts too: the first district is there. */
+export function closeSetUp(): Promise<void> {
+  return deleteEverySetupToken(database().outside);
 }

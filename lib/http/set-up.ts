@@ -2,7 +2,7 @@
 import { bearerOf, callerOfRequest, requireScope } from '../access/caller.ts';
 import { addressOf, limitInProcess, UNKNOWN_TOKEN_LIMIT } from '../access/rate-limit.ts';
 import { createPerson, findPersonByEmail } from '../access/sessions.ts';
-import { createSetupToken, isSetupToken, spendSetupToken } from '../access/tokens.ts';
+import { closeSetUp, createSetupToken, isSetupToken, spendSetupToken } from '../access/tokens.ts';
 import { Conflict, Forbidden, Refused } from '../base/errors.ts';
 import { createDistrict } from './answers/district.ts';
 import type { DistrictAnswer, DistrictRequest } from './contract/rest.ts';
@@ -31,7 +31,9 @@ async function setUp(token: string, wanted: DistrictRequest): Promise<DistrictAn
   if (!manager) throw new Refused('the first district needs a manager: give "manager" with name, email and password');
   if (!(await spendSetupToken(token))) throw new Conflict('the set-up token was used by somebody else at the same moment');
   try {
-    return await createDistrict(wanted, await managerOf(manager));
+    const made = await createDistrict(wanted, await managerOf(manager));
+    await closeSetUp();
+    return made;
   } catch (error) {
     await createSetupToken(token);
     throw error;

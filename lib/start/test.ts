@@ -1,12 +1,12 @@
 /** `npm test`: types, formatting, then every test: numbers, database and HTTP under vitest, then the browser journeys on a service of its own. */
-import { type ChildProcess, spawn } from 'node:child_process';
+import { spawn } from 'node:child_process';
 import { randomBytes } from 'node:crypto';
 import { mkdtempSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { freePort } from '../../db/embedded.ts';
+import { startService } from './service.ts';
 
-const READY_TIMEOUT_MS = 300_000;
 const onlyBrowser = process.argv.includes('--only-browser');
 
 function run(script: string, args: readonly string[], env: Record<string, string> = {}): Promise<void> {
@@ -15,42 +15,6 @@ function run(script: string, args: readonly string[], env: Record<string, string
     child.once('error', reject);
     child.once('exit', (code) => (code === 0 ? resolve() : reject(new Error(`${script} ${args.join(' ')} ended with ${code}`))));
   });
-}
-
-/** A service on a free port with a database of its own; its output is shown only when it fails. */
-async function startService(folder: string, env: Record<string, string>): Promise<{ child: ChildProcess; output: () => string }> {
-  const child = spawn(process.execPath, ['--import', 'tsx', 'lib/start/main.ts'], {
-    stdio: ['ignore', 'pipe', 'pipe'],
-    env: { ...process.env, ...env, TILLWATER_DATA: folder, DATABASE_URL: '' },
-  });
-  let output = '';
-  const ready = new Promise<void>((resolve, reject) => {
-    const timer = setTimeout(
-      () => reject(new Error(`the service was not ready in ${READY_TIMEOUT_MS / 1000} s:\n${output}`)),
-      READY_TIMEOUT_MS,
-    );
-    const keep = (chunk: Buffer) => {
-      output = (output + chunk.toString()).slice(-20_000);
-      if (!output.includes('Tillwater is ready')) return;
-      clearTimeout(timer);
-      resolve();
-    };
-    child.stdout?.on('data', keep);
-    child.stderr?.on('data', keep);
-    child.once('exit', (code) => {
-      clearTimeout(timer);
-      reject(new Error(`the service ended with ${code}:\n${output}`));
-    });
-  });
-  await ready;
-  return { child, output: () => output };
-}
-
-async function stopService(child: ChildProcess): Promise<void> {
-  if (child.exitCode !== null) return;
-  const ended = new Promise((resolve) => child.once('exit', resolve));
-  child.kill('SIGTERM');
-  await ended;
 }
 
 async function browserTests(): Promise<void> {
@@ -71,7 +35,7 @@ async function browserTests(): Promise<void> {
     process.stderr.write(`\nThe service's last output:\n${service.output()}\n`);
     throw error;
   } finally {
-    await stopService(service.child);
+    await service.stop();
     rmSync(folder, { recursive: true, force: true });
   }
 }
