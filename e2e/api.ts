@@ -81,7 +81,10 @@ export class Api {
     const rows: Answer['body'][] = [];
     let cursor: string | null = null;
     do {
-      const page: Answer['body'] = await this.ok('GET', `${path}${path.includes('?') ? '&' : '?'}limit=500${cursor ? `&cursor=${cursor}` : ''}`);
+      const page: Answer['body'] = await this.ok(
+        'GET',
+        `${path}${path.includes('?') ? '&' : '?'}limit=500${cursor ? `&cursor=${cursor}` : ''}`,
+      );
       rows.push(...page.items);
       cursor = page.next_cursor;
     } while (cursor);

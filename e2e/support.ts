@@ -1,6 +1,14 @@
 /** What every browser test shares: people signed in, a watch on the console, the API as the second opinion, screens kept, accessibility. */
 import AxeBuilder from '@axe-core/playwright';
-import { type APIRequestContext, test as base, type ConsoleMessage, expect, type Locator, type Page, type Response } from '@playwright/test';
+import {
+  type APIRequestContext,
+  test as base,
+  type ConsoleMessage,
+  expect,
+  type Locator,
+  type Page,
+  type Response,
+} from '@playwright/test';
 import type { RunAnswer } from '../lib/http/contract/run.ts';
 
 export { expect };

@@ -5,7 +5,7 @@ import { join } from 'node:path';
 import { expect, test } from '@playwright/test';
 import { freePort } from '../db/embedded.ts';
 import { type Service, startService } from '../lib/start/service.ts';
-import { Api, csv, featureCollection, newDistrict, square } from './api.ts';
+import { type Api, csv, featureCollection, newDistrict, square } from './api.ts';
 
 const PARCELS = 4000;
 const SEASON = { code: '2024', start_date: '2024-01-01', end_date: '2024-12-31' };
@@ -24,10 +24,22 @@ test.beforeAll(async () => {
   port = String(await freePort());
   service = await start();
   const setup = /tw_[A-Za-z0-9_-]{43}/.exec(service.output())?.[0] as string;
-  const made = await newDistrict(`http://127.0.0.1:${port}`, { setup }, { code: 'survival', name: 'Survival (invented)', time_zone: 'UTC' });
+  const made = await newDistrict(
+    `http://127.0.0.1:${port}`,
+    { setup },
+    { code: 'survival', name: 'Survival (invented)', time_zone: 'UTC' },
+  );
   api = made.api;
   await api.ok('POST', '/api/v1/seasons', SEASON);
-  await api.bring('stations', { 'stations.csv': csv(['site', 'latitude', 'longitude', 'elevation'], [['007', 40.2, -3.1, 600], ['008', 40.4, -3.3, 650]]) });
+  await api.bring('stations', {
+    'stations.csv': csv(
+      ['site', 'latitude', 'longitude', 'elevation'],
+      [
+        ['007', 40.2, -3.1, 600],
+        ['008', 40.4, -3.3, 650],
+      ],
+    ),
+  });
   await api.bring('weather', { 'weather.csv': weatherCsv(['007', '008']) });
 });
 
@@ -100,7 +112,16 @@ function weatherCsv(sites: readonly string[]): string {
     Array.from({ length: 366 }, (_, day) => {
       const warmth = -Math.cos((2 * Math.PI * (day - 20)) / 366);
       const date = new Date(Date.UTC(2024, 0, 1 + day)).toISOString().slice(0, 10);
-      return [site, date, (18 + 12 * warmth + s).toFixed(1), (6 + 8 * warmth + s).toFixed(1), 55, (15 + 9 * warmth).toFixed(1), 2.2, day % 9 === 0 ? 6 : 0];
+      return [
+        site,
+        date,
+        (18 + 12 * warmth + s).toFixed(1),
+        (6 + 8 * warmth + s).toFixed(1),
+        55,
+        (15 + 9 * warmth).toFixed(1),
+        2.2,
+        day % 9 === 0 ? 6 : 0,
+      ];
     }),
   );
   return csv(['site', 'date', 'tmax_c', 'tmin_c', 'rh_mean_pct', 'solar_mj', 'wind_m_s', 'rain_mm'], rows);

@@ -5,6 +5,7 @@ import { answerDistricts } from '../../lib/http/answers/district.ts';
 import { INVENTED_CAUTION } from '../../lib/report/cautions.ts';
 import { AccountMenu } from '../_components/account-menu.tsx';
 import { PreferenceChoice, PreferenceSelect } from '../_components/choice.tsx';
+import { ROLES } from '../_components/district-words.ts';
 import { callerInView, districtInView, runInView } from '../_components/in-view.ts';
 import { Mark } from '../_components/mark.tsx';
 import { PlaceBar, PlaceLine } from '../_components/navigation.tsx';
@@ -20,7 +21,6 @@ const THEMES = [
   { value: 'light', label: 'Light' },
   { value: 'dark', label: 'Dark' },
 ];
-const ROLES = { manager: 'Manager', operator: 'Operator', regulator: 'Regulator', grower: 'Grower' } as const;
 
 /** The season whose standing run the pages show: a choice when the district has several. */
 async function SeasonInView() {
@@ -31,7 +31,7 @@ async function SeasonInView() {
     return <PreferenceSelect cookie="tillwater_season" label="Season in view" options={options} value={value} />;
   }
   const season = district.seasons[0];
-  if (!season) return <Link href="/imports">No season yet</Link>;
+  if (!season) return <Link href="/settings#seasons">No season yet</Link>;
   return run ? (
     <Link href={`/runs/${run.id}`}>{season.name || season.code}</Link>
   ) : (
@@ -70,7 +70,11 @@ export default async function DeskLayout({ children }: { children: ReactNode }) 
             <DistrictInView />
             <div className="head-end small">
               <SeasonInView />
-              <AccountMenu name={caller.name} role={ROLES[caller.role]} email={caller.email}>
+              <AccountMenu
+                name={caller.name}
+                role={ROLES.find((one) => one.role === caller.role)?.name ?? caller.role}
+                email={caller.email}
+              >
                 <PreferenceChoice cookie="tillwater_units" legend="Units" options={UNITS} value={caller.units} />
                 <PreferenceChoice cookie="tillwater_theme" legend="Colours" options={THEMES} value={theme} />
               </AccountMenu>

@@ -89,7 +89,7 @@ function StageBars({
 
 function StageTable({ spans }: { spans: readonly StageSpan[] }) {
   return (
-    <FiguresBelow summary="Stages as a table">
+    <FiguresBelow summary="Stages as a table" printed>
       <DataTable
         caption="Growth stages of the plantings"
         rows={spans}

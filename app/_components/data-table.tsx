@@ -1,5 +1,6 @@
 import { Fragment, type ReactNode } from 'react';
 import { Go } from './go.tsx';
+import { Icon } from './icon.tsx';
 
 export interface Column<Row> {
   readonly key: string;
@@ -9,6 +10,8 @@ export interface Column<Row> {
   readonly numeric?: boolean;
   /** kept on one line: dates, codes */
   readonly oneLine?: boolean;
+  /** several words: kept wide enough for them on a narrow screen */
+  readonly wide?: boolean;
   /** the cell that names its row */
   readonly rowHead?: boolean;
   readonly cell: (row: Row) => ReactNode;
@@ -32,6 +35,8 @@ interface DataTableProps<Row> {
   readonly sort?: SortState;
   readonly foot?: boolean;
   readonly showCaption?: boolean;
+  /** sets units on a line of their own, so that many columns fit */
+  readonly unitsBelow?: boolean;
   /** marks the row in the margin */
   readonly rowClass?: (row: Row) => string | undefined;
 }
@@ -42,7 +47,7 @@ export function DataTable<Row>(props: DataTableProps<Row>) {
   return (
     // biome-ignore lint/a11y/noNoninteractiveTabindex: a region that scrolls must be reachable from the keyboard
     <section className="table-region" aria-label={props.caption} tabIndex={0}>
-      <table className="data">
+      <table className={props.unitsBelow ? 'data units-below' : 'data'}>
         <caption className={props.showCaption ? undefined : 'visually-hidden'}>{props.caption}</caption>
         <thead>
           <tr>
@@ -67,6 +72,7 @@ export function DataTable<Row>(props: DataTableProps<Row>) {
 }
 
 const MAY_WRAP = { whiteSpace: 'normal' } as const;
+const WIDE = { whiteSpace: 'normal', minWidth: '11rem' } as const;
 
 function HeadCell<Row>({ column, sort }: { column: Column<Row>; sort?: SortState }) {
   const sortable = sort?.keys.includes(column.key);
@@ -84,11 +90,11 @@ function HeadCell<Row>({ column, sort }: { column: Column<Row>; sort?: SortState
     </>
   );
   return (
-    <th scope="col" className={column.numeric ? 'num' : undefined} style={MAY_WRAP} aria-sort={order}>
+    <th scope="col" className={column.numeric ? 'num' : undefined} style={column.wide ? WIDE : MAY_WRAP} aria-sort={order}>
       {sortable && sort ? (
         <Go href={sort.href(column.key, active ? !sort.descending : Boolean(column.numeric))}>
           {label}
-          <span aria-hidden="true">{active ? (sort.descending ? '▾' : '▴') : ''}</span>
+          {active ? <Icon name={sort.descending ? 'down' : 'up'} /> : null}
         </Go>
       ) : (
         label
@@ -135,10 +141,10 @@ function Foot<Row>({ columns }: { columns: readonly Column<Row>[] }) {
   );
 }
 
-/** The figures behind a chart, folded away until asked for. */
-export function FiguresBelow({ summary, children }: { summary: string; children: ReactNode }) {
+/** The figures behind a chart, folded away until asked for. `printed` unfolds them on paper; a long table stays folded there. */
+export function FiguresBelow({ summary, printed, children }: { summary: string; printed?: boolean; children: ReactNode }) {
   return (
-    <details className="stack">
+    <details className={printed ? 'stack printed' : 'stack'}>
       <summary>{summary}</summary>
       {children}
     </details>

@@ -12,18 +12,13 @@ export function EmptyState({ title, children }: { title: string; children: React
   );
 }
 
-/** No finished run stands for the season: most screens have nothing to show until there is one. */
+/** No finished run is in use for the season: most screens have nothing to show until there is one. */
 export function NoRun() {
   return (
     <EmptyState title="No season has been computed yet">
-      <ol>
-        <li>
-          <Go href="/imports">Bring in</Go> weather, parcels, canals and plantings.
-        </li>
-        <li>
-          <Go href="/runs">Start a run</Go> of the season. Its figures appear here as soon as it is done.
-        </li>
-      </ol>
+      <p>
+        The figures appear here as soon as a run of the season is done. <Go href="/">See what is there and what is still to do</Go>.
+      </p>
     </EmptyState>
   );
 }
@@ -37,12 +32,13 @@ export function Caution({ children }: { children: ReactNode }) {
   );
 }
 
-/** The product's own cautions, in its own words. */
-export function Cautions({ which }: { which: readonly CautionName[] }) {
+/** The product's own cautions, in its own words, in one block; what the page has to add stands first. */
+export function Cautions({ which, children }: { which: readonly CautionName[]; children?: ReactNode }) {
   return (
-    <div className="stack">
+    <div className="notice cautions" role="note">
+      {children ? <p>{children}</p> : null}
       {cautionTexts(which).map((text) => (
-        <Caution key={text}>{text}</Caution>
+        <p key={text}>{text}</p>
       ))}
     </div>
   );

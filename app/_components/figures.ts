@@ -2,7 +2,15 @@
  * How a figure is written on a screen: converted to the reader's units, with a fixed number of decimals, and a dash for missing.
  */
 import { BORDER_UNITS, fahrenheitFromCelsius, METRES_PER_FOOT, type UnitSystem } from '../../lib/base/units.ts';
-import { formatArea, formatDepth, formatFlow, formatVolume, MISSING_TEXT, numberText } from '../../lib/report/quantity-text.ts';
+import {
+  decimalsFor,
+  formatArea,
+  formatDepth,
+  formatFlow,
+  formatVolume,
+  MISSING_TEXT,
+  numberText,
+} from '../../lib/report/quantity-text.ts';
 
 /** A quantity as the answers carry it: always the metric border unit. */
 export type Quantity = 'depth' | 'volume' | 'flow' | 'area' | 'length' | 'distance' | 'elevation' | 'speed' | 'temperature';
@@ -66,6 +74,29 @@ export function figureWithUnit(value: Maybe, quantity: Quantity, units: UnitSyst
   if (inText) return inText(value ?? Number.NaN, units);
   const text = figure(value, quantity, units);
   return text === MISSING_MARK ? text : `${text} ${unitOf(quantity, units)}`;
+}
+
+const MILLION = 1e6;
+
+/**
+ * A headline: the number and its unit apart, three significant digits. Volumes that stand side by side count in millions from one million on.
+ *
+ * @example headline(3412433, 'volume', 'metric') // ['3.41', 'million m³']
+ */
+export function headline(value: Maybe, quantity: Quantity, units: UnitSystem): [string, string] {
+  if (quantity === 'volume' && units === 'metric' && value && Math.abs(value) >= MILLION) {
+    const millions = value / MILLION;
+    return [numberText(millions, decimalsFor(millions, 3, 2), units), 'million m³'];
+  }
+  const text = figureWithUnit(value, quantity, units);
+  const at = text.indexOf(' ');
+  return at < 0 ? [text, ''] : [text.slice(0, at), text.slice(at + 1)];
+}
+
+/** A flow beside a drawing: three significant digits in the table's unit. @example shortFlow(0.3874, 'metric') // '0.387' */
+export function shortFlow(value: Maybe, units: UnitSystem): string {
+  const flow = inUnits(value, 'flow', units);
+  return numberText(flow, decimalsFor(flow, 3, WRITINGS.flow.decimals[units]), units);
 }
 
 /** A number with fixed decimals and thin spaces between thousands. @example plain(12345.6, 1) // '12\u202f345.6' */

@@ -7,24 +7,32 @@ import { figure, figureWithUnit, inUnits, plain, unitOf } from './figures.ts';
 import { type DrawnReach, drawnTree, mainCanal } from './reach-order.ts';
 
 const BOX: Box = { left: 54, right: 950, top: 30, bottom: 250 };
-const LEGEND: readonly LegendItem[] = [
-  { label: 'Mean inflow of the reach', mark: 'first' },
-  { label: 'Peak daily inflow', mark: 'second' },
-  { label: 'Capacity', mark: 'raw' },
-];
+const MEAN: LegendItem = { label: 'Mean inflow of the reach', mark: 'first' };
+const BUSIEST: LegendItem = { label: 'Mean of its busiest seven days', mark: 'third' };
+const PEAK: LegendItem = { label: 'Peak day', mark: 'second' };
+const CAPACITY: LegendItem = { label: 'Capacity', mark: 'raw' };
 
 type Drawn = DrawnReach<ReachPeriod>;
 type Pick = (row: ReachPeriod) => number | null;
 
+interface FlowProfileProps {
+  readonly reaches: readonly ReachPeriod[];
+  readonly units: UnitSystem;
+  readonly period: string;
+  /** the period holds more than a week, so that its busiest one differs from its mean */
+  readonly long: boolean;
+}
+
 /** Flow along the main canal, from the headworks to its tail. */
-export function FlowProfile({ reaches, units, period }: { reaches: readonly ReachPeriod[]; units: UnitSystem; period: string }) {
+export function FlowProfile({ reaches, units, period, long }: FlowProfileProps) {
   const main = mainCanal(drawnTree(reaches));
   const distance = (km: number) => inUnits(km, 'distance', units);
   const end = distance(main[main.length - 1].to);
   const x = scaleLinear().domain([0, end]).range([BOX.left, BOX.right]);
   const flows = (pick: Pick) => main.map((reach) => inUnits(pick(reach.row), 'flow', units));
-  const [mean, peak, capacity] = [
+  const [mean, busiest, peak, capacity] = [
     flows((row) => row.mean_inflow_m3_s),
+    flows((row) => row.busiest_week_inflow_m3_s),
     flows((row) => row.peak_inflow_m3_s),
     flows((row) => row.capacity_m3_s),
   ];
@@ -38,12 +46,13 @@ export function FlowProfile({ reaches, units, period }: { reaches: readonly Reac
       description={chartWords(main, units)}
       width={960}
       height={292}
-      legend={LEGEND}
-      below={<ProfileTable main={main} units={units} />}
+      legend={long ? [MEAN, BUSIEST, PEAK, CAPACITY] : [MEAN, PEAK, CAPACITY]}
+      below={<ProfileTable main={main} units={units} long={long} />}
     >
       <ValueAxis scale={y} box={BOX} label={`Flow, ${unitOf('flow', units)}`} />
       <path className={markClass('raw')} d={steps(capacity)} />
       <path className={markClass('second')} d={steps(peak)} />
+      {long ? <path className={markClass('third')} d={steps(busiest)} /> : null}
       <path className={markClass('first')} d={steps(mean)} />
       <NamedAxis
         scale={x}
@@ -76,7 +85,7 @@ function round(value: number): number {
   return Math.round(value * 10) / 10;
 }
 
-function ProfileTable({ main, units }: { main: readonly Drawn[]; units: UnitSystem }) {
+function ProfileTable({ main, units, long }: { main: readonly Drawn[]; units: UnitSystem; long: boolean }) {
   const flow = (key: string, head: string, pick: Pick) => ({
     key,
     head,
@@ -85,7 +94,7 @@ function ProfileTable({ main, units }: { main: readonly Drawn[]; units: UnitSyst
     cell: (reach: Drawn) => figure(pick(reach.row), 'flow', units),
   });
   return (
-    <FiguresBelow summary="The profile as a table">
+    <FiguresBelow summary="The profile as a table" printed>
       <DataTable
         caption="Flow along the main canal"
         rows={main}
@@ -101,7 +110,8 @@ function ProfileTable({ main, units }: { main: readonly Drawn[]; units: UnitSyst
           },
           { key: 'to', head: 'To', unit: unitOf('distance', units), numeric: true, cell: (reach) => figure(reach.to, 'distance', units) },
           flow('mean', 'Mean', (row) => row.mean_inflow_m3_s),
-          flow('peak', 'Peak', (row) => row.peak_inflow_m3_s),
+          ...(long ? [flow('busiest', 'Busiest 7 days', (row) => row.busiest_week_inflow_m3_s)] : []),
+          flow('peak', 'Peak day', (row) => row.peak_inflow_m3_s),
           flow('capacity', 'Capacity', (row) => row.capacity_m3_s),
         ]}
       />

@@ -11,12 +11,14 @@ interface ImportFormProps {
   readonly seasons: readonly { readonly code: string; readonly name: string }[];
   readonly sources: readonly string[];
   readonly limitMegabytes: number;
+  /** the kind that the reader came for */
+  readonly wanted?: string;
 }
 
 /** Choose what it is, drop the files, have them read. Nothing of the district changes here. */
 export function ImportForm(props: ImportFormProps) {
   const router = useRouter();
-  const [kind, setKind] = useState<ImportKindText>(IMPORT_KINDS[0]);
+  const [kind, setKind] = useState<ImportKindText>(IMPORT_KINDS.find((one) => one.kind === props.wanted) ?? IMPORT_KINDS[0]);
   const [files, setFiles] = useState<readonly File[]>([]);
   const [sending, setSending] = useState(false);
   const [fault, setFault] = useState<string | null>(null);

@@ -33,6 +33,33 @@ const square = (west: number, south: number, size: number) => ({
 
 export const IMPORT_KINDS: readonly ImportKindText[] = [
   {
+    kind: 'stations',
+    name: 'Weather stations',
+    format: 'CSV',
+    says: 'One row per station. Weather can be read only for stations the district has.',
+    columns: 'site, name, latitude, longitude, elevation, wind_height, zone',
+    template: {
+      name: 'stations-template.csv',
+      text: rows('site,name,latitude,longitude,elevation_m,wind_height_m', '001,Invented station,45.12,-120.15,240,2'),
+    },
+  },
+  {
+    kind: 'weather',
+    name: 'Daily weather',
+    format: 'CSV',
+    says: 'One row per station and day, in any order. Later imports replace earlier values of the same station and day.',
+    columns:
+      'site, date, and any of: air temperature max/min/mean, dew point, vapour pressure, relative humidity max/min/mean, specific humidity, wind speed, solar radiation, sunshine hours, net radiation, precipitation, pressure, reference ET. Units from the headers, or chosen afterwards',
+    template: {
+      name: 'weather-template.csv',
+      text: rows(
+        'site,date,tmax_c,tmin_c,rhmax_pct,rhmin_pct,wind_m_s,solar_mj_m2_d,rain_mm',
+        '001,2023-04-01,18.2,4.1,92,38,2.1,17.5,0',
+        '001,2023-04-02,16.9,5.0,95,44,2.8,15.1,1.2',
+      ),
+    },
+  },
+  {
     kind: 'canals',
     name: 'Canals',
     format: 'GeoJSON',
@@ -86,33 +113,6 @@ export const IMPORT_KINDS: readonly ImportKindText[] = [
           properties: { parcel: '0002', name: null, turnout: 'T1', reach: 'L1', soil: 'loam', method: 'drip', crop: 'alfalfa' },
           geometry: square(-120.135, 45.14, 0.004),
         },
-      ),
-    },
-  },
-  {
-    kind: 'stations',
-    name: 'Weather stations',
-    format: 'CSV',
-    says: 'One row per station. Weather can be read only for stations the district has.',
-    columns: 'site, name, latitude, longitude, elevation, wind_height, zone',
-    template: {
-      name: 'stations-template.csv',
-      text: rows('site,name,latitude,longitude,elevation_m,wind_height_m', '001,Invented station,45.12,-120.15,240,2'),
-    },
-  },
-  {
-    kind: 'weather',
-    name: 'Daily weather',
-    format: 'CSV',
-    says: 'One row per station and day, in any order. Later imports replace earlier values of the same station and day.',
-    columns:
-      'site, date, and any of: air temperature max/min/mean, dew point, vapour pressure, relative humidity max/min/mean, specific humidity, wind speed, solar radiation, sunshine hours, net radiation, precipitation, pressure, reference ET. Units from the headers, or chosen afterwards',
-    template: {
-      name: 'weather-template.csv',
-      text: rows(
-        'site,date,tmax_c,tmin_c,rhmax_pct,rhmin_pct,wind_m_s,solar_mj_m2_d,rain_mm',
-        '001,2023-04-01,18.2,4.1,92,38,2.1,17.5,0',
-        '001,2023-04-02,16.9,5.0,95,44,2.8,15.1,1.2',
       ),
     },
   },

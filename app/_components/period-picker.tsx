@@ -1,5 +1,6 @@
 import { periodName } from './date-words.ts';
 import { Go } from './go.tsx';
+import { Icon } from './icon.tsx';
 import { PERIOD_KINDS, type PeriodChoice } from './period-choice.ts';
 import styles from './period-picker.module.css';
 import { hrefWith, one, type Query } from './query.ts';
@@ -30,20 +31,24 @@ export function PeriodPicker({ path, query, choice }: { path: string; query: Que
         <span className={styles.span}>{periodName('season', choice.period)}</span>
       ) : (
         <div className={styles.which}>
-          <Step href={choice.index > 0 ? at(choice.index - 1) : null} label={`Earlier ${choice.kind}`} sign="‹" />
+          <Step href={choice.index > 0 ? at(choice.index - 1) : null} label={`Earlier ${choice.kind}`} sign="back" />
           <PeriodForm path={path} query={query} choice={choice} />
-          <Step href={choice.index < choice.periods.length - 1 ? at(choice.index + 1) : null} label={`Later ${choice.kind}`} sign="›" />
+          <Step
+            href={choice.index < choice.periods.length - 1 ? at(choice.index + 1) : null}
+            label={`Later ${choice.kind}`}
+            sign="forward"
+          />
         </div>
       )}
     </div>
   );
 }
 
-function Step({ href, label, sign }: { href: string | null; label: string; sign: string }) {
+function Step({ href, label, sign }: { href: string | null; label: string; sign: 'back' | 'forward' }) {
   if (!href) return null;
   return (
-    <Go className="button" href={href} aria-label={label}>
-      {sign}
+    <Go className="button" href={href} aria-label={label} title={label}>
+      <Icon name={sign} />
     </Go>
   );
 }

@@ -2,7 +2,7 @@ import { scaleLinear, scaleSqrt } from 'd3-scale';
 import type { UnitSystem } from '../../lib/base/units.ts';
 import type { ReachPeriod } from '../../lib/http/contract/run.ts';
 import { ChartFrame } from './chart-frame.tsx';
-import { figure, figureWithUnit, inUnits, percent, unitOf } from './figures.ts';
+import { figureWithUnit, inUnits, percent, shortFlow, unitOf } from './figures.ts';
 import styles from './reach-diagram.module.css';
 import { type DrawnReach, drawnTree } from './reach-order.ts';
 import { capacityWord } from './reach-table.tsx';
@@ -57,6 +57,10 @@ export function ReachDiagram({ reaches, units, period }: { reaches: readonly Rea
   );
 }
 
+function shareWords(row: ReachPeriod): string {
+  return row.capacity_share === null ? 'capacity not known' : `busiest seven days ${percent(row.capacity_share)} of capacity`;
+}
+
 interface ReachLineProps {
   readonly reach: Drawn;
   readonly x: (km: number) => number;
@@ -72,7 +76,7 @@ function ReachLine({ reach, x, y, width, units }: ReachLineProps) {
   const className = word === 'over capacity' ? styles.over : word === 'tight' ? styles.tight : styles.within;
   return (
     <g>
-      <title>{`${row.name}: mean ${figureWithUnit(row.mean_inflow_m3_s, 'flow', units)}, peak ${percent(row.capacity_share)} of capacity`}</title>
+      <title>{`${row.name}: mean ${figureWithUnit(row.mean_inflow_m3_s, 'flow', units)}, ${shareWords(row)}`}</title>
       {parentLine !== line ? (
         <path className={styles.drop} d={`M${x(reach.from)} ${y(parentLine)}V${y(line)}`} strokeWidth={Math.min(stroke, 4)} />
       ) : null}
@@ -98,7 +102,7 @@ function SlantedLabel({ reach, x, y, units }: { reach: Drawn; x: number; y: numb
   return (
     <text className={styles.label} transform={`translate(${x} ${y}) rotate(-38)`}>
       {sign}
-      {reach.row.reach} {figure(reach.row.mean_inflow_m3_s, 'flow', units)}
+      {reach.row.reach} {shortFlow(reach.row.mean_inflow_m3_s, units)}
     </text>
   );
 }
@@ -121,7 +125,7 @@ function BranchLabel({
   return (
     <text className={styles.label} x={x(last.to) + 8} y={y(first.line) + 4}>
       {SIGNS[word] ?? ''}
-      {first.row.name || first.row.reach} {figure(first.row.mean_inflow_m3_s, 'flow', units)}
+      {first.row.name || first.row.reach} {shortFlow(first.row.mean_inflow_m3_s, units)}
       {word ? ` ${word}` : ''}
     </text>
   );
@@ -146,8 +150,8 @@ function DistanceScale({ x, longest, units }: { x: (km: number) => number; longe
 function Key() {
   return (
     <p className="small muted">
-      Solid: within capacity. Long dashes and ◆: tight, 90 % or more. Short dashes and ▲: over capacity. The number beside a reach is its
-      mean inflow.
+      Solid: within capacity. Long dashes and ◆: tight, 90 % or more. Short dashes and ▲: over capacity. A reach is held against its
+      capacity by the mean of its busiest seven days. The number beside a reach is its mean inflow.
     </p>
   );
 }

@@ -15,11 +15,27 @@ export function capacityWord(share: number | null): string {
 }
 
 /** The tree as a table: each reach under the one that feeds it. */
-export function ReachTable({ reaches, units, period }: { reaches: readonly ReachPeriod[]; units: UnitSystem; period: string }) {
-  return <DataTable caption={`Reaches, ${period}`} rows={inTreeOrder(reaches)} rowKey={(row) => row.reach} columns={columnsOf(units)} />;
+export function ReachTable({ reaches, units, period, long }: ReachTableProps) {
+  return (
+    <DataTable
+      caption={`Reaches, ${period}`}
+      rows={inTreeOrder(reaches)}
+      rowKey={(row) => row.reach}
+      columns={columnsOf(units, long)}
+      unitsBelow
+    />
+  );
 }
 
-function columnsOf(units: UnitSystem): Column<ReachPeriod>[] {
+interface ReachTableProps {
+  readonly reaches: readonly ReachPeriod[];
+  readonly units: UnitSystem;
+  readonly period: string;
+  /** the period holds more than a week, so that its busiest one differs from its mean */
+  readonly long: boolean;
+}
+
+function columnsOf(units: UnitSystem, long: boolean): Column<ReachPeriod>[] {
   const volume = (key: string, head: string, pick: (row: ReachPeriod) => number | null): Column<ReachPeriod> => ({
     key,
     head,
@@ -48,10 +64,21 @@ function columnsOf(units: UnitSystem): Column<ReachPeriod>[] {
     volume('loss', 'Lost', (row) => row.reach_loss_m3),
     volume('inflow', 'Head inflow', (row) => row.head_inflow_m3),
     flow('mean', 'Mean', (row) => row.mean_inflow_m3_s),
+    ...(long ? [flow('busiest', 'Busiest 7 days', (row) => row.busiest_week_inflow_m3_s)] : []),
     flow('peak', 'Peak day', (row) => row.peak_inflow_m3_s),
     flow('capacity', 'Capacity', (row) => row.capacity_m3_s),
-    { key: 'share', head: 'Peak ÷ capacity', numeric: true, cell: (row) => <CapacityBar share={row.capacity_share} /> },
+    {
+      key: 'share',
+      head: shareHead(long),
+      numeric: true,
+      cell: (row) => <CapacityBar share={row.capacity_share} />,
+    },
   ];
+}
+
+/** What a reach is held against its capacity by: within a week, its mean. */
+export function shareHead(long: boolean): string {
+  return long ? 'Busiest 7 days ÷ capacity' : 'Mean ÷ capacity';
 }
 
 function ReachName({ row }: { row: ReachPeriod }) {
@@ -76,56 +103,5 @@ export function CapacityBar({ share }: { share: number | null }) {
         {percent(share, Math.abs(share - 1) < 0.005 ? 1 : 0)}
       </span>
     </>
-  );
-}
-
-/** Reaches named before the rest is folded away. */
-const NAMED_AT_ONCE = 8;
-
-function OverList({ rows, units }: { rows: readonly ReachPeriod[]; units: UnitSystem }) {
-  return (
-    <ul>
-      {rows.map((row) => (
-        <li key={row.reach}>
-          {row.name || row.reach}: peak {figure(row.peak_inflow_m3_s, 'flow', units)} of {figure(row.capacity_m3_s, 'flow', units)}{' '}
-          {unitOf('flow', units)} ({percent(row.capacity_share)})
-        </li>
-      ))}
-    </ul>
-  );
-}
-
-/** Names the reaches that cannot carry what is asked of them in the period, and those near it. */
-export function CapacityWarning({ reaches, period, units }: { reaches: readonly ReachPeriod[]; period: string; units: UnitSystem }) {
-  const over = reaches
-    .filter((row) => capacityWord(row.capacity_share) === 'over capacity')
-    .sort((a, b) => (b.capacity_share ?? 0) - (a.capacity_share ?? 0));
-  const tight = reaches.filter((row) => capacityWord(row.capacity_share) === 'tight');
-  if (over.length === 0 && tight.length === 0) {
-    return <p className="notice good">Every reach of known capacity can carry what is asked of it, {period}.</p>;
-  }
-  return (
-    <div className={`notice ${over.length ? 'bad' : 'caution'}`} role="status">
-      {over.length ? (
-        <>
-          <p>
-            <strong>
-              {over.length === 1 ? 'One reach' : `${over.length} reaches`} cannot carry the demand, {period}.
-            </strong>{' '}
-            Spread deliveries over more days, cut demand below, or carry the excess another way:
-          </p>
-          <OverList rows={over.slice(0, NAMED_AT_ONCE)} units={units} />
-          {over.length > NAMED_AT_ONCE ? (
-            <details>
-              <summary>The other {over.length - NAMED_AT_ONCE}</summary>
-              <OverList rows={over.slice(NAMED_AT_ONCE)} units={units} />
-            </details>
-          ) : null}
-        </>
-      ) : null}
-      {tight.length ? (
-        <p>Tight (90 % or more): {tight.map((row) => `${row.name || row.reach} ${percent(row.capacity_share)}`).join(', ')}.</p>
-      ) : null}
-    </div>
   );
 }

@@ -2,6 +2,7 @@
 
 import { useRouter } from 'next/navigation';
 import { useState } from 'react';
+import { ConfirmButton } from './dialog.tsx';
 import { messageOf, sendJson } from './problem-text.ts';
 
 interface Made {
@@ -82,26 +83,17 @@ function ShownOnce({ name, token }: { name: string; token: string }) {
 /** Withdraws a token after asking once more. */
 export function WithdrawToken({ id, name }: { id: string; name: string }) {
   const router = useRouter();
-  const [asked, setAsked] = useState(false);
-  const [fault, setFault] = useState<string | null>(null);
-  async function withdraw() {
-    try {
-      await sendJson('DELETE', `/api/v1/tokens/${id}`);
-      router.refresh();
-    } catch (error) {
-      setFault(messageOf(error));
-    }
-  }
+  const withdraw = async () => {
+    await sendJson('DELETE', `/api/v1/tokens/${id}`);
+    router.refresh();
+  };
   return (
-    <>
-      <button type="button" className="button quiet" onClick={asked ? withdraw : () => setAsked(true)} onBlur={() => setAsked(false)}>
-        {asked ? `Withdraw “${name}” for good?` : 'Withdraw'}
-      </button>
-      {fault ? (
-        <span className="fault" role="alert">
-          {fault}
-        </span>
-      ) : null}
-    </>
+    <ConfirmButton
+      label="Withdraw"
+      title={`Withdraw the token “${name}”?`}
+      says="Scripts that send it are refused from now on. A withdrawn token cannot be brought back."
+      act="Withdraw"
+      onAct={withdraw}
+    />
   );
 }

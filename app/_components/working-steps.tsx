@@ -114,6 +114,7 @@ function WeatherIn({ working }: { working: WorkingAnswer }) {
     >
       <DataTable
         caption="Weather values by site with their weights"
+        unitsBelow
         rows={working.inputs}
         rowKey={(input) => input.site}
         columns={[

@@ -25,22 +25,26 @@ export async function createDistrictFor(request: Request, wanted: DistrictReques
   return createDistrict(wanted, managerId);
 }
 
-/** The token is spent first, so that it makes one district only, and given back when nothing was made. */
+/** The token is spent first, so that it makes one district only, and given back when nothing was made; afterwards no other may be used. */
 async function setUp(token: string, wanted: DistrictRequest): Promise<DistrictAnswer> {
   const { manager } = wanted;
   if (!manager) throw new Refused('the first district needs a manager: give "manager" with name, email and password');
   if (!(await spendSetupToken(token))) throw new Conflict('the set-up token was used by somebody else at the same moment');
-  try {
-    const made = await createDistrict(wanted, await managerOf(manager));
-    await closeSetUp();
-    return made;
-  } catch (error) {
+  const made = await createDistrictWith(manager, wanted).catch(async (error) => {
     await createSetupToken(token);
     throw error;
-  }
+  });
+  await closeSetUp();
+  return made;
 }
 
+async function createDistrictWith(manager: Manager, wanted: DistrictRequest): Promise<DistrictAnswer> {
+  return createDistrict(wanted, await managerOf(manager));
+}
+
+type Manager = NonNullable<DistrictRequest['manager']>;
+
 /** The person of this address; made when nobody has it. */
-async function managerOf(manager: NonNullable<DistrictRequest['manager']>): Promise<string> {
+async function managerOf(manager: Manager): Promise<string> {
   return (await findPersonByEmail(manager.email))?.userId ?? createPerson(manager);
 }

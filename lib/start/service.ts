@@ -43,7 +43,7 @@ function readiness(child: ChildProcess, output: () => string): Promise<void> {
       act();
     };
     const look = () => {
-      if (output().includes('Tillwater is ready')) done(resolve);
+      if (output().includes('Stop with Ctrl-C')) done(resolve); // the launcher's last line
     };
     const ended = (code: number | null) => done(() => reject(new Error(`the service ended with ${code}:\n${output()}`)));
     const timer = setTimeout(

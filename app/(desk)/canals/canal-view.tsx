@@ -1,8 +1,9 @@
 import type { UnitSystem } from '../../../lib/base/units.ts';
 import type { ReachPeriod, RunAnswer } from '../../../lib/http/contract/run.ts';
+import { CapacityWarning } from '../../_components/capacity-warning.tsx';
 import { periodName } from '../../_components/date-words.ts';
-import { Caution, Cautions, EmptyState } from '../../_components/empty-state.tsx';
-import { figure, unitOf } from '../../_components/figures.ts';
+import { Cautions, EmptyState } from '../../_components/empty-state.tsx';
+import { headline, type Quantity } from '../../_components/figures.ts';
 import { FlowProfile } from '../../_components/flow-profile.tsx';
 import { Go } from '../../_components/go.tsx';
 import { PageHead, Section } from '../../_components/page-head.tsx';
@@ -11,7 +12,7 @@ import { PeriodPicker } from '../../_components/period-picker.tsx';
 import type { Query } from '../../_components/query.ts';
 import { ReachDiagram } from '../../_components/reach-diagram.tsx';
 import { headsOf } from '../../_components/reach-order.ts';
-import { CapacityBar, CapacityWarning, ReachTable } from '../../_components/reach-table.tsx';
+import { CapacityBar, ReachTable, shareHead } from '../../_components/reach-table.tsx';
 
 interface CanalViewProps {
   readonly run: RunAnswer;
@@ -25,6 +26,8 @@ interface CanalViewProps {
 /** What every reach must carry in a period: warnings, line diagram, profile, table. */
 export function CanalView({ run, reaches, choice, query, grower, units }: CanalViewProps) {
   const period = periodName(choice.kind, choice.period);
+  const long = choice.kind !== 'week';
+  const shown = { reaches, units, period, long };
   return (
     <div className="page">
       <PageHead
@@ -40,45 +43,42 @@ export function CanalView({ run, reaches, choice, query, grower, units }: CanalV
         <NoReaches grower={grower} />
       ) : (
         <>
-          <CapacityWarning reaches={reaches} period={period} units={units} />
-          <Headworks reaches={reaches} units={units} />
+          <CapacityWarning {...shown} />
+          <Headworks reaches={reaches} units={units} long={long} />
           <Section id="diagram-section" title="Line diagram">
             <ReachDiagram reaches={reaches} units={units} period={period} />
           </Section>
           <Section id="profile-section" title="Profile of the main canal">
-            <FlowProfile reaches={reaches} units={units} period={period} />
+            <FlowProfile {...shown} />
           </Section>
           <Section
             id="table"
             title="Reach by reach"
-            note="A reach stands under the one that feeds it. Inflow = taken by its turnouts + lost in the reach + inflow of the reaches it feeds."
+            note="A reach stands under the one that feeds it. Inflow = taken by its turnouts + lost in the reach + inflow of the reaches it feeds. It is held against its capacity by the mean of its busiest seven days, because turns within a week level out single days; the peak day stands beside it."
           >
-            <ReachTable reaches={reaches} units={units} period={period} />
+            <ReachTable {...shown} />
           </Section>
         </>
       )}
-      <Caution>
-        These flows follow from computed demand. They do not replace canal operation rules, measured flow, water law or licensed engineering
-        judgement, and leave out the time that water takes to arrive.
-      </Caution>
-      <Cautions which={['decisions', 'losses']} />
+      <Cautions which={['decisions', 'losses']}>
+        These flows follow from computed demand. They do not replace canal operation rules or measured flow, and leave out the time that
+        water takes to arrive.
+      </Cautions>
     </div>
   );
 }
 
-function Headworks({ reaches, units }: { reaches: readonly ReachPeriod[]; units: UnitSystem }) {
+function Headworks({ reaches, units, long }: { reaches: readonly ReachPeriod[]; units: UnitSystem; long: boolean }) {
   return headsOf(reaches).map((head) => (
     <dl key={head.reach} className="figures">
-      <Big
-        name={`Diversion at ${head.name || head.reach}`}
-        value={figure(head.head_inflow_m3, 'volume', units)}
-        unit={unitOf('volume', units)}
-      />
-      <Big name="Mean flow" value={figure(head.mean_inflow_m3_s, 'flow', units)} unit={unitOf('flow', units)} />
-      <Big name="Delivered to turnouts" value={figure(head.demand_below_m3, 'volume', units)} unit={unitOf('volume', units)} />
-      <Big name="Lost on the way" value={figure(head.loss_below_m3, 'volume', units)} unit={unitOf('volume', units)} />
+      <Big name={`Diversion at ${head.name || head.reach}`} value={head.head_inflow_m3} quantity="volume" units={units} />
+      <Big name="Mean flow" value={head.mean_inflow_m3_s} quantity="flow" units={units} />
+      {long ? <Big name="Mean of its busiest seven days" value={head.busiest_week_inflow_m3_s} quantity="flow" units={units} /> : null}
+      <Big name="Peak day" value={head.peak_inflow_m3_s} quantity="flow" units={units} />
+      <Big name="Delivered to turnouts" value={head.demand_below_m3} quantity="volume" units={units} />
+      <Big name="Lost on the way" value={head.loss_below_m3} quantity="volume" units={units} />
       <div>
-        <dt>Peak ÷ capacity of the first reach</dt>
+        <dt>{shareHead(long)}, first reach</dt>
         <dd>
           <CapacityBar share={head.capacity_share} />
         </dd>
@@ -87,12 +87,13 @@ function Headworks({ reaches, units }: { reaches: readonly ReachPeriod[]; units:
   ));
 }
 
-function Big({ name, value, unit }: { name: string; value: string; unit: string }) {
+function Big(props: { name: string; value: number | null; quantity: Quantity; units: UnitSystem }) {
+  const [number, unit] = headline(props.value, props.quantity, props.units);
   return (
     <div>
-      <dt>{name}</dt>
+      <dt>{props.name}</dt>
       <dd>
-        {value} <span className="unit">{unit}</span>
+        {number} <span className="unit">{unit}</span>
       </dd>
     </div>
   );

@@ -52,7 +52,7 @@ function Interpolation({ run }: { run: RunAnswer | null }) {
       </p>
       {run ? (
         <DataTable
-          caption={`Settings of the run that stands, season ${run.season}`}
+          caption={`Settings of the run in use, season ${run.season}`}
           showCaption
           rows={SETTINGS}
           rowKey={(setting) => setting.key}
@@ -75,7 +75,7 @@ function Canals() {
     <Section
       id="canals"
       title="Canal losses and capacity"
-      note={`Inflow of a reach = what it passes on + what its turnouts take + what it loses; sums go up the tree to the headworks. A reach is tight from ${percent(TIGHT_SHARE)} of its capacity and over above it, judged by the day that asks most.`}
+      note={`Inflow of a reach = what it passes on + what its turnouts take + what it loses; sums go up the tree to the headworks. A reach is tight from ${percent(TIGHT_SHARE)} of its capacity and over above it, judged by the mean of its busiest seven days, because turns within a week level out single days.`}
     >
       <p className="formula">I = a O + b T + c, with O outflow, T taken by turnouts; a, b, c from the loss rule of the reach</p>
       <DataTable

@@ -73,7 +73,7 @@ function columnsOf(list: ParcelListResult, units: UnitSystem, detail: Readonly<R
       cell: (row) => <Go href={hrefWith(`/parcels/${encodeURIComponent(row.code)}`, {}, detail)}>{row.code}</Go>,
       total: 'All found',
     },
-    { key: 'crops', head: 'Crop', cell: (row) => row.crops || '–' },
+    { key: 'crops', head: 'Crop', wide: true, cell: (row) => row.crops || '–' },
     {
       key: 'area',
       head: 'Area',
@@ -143,11 +143,11 @@ function Pager({ list, query }: { list: ParcelListResult; query: Query }) {
   const to = (page: number) => hrefWith('/parcels', query, { page: String(page) });
   return (
     <nav className="pager" aria-label="Pages of the list">
-      {list.page > 1 ? <Go href={to(list.page - 1)}>‹ Previous</Go> : null}
+      {list.page > 1 ? <Go href={to(list.page - 1)}>Previous</Go> : null}
       <span>
         Page {list.page} of {list.pageCount}
       </span>
-      {list.page < list.pageCount ? <Go href={to(list.page + 1)}>Next ›</Go> : null}
+      {list.page < list.pageCount ? <Go href={to(list.page + 1)}>Next</Go> : null}
     </nav>
   );
 }

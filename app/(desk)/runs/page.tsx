@@ -15,7 +15,7 @@ export default async function RunsPage() {
     <div className="page">
       <PageHead
         title="Runs"
-        lead="A run computes a whole season. The newest finished run of a season stands: every screen shows its figures."
+        lead="A run computes a whole season. The newest finished run of a season is in use: every screen shows its figures."
       />
       <RunList runs={runs} timeZone={caller.district.timeZone} mayCancel={choices.allowed} />
       <StartRun {...choices} />

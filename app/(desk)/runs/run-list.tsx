@@ -2,7 +2,7 @@ import type { RunAnswer } from '../../../lib/http/contract/run.ts';
 import { type Column, DataTable } from '../../_components/data-table.tsx';
 import { moment } from '../../_components/date-words.ts';
 import { EmptyState } from '../../_components/empty-state.tsx';
-import { percent, plain, significant } from '../../_components/figures.ts';
+import { MISSING_MARK, percent, plain, significant } from '../../_components/figures.ts';
 import { Go } from '../../_components/go.tsx';
 import { Section } from '../../_components/page-head.tsx';
 import { RunProgress } from '../../_components/run-progress.tsx';
@@ -47,8 +47,7 @@ function columnsOf(timeZone: string): Column<RunAnswer>[] {
     { key: 'parcels', head: 'Parcels', numeric: true, cell: (run) => plain(run.parcel_count, 0) },
     { key: 'method', head: 'Reference ET', cell: (run) => (run.settings.method === 'fao56' ? 'FAO-56' : 'ASCE 2005') },
     { key: 'seconds', head: 'Took', unit: 's', numeric: true, cell: (run) => plain(run.balance.seconds, 1) },
-    { key: 'residual', head: 'Balance residual', unit: 'mm', numeric: true, cell: (run) => significant(run.balance.max_residual_mm, 2) },
-    { key: 'roll', head: 'Roll-up check', unit: 'relative', numeric: true, cell: (run) => significant(run.balance.roll_up_relative, 2) },
+    { key: 'balance', head: 'Water balance', oneLine: true, cell: (run) => <Closes residual={run.balance.max_residual_mm} /> },
     { key: 'estimated', head: 'Most used estimate', numeric: true, cell: (run) => percent(mostUsed(run)) },
   ];
 }
@@ -57,9 +56,19 @@ export function RunState({ run }: { run: RunAnswer }) {
   const tone = { done: 'good', failed: 'bad', cancelled: '', queued: '', running: 'caution' }[run.state];
   return (
     <>
-      <span className={`tag ${tone}`}>{STATES[run.state]}</span> {run.standing ? <strong>stands</strong> : null}
+      <span className={`tag ${tone}`}>{STATES[run.state]}</span> {run.standing ? <strong>in use</strong> : null}
     </>
   );
+}
+
+/** Residual up to which a balance closes: rounding of double precision over a season stays far below it [mm]. */
+const CLOSES_WITHIN = 1e-6;
+
+function Closes({ residual }: { residual: number | undefined }) {
+  if (residual === undefined) return MISSING_MARK;
+  const text = `${significant(residual, 1)} mm`;
+  if (residual <= CLOSES_WITHIN) return <span className="muted">closes to {text}</span>;
+  return <span className="tag bad">off by up to {text}</span>;
 }
 
 function mostUsed(run: RunAnswer): number | undefined {

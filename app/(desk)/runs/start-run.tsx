@@ -17,12 +17,20 @@ export function StartRun({ district, soils, methods, sources, allowed }: StartRu
   if (!allowed) return <p className="muted">Operators and managers start runs.</p>;
   const { parcels, sites } = district.counts;
   if (district.seasons.length === 0 || parcels === 0 || sites === 0) {
-    const missing = [district.seasons.length ? null : 'a season', parcels ? null : 'parcels', sites ? null : 'weather sites']
-      .filter(Boolean)
-      .join(', ');
+    const missing: [string, string][] = [
+      ...(district.seasons.length === 0 ? [['/settings#seasons', 'add a season'] as [string, string]] : []),
+      ...(sites === 0 ? [['/imports?kind=stations', 'bring weather stations and their weather'] as [string, string]] : []),
+      ...(parcels === 0 ? [['/imports?kind=parcels', 'bring parcels'] as [string, string]] : []),
+    ];
     return (
       <EmptyState title="A run cannot start yet">
-        The district has no {missing}. <Go href="/imports">Bring them in</Go> first; a season comes with its plantings or through the API.
+        <ol>
+          {missing.map(([href, name]) => (
+            <li key={href}>
+              First <Go href={href}>{name}</Go>.
+            </li>
+          ))}
+        </ol>
       </EmptyState>
     );
   }

@@ -1,38 +1,43 @@
 import { DataTable } from '../../_components/data-table.tsx';
+import { ROLES } from '../../_components/district-words.ts';
+import { AddMember, ChangeMember, type Member, RemoveMember } from '../../_components/member-form.tsx';
 import { Section } from '../../_components/page-head.tsx';
 
-interface Member {
-  readonly user_id: string;
-  readonly name: string;
-  readonly email: string;
-  readonly role: string;
-  readonly parcels: readonly string[];
+interface MemberTableProps {
+  readonly members: readonly Member[];
+  readonly district: string;
+  /** the reader, who is warned before removing himself */
+  readonly self: string | null;
 }
 
-const MAY: Readonly<Record<string, string>> = {
-  manager: 'everything',
-  operator: 'reads all, imports and runs',
-  regulator: 'reads all',
-  grower: 'reads the own parcels',
-};
-
-/** Who belongs to the district, and what each may do. */
-export function MemberTable({ members }: { members: readonly Member[] }) {
+/** Who belongs to the district, what each may do, and the ways to change it. */
+export function MemberTable({ members, district, self }: MemberTableProps) {
+  const roleOf = (member: Member) => ROLES.find((one) => one.role === member.role);
   return (
-    <Section id="members" title="Members" note="People are added, changed and removed through the API: POST and DELETE /api/v1/members.">
+    <Section id="members" title="Members" actions={<AddMember />}>
       <DataTable
         caption="Members of the district"
         rows={members}
         rowKey={(member) => member.user_id}
         columns={[
-          { key: 'name', head: 'Name', rowHead: true, cell: (member) => member.name },
+          { key: 'name', head: 'Name', rowHead: true, oneLine: true, cell: (member) => member.name },
           { key: 'email', head: 'Address', cell: (member) => member.email },
-          { key: 'role', head: 'Role', cell: (member) => member.role },
-          { key: 'may', head: 'May do', cell: (member) => MAY[member.role] },
+          { key: 'role', head: 'Role', cell: (member) => roleOf(member)?.name },
+          { key: 'may', head: 'May do', cell: (member) => roleOf(member)?.may },
           {
             key: 'parcels',
             head: 'Parcels',
             cell: (member) => (member.role === 'grower' ? member.parcels.join(', ') || 'none yet' : 'all'),
+          },
+          {
+            key: 'change',
+            head: 'Change',
+            oneLine: true,
+            cell: (member) => (
+              <>
+                <ChangeMember member={member} /> <RemoveMember member={member} district={district} self={member.user_id === self} />
+              </>
+            ),
           },
         ]}
       />

@@ -17,8 +17,8 @@ export default async function SettingsPage() {
         title="Settings"
         lead="How the district is set. Managers change it, look after its people and make tokens for its scripts."
       />
-      <DistrictFacts district={district} units={caller.units} manages={manages} />
-      {manages ? <MemberTable members={await answerMembers(caller)} /> : null}
+      <DistrictFacts district={district} units={caller.units} scope={caller.scope} />
+      {manages ? <MemberTable members={await answerMembers(caller)} district={district.name} self={caller.userId} /> : null}
       {manages ? <TokenSection tokens={await answerTokens(caller)} timeZone={caller.district.timeZone} /> : null}
     </div>
   );

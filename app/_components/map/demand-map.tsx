@@ -194,6 +194,35 @@ function VariableSelect(props: { variables: readonly MapVariable[]; variable: Ma
   );
 }
 
+/**
+ * Prints once the map is drawn for paper; the keys that print do the same. A browser's own menu cannot be held up: where it announces the
+ * print medium ahead of time, the map follows.
+ */
+function usePrint(stage: React.RefObject<StageHandle | null>, onPaper: (on: boolean) => void): () => Promise<void> {
+  const print = useCallback(async () => {
+    flushSync(() => onPaper(true));
+    await stage.current?.settled();
+    window.print();
+    onPaper(false);
+  }, [stage, onPaper]);
+  useEffect(() => {
+    const key = (event: KeyboardEvent) => {
+      if (!(event.ctrlKey || event.metaKey) || event.shiftKey || event.altKey || event.key.toLowerCase() !== 'p') return;
+      event.preventDefault();
+      print();
+    };
+    const medium = matchMedia('print');
+    const change = () => onPaper(medium.matches);
+    window.addEventListener('keydown', key);
+    medium.addEventListener('change', change);
+    return () => {
+      window.removeEventListener('keydown', key);
+      medium.removeEventListener('change', change);
+    };
+  }, [print, onPaper]);
+  return print;
+}
+
 /** The same figures as a table, the whole district again, and paper: light, with patterns, once that is drawn. */
 function Ways(props: {
   stage: React.RefObject<StageHandle | null>;
@@ -202,12 +231,7 @@ function Ways(props: {
   whole: boolean;
 }) {
   const { stage, onPaper, span, whole } = props;
-  const print = async () => {
-    flushSync(() => onPaper(true));
-    await stage.current?.settled();
-    window.print();
-    onPaper(false);
-  };
+  const print = usePrint(stage, onPaper);
   return (
     <p className={`${styles.ways} no-print`}>
       <a href={whole ? '/parcels?period=season' : `/parcels?period=week&date=${span.start}`}>The same figures as a table</a>

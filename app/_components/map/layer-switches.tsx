@@ -50,11 +50,11 @@ function sampleWidth(part: number): number {
   return 1 + 6.75 * Math.sqrt(part);
 }
 
-/** Canals: colour and dash by share of capacity, width by flow. */
+/** Canals: colour and dash by the share of capacity that the busiest week shown asks for, width by flow. */
 export function CanalLegend({ most, units, theme }: { most: number; units: UnitSystem; theme: Theme }) {
   return (
     <section className={styles.block} aria-label="Legend of the canals">
-      <h2 className={styles.blockName}>Canals: greatest share of capacity</h2>
+      <h2 className={styles.blockName}>Canals: busiest week ÷ capacity</h2>
       <ul className={styles.canals}>
         {SHARE_WORDS.map(({ kind, words }) => (
           <li key={kind}>

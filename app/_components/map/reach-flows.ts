@@ -12,7 +12,7 @@ export interface ReachWeeks {
 export interface ReachFlow {
   /** mean inflow at the reach's head over the range [m³ s⁻¹] */
   readonly flow: number;
-  /** the greatest share of capacity in the range; NaN when no capacity is known */
+  /** the greatest share of capacity that the mean of a week in the range asks for; NaN when no capacity is known */
   readonly share: number;
 }
 

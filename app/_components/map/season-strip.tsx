@@ -6,6 +6,7 @@ import type { UnitSystem } from '../../../lib/base/units.ts';
 import { formatVolume } from '../../../lib/report/quantity-text.ts';
 import { dateRange, dayMonth, longDate, monthName } from '../date-words.ts';
 import { inUnits, plain, unitOf } from '../figures.ts';
+import { Icon } from '../icon.tsx';
 import type { WeekRange, WeekSpan } from './map-values.ts';
 import styles from './season-strip.module.css';
 
@@ -85,16 +86,26 @@ export function SeasonStrip(props: StripProps) {
         </h2>
         <p className={styles.readout}>{pointed === null ? asked(volumes, range, units) : readout(weeks, volumes, pointed, units)}</p>
         <div className={`${styles.buttons} no-print`}>
-          <button type="button" className="button" onClick={() => choose(rangeAfterKey('ArrowLeft', false, range, weeks.length) ?? range)}>
-            <span aria-hidden="true">←</span>
-            <span className="visually-hidden">Week before</span>
+          <button
+            type="button"
+            className="button"
+            aria-label="Week before"
+            title="Week before"
+            onClick={() => choose(rangeAfterKey('ArrowLeft', false, range, weeks.length) ?? range)}
+          >
+            <Icon name="back" />
           </button>
           <button type="button" className="button" onClick={() => setPlaying(!playing)}>
             {playing ? 'Stop' : 'Play'}
           </button>
-          <button type="button" className="button" onClick={() => choose(rangeAfterKey('ArrowRight', false, range, weeks.length) ?? range)}>
-            <span aria-hidden="true">→</span>
-            <span className="visually-hidden">Week after</span>
+          <button
+            type="button"
+            className="button"
+            aria-label="Week after"
+            title="Week after"
+            onClick={() => choose(rangeAfterKey('ArrowRight', false, range, weeks.length) ?? range)}
+          >
+            <Icon name="forward" />
           </button>
           <button type="button" className="button" aria-pressed={whole} onClick={() => choose({ from: 0, to: last })}>
             Whole season

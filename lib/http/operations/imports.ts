@@ -6,9 +6,9 @@ import { operation } from '../operation.ts';
 const tag = 'Imports';
 const id = z.guid();
 
-/** Choices for one import. Members given in a PATCH replace those of the same name; null takes one away. What is not known is passed on to the reader. */
+/** Choices for one import. Members given in a PATCH replace those of the same name; null takes one away. An unknown member is refused. */
 export const importOptions = z
-  .looseObject({
+  .strictObject({
     plan: z
       .looseObject({})
       .nullable()
@@ -16,6 +16,18 @@ export const importOptions = z
       .meta({ description: 'column plan: roles, units, date order, delimiter, encoding, header row' }),
     season: z.string().max(40).nullable().optional().meta({ description: 'season of plantings that name none' }),
     source: z.string().max(120).nullable().optional().meta({ description: 'weather source for new stations' }),
+    site: z.string().max(120).nullable().optional().meta({ description: 'weather: site of a file without a site column' }),
+    missingCodes: z.array(z.string().max(40)).max(50).nullable().optional().meta({ description: 'further cell texts that mean missing' }),
+    dateOrder: z.enum(['ymd', 'dmy', 'mdy']).nullable().optional().meta({ description: 'order of day, month and year in dates' }),
+    cropColumn: z.string().max(200).nullable().optional().meta({ description: 'parcels: property that holds the crop' }),
+    codeColumn: z.string().max(200).nullable().optional().meta({ description: 'parcels and canals: property that holds the code' }),
+    windHeight: z
+      .number()
+      .min(0.5)
+      .max(200)
+      .nullable()
+      .optional()
+      .meta({ description: 'anemometer height in metres of stations that bring none' }),
     replace: z.boolean().nullable().optional().meta({ description: 'parcels: remove parcels that the file does not have' }),
     recompute: z.boolean().nullable().optional().meta({ description: 'false: applying starts no run; true unless said' }),
     cropMappings: z

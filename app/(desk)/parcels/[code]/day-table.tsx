@@ -26,18 +26,30 @@ const STATES: readonly (readonly [DepthKey, string])[] = [
   ['total_available_water_mm', 'TAW'],
 ];
 
+/** Most days that are worth the paper. */
+const PRINTED_DAYS = 45;
+
 /** Every variable of every day, with the sums of those that add up. */
 export function DayTable({ season, units, run }: { season: ParcelSeason; units: UnitSystem; run: string | null }) {
+  const printed = season.days.length <= PRINTED_DAYS;
   return (
-    <FiguresBelow summary={`Every day as a table (${season.days.length} days)`}>
-      <DataTable
-        caption={`Parcel ${season.parcel}, day by day`}
-        rows={season.days}
-        rowKey={(day) => day.date}
-        columns={columnsOf(season, units, run)}
-        foot
-      />
-    </FiguresBelow>
+    <>
+      <FiguresBelow summary={`Every day as a table (${season.days.length} days)`} printed={printed}>
+        <DataTable
+          caption={`Parcel ${season.parcel}, day by day`}
+          rows={season.days}
+          rowKey={(day) => day.date}
+          columns={columnsOf(season, units, run)}
+          foot
+        />
+      </FiguresBelow>
+      {printed ? null : (
+        <p className="only-print small">
+          The {season.days.length} days behind this chart are not printed. “Daily CSV” on the screen of parcel {season.parcel} has every
+          figure of every day.
+        </p>
+      )}
+    </>
   );
 }
 

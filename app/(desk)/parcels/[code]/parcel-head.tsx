@@ -31,7 +31,7 @@ export function ParcelHead({ run, season, date, units }: { run: RunAnswer; seaso
 
 function leadOf(season: ParcelSeason, run: RunAnswer): string {
   const crops = [...new Set(season.plantings.map((planting) => planting.crop_name))];
-  return `${crops.length ? crops.join(' + ') : 'Nothing planted'}. Season ${season.season}${run.standing ? '' : ', from a run that is not the standing one'}.`;
+  return `${crops.length ? crops.join(' + ') : 'Nothing planted'}. Season ${season.season}${run.standing ? '' : ', from a run that is not the one in use'}.`;
 }
 
 function factsOf(season: ParcelSeason, units: UnitSystem): [string, React.ReactNode][] {

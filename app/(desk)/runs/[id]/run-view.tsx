@@ -55,7 +55,7 @@ export function RunView({ run, timeZone, units, mayCancel }: RunViewProps) {
 
 function leadOf(run: RunAnswer, timeZone: string): string {
   const when = run.finished_at ? `finished ${moment(run.finished_at, timeZone)}` : `asked for ${moment(run.created_at, timeZone)}`;
-  return `${dateRange(run.start_date, run.end_date)}, ${plain(run.parcel_count, 0)} parcels; ${STATES[run.state]}, ${when}.${run.standing ? ' This run stands: every screen shows its figures.' : ''}`;
+  return `${dateRange(run.start_date, run.end_date)}, ${plain(run.parcel_count, 0)} parcels; ${STATES[run.state]}, ${when}.${run.standing ? ' This run is in use: every screen shows its figures.' : ''}`;
 }
 
 function Checks({ run }: { run: RunAnswer }) {
@@ -69,8 +69,8 @@ function Checks({ run }: { run: RunAnswer }) {
       <FactList
         facts={[
           ['Parcel-days', plain(balance.parcel_days, 0)],
-          ['Greatest residual of a soil water balance', `${significant(balance.max_residual_mm, 3)} mm`],
-          ['Canal roll-up, relative error', significant(balance.roll_up_relative, 3)],
+          ['Every soil water balance closes to', `${significant(balance.max_residual_mm, 1)} mm`],
+          ['The canals’ balance closes to', `${significant(balance.roll_up_relative, 1)} of the flow`],
           ['Time it took', `${plain(balance.seconds, 1)} s`],
         ]}
       />
