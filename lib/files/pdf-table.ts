@@ -40,9 +40,10 @@ function columnsOf(doc: Pdf, table: PdfTable): Column[] {
     doc.font('strong').fontSize(SIZE);
     const words = header.split(' ').map((word) => doc.widthOfString(word));
     const two = Math.max(...words, doc.widthOfString(header) / 2 + 6);
+    const total = table.total ? doc.widthOfString(table.total[i]) : 0; // written in the strong face too
     doc.font('text');
-    const cells = [...table.rows, ...(table.total ? [table.total] : [])].map((row) => doc.widthOfString(row[i]));
-    return Math.max(two, ...cells) + 2 * PAD;
+    const cells = table.rows.map((row) => doc.widthOfString(row[i]));
+    return Math.max(two, total, ...cells) + 2 * PAD;
   });
   const spare = contentWidth(doc) - widths.reduce((sum, width) => sum + width, 0);
   const flexible = table.columns.map(({ kind }, i) => (kind === 'text' || spare > 0 ? widths[i] : 0));

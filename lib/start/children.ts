@@ -4,7 +4,10 @@ import { setTimeout as sleep } from 'node:timers/promises';
 import { log } from '../access/log.ts';
 
 const GRACE_MS = 10_000;
+/** A process that falls is started again after this long, doubled each time it falls soon after. */
 const RESTART_DELAY_MS = 1000;
+const LONGEST_DELAY_MS = 30_000;
+const STEADY_MS = 60_000;
 
 export interface Child {
   /** settles when the child says it is ready */
@@ -15,17 +18,31 @@ export interface Child {
 /**
  * Starts `node --import tsx <script>` and keeps it running until `stop`. The child is told of its parent's death by the closing of its
  * message channel, and says "ready" over it.
+ *
+ * @param options `beforeRestart` runs when the process has fallen, before it is started again
  */
-export function keepRunning(name: string, script: string, env: Record<string, string>): Child {
+export function keepRunning(
+  name: string,
+  script: string,
+  options: { readonly env?: Record<string, string>; readonly beforeRestart?: () => Promise<unknown> } = {},
+): Child {
   let stopping = false;
   let current: ChildProcess;
+  let delay = RESTART_DELAY_MS;
+  let startedAt = 0;
   let announce: () => void = () => {};
   const ready = new Promise<void>((resolve) => {
     announce = resolve;
   });
+  const again = async () => {
+    if (stopping) return;
+    await options.beforeRestart?.().catch((error) => log().error({ err: error, child: name }, 'before starting again'));
+    if (!stopping) start();
+  };
   const start = () => {
+    startedAt = Date.now();
     current = spawn(process.execPath, ['--import', 'tsx', script], {
-      env: { ...process.env, ...env },
+      env: { ...process.env, ...options.env },
       stdio: ['ignore', 'inherit', 'inherit', 'ipc'],
     });
     current.on('message', (message) => {
@@ -34,9 +51,8 @@ export function keepRunning(name: string, script: string, env: Record<string, st
     current.on('exit', (code, signal) => {
       if (stopping) return;
       log().error({ child: name, code, signal }, 'a process of the service fell; starting it again');
-      setTimeout(() => {
-        if (!stopping) start();
-      }, RESTART_DELAY_MS);
+      delay = Date.now() - startedAt > STEADY_MS ? RESTART_DELAY_MS : Math.min(LONGEST_DELAY_MS, delay * 2);
+      setTimeout(() => void again(), delay);
     });
   };
   start();

@@ -3,6 +3,7 @@
  * the opposite order. The application's processes never hold more than the application's role.
  */
 import { createHmac } from 'node:crypto';
+import { createServer } from 'node:net';
 import { join } from 'node:path';
 import { startEmbedded } from '../../db/embedded.ts';
 import { migrateDatabase } from '../../db/migrate.ts';
@@ -13,6 +14,7 @@ import { releaseOrphans, stopQueue } from '../jobs/queue.ts';
 import { buildIfChanged } from './build.ts';
 import { type Child, keepRunning } from './children.ts';
 import { type FirstData, prepareFirstData } from './first-data.ts';
+import { lockFolder } from './folder-lock.ts';
 
 const say = (line: string) => process.stdout.write(`${line}\n`);
 const dev = process.argv.includes('--dev');
@@ -36,12 +38,33 @@ process.on('SIGINT', () => void stop(0));
 async function openOwnDatabase(): Promise<string> {
   const given = environment().DATABASE_URL;
   if (given) return given;
+  const unlock = lockFolder(environment().TILLWATER_DATA);
   say('Tillwater: starting the embedded database …');
   const server = await startEmbedded({ folder: join(environment().TILLWATER_DATA, 'postgres') });
-  stopDatabase = server.stop;
+  stopDatabase = async () => {
+    await server.stop();
+    unlock();
+  };
   process.env.DATABASE_URL = server.ownerUrl;
   (globalThis as { tillwaterEnvironment?: unknown }).tillwaterEnvironment = undefined;
   return server.ownerUrl;
+}
+
+/** Before anything is started: a second service in the same folder must not touch the first one's database. */
+function refuseTakenPort(host: string, port: number): Promise<void> {
+  return new Promise((resolve, reject) => {
+    const probe = createServer();
+    probe.once('error', (error: NodeJS.ErrnoException) =>
+      reject(
+        new Error(
+          error.code === 'EADDRINUSE'
+            ? `Port ${port} of ${host} is taken: stop what listens there, or set PORT to another.`
+            : `Cannot listen on ${host}:${port} (${error.code}): set HOST and PORT to an address of this machine.`,
+        ),
+      ),
+    );
+    probe.listen(port, host, () => probe.close(() => resolve()));
+  });
 }
 
 /** A secret every host with the same DATABASE_URL agrees on, unless one is set. */
@@ -68,7 +91,8 @@ function welcome(first: FirstData, address: string): void {
 
 try {
   const began = Date.now();
-  const { HOST, TILLWATER_WORKERS } = environment();
+  const { HOST, PORT, TILLWATER_WORKERS } = environment();
+  await refuseTakenPort(HOST, PORT);
   const embedded = environment().DATABASE_URL === undefined;
   const ownerUrl = await openOwnDatabase();
   process.env.TILLWATER_SECRET = sharedSecret(ownerUrl);
@@ -77,16 +101,18 @@ try {
   if (embedded) await releaseOrphans();
   const first = await prepareFirstData(ownerUrl);
   first.computed.catch(() => {}); // awaited below; until then a failure must not end the process
-  for (let i = 0; i < TILLWATER_WORKERS; i++) children.push(keepRunning('worker', 'lib/start/worker.ts', {}));
+  // where this is the only worker there is, what it held when it fell can be given back at once
+  const beforeRestart = embedded && TILLWATER_WORKERS === 1 ? releaseOrphans : undefined;
+  for (let i = 0; i < TILLWATER_WORKERS; i++) children.push(keepRunning('worker', 'lib/start/worker.ts', { beforeRestart }));
   if (!dev) {
     say('Tillwater: building the pages if they changed (about a minute the first time) …');
     await buildIfChanged();
   }
-  const web = keepRunning('web', 'lib/start/serve.ts', { NODE_ENV: dev ? 'development' : 'production', ...first.webEnvironment });
+  const web = keepRunning('web', 'lib/start/serve.ts', { env: { NODE_ENV: dev ? 'development' : 'production', ...first.webEnvironment } });
   children.push(web);
   await web.ready;
   await first.computed;
-  const address = environment().TILLWATER_URL ?? `http://${HOST === '0.0.0.0' ? 'localhost' : HOST}:${environment().PORT}`;
+  const address = environment().TILLWATER_URL ?? `http://${HOST === '0.0.0.0' ? 'localhost' : HOST}:${PORT}`;
   welcome(first, address);
   log().info({ seconds: (Date.now() - began) / 1000 }, 'ready');
 } catch (error) {
