@@ -11,7 +11,7 @@ import { setTimeout as sleep } from 'node:timers/promises';
 import { pathToFileURL } from 'node:url';
 import postgres from 'postgres';
 
-export interface EmbeddedOptions {
+interface EmbeddedOptions {
   /** folder that holds the data, the password and the server's log */
   readonly folder: string;
   readonly database?: string;
@@ -20,7 +20,7 @@ export interface EmbeddedOptions {
   readonly packageRoot?: string;
 }
 
-export interface EmbeddedServer {
+interface EmbeddedServer {
   /** owner's address; never given to the application */
   readonly ownerUrl: string;
   /** true when the server was already running */

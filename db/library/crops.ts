@@ -8,7 +8,7 @@ import type { Crop } from '../../lib/season/types.ts';
 import { type LibraryCalendar, libraryCalendars } from './calendars.ts';
 import { type CropRow, cropRows } from './crop-rows.ts';
 
-export interface CropLibrary {
+interface CropLibrary {
   readonly crops: readonly Crop[];
   /** source of each value, by crop code and then by member of Crop */
   readonly sources: Readonly<Record<string, Readonly<Partial<Record<keyof Crop, string>>>>>;

@@ -3,7 +3,7 @@
  */
 import type { ApplicationMethod } from '../../lib/season/types.ts';
 
-export interface LibraryMethod extends ApplicationMethod {
+interface LibraryMethod extends ApplicationMethod {
   readonly source: string;
 }
 

@@ -3,7 +3,7 @@
  */
 import type { Soil } from '../../lib/season/types.ts';
 
-export interface LibrarySoil extends Soil {
+interface LibrarySoil extends Soil {
   readonly source: string;
 }
 

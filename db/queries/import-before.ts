@@ -20,9 +20,9 @@ const TABLES = {
   planting: { key: { season_code: 'text', parcel_code: 'text' }, order: 'sequence' },
 } as const satisfies Record<string, { key: Record<string, 'int' | 'text'>; order?: string }>;
 
-export type ImportTable = keyof typeof TABLES;
+type ImportTable = keyof typeof TABLES;
 
-export const BLOCK_TABLE = 'weather_block';
+const BLOCK_TABLE = 'weather_block';
 
 /** What the changes of one import are filed under. */
 export interface ImportKey {

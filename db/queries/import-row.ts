@@ -6,7 +6,7 @@ import { storable, storableText } from './json-text.ts';
 
 export type { ImportState };
 export type ImportRow = typeof importJob.$inferSelect;
-export type ImportChange = Partial<typeof importJob.$inferInsert>;
+type ImportChange = Partial<typeof importJob.$inferInsert>;
 
 export interface ImportFileLine {
   readonly name: string;

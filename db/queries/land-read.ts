@@ -4,16 +4,15 @@ import type { Tx } from '../connect.ts';
 import { applicationMethod, crop, cropCalendar, parcel, planting, reach, soil } from '../schema/land.ts';
 import { textArray } from './district-read.ts';
 
-export interface ParcelFilter {
+interface ParcelFilter {
   readonly districtId: string;
   /** only these; null for all */
   readonly codes: readonly string[] | null;
   readonly search?: string;
 }
 
-const columns = {
-  code: parcel.code,
-  name: parcel.name,
+/** What a parcel hangs on and where it lies. */
+export const PARCEL_JOINS_AND_PLACE = {
   turnoutCode: parcel.turnoutCode,
   reachCode: parcel.reachCode,
   soilCode: parcel.soilCode,
@@ -22,6 +21,23 @@ const columns = {
   elevation: parcel.elevation,
   longitude: parcel.longitude,
   latitude: parcel.latitude,
+};
+
+/** A reach without its shape. */
+export const REACH_COLUMNS = {
+  code: reach.code,
+  name: reach.name,
+  parentCode: reach.parentCode,
+  kind: reach.kind,
+  capacity: reach.capacity,
+  lossRule: reach.lossRule,
+  length: reach.length,
+};
+
+const columns = {
+  code: parcel.code,
+  name: parcel.name,
+  ...PARCEL_JOINS_AND_PLACE,
   crops: sql<string[]>`(select coalesce(jsonb_agg(distinct coalesce(c.name, p.crop_code)), '[]') from planting p
     left join crop c on c.district_id = p.district_id and c.code = p.crop_code
     where p.district_id = "parcel"."district_id" and p.parcel_code = "parcel"."code")`,
@@ -59,7 +75,7 @@ export async function findParcel(tx: Tx, districtId: string, code: string) {
   return row ?? null;
 }
 
-export interface PlantingFilter {
+interface PlantingFilter {
   readonly districtId: string;
   readonly codes: readonly string[] | null;
   readonly season?: string;
@@ -95,13 +111,7 @@ export async function countPlantings(tx: Tx, filter: PlantingFilter): Promise<nu
 export function listCanals(tx: Tx, districtId: string) {
   return tx
     .select({
-      code: reach.code,
-      name: reach.name,
-      parentCode: reach.parentCode,
-      kind: reach.kind,
-      capacity: reach.capacity,
-      lossRule: reach.lossRule,
-      length: reach.length,
+      ...REACH_COLUMNS,
       turnoutCount: sql<number>`(select count(*)::int from turnout t where t.district_id = "reach"."district_id" and t.reach_code = "reach"."code")`,
       parcelCount: sql<number>`(select count(*)::int from parcel p where p.district_id = "reach"."district_id" and p.reach_code = "reach"."code")`,
     })

@@ -2,7 +2,8 @@
 import { and, asc, eq } from 'drizzle-orm';
 import type { Tx } from '../connect.ts';
 import { district } from '../schema/district.ts';
-import { applicationMethod, crop, cropCalendar, parcel, planting, reach, season, soil, turnout } from '../schema/land.ts';
+import { crop, cropCalendar, parcel, planting, reach, season, turnout } from '../schema/land.ts';
+import { listMethods, listSoils, PARCEL_JOINS_AND_PLACE, REACH_COLUMNS } from './land-read.ts';
 
 export async function findDistrict(tx: Tx, districtId: string) {
   const [row] = await tx.select().from(district).where(eq(district.districtId, districtId));
@@ -23,14 +24,7 @@ export function listRunParcels(tx: Tx, districtId: string) {
     .select({
       code: parcel.code,
       ordinal: parcel.ordinal,
-      turnoutCode: parcel.turnoutCode,
-      reachCode: parcel.reachCode,
-      soilCode: parcel.soilCode,
-      methodCode: parcel.methodCode,
-      area: parcel.area,
-      elevation: parcel.elevation,
-      longitude: parcel.longitude,
-      latitude: parcel.latitude,
+      ...PARCEL_JOINS_AND_PLACE,
     })
     .from(parcel)
     .where(eq(parcel.districtId, districtId))
@@ -48,8 +42,8 @@ export function listSeasonPlantings(tx: Tx, districtId: string, seasonCode: stri
 /** The libraries of the district: soils, methods, crops, calendars. */
 export async function listLibraries(tx: Tx, districtId: string) {
   const [soils, methods, crops, calendars] = await Promise.all([
-    tx.select().from(soil).where(eq(soil.districtId, districtId)).orderBy(asc(soil.code)),
-    tx.select().from(applicationMethod).where(eq(applicationMethod.districtId, districtId)).orderBy(asc(applicationMethod.code)),
+    listSoils(tx, districtId),
+    listMethods(tx, districtId),
     tx.select().from(crop).where(eq(crop.districtId, districtId)).orderBy(asc(crop.code)),
     tx.select().from(cropCalendar).where(eq(cropCalendar.districtId, districtId)).orderBy(asc(cropCalendar.code)),
   ]);
@@ -57,19 +51,7 @@ export async function listLibraries(tx: Tx, districtId: string) {
 }
 
 export function listReaches(tx: Tx, districtId: string) {
-  return tx
-    .select({
-      code: reach.code,
-      name: reach.name,
-      parentCode: reach.parentCode,
-      kind: reach.kind,
-      capacity: reach.capacity,
-      lossRule: reach.lossRule,
-      length: reach.length,
-    })
-    .from(reach)
-    .where(eq(reach.districtId, districtId))
-    .orderBy(asc(reach.code));
+  return tx.select(REACH_COLUMNS).from(reach).where(eq(reach.districtId, districtId)).orderBy(asc(reach.code));
 }
 
 export function listTurnouts(tx: Tx, districtId: string) {

@@ -8,7 +8,7 @@ import { textArray } from './district-read.ts';
 const { frozen: _frozen, ...columns } = getTableColumns(run);
 export type RunHead = Omit<typeof run.$inferSelect, 'frozen'>;
 
-export interface RunKey {
+interface RunKey {
   readonly districtId: string;
   readonly runId: string;
 }

@@ -4,7 +4,7 @@ import type { Tx } from '../connect.ts';
 import { run, runParcel, runSlice } from '../schema/run.ts';
 
 export type RunRow = typeof run.$inferSelect;
-export type NewRun = typeof run.$inferInsert;
+type NewRun = typeof run.$inferInsert;
 
 /** Frozen inputs are large and read only by the slices. */
 const { frozen: _frozen, ...withoutFrozen } = getTableColumns(run);

@@ -58,7 +58,7 @@ export async function listParcelGeometries(tx: Tx, districtId: string, codes: re
     .where(and(eq(parcel.districtId, districtId), sql`${parcel.code} = any(${textArray(codes)})`));
 }
 
-export interface TileKey {
+interface TileKey {
   readonly districtId: string;
   readonly layer: string;
   readonly version: number;

@@ -2,7 +2,7 @@
 import { createHmac } from 'node:crypto';
 import { environment } from './environment.ts';
 
-export type DemoRole = 'manager' | 'operator' | 'regulator' | 'grower';
+type DemoRole = 'manager' | 'operator' | 'regulator' | 'grower';
 
 export interface DemoSignIn {
   readonly role: DemoRole;

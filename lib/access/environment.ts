@@ -25,7 +25,7 @@ const schema = z.object({
   LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'trace', 'silent']).default('info'),
 });
 
-export type Environment = z.infer<typeof schema>;
+type Environment = z.infer<typeof schema>;
 
 /**
  * Reads a set of variables.

@@ -6,7 +6,7 @@ import { database } from './database.ts';
 
 const MINUTE = 60_000;
 /** Tries in a minute for one address of a person, and from one network address. */
-export const SIGN_IN_LIMIT = { perPerson: 10, perAddress: 60 } as const;
+const SIGN_IN_LIMIT = { perPerson: 10, perAddress: 60 } as const;
 /** Requests in a minute by one token, on one process. */
 export const TOKEN_LIMIT = 1200;
 /** Requests in a minute with tokens that are not known, from one network address, on one process. */

@@ -10,7 +10,7 @@ import { log } from './log.ts';
 
 /** Source: OWASP Password Storage Cheat Sheet, argon2id with 19 MiB, two passes, one lane. */
 const ARGON2 = { memoryCost: 19456, timeCost: 2, parallelism: 1 };
-export const PASSWORD_LENGTH = { least: 10, most: 200 } as const;
+const PASSWORD_LENGTH = { least: 10, most: 200 } as const;
 const SESSION_SECONDS = 14 * 86400;
 
 export interface Person {

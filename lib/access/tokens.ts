@@ -18,7 +18,7 @@ export function tokenHash(token: string): string {
 }
 
 /** `tw_` and 43 base64url characters: 256 bits of chance. */
-export function newToken(): string {
+function newToken(): string {
   return `tw_${randomBytes(32).toString('base64url')}`;
 }
 

@@ -3,6 +3,7 @@
  *
  * Sources: NIST Special Publication 811 (2008), Appendix B (exact unless marked); FAO-56 Table 3 and Annex 1 for radiation.
  */
+import { CELSIUS_OFFSET } from './constants.ts';
 
 /** Cubic metres in an acre-foot (international foot, exact): 43 560 ft³. */
 export const CUBIC_METRES_PER_ACRE_FOOT = 1233.48183754752;
@@ -87,11 +88,11 @@ export function fahrenheitFromCelsius(c: number): number {
 }
 /** Kelvin on the International Temperature Scale: offset 273.15. */
 export function celsiusFromKelvin(k: number): number {
-  return k - 273.15;
+  return k - CELSIUS_OFFSET;
 }
 /** The inverse of `celsiusFromKelvin`. @example kelvinFromCelsius(0) // 273.15 */
 export function kelvinFromCelsius(c: number): number {
-  return c + 273.15;
+  return c + CELSIUS_OFFSET;
 }
 
 /**

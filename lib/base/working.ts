@@ -24,3 +24,8 @@ export interface WorkingStep {
 export interface Trace {
   step(step: WorkingStep): void;
 }
+
+/** A named number of a working. */
+export function quantity(symbol: string, value: number, unit: string): WorkingStep['inputs'][number] {
+  return { symbol, value, unit };
+}

@@ -3,7 +3,6 @@
  *
  * Both tables are recalled, not re-read: a district with ponding or inflow–outflow tests should use those instead.
  */
-import { RangeViolation } from '../base/errors.ts';
 import type { LossRule } from './loss-rule.ts';
 
 const FAO_TRAINING_MANUAL_4 =
@@ -11,7 +10,7 @@ const FAO_TRAINING_MANUAL_4 =
 const ETCHEVERRY_HARDING =
   'Etcheverry & Harding (1933), Irrigation Practice and Engineering II, seepage by material (recalled, not re-read)';
 
-export type CanalBed = 'sand' | 'loam' | 'clay' | 'lined';
+type CanalBed = 'sand' | 'loam' | 'clay' | 'lined';
 
 /** Conveyance efficiency of well-kept canals by length of canal: over 2000 m, 200–2000 m, under 200 m. Source: FAO training manual 4 (recalled). */
 export const CONVEYANCE_EFFICIENCY: Record<CanalBed, { readonly long: number; readonly medium: number; readonly short: number }> = {
@@ -50,7 +49,7 @@ export const SEEPAGE_BY_MATERIAL = [
   { code: 'very-gravelly', name: 'Very gravelly soil', low: 3, high: 6 },
 ] as const;
 
-export interface ConveyancePreset {
+interface ConveyancePreset {
   readonly code: string;
   readonly name: string;
   readonly source: string;
@@ -97,11 +96,3 @@ export const CONVEYANCE_PRESETS: readonly ConveyancePreset[] = [
     }),
   })),
 ];
-
-/** @throws {RangeViolation} for a code that is not a preset, listing those that are. */
-export function conveyancePreset(code: string): ConveyancePreset {
-  const preset = CONVEYANCE_PRESETS.find((each) => each.code === code);
-  if (!preset)
-    throw new RangeViolation(`conveyance preset '${code}' is not one of ${CONVEYANCE_PRESETS.map((each) => each.code).join(', ')}`);
-  return preset;
-}

@@ -5,7 +5,7 @@
  *   I = a O + b T + c·[O + T > 0]
  * so one roll-up serves all of them.
  */
-import { Malformed, RangeViolation } from '../base/errors.ts';
+import { RangeViolation } from '../base/errors.ts';
 
 export type LossRule =
   | { readonly kind: 'none' }
@@ -17,7 +17,7 @@ export type LossRule =
   | { readonly kind: 'seepage'; readonly rate: number; readonly wettedPerimeter: number };
 
 /** The three numbers of a rule on a reach of known length: inflow = perOutflow·O + perTurnout·T + whenRunning (only if O + T > 0). */
-export interface LossCoefficients {
+interface LossCoefficients {
   readonly perOutflow: number;
   readonly perTurnout: number;
   /** m³ d⁻¹ */
@@ -46,39 +46,6 @@ export function lossCoefficients(rule: LossRule, length: number): LossCoefficien
   return { perOutflow: Math.exp(decay), perTurnout: decay === 0 ? 1 : Math.expm1(decay) / decay, whenRunning: 0 };
 }
 
-/** What a reach passes on and what its turnouts draw [m³ d⁻¹]. */
-export interface ReachFlow {
-  readonly outflow: number;
-  readonly turnoutDemand: number;
-}
-
-/**
- * Inflow a reach needs at its head. NaN in gives NaN out; a reach that carries nothing needs nothing.
- *
- * @param length [m]
- * @returns head inflow [m³ d⁻¹]
- * @example headInflow({ kind: 'efficiency', efficiency: 0.8 }, 1000, { outflow: 70, turnoutDemand: 10 }) // 100
- * Source: see `lossCoefficients`.
- */
-export function headInflow(rule: LossRule, length: number, flow: ReachFlow): number {
-  const { perOutflow, perTurnout, whenRunning } = lossCoefficients(rule, length);
-  const running = flow.outflow + flow.turnoutDemand > 0 ? whenRunning : 0;
-  return perOutflow * flow.outflow + perTurnout * flow.turnoutDemand + running;
-}
-
-/**
- * Outflow left at the tail for a given head inflow; the inverse of `headInflow`. Negative when the inflow cannot meet the turnouts and losses.
- *
- * @param length [m]
- * @returns tail outflow [m³ d⁻¹]
- * @example tailOutflow({ kind: 'efficiency', efficiency: 0.8 }, 1000, { inflow: 100, turnoutDemand: 10 }) // 70
- */
-export function tailOutflow(rule: LossRule, length: number, flow: { readonly inflow: number; readonly turnoutDemand: number }): number {
-  const { perOutflow, perTurnout, whenRunning } = lossCoefficients(rule, length);
-  const running = flow.inflow > 0 ? whenRunning : 0;
-  return (flow.inflow - perTurnout * flow.turnoutDemand - running) / perOutflow;
-}
-
 /** @throws {RangeViolation} naming the value, its limit and the reach when `where` is given. */
 export function checkLossRule(rule: LossRule, where = 'loss rule'): void {
   if (rule.kind === 'fraction-per-km' && !(rule.fraction >= 0 && rule.fraction < 1))
@@ -94,31 +61,6 @@ function refuse(where: string, name: string, value: number, limit: string): neve
   throw new RangeViolation(`${where}: ${name} ${value} is outside ${limit}; correct it or choose the rule 'none'`, [
     { severity: 'error', code: 'value-out-of-range', message: `${name} ${value} of ${where}`, value: String(value), limit },
   ]);
-}
-
-const NUMBERS_OF: Record<string, readonly string[]> = {
-  none: [],
-  'fraction-per-km': ['fraction'],
-  efficiency: ['efficiency'],
-  seepage: ['rate', 'wettedPerimeter'],
-};
-
-/**
- * A loss rule from untyped JSON.
- *
- * @throws {Malformed} for an unknown kind or a missing number; {RangeViolation} outside the limits.
- */
-export function parseLossRule(value: unknown, where = 'loss rule'): LossRule {
-  const record = typeof value === 'object' && value !== null ? (value as Record<string, unknown>) : {};
-  const kind = String(record.kind);
-  const names = Object.hasOwn(NUMBERS_OF, kind) ? NUMBERS_OF[kind] : null;
-  if (!names) throw new Malformed(`${where}: kind '${kind}' is not one of ${Object.keys(NUMBERS_OF).join(', ')}`);
-  for (const name of names) {
-    if (typeof record[name] !== 'number') throw new Malformed(`${where}: '${kind}' needs the number '${name}'`);
-  }
-  const rule = Object.fromEntries([['kind', kind], ...names.map((name) => [name, record[name]])]) as unknown as LossRule;
-  checkLossRule(rule, where);
-  return rule;
 }
 
 /** The rule in words. @example lossRuleText({ kind: 'efficiency', efficiency: 0.8 }) // 'delivers 80 % of what enters' */

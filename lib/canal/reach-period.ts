@@ -5,12 +5,12 @@ import type { Period } from '../base/civil-date.ts';
 import { ShapeError } from '../base/errors.ts';
 import { SECONDS_PER_DAY, volumeToFlow } from '../base/units.ts';
 import type { RollUp } from './roll-up.ts';
-import { type ConveyanceTree, reachesBelow } from './tree.ts';
+import type { ConveyanceTree } from './tree.ts';
 
 /** Days over which turns level out demand. Common practice, no source: the delivery week. */
 export const BUSIEST_DAYS = 7;
 
-export type CapacityStatus = 'within' | 'tight' | 'over';
+type CapacityStatus = 'within' | 'tight' | 'over';
 
 /** Share of capacity from which a reach counts as tight; above 1 it is over. Common practice, no source. */
 export const TIGHT_SHARE = 0.9;
@@ -42,7 +42,7 @@ export interface ReachPeriod {
   readonly status: CapacityStatus | null;
 }
 
-export interface ReachPeriodInput {
+interface ReachPeriodInput {
   readonly tree: ConveyanceTree;
   /** [reach × day], m³ d⁻¹ */
   readonly turnoutDemand: Float64Array;
@@ -149,10 +149,4 @@ function largest(values: Float64Array, from: number, to: number): number {
   let most = Number.NEGATIVE_INFINITY;
   for (let i = from; i <= to; i++) most = Math.max(most, values[i]);
   return most;
-}
-
-/** Rows whose reach is `reach` or below it. */
-export function reachPeriodsBelow(tree: ConveyanceTree, rows: readonly ReachPeriod[], reach: number): ReachPeriod[] {
-  const wanted = new Set(reachesBelow(tree, reach));
-  return rows.filter((row) => wanted.has(row.reach));
 }

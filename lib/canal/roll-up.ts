@@ -5,7 +5,7 @@ import { ShapeError } from '../base/errors.ts';
 import { type LossRule, lossCoefficients } from './loss-rule.ts';
 import type { ConveyanceTree } from './tree.ts';
 
-export interface RollUpInput {
+interface RollUpInput {
   readonly tree: ConveyanceTree;
   /** in the order of the tree's codes; length [m] */
   readonly reaches: readonly { readonly length: number; readonly lossRule: LossRule }[];

@@ -103,13 +103,6 @@ function list(codes: Iterable<string>): string {
   return all.length > 8 ? `${all.slice(0, 8).join(', ')} and ${all.length - 8} more` : all.join(', ');
 }
 
-/** Indices from the head reach down to `reach`, both included. */
-export function pathFromHead(tree: ConveyanceTree, reach: number): number[] {
-  const path: number[] = [];
-  for (let at = reach; at >= 0; at = tree.parent[at]) path.push(at);
-  return path.reverse();
-}
-
 /** Indices of `reach` and every reach it feeds, parents before children. */
 export function reachesBelow(tree: ConveyanceTree, reach: number): number[] {
   const below = [reach];

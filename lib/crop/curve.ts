@@ -126,7 +126,7 @@ export function growingRootDepth(rootDepthMin: number, rootDepthMax: number, pro
   return rootDepthMin + (rootDepthMax - rootDepthMin) * progress;
 }
 
-export interface CycleInput {
+interface CycleInput {
   /** planting or green-up, day offset */
   readonly start: number;
   /** harvest, first day without the crop; Infinity when not given */

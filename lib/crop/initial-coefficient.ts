@@ -5,9 +5,9 @@
 /** Energy-limited evaporation of wet bare soil over reference ET (FAO-56 Annex 7). */
 const WET_SOIL_RATIO = 1.15;
 
-export type SoilTexture = 'coarse' | 'medium-fine';
+type SoilTexture = 'coarse' | 'medium-fine';
 
-export interface Wetting {
+interface Wetting {
   /** mean interval between wettings tw [d] */
   readonly interval: number;
   /** mean reference ET of the stage [mm d⁻¹] */

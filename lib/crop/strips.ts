@@ -15,7 +15,7 @@ export interface PlantingSpan {
 }
 
 /** A piece of land and the plantings it carries, in order of time. */
-export interface Strip {
+interface Strip {
   readonly share: number;
   readonly plantings: readonly number[];
 }

@@ -40,7 +40,7 @@ export function evaporationReduction(depletion: number, readily: number, total: 
 }
 
 /** Which side of Eq. 71 sets the evaporation coefficient. */
-export interface EvaporationLimits {
+interface EvaporationLimits {
   /** Kr [1] */
   readonly reduction: number;
   /** Kcb [1] */

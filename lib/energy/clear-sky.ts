@@ -32,7 +32,7 @@ export function clearSkyShareByTurbidity(pressure: number, sine: number, turbidi
 }
 
 /** Coefficients of the beam and diffuse shares; the two publications use different exponents, which must not be mixed (5 % of Rso). */
-export interface BeamCoefficients {
+interface BeamCoefficients {
   readonly vapour: number;
   readonly exponent: number;
   readonly diffuse: number;
@@ -56,7 +56,7 @@ export function precipitableWater(actualVapourPressure: number, pressure: number
 }
 
 /** The air above a pyranometer. */
-export interface ClearAir {
+interface ClearAir {
   readonly pressure: number;
   readonly actualVapourPressure: number;
   readonly sine: number;

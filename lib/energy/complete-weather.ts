@@ -17,7 +17,7 @@ import { LOWEST_WIND_HEIGHT } from './wind.ts';
 export const STANDARD_WIND_HEIGHT = 10;
 
 /** What the district decides for sites that do not say. */
-export interface CompletionOptions {
+interface CompletionOptions {
   /** elevation of a site that does not state its own [m] */
   readonly defaultElevation: number;
   /** kRs of the temperature-range estimate of radiation [°C⁻⁰·⁵]: 0.16 interior, 0.19 coastal */

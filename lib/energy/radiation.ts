@@ -44,17 +44,6 @@ export function clearSkyRadiation(extraterrestrial: number, elevation: number): 
 }
 
 /**
- * Clear-sky solar radiation from Ångström coefficients.
- *   Rso = (as + bs) Ra
- *
- * @example clearSkyRadiationFromAngstrom(40, 0.25, 0.5) // 30
- * Source: FAO-56 Eq. 36.
- */
-export function clearSkyRadiationFromAngstrom(extraterrestrial: number, overcast: number, sunshine: number): number {
-  return (overcast + sunshine) * extraterrestrial;
-}
-
-/**
  * Solar radiation from the daily range of temperature, not yet held at the clear-sky value.
  *   Rs = kRs √(Tmax − Tmin) Ra
  *
@@ -80,28 +69,6 @@ export function solarRadiationFromTemperatureRange(
  */
 export function cappedAtClearSky(solarRadiation: number, clearSky: number): number {
   return Math.min(solarRadiation, clearSky);
-}
-
-/**
- * Solar radiation of a month on a small island (at most 20 km wide, up to 100 m high) without any radiation record.
- *   Rs = 0.7 Ra − 4
- *
- * @example islandSolarRadiation(40) // 24
- * Source: FAO-56 Eq. 51; for monthly values only.
- */
-export function islandSolarRadiation(extraterrestrial: number): number {
-  return 0.7 * extraterrestrial - 4;
-}
-
-/**
- * Solar radiation carried over from a station in the same region by the ratio of extraterrestrial radiation.
- *   Rs = (Rs,reg / Ra,reg) Ra
- *
- * @example solarRadiationFromRegion(20, 40, 38) // 19
- * Source: FAO-56 Eq. 49.
- */
-export function solarRadiationFromRegion(regional: number, regionalExtraterrestrial: number, extraterrestrial: number): number {
-  return (regional / regionalExtraterrestrial) * extraterrestrial;
 }
 
 /**

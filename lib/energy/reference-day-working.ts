@@ -8,15 +8,11 @@ import {
   REFERENCE_ALBEDO,
   SOLAR_CONSTANT,
 } from '../base/constants.ts';
-import type { Trace, WorkingStep } from '../base/working.ts';
+import { quantity as q, type Trace, type WorkingStep } from '../base/working.ts';
 import { type DailyConstants, dailyConstants, type ReferenceDay } from './combination.ts';
 import type { ReferenceDayInput } from './reference-day.ts';
 
 type Quantity = WorkingStep['inputs'][number];
-
-function q(symbol: string, value: number, unit: string): Quantity {
-  return { symbol, value, unit };
-}
 
 const ENERGY = 'MJ m⁻² d⁻¹';
 const SLOPE = 'kPa °C⁻¹';

@@ -78,7 +78,7 @@ export function referenceEtDay(input: ReferenceDayInput, trace: Trace | null): n
 }
 
 /** Days at one place; every array is [day]. */
-export interface ReferenceDaysInput {
+interface ReferenceDaysInput {
   readonly method: CombinationMethod;
   readonly surface: ReferenceSurface;
   /** the sun over the place's latitude, from `solarGeometry` */
@@ -138,7 +138,7 @@ function checkLengths(input: ReferenceDaysInput, out: Float64Array): void {
 }
 
 /** Energy budget of a day at the reference surface, all [MJ m⁻² d⁻¹]; Rn = G + λET + H. */
-export interface EnergyBudget {
+interface EnergyBudget {
   readonly netShortwave: number;
   readonly netLongwave: number;
   readonly netRadiation: number;

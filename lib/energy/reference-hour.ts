@@ -16,7 +16,7 @@ import { SOIL_HEAT_SHARE_SHORT, SOIL_HEAT_SHARE_TALL, type SoilHeatShare, soilHe
 import { extraterrestrialRadiationPeriod, hourAngle, type SunDay, sunDay, sunElevation } from './sun.ts';
 
 /** What one publication fixes for one surface and an hourly step. Cn [K mm s³ Mg⁻¹ h⁻¹], Cd [s m⁻¹]. */
-export interface HourlyConstants {
+interface HourlyConstants {
   readonly numerator: number;
   readonly denominatorDay: number;
   readonly denominatorNight: number;
@@ -75,7 +75,7 @@ export function hourlyConstants(method: CombinationMethod, surface: ReferenceSur
 }
 
 /** Where and when the hours are. */
-export interface HourlyPlace {
+interface HourlyPlace {
   readonly method: CombinationMethod;
   readonly surface: ReferenceSurface;
   /** whole number 1–366 */
@@ -93,7 +93,7 @@ export interface HourlyPlace {
 }
 
 /** Weather of one period. */
-export interface HourWeather {
+interface HourWeather {
   /** standard clock time in the middle of the period [h] */
   readonly clockHour: number;
   /** °C */
@@ -109,7 +109,7 @@ export interface HourWeather {
 }
 
 /** A solved hour; radiation per hour [MJ m⁻² h⁻¹], ET [mm h⁻¹]. */
-export interface ReferenceHour {
+interface ReferenceHour {
   readonly extraterrestrialRadiation: number;
   readonly clearSkyRadiation: number;
   readonly relativeShortwave: number;

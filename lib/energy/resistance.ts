@@ -4,7 +4,7 @@
 import { AIR_SPECIFIC_HEAT, LATENT_HEAT, VON_KARMAN } from '../base/constants.ts';
 
 /** Sensors over a canopy [m]. */
-export interface CanopyExposure {
+interface CanopyExposure {
   readonly cropHeight: number;
   readonly windHeight: number;
   readonly humidityHeight: number;
@@ -61,7 +61,7 @@ export function leafAreaIndexOfGrass(cropHeight: number): number {
 }
 
 /** What the full equation needs. */
-export interface PenmanMonteithInput {
+interface PenmanMonteithInput {
   /** Rn − G [MJ m⁻² d⁻¹] */
   readonly availableEnergy: number;
   /** es − ea [kPa] */

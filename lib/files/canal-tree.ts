@@ -6,7 +6,7 @@ import { geodesicDistance } from '../geo/geodesic.ts';
 import { type FindingList, shown } from './finding-list.ts';
 
 /** A child's head lies this near its parent's line end [m]. */
-export const TOUCH = 5;
+const TOUCH = 5;
 /** Degrees of latitude surely longer than `TOUCH`: cheap first test. */
 const TOUCH_DEGREES = 0.0001;
 

@@ -2,7 +2,7 @@
  * What a column header says: the words of its name, the unit written with it, and the hour of a reading.
  */
 
-export interface ColumnName {
+interface ColumnName {
   /** lower-case words, unit and hour taken off */
   readonly words: readonly string[];
   /** unit in brackets or after a comma, as written */

@@ -69,7 +69,7 @@ export function isBlankRecord(cells: readonly string[]): boolean {
 }
 
 /** True for a row of which every filled cell is a number or a date: data, not a header. */
-export function looksLikeData(cells: readonly string[]): boolean {
+function looksLikeData(cells: readonly string[]): boolean {
   const filled = cells.filter((cell) => cell.trim() !== '');
   return (
     filled.length > 0 && filled.every((cell) => NUMBER_LIKE.test(cell) || DATE_LIKE.test(cell) || /^(na|nan|null|-)$/i.test(cell.trim()))

@@ -3,7 +3,7 @@
  *
  * Source: RFC 4180 (comma, CRLF, double quotes); UTF-8 without byte order mark; one header row.
  */
-export type CsvCell = string | number | boolean | null | undefined;
+type CsvCell = string | number | boolean | null | undefined;
 
 /** First characters that make a spreadsheet run a cell as a formula. Source: OWASP, CSV Injection. */
 const FORMULA = /^[=+\-@\t\r]/;
@@ -23,7 +23,7 @@ export function csvCell(value: CsvCell): string {
 }
 
 /** One line with its ending. @example csvLine(['a', 1, null]) // 'a,1,\r\n' */
-export function csvLine(cells: readonly CsvCell[]): string {
+function csvLine(cells: readonly CsvCell[]): string {
   return `${cells.map(csvCell).join(',')}\r\n`;
 }
 
@@ -32,19 +32,5 @@ export function csvText(table: {
   readonly columns: readonly { readonly key: string }[];
   readonly rows: Iterable<readonly CsvCell[]>;
 }): string {
-  return [...csvLines(table)].join('');
-}
-
-/** The same line by line, for streaming. */
-export function* csvLines(table: {
-  readonly columns: readonly { readonly key: string }[];
-  readonly rows: Iterable<readonly CsvCell[]>;
-}): Generator<string> {
-  yield csvLine(table.columns.map((column) => column.key));
-  for (const row of table.rows) yield csvLine(row);
-}
-
-/** UTF-8 bytes of a table. */
-export function csvBytes(table: Parameters<typeof csvText>[0]): Uint8Array {
-  return new TextEncoder().encode(csvText(table));
+  return [table.columns.map((column) => column.key), ...table.rows].map(csvLine).join('');
 }

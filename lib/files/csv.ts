@@ -5,14 +5,14 @@ import { type CsvError, type Options, parse } from 'csv-parse';
 import { parse as parseAll } from 'csv-parse/sync';
 import { type Delimiter, findHeader, isBlankRecord, isCommentRecord, sniffDecimalComma, sniffDelimiter } from './csv-dialect.ts';
 import { type FindingList, shown } from './finding-list.ts';
-import type { ColumnPlan, ImportFile, Progress } from './reading.ts';
+import { type ColumnPlan, type ImportFile, NOTHING_UNDERSTOOD, type Progress, type Understood } from './reading.ts';
 import { decodeText, detectEncoding, isKnownEncoding, looksBinary, type TextEncoding, utf8Pieces } from './text-encoding.ts';
 import { isUnitText } from './unit.ts';
 
 /** Most bytes of one table. */
-export const TABLE_BYTE_LIMIT = 512 * 1024 * 1024;
+const TABLE_BYTE_LIMIT = 512 * 1024 * 1024;
 /** Most columns of one table. */
-export const COLUMN_LIMIT = 2000;
+const COLUMN_LIMIT = 2000;
 /** Longest record, bytes: an unclosed quote must not swallow the memory. */
 const RECORD_BYTE_LIMIT = 1024 * 1024;
 const HEAD_BYTES = 256 * 1024;
@@ -41,7 +41,7 @@ export interface TableRow {
   readonly cells: readonly string[];
 }
 
-export interface TableRequest {
+interface TableRequest {
   readonly file: ImportFile;
   readonly plan: ColumnPlan;
   /** does this header cell belong to the kind of table wanted? */
@@ -249,4 +249,16 @@ async function parsePieces(file: ImportFile, head: TableHead, take: (cells: stri
   }
   parser.end();
   await ended;
+}
+
+/** What a table's start says, the rest still unknown. */
+export function understoodHead(head: TableHead): Understood {
+  return {
+    ...NOTHING_UNDERSTOOD,
+    format: 'csv',
+    encoding: head.encoding.name,
+    delimiter: head.delimiter,
+    decimalComma: head.decimalComma,
+    headerRow: head.headerRow,
+  };
 }

@@ -15,7 +15,7 @@ export interface BoundProperties {
   readonly names: readonly string[];
 }
 
-export interface PropertyRequest {
+interface PropertyRequest {
   readonly roles: readonly TableRole[];
   readonly options: ImportOptions;
   /** role → property named in the options */
@@ -24,7 +24,7 @@ export interface PropertyRequest {
 }
 
 /** Words for the findings about codes: what the features are, and how they are numbered without a code. */
-export interface CodeWords {
+interface CodeWords {
   readonly thing: string;
   readonly numbered: string;
 }
@@ -77,7 +77,7 @@ function isUnique(features: readonly RawFeature[], name: string): boolean {
 }
 
 /** Options such as `codeColumn` become part of the plan. */
-export function bindProperties(features: readonly RawFeature[], request: PropertyRequest, findings: FindingList): BoundProperties {
+function bindProperties(features: readonly RawFeature[], request: PropertyRequest, findings: FindingList): BoundProperties {
   const file = features[0]?.file ?? '';
   const names = propertyNames(features, PROPERTY_LIMIT);
   const columns: Record<string, { role: string | null; unit?: string | null }> = { ...request.options.plan?.columns };

@@ -8,7 +8,7 @@ import { isMissingText } from './number-cell.ts';
 import type { ImportFile } from './reading.ts';
 
 /** Most features of one file. */
-export const FEATURE_LIMIT = 1_000_000;
+const FEATURE_LIMIT = 1_000_000;
 
 /** One feature. `geometry` is null when it is missing or broken; then `problem` says why. */
 export interface RawFeature {
@@ -20,7 +20,7 @@ export interface RawFeature {
   readonly problem: string | null;
 }
 
-export interface FeatureFile {
+interface FeatureFile {
   readonly features: RawFeature[];
   readonly encoding: string;
   readonly crs: string;

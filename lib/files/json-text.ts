@@ -5,10 +5,10 @@ import { type FindingList, shown } from './finding-list.ts';
 import type { ImportFile } from './reading.ts';
 import { decodeText, detectEncoding, looksBinary } from './text-encoding.ts';
 
-export const JSON_BYTE_LIMIT = 256 * 1024 * 1024;
-export const JSON_DEPTH_LIMIT = 64;
+const JSON_BYTE_LIMIT = 256 * 1024 * 1024;
+const JSON_DEPTH_LIMIT = 64;
 
-export interface JsonReading {
+interface JsonReading {
   readonly value: unknown;
   readonly encoding: string;
 }
@@ -39,7 +39,7 @@ export function parseJsonFile(file: ImportFile, findings: FindingList): JsonRead
 }
 
 /** Depth of the deepest array or object, by brackets outside strings; stops counting past the limit. */
-export function deepestNesting(text: string): number {
+function deepestNesting(text: string): number {
   let depth = 0;
   let deepest = 0;
   let inString = false;

@@ -1,13 +1,13 @@
 /**
  * The loss of a reach from its properties: a rule, a value, and for seepage the wetted perimeter.
  */
+import type { LossRule } from '../canal/loss-rule.ts';
 import { numberOf, textOf } from './feature-properties.ts';
 import { type FindingList, shown } from './finding-list.ts';
 import type { RawFeature } from './geojson.ts';
-import type { StagedLossRule } from './reading.ts';
 import type { BoundTable } from './table-columns.ts';
 
-const NO_LOSS: StagedLossRule = { kind: 'none' };
+const NO_LOSS: LossRule = { kind: 'none' };
 const RULES = ['none', 'fraction_per_km', 'efficiency', 'seepage_mm_d'];
 const LIMITS: Record<string, { low: number; high: number; unit: string }> = {
   fraction_per_km: { low: 0, high: 0.5, unit: 'per km' },
@@ -16,11 +16,11 @@ const LIMITS: Record<string, { low: number; high: number; unit: string }> = {
 };
 
 /** Loss rule of a feature; a missing or unusable one is "none", with a warning when something was written. */
-export function lossRuleOf(feature: RawFeature, bound: BoundTable['bound'], findings: FindingList): StagedLossRule {
+export function lossRuleOf(feature: RawFeature, bound: BoundTable['bound'], findings: FindingList): LossRule {
   const text = textOf(feature, bound, 'loss_rule');
   if (text === null) return NO_LOSS;
   const rule = text.toLowerCase().replace(/[\s-]+/g, '_');
-  const bad = (message: string, advice: string, limit?: string): StagedLossRule => {
+  const bad = (message: string, advice: string, limit?: string): LossRule => {
     findings.warn({
       code: 'bad-loss-rule',
       message: `${message} The reach is taken without loss.`,

@@ -6,7 +6,7 @@ import { thinGeometry } from '../geo/thin-geometry.ts';
 import type { MapPreview } from './reading.ts';
 
 /** Most features of a preview. */
-export const PREVIEW_FEATURES = 2000;
+const PREVIEW_FEATURES = 2000;
 
 type PreviewFeature = MapPreview['collection']['features'][number];
 type Status = PreviewFeature['properties']['status'];

@@ -8,7 +8,7 @@ import type { RawFeature } from './geojson.ts';
 import { calendarOf, plantingDateIn } from './planting-defaults.ts';
 import type { CropCount, ImportContext, ImportOptions, StagedParcel, StagedPlanting } from './reading.ts';
 
-export interface PlantingWork {
+interface PlantingWork {
   readonly options: ImportOptions;
   readonly context: ImportContext;
   readonly findings: FindingList;

@@ -1,7 +1,8 @@
 /**
  * A choropleth with canals on paper: vector shapes, hatched classes, legend with areas, north arrow, scale bar.
  */
-import type { PdfLegendEntry, PdfMap } from './pdf-content.ts';
+import type { LegendEntry } from '../report/legend.ts';
+import type { PrintMap } from '../report/print-map.ts';
 import { contentWidth, heading, INK, MARGIN, makeRoom, type Pdf, tagged } from './pdf-page.ts';
 
 /** What the rest of a first page needs beside the map [points]: title, figures, legend, chart. */
@@ -17,7 +18,7 @@ interface Frame {
   readonly height: number;
 }
 
-export function drawMap(doc: Pdf, title: string, note: string, map: PdfMap): void {
+export function drawMap(doc: Pdf, title: string, note: string, map: PrintMap): void {
   const scale = Math.min(contentWidth(doc) / map.width, (doc.page.height - BESIDE_MAP) / map.height);
   const legendRows = map.legend.entries.length + (map.legend.missing ? 1 : 0) + 2;
   const height = map.height * scale;
@@ -40,7 +41,7 @@ export function drawMap(doc: Pdf, title: string, note: string, map: PdfMap): voi
 }
 
 /** One path per class: filled, then hatched inside, then its edges. */
-function drawParcels(doc: Pdf, map: PdfMap, frame: Frame): void {
+function drawParcels(doc: Pdf, map: PrintMap, frame: Frame): void {
   const entries = [...map.legend.entries.keys(), -1];
   for (const at of entries) {
     const rings = map.parcels.filter((parcel) => parcel.classIndex === at).flatMap((parcel) => parcel.rings);
@@ -69,7 +70,7 @@ function tracePaths(doc: Pdf, rings: readonly (readonly (readonly [number, numbe
 }
 
 /** Lines over a box, to be clipped by the caller; light on a dark class. */
-function hatch(doc: Pdf, map: PdfMap, entry: PdfLegendEntry, box: { x: number; y: number; width: number; height: number }): void {
+function hatch(doc: Pdf, map: PrintMap, entry: LegendEntry, box: { x: number; y: number; width: number; height: number }): void {
   const sets = map.hatches[entry.pattern] ?? [];
   const [cx, cy, reach] = [box.x + box.width / 2, box.y + box.height / 2, Math.hypot(box.width, box.height) / 2];
   doc
@@ -93,7 +94,7 @@ function isDark(colour: string): boolean {
   return channel(1) + channel(3) + channel(5) < 330;
 }
 
-function drawCanals(doc: Pdf, map: PdfMap, { x, y, scale }: Frame): void {
+function drawCanals(doc: Pdf, map: PrintMap, { x, y, scale }: Frame): void {
   doc.lineJoin('round').lineCap('round');
   for (const casing of [true, false]) {
     for (const { points, width, colour } of map.canals) {
@@ -127,7 +128,7 @@ function northArrow(doc: Pdf, x: number, y: number): void {
 }
 
 /** A round length, at most a fifth of the map, at its lower right. */
-function scaleBar(doc: Pdf, map: PdfMap, frame: Frame): void {
+function scaleBar(doc: Pdf, map: PrintMap, frame: Frame): void {
   const unit = map.units === 'us' ? { metres: 1609.344, label: 'mi' } : { metres: 1000, label: 'km' };
   const longest = (map.width * map.metresPerUnit) / unit.metres / 5;
   const power = 10 ** Math.floor(Math.log10(longest));
@@ -148,7 +149,7 @@ function scaleBar(doc: Pdf, map: PdfMap, frame: Frame): void {
   doc.text(`${Number(length.toPrecision(2))} ${unit.label}`, right - 40, y - 10, { width: 44, align: 'right', lineBreak: false });
 }
 
-function drawLegend(doc: Pdf, map: PdfMap, note: string): void {
+function drawLegend(doc: Pdf, map: PrintMap, note: string): void {
   const { title, unit, entries, missing } = map.legend;
   const [x, top] = [MARGIN.side, doc.y];
   doc.font('strong').fontSize(8).fillColor(INK.text).text(`${title}, ${unit}`, x, top, { lineBreak: false });
@@ -182,7 +183,7 @@ function drawLegend(doc: Pdf, map: PdfMap, note: string): void {
   doc.y = Math.max(doc.y, top + LEGEND_ROW * (rows.length + 1) + 6);
 }
 
-function legendRow(doc: Pdf, map: PdfMap, entry: PdfLegendEntry, { x, y, barWidth }: { x: number; y: number; barWidth: number }): void {
+function legendRow(doc: Pdf, map: PrintMap, entry: LegendEntry, { x, y, barWidth }: { x: number; y: number; barWidth: number }): void {
   const box = { x, y, width: 20, height: 9 };
   doc.rect(box.x, box.y, box.width, box.height).fillColor(entry.colour).fill();
   doc.save();

@@ -3,7 +3,7 @@
  */
 import { join } from 'node:path';
 import PdfKit from 'pdfkit';
-import type { PdfDocument } from './pdf-content.ts';
+import type { Report } from '../report/district-report.ts';
 
 export type Pdf = PDFKit.PDFDocument;
 
@@ -25,7 +25,7 @@ function font(name: string): string {
 }
 
 /** A document ready to draw on; every page is kept until the running feet are written. */
-export function openPdf(content: PdfDocument): Pdf {
+export function openPdf(content: Report): Pdf {
   const made = new Date(`${content.made}T00:00:00Z`);
   const doc = new PdfKit({
     size: content.paper === 'letter' ? 'LETTER' : 'A4',
@@ -91,7 +91,7 @@ export function heading(doc: Pdf, text: string, room: number): void {
 }
 
 /** Page numbers, title and notice at the foot of every page; call once, last. */
-export function runningFeet(doc: Pdf, content: PdfDocument): void {
+export function runningFeet(doc: Pdf, content: Report): void {
   const { start, count } = doc.bufferedPageRange();
   for (let page = start; page < start + count; page++) {
     doc.switchToPage(page);
@@ -101,7 +101,7 @@ export function runningFeet(doc: Pdf, content: PdfDocument): void {
   }
 }
 
-function foot(doc: Pdf, content: PdfDocument, place: string): void {
+function foot(doc: Pdf, content: Report, place: string): void {
   const y = doc.page.height - MARGIN.bottom + 16;
   const width = contentWidth(doc);
   const bottom = doc.page.margins.bottom;

@@ -3,7 +3,9 @@
  *
  * Source: ISO 32000-1 (PDF 1.7), section 14.8 for the tags.
  */
-import type { PdfBars, PdfBlock, PdfDocument } from './pdf-content.ts';
+
+import type { Report, ReportBlock } from '../report/district-report.ts';
+import type { BarChart } from '../report/weekly-bars.ts';
 import { drawMap } from './pdf-map.ts';
 import { closePdf, contentWidth, decoration, heading, INK, MARGIN, makeRoom, openPdf, type Pdf, runningFeet, tagged } from './pdf-page.ts';
 import { drawTable } from './pdf-table.ts';
@@ -13,7 +15,7 @@ import { drawTable } from './pdf-table.ts';
  *
  * @throws {Error} from the font loader when the DejaVu fonts are not installed.
  */
-export function pdfReport(content: PdfDocument): Promise<Uint8Array> {
+export function pdfReport(content: Report): Promise<Uint8Array> {
   const doc = openPdf(content);
   titleBlock(doc, content);
   for (const block of content.blocks) drawBlock(doc, block);
@@ -21,7 +23,7 @@ export function pdfReport(content: PdfDocument): Promise<Uint8Array> {
   return closePdf(doc);
 }
 
-function drawBlock(doc: Pdf, block: PdfBlock): void {
+function drawBlock(doc: Pdf, block: ReportBlock): void {
   if (block.kind === 'figures') keyFigures(doc, block.items);
   else if (block.kind === 'map') drawMap(doc, block.heading, block.note, block.map);
   else if (block.kind === 'bars') barChart(doc, block.heading, block.chart);
@@ -29,7 +31,7 @@ function drawBlock(doc: Pdf, block: PdfBlock): void {
   else paragraphs(doc, block.heading, block.paragraphs);
 }
 
-function titleBlock(doc: Pdf, content: PdfDocument): void {
+function titleBlock(doc: Pdf, content: Report): void {
   const width = contentWidth(doc);
   decoration(doc, () => doc.rect(MARGIN.side, MARGIN.top - 10, 44, 3).fill(INK.accent));
   tagged(doc, 'H1', () => {
@@ -99,7 +101,7 @@ function keyFigures(doc: Pdf, items: readonly { readonly label: string; readonly
   doc.y = top + rows * rowHeight;
 }
 
-function barChart(doc: Pdf, title: string, chart: PdfBars): void {
+function barChart(doc: Pdf, title: string, chart: BarChart): void {
   const scale = contentWidth(doc) / chart.width;
   heading(doc, title, chart.height * scale + 16);
   const top = doc.y;
@@ -120,7 +122,7 @@ interface Place {
   readonly scale: number;
 }
 
-function drawBars(doc: Pdf, chart: PdfBars, { x, y, scale }: Place): void {
+function drawBars(doc: Pdf, chart: BarChart, { x, y, scale }: Place): void {
   const { plot } = chart;
   doc.save().translate(x, y).scale(scale);
   doc.font('text').fontSize(7.5);

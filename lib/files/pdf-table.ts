@@ -1,7 +1,7 @@
 /**
  * A table over as many pages as it needs, its header repeated on each.
  */
-import type { PdfTable } from './pdf-content.ts';
+import type { TextTable } from '../report/district-report.ts';
 import { contentWidth, decoration, heading, INK, MARGIN, type Pdf, pageBottom } from './pdf-page.ts';
 
 const SIZE = 7.6;
@@ -14,7 +14,7 @@ interface Column {
   readonly right: boolean;
 }
 
-export function drawTable(doc: Pdf, table: PdfTable): void {
+export function drawTable(doc: Pdf, table: TextTable): void {
   heading(doc, table.title, 4 * ROW);
   const columns = columnsOf(doc, table);
   const root = doc.struct('Table', { title: table.title });
@@ -35,7 +35,7 @@ export function drawTable(doc: Pdf, table: PdfTable): void {
 }
 
 /** Widths by the widest cell, stretched or squeezed to the page; text columns take what is left or give what lacks. */
-function columnsOf(doc: Pdf, table: PdfTable): Column[] {
+function columnsOf(doc: Pdf, table: TextTable): Column[] {
   const widths = table.columns.map(({ header }, i) => {
     doc.font('strong').fontSize(SIZE);
     const words = header.split(' ').map((word) => doc.widthOfString(word));
@@ -56,7 +56,7 @@ function columnsOf(doc: Pdf, table: PdfTable): Column[] {
   });
 }
 
-function drawHeader(doc: Pdf, table: PdfTable, columns: readonly Column[], root: PDFKit.PDFStructureElement): void {
+function drawHeader(doc: Pdf, table: TextTable, columns: readonly Column[], root: PDFKit.PDFStructureElement): void {
   doc.font('strong').fontSize(SIZE);
   const heights = table.columns.map(({ header }, i) => doc.heightOfString(header, { width: columns[i].width - 2 * PAD }));
   const height = Math.max(...heights) + 5;

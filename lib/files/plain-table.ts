@@ -2,12 +2,20 @@
  * A plain table (stations, plantings, soils): opened, its columns bound, its rows handed out with typed access to their cells.
  */
 import { isoDate } from '../base/civil-date.ts';
-import { openTable, readRows, type TableHead } from './csv.ts';
+import { openTable, readRows, type TableHead, understoodHead } from './csv.ts';
 import { parseDate, sniffDateOrder } from './date-cell.ts';
 import { FindingList, shown } from './finding-list.ts';
 import { isMissingText, NOT_A_NUMBER, type NumberReader, numberReader } from './number-cell.ts';
-import type { DateOrder, ImportFile, ImportOptions, ImportReading, Progress, StagedImport, Understood } from './reading.ts';
-import { NOTHING_UNDERSTOOD } from './reading.ts';
+import {
+  type DateOrder,
+  type ImportFile,
+  type ImportOptions,
+  type ImportReading,
+  NOTHING_UNDERSTOOD,
+  type Progress,
+  type StagedImport,
+  type Understood,
+} from './reading.ts';
 import { type BindRequest, type BoundTable, bindColumns, requireRoles, sampleOf, type TableRole, tableRoleOf } from './table-columns.ts';
 import { TablePreviewRows } from './table-preview.ts';
 
@@ -27,7 +35,7 @@ export interface PlainRow {
   readonly header: (role: string) => string | undefined;
 }
 
-export interface PlainTableRequest {
+interface PlainTableRequest {
   readonly files: readonly ImportFile[];
   readonly options: ImportOptions;
   readonly progress: Progress;
@@ -100,12 +108,7 @@ async function readOne(
   );
   const order = dateOrderOf(head, options, bound, file.name, findings);
   const understood: Understood = {
-    ...NOTHING_UNDERSTOOD,
-    format: 'csv',
-    encoding: head.encoding.name,
-    delimiter: head.delimiter,
-    decimalComma: head.decimalComma,
-    headerRow: head.headerRow,
+    ...understoodHead(head),
     columns,
     dateOrder: order,
   };

@@ -5,7 +5,7 @@ import { isIsoDate } from '../base/civil-date.ts';
 import type { ImportContext } from './reading.ts';
 
 export type Season = ImportContext['seasons'][number];
-export type Calendar = ImportContext['calendars'][number];
+type Calendar = ImportContext['calendars'][number];
 
 /** Calendar of this crop: the one named, or the crop's first. Null when there is none. */
 export function calendarOf(context: ImportContext, cropCode: string, calendarCode: string | null): Calendar | null {

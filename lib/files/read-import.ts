@@ -20,7 +20,7 @@ import { readSoils } from './soils-csv.ts';
 import { readStations } from './stations-csv.ts';
 import { readWeather } from './weather-csv.ts';
 
-export type { ColumnPlan, ImportContext, ImportKind, ImportOptions, ImportReading, Preview, StagedImport, Understood } from './reading.ts';
+export type { ImportOptions } from './reading.ts';
 
 type Reader = (files: readonly ImportFile[], options: ImportOptions, context: ImportContext, progress: Progress) => Promise<ImportReading>;
 
@@ -32,8 +32,6 @@ const READERS: Record<ImportKind, Reader> = {
   plantings: readPlantings,
   soils: readSoils,
 };
-
-export const IMPORT_KINDS = Object.keys(READERS) as ImportKind[];
 
 const EMPTY: Record<ImportKind, StagedImport> = {
   stations: { kind: 'stations', sites: [] },

@@ -5,6 +5,8 @@
  */
 import type { Geometry, LineString, MultiLineString, MultiPolygon, Polygon } from 'geojson';
 import type { Finding } from '../base/errors.ts';
+import type { LossRule } from '../canal/loss-rule.ts';
+import type { Soil } from '../season/types.ts';
 import type { WeatherVariable } from '../weather/variable.ts';
 
 export type ImportKind = 'stations' | 'weather' | 'parcels' | 'canals' | 'plantings' | 'soils';
@@ -149,7 +151,7 @@ export interface MapPreview {
   };
 }
 
-export type Preview = TablePreview | MapPreview;
+type Preview = TablePreview | MapPreview;
 
 export interface StagedSite {
   readonly code: string;
@@ -216,13 +218,6 @@ export interface StagedPlanting {
   readonly areaShare: number;
 }
 
-/** How a reach loses water. Fractions 0–1; `rate` [mm d⁻¹] over the wetted perimeter [m]. */
-export type StagedLossRule =
-  | { readonly kind: 'none' }
-  | { readonly kind: 'fraction-per-km'; readonly fraction: number }
-  | { readonly kind: 'efficiency'; readonly efficiency: number }
-  | { readonly kind: 'seepage'; readonly rate: number; readonly wettedPerimeter: number };
-
 export interface StagedReach {
   readonly code: string;
   readonly name: string;
@@ -230,23 +225,14 @@ export interface StagedReach {
   readonly kind: string;
   /** m³ s⁻¹ */
   readonly capacity: number | null;
-  readonly lossRule: StagedLossRule;
+  readonly lossRule: LossRule;
   /** m, on the ellipsoid */
   readonly length: number;
   readonly geometry: LineString | MultiLineString;
 }
 
-export interface StagedSoil {
-  readonly code: string;
-  readonly name: string;
-  /** m³ m⁻³ */
-  readonly fieldCapacity: number;
-  readonly wiltingPoint: number;
-  /** m */
-  readonly evaporationDepth: number;
-  /** mm */
-  readonly readilyEvaporableWater: number;
-  readonly totalEvaporableWater: number;
+/** A soil class as a file brings it: what it does not say is null. */
+export interface StagedSoil extends Omit<Soil, 'curveNumber' | 'rootLimit'> {
   readonly curveNumber: number | null;
   /** m */
   readonly rootLimit: number | null;

@@ -3,7 +3,7 @@
  */
 import type { ImportContext } from './reading.ts';
 
-export interface UnknownSite {
+interface UnknownSite {
   rows: number;
   readonly firstRow: number;
   readonly file: string;

@@ -15,7 +15,7 @@ export interface TableRole {
 }
 
 /** Where a role is found, and how its numbers become the inside unit. */
-export interface BoundColumn {
+interface BoundColumn {
   readonly index: number;
   readonly header: string;
   readonly convert: (value: number) => number;

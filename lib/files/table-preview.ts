@@ -5,7 +5,7 @@ import { shown } from './finding-list.ts';
 import type { TablePreview } from './reading.ts';
 
 /** Most rows of a preview. */
-export const PREVIEW_ROWS = 200;
+const PREVIEW_ROWS = 200;
 
 type Row = TablePreview['rows'][number];
 

@@ -7,7 +7,7 @@
 import { insideUnit, type UnitKind } from './unit.ts';
 import type { WeatherValueRole } from './weather-column.ts';
 
-export interface UnitGuess {
+interface UnitGuess {
   readonly unit: string;
   /** 0–1 */
   readonly confidence: number;

@@ -119,7 +119,7 @@ for (const unit of UNITS) {
 }
 
 /** One key for the many ways a unit is typed: `W m⁻²`, `W/m^2`, `w_m2` … @example unitKey('°C') // 'degc' */
-export function unitKey(text: string): string {
+function unitKey(text: string): string {
   return text
     .trim()
     .toLowerCase()

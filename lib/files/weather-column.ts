@@ -15,7 +15,7 @@ export const WEATHER_EXTRA_ROLES = [
   'wind_speed_at_hour_m_s',
 ] as const;
 
-export type WeatherExtraRole = (typeof WEATHER_EXTRA_ROLES)[number];
+type WeatherExtraRole = (typeof WEATHER_EXTRA_ROLES)[number];
 export type WeatherValueRole = WeatherVariable | WeatherExtraRole;
 export type WeatherRole = WeatherValueRole | (typeof WEATHER_KEY_ROLES)[number];
 

@@ -2,7 +2,7 @@
  * Daily weather of stations, one row per site and day, in one or more delimited files → monthly blocks in the units of the product.
  */
 import { type DayNumber, dayNumberOf, isLeapYear, isoDate } from '../base/civil-date.ts';
-import { openTable, readRows, type TableHead, type TableRow } from './csv.ts';
+import { openTable, readRows, type TableHead, type TableRow, understoodHead } from './csv.ts';
 import { type DateReading, dayFromParts, parseDate, YEAR_LIMITS } from './date-cell.ts';
 import { FindingList, shown } from './finding-list.ts';
 import { numberReader } from './number-cell.ts';
@@ -132,18 +132,6 @@ async function readFile(
   noteMissing(rows.counts, columns.values, file.name, findings);
   reading.rows += Math.max(0, count);
   return { understood, header: head.header };
-}
-
-/** What a table's start says, for `Understood`. */
-export function understoodHead(head: TableHead): Understood {
-  return {
-    ...NOTHING_UNDERSTOOD,
-    format: 'csv',
-    encoding: head.encoding.name,
-    delimiter: head.delimiter,
-    decimalComma: head.decimalComma,
-    headerRow: head.headerRow,
-  };
 }
 
 function checkSite(columns: WeatherColumns, file: ImportFile, { options, context, findings }: Reading): boolean {

@@ -16,7 +16,7 @@ export interface RowCounts {
   traceRain: number;
 }
 
-export interface RowReading {
+interface RowReading {
   readonly values: Float64Array;
   /** why a cell or two were dropped, null when the row is clean */
   problem: string | null;

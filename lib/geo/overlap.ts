@@ -8,14 +8,14 @@ import { geodesicArea } from './geodesic.ts';
 import { boxOf, crossingsAt } from './point-inside.ts';
 import { planeDoubleArea } from './ring.ts';
 
-export interface Overlap {
+interface Overlap {
   readonly first: number;
   readonly second: number;
   /** shared area ÷ the smaller of the two areas, 0–1 */
   readonly share: number;
 }
 
-export interface OverlapOptions {
+interface OverlapOptions {
   /** share of the smaller area from which an overlap is reported */
   readonly threshold: number;
   /** most overlaps reported */

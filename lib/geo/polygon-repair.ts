@@ -11,10 +11,10 @@ export const AREA_CHANGE_LIMIT = 0.05;
 /** Smallest area that is land [m²]. */
 export const AREA_MINIMUM = 1;
 /** Vertices beyond which a crossing polygon is refused rather than repaired: overlay of so many takes too long. */
-export const REPAIR_VERTEX_LIMIT = 20_000;
+const REPAIR_VERTEX_LIMIT = 20_000;
 
 /** Crossings from which an outline is refused outright: no drawing slip makes so many. */
-export const CROSSING_LIMIT = 100;
+const CROSSING_LIMIT = 100;
 
 export type RepairFault = 'too-few-vertices' | 'zero-area' | 'self-intersection' | 'antimeridian';
 export type RepairNote = 'closed' | 'oriented' | 'duplicates-removed' | 'height-dropped' | 'hole-dropped';

@@ -18,7 +18,7 @@ export function planeDoubleArea(ring: readonly Position[]): number {
   return sum;
 }
 
-export interface CleanRing {
+interface CleanRing {
   readonly ring: Position[];
   readonly closed: boolean;
   readonly duplicates: number;

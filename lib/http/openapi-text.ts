@@ -86,7 +86,7 @@ function defaultText(schema: Schema): string {
 }
 
 /** A schema's type in words. @example typeText({ type: ['string', 'null'] }) // 'string or null' */
-export function typeText(schema: Schema): string {
+function typeText(schema: Schema): string {
   if (schema.$ref) return schema.$ref.split('/').pop() as string;
   if (schema.enum) return schema.enum.join(' · ');
   if (schema.const !== undefined) return String(schema.const);

@@ -139,7 +139,7 @@ function csvMembers(operation: Operation): Json {
 }
 
 /** @example operationId({ method: 'GET', path: '/api/v1/runs/{id}/parcels' }) // 'getRunsIdParcels' */
-export function operationId({ method, path }: Pick<Operation, 'method' | 'path'>): string {
+function operationId({ method, path }: Pick<Operation, 'method' | 'path'>): string {
   const words = path
     .replace('/api/v1/', '')
     .split(/[^a-zA-Z]+/)

@@ -5,7 +5,7 @@ import { NotFound } from '../base/errors.ts';
 import { answerDistricts } from './answers/district.ts';
 import { preferenceCookie } from './cookies.ts';
 
-export interface Preferences {
+interface Preferences {
   readonly units?: 'metric' | 'us';
   /** code or id of a district the reader belongs to */
   readonly district?: string;

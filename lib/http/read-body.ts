@@ -3,7 +3,7 @@ import type { z } from 'zod';
 import { Malformed, TooLarge, UnknownKind } from '../base/errors.ts';
 import { malformedFrom } from './problem.ts';
 
-export const DEFAULT_BODY_LIMIT = 256 * 1024;
+const DEFAULT_BODY_LIMIT = 256 * 1024;
 
 /**
  * The body as JSON, checked.

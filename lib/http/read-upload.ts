@@ -1,7 +1,7 @@
 /** Reading a multipart upload within a limit. */
 import { Malformed, TooLarge, UnknownKind } from '../base/errors.ts';
 
-export interface Upload {
+interface Upload {
   readonly files: readonly { readonly name: string; readonly bytes: Uint8Array }[];
   /** text parts by name; the last of a name counts */
   readonly fields: ReadonlyMap<string, string>;

@@ -14,7 +14,7 @@ import { answerSummary } from './answers/summary.ts';
 import { type ParcelPeriod, parcelPeriod, reachPeriod, summaryRow, summaryRowsOf } from './contract/run.ts';
 import { begun, csvOf, csvResponse, csvStream } from './table.ts';
 
-export interface ReportWanted {
+interface ReportWanted {
   readonly file: 'parcels.csv' | 'parcels.geojson' | 'reaches.csv' | 'summary.csv' | 'district.pdf';
   readonly period: PeriodKind;
   readonly units: UnitSystem;

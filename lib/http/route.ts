@@ -14,7 +14,7 @@ import { csvOf, csvResponse } from './table.ts';
 
 type Of<S> = S extends z.ZodRawShape ? z.infer<z.ZodObject<S>> : Record<never, never>;
 
-export interface Asked<Q extends z.ZodRawShape, B extends z.ZodType, P extends z.ZodRawShape, C> {
+interface Asked<Q extends z.ZodRawShape, B extends z.ZodType, P extends z.ZodRawShape, C> {
   readonly request: Request;
   readonly caller: C;
   readonly params: Of<P>;

@@ -7,7 +7,7 @@ import type { TableShape } from './operation.ts';
 type Row = Record<string, unknown>;
 
 /** Columns of a table in the order of its schema. */
-export function columnsOf(shape: TableShape): string[] {
+function columnsOf(shape: TableShape): string[] {
   return Object.keys(shape.row.shape).filter((name) => !shape.leaveOut?.includes(name));
 }
 

@@ -1,6 +1,6 @@
 /**
  * The frozen inputs of a run: what its slices, its working and any later check read, whatever has changed in the district since.
- * Layout: gzip of [uint32 header length][JSON header][Float64 arrays of the weather in WEATHER_ARRAYS order][Uint16 flags].
+ * Layout: gzip of [uint32 header length][JSON header][Float64 arrays of the weather in COMPLETED_SERIES order][Uint16 flags].
  */
 import { gunzipSync, gzipSync } from 'node:zlib';
 import type { Tx } from '../../db/connect.ts';
@@ -8,27 +8,18 @@ import { findFrozen, listParcelInputs, listSliceParcels } from '../../db/queries
 import { NotFound } from '../base/errors.ts';
 import { nanFromNull, nullFromNaN } from '../base/missing.ts';
 import type { SeasonInput, Soil } from '../season/types.ts';
-import type { CompletedWeather, Site } from '../weather/variable.ts';
+import { COMPLETED_SERIES, type CompletedWeather, type Site } from '../weather/variable.ts';
 import { cropFromJson, type FrozenParcel, type Libraries, seasonInput } from './run-plan.ts';
 import type { RunSettings } from './run-settings.ts';
 
 /** Everything of a run but its parcels. */
-export interface FrozenSeason {
+interface FrozenSeason {
   readonly startDate: string;
   readonly settings: RunSettings;
   readonly sites: readonly Site[];
   readonly weather: CompletedWeather;
   readonly libraries: Libraries;
 }
-
-const WEATHER_ARRAYS = [
-  'airTemperatureMax',
-  'airTemperatureMin',
-  'actualVapourPressure',
-  'solarRadiation',
-  'windSpeed2m',
-  'precipitation',
-] as const;
 
 export function packFrozenSeason(frozen: FrozenSeason): Uint8Array {
   const header = Buffer.from(
@@ -43,7 +34,7 @@ export function packFrozenSeason(frozen: FrozenSeason): Uint8Array {
   );
   const length = Buffer.alloc(4);
   length.writeUInt32LE(header.length);
-  const arrays = WEATHER_ARRAYS.map((name) => bytesOf(frozen.weather[name]));
+  const arrays = COMPLETED_SERIES.map((name) => bytesOf(frozen.weather[name]));
   return gzipSync(Buffer.concat([length, header, ...arrays, bytesOf(frozen.weather.flags)]), { level: 3 });
 }
 
@@ -51,14 +42,14 @@ function bytesOf(array: Float64Array | Uint16Array): Buffer {
   return Buffer.from(array.buffer, array.byteOffset, array.byteLength);
 }
 
-export function unpackFrozenSeason(packed: Uint8Array): FrozenSeason {
+function unpackFrozenSeason(packed: Uint8Array): FrozenSeason {
   const bytes = gunzipSync(packed);
   const headerLength = bytes.readUInt32LE(0);
   const header = JSON.parse(bytes.subarray(4, 4 + headerLength).toString('utf8'));
   const count: number = header.siteCount * header.dayCount;
   const body = Uint8Array.from(bytes.subarray(4 + headerLength)).buffer;
   const array = (index: number) => new Float64Array(body, index * count * 8, count);
-  const weather = Object.fromEntries(WEATHER_ARRAYS.map((name, index) => [name, array(index)]));
+  const weather = Object.fromEntries(COMPLETED_SERIES.map((name, index) => [name, array(index)]));
   return {
     startDate: header.startDate,
     settings: header.settings,
@@ -71,7 +62,7 @@ export function unpackFrozenSeason(packed: Uint8Array): FrozenSeason {
       siteCount: header.siteCount,
       dayCount: header.dayCount,
       ...weather,
-      flags: new Uint16Array(body, WEATHER_ARRAYS.length * count * 8, count),
+      flags: new Uint16Array(body, COMPLETED_SERIES.length * count * 8, count),
     } as CompletedWeather,
     libraries: librariesFromJson(header.libraries),
   };
@@ -90,7 +81,7 @@ const HELD = new Map<string, FrozenSeason>();
 const HELD_LIMIT = 3;
 
 /** The frozen season of a run; the last few are kept in memory, since a run's inputs never change. @throws NotFound */
-export async function findFrozenSeason(tx: Tx, districtId: string, runId: string): Promise<FrozenSeason> {
+async function findFrozenSeason(tx: Tx, districtId: string, runId: string): Promise<FrozenSeason> {
   const key = `${districtId}/${runId}`;
   const held = HELD.get(key);
   if (held) return held;

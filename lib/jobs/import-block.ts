@@ -16,7 +16,7 @@ export interface BlockImage {
 }
 
 /** Values of one station for the days of the month, null where the file has none. */
-export interface BlockRow {
+interface BlockRow {
   readonly ordinal: number;
   readonly values: readonly (number | null)[];
 }

@@ -4,7 +4,7 @@ import type { ImportFile, ImportKind } from '../files/reading.ts';
 import { detectEncoding, looksBinary } from '../files/text-encoding.ts';
 
 /** What each kind of import is read from. */
-export const ACCEPTED: Record<ImportKind, 'csv' | 'geojson'> = {
+const ACCEPTED: Record<ImportKind, 'csv' | 'geojson'> = {
   stations: 'csv',
   weather: 'csv',
   parcels: 'geojson',
@@ -15,7 +15,7 @@ export const ACCEPTED: Record<ImportKind, 'csv' | 'geojson'> = {
 
 const ACCEPTED_TEXT = { csv: 'a table as text (CSV: comma, semicolon or tab between cells)', geojson: 'GeoJSON (RFC 7946)' } as const;
 
-export const MOST_FILES = 20;
+const MOST_FILES = 20;
 const MEGABYTE = 1024 * 1024;
 
 /** First bytes of files that people try. */
@@ -54,7 +54,7 @@ function checkFile(kind: ImportKind, file: ImportFile): void {
 }
 
 /** `csv`, `geojson`, or what else it looks like in words. */
-export function kindOfContent(bytes: Uint8Array): 'csv' | 'geojson' | string {
+function kindOfContent(bytes: Uint8Array): 'csv' | 'geojson' | string {
   if (bytes.length === 0) return 'an empty file';
   const known = SIGNATURES.find(([, signature]) => signature.every((byte, i) => bytes[i] === byte));
   if (known) return known[0];

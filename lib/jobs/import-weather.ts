@@ -70,7 +70,7 @@ async function ensureSource(tx: Tx, own: ImportKey, name: string | null): Promis
   return sourceId;
 }
 
-export interface BlockChanges {
+interface BlockChanges {
   /** blocks made or changed */
   readonly blocks: number;
   readonly months: readonly string[];

@@ -12,7 +12,7 @@ import { refuseLaterImport } from './import-undo.ts';
 import { enqueue } from './queue.ts';
 
 /** Who does it: the part of a caller that matters here. */
-export interface ImportActor {
+interface ImportActor {
   readonly districtId: string;
   readonly name: string;
 }
@@ -22,7 +22,7 @@ export type PipelineOptions = ImportOptions & {
   readonly recompute?: boolean;
 };
 
-export interface NewImport {
+interface NewImport {
   readonly kind: ImportKind;
   readonly files: readonly ImportFile[];
   readonly options: PipelineOptions;

@@ -4,7 +4,7 @@ import { dailyValues } from '../season/daily-store.ts';
 import type { DailyVariable } from '../season/types.ts';
 
 /** How a day's value becomes a period's: a sum of depths, the state at the period's end, or the mean. */
-export type Aggregate = 'sum' | 'end' | 'mean';
+type Aggregate = 'sum' | 'end' | 'mean';
 
 /** The variables a map can show. `depletion_share` is depletion over total available water. */
 export const MAP_VARIABLES: readonly {
@@ -25,7 +25,7 @@ export const MAP_VARIABLES: readonly {
   { id: 'stress_coefficient', term: 'Stress coefficient Ks', unit: '1', aggregate: 'mean' },
 ];
 
-export interface PeriodSet {
+interface PeriodSet {
   readonly kind: 'week' | 'month' | 'season';
   readonly periods: readonly Period[];
 }
@@ -75,7 +75,7 @@ export class MapArrays {
 }
 
 /** One period's value from days. Any missing day makes a sum missing; a mean is over the days that have a value. */
-export function aggregated(series: Float64Array, period: Period, aggregate: Aggregate): number {
+function aggregated(series: Float64Array, period: Period, aggregate: Aggregate): number {
   if (aggregate === 'end') return series[period.to];
   let sum = 0;
   let count = 0;

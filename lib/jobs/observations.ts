@@ -5,7 +5,7 @@ import { civilFromDayNumber, dayNumber, daysInMonth, isoDate } from '../base/civ
 import { nanFromNull } from '../base/missing.ts';
 import type { Site, SiteObservations, WeatherVariable } from '../weather/variable.ts';
 
-export interface ObservationsWanted {
+interface ObservationsWanted {
   /** name of a source; left out or null: every source of the district */
   readonly source?: string | null;
   /** first and last day; left out: everything stored */
@@ -29,7 +29,7 @@ export async function loadObservations(tx: Tx, districtId: string, wanted: Obser
 }
 
 /** The site as the numeric rooms take it. */
-export function siteOf(row: SiteRow): Site {
+function siteOf(row: SiteRow): Site {
   const { code, name, longitude, latitude } = row;
   return { code, name, longitude, latitude, elevation: nanFromNull(row.elevation), windHeight: nanFromNull(row.windHeight) };
 }

@@ -18,13 +18,13 @@ export interface JobData {
   readonly [key: string]: unknown;
 }
 
-export interface ActiveJob {
+interface ActiveJob {
   readonly id: string;
   /** aborted when the process is told to stop */
   readonly signal: AbortSignal;
 }
 
-export type JobHandler<T extends JobData = JobData> = (data: T, job: ActiveJob) => Promise<unknown>;
+type JobHandler<T extends JobData = JobData> = (data: T, job: ActiveJob) => Promise<unknown>;
 
 interface Loop {
   readonly name: QueueName;

@@ -133,7 +133,7 @@ function rangesOf(days: readonly number[]): string {
 }
 
 /** Site weights of one place by the run's settings, over sites that have any temperature at all in the season. */
-export function siteWeights(
+function siteWeights(
   place: { longitude: number; latitude: number },
   sites: readonly Site[],
   usable: readonly number[],
@@ -154,11 +154,18 @@ export function siteWeights(
 }
 
 /** Indexes of the sites that have air temperature on at least one day. */
-export function usableSites(weather: CompletedWeather): number[] {
+function usableSites(weather: CompletedWeather): number[] {
   return Array.from({ length: weather.siteCount }, (_, site) => site).filter((site) => {
     const row = weather.airTemperatureMax.subarray(site * weather.dayCount, (site + 1) * weather.dayCount);
     return row.some((value) => !Number.isNaN(value));
   });
+}
+
+/** The sites that have air temperature on every day: a parcel that listens to one of them needs no stand-in. */
+function completeSites(weather: CompletedWeather): ReadonlySet<number> {
+  const { airTemperatureMax, siteCount, dayCount } = weather;
+  const isComplete = (site: number) => !airTemperatureMax.subarray(site * dayCount, (site + 1) * dayCount).some(Number.isNaN);
+  return new Set(Array.from({ length: siteCount }, (_, site) => site).filter(isComplete));
 }
 
 /** Every parcel with its codes resolved to the district's defaults where it brings none. */
@@ -171,10 +178,12 @@ export function frozenParcels(options: {
   defaultElevation: number;
 }): FrozenParcel[] {
   const usable = usableSites(options.weather);
+  const complete = completeSites(options.weather);
   const plantingsOf = new Map<string, PlantingRow[]>();
   for (const row of options.plantings) plantingsOf.set(row.parcelCode, [...(plantingsOf.get(row.parcelCode) ?? []), row]);
   return options.parcels.map((parcel) => {
-    const weights = withEveryDay(siteWeights(parcel, options.sites, usable, options.settings), parcel, usable, options);
+    const near = siteWeights(parcel, options.sites, usable, options.settings);
+    const weights = near.some(({ site }) => complete.has(site)) ? near : withEveryDay(near, parcel, usable, options);
     return {
       area: parcel.area,
       latitude: parcel.latitude,

@@ -21,10 +21,10 @@ import { type FrozenParcel, frozenParcels, librariesOf, seasonInput, seasonWeath
 import type { RunSettings } from './run-settings.ts';
 
 /** Parcels in a slice: about a second of work, far below the half minute a piece may take. */
-export const SLICE_PARCELS = 2000;
+const SLICE_PARCELS = 2000;
 
 /** Version of the computation; part of every manifest. Count up when a change can move a result. */
-export const KERNEL_VERSION = '1';
+const KERNEL_VERSION = '1';
 
 /** The job: idempotent; a second go replaces the slices of the first. */
 export async function startRun(job: RunJob): Promise<void> {

@@ -9,7 +9,7 @@ import { Conflict, NotFound, Refused } from '../base/errors.ts';
 import { enqueue } from './queue.ts';
 import { DEFAULT_RUN_SETTINGS, type RunSettings } from './run-settings.ts';
 
-export interface RunWanted {
+interface RunWanted {
   readonly season: string;
   readonly settings?: Partial<RunSettings>;
 }

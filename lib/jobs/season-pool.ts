@@ -15,7 +15,7 @@ import type { SeasonReply } from './season-thread.ts';
 /** Fewer parcels than this are not worth another thread. */
 const PARCELS_PER_PART = 64;
 
-export interface SeasonPool {
+interface SeasonPool {
   /**
    * Runs a season on the threads.
    *

@@ -21,9 +21,9 @@ export interface Tick {
   readonly label: string;
 }
 
-export const CHART_MARGIN = { top: 10, right: 12, bottom: 24, left: 52 } as const;
+const CHART_MARGIN = { top: 10, right: 12, bottom: 24, left: 52 } as const;
 
-export const MONTHS = ['Jan', 'Feb', 'Mar', 'Apr', 'May', 'Jun', 'Jul', 'Aug', 'Sep', 'Oct', 'Nov', 'Dec'] as const;
+const MONTHS = ['Jan', 'Feb', 'Mar', 'Apr', 'May', 'Jun', 'Jul', 'Aug', 'Sep', 'Oct', 'Nov', 'Dec'] as const;
 
 export function plotBox(
   width: number,

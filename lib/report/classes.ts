@@ -15,7 +15,7 @@ export const CLASS_METHODS: Record<ClassMethod, string> = {
 /** More classes than this cannot be told apart on a map. */
 export const MOST_CLASSES = 9;
 
-export interface ClassRequest {
+interface ClassRequest {
   readonly values: ArrayLike<number>;
   /** same length; without it areas are zero [m²] */
   readonly areas?: ArrayLike<number>;

@@ -76,13 +76,3 @@ export const PRINT_PATTERNS: readonly (readonly { readonly angle: number; readon
 export function patternOf(index: number, count: number): number {
   return count <= 1 ? 0 : Math.round((index * (Math.min(count, PRINT_PATTERNS.length) - 1)) / (count - 1));
 }
-
-/** Black or white, whichever stands out more from a colour. Source: WCAG 2.2 relative luminance. @example textOn('#ffffff') // '#000000' */
-export function textOn(colour: string): '#000000' | '#ffffff' {
-  const channel = (at: number) => {
-    const c = Number.parseInt(colour.slice(at, at + 2), 16) / 255;
-    return c <= 0.04045 ? c / 12.92 : ((c + 0.055) / 1.055) ** 2.4;
-  };
-  const luminance = 0.2126 * channel(1) + 0.7152 * channel(3) + 0.0722 * channel(5);
-  return luminance > 0.179 ? '#000000' : '#ffffff';
-}

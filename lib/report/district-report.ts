@@ -5,10 +5,10 @@ import type { UnitSystem } from '../base/units.ts';
 import { cautionTexts, INVENTED_CAUTION, REPORT_CAUTIONS } from './cautions.ts';
 import { CLASS_METHODS, type ClassMethod, classify } from './classes.ts';
 import { legendOf } from './legend.ts';
-import type { ParcelPeriodRow } from './parcels-table.ts';
+import type { ParcelPeriodRow } from './parcel-period-row.ts';
 import { type PrintMap, type PrintMapRequest, printMap, widestCanalText } from './print-map.ts';
 import { decimalsFor, formatArea, formatDepth, formatFlow, formatShare, formatVolume, MISSING_TEXT, numberText } from './quantity-text.ts';
-import type { ReachPeriodRow } from './reaches-table.ts';
+import type { ReachPeriodRow } from './reach-period-row.ts';
 import { type SummaryRow, summarise, summaryOf } from './summary.ts';
 import { type ColumnPlan, headerText, type TableDocument, tableOf } from './table.ts';
 import { type BarChart, type WeekVolume, weeklyBars } from './weekly-bars.ts';
@@ -177,7 +177,7 @@ function cropGroup(row: ParcelPeriodRow): string {
  * Cells as text, every number of a column with the same decimals: three significant digits of the largest depth, four of the rest. Columns that
  * reach a million m³ are shown in thousand m³.
  */
-export function textTable(table: TableDocument, units: UnitSystem, total: readonly string[] | null): TextTable {
+function textTable(table: TableDocument, units: UnitSystem, total: readonly string[] | null): TextTable {
   const shown = table.columns.map((column, i) => {
     const largest = Math.max(0, ...table.rows.map((row) => (typeof row[i] === 'number' ? Math.abs(row[i]) : 0)));
     const divisor = column.unit === 'm³' && largest >= 1e6 ? 1000 : 1;

@@ -31,7 +31,7 @@ export interface Legend {
   readonly missing: LegendEntry | null;
 }
 
-export interface LegendRequest {
+interface LegendRequest {
   readonly title: string;
   /** quantity of the classed values, or null for a plain number */
   readonly quantity: Quantity | null;

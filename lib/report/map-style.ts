@@ -9,7 +9,7 @@ import type { ExpressionSpecification, LayerSpecification, StyleSpecification } 
 import { TIGHT_SHARE } from '../canal/reach-period.ts';
 import { CAPACITY_COLOURS, MISSING_COLOUR, type Theme } from './colour-scale.ts';
 
-export interface MapStyleRequest {
+interface MapStyleRequest {
   /** tile addresses with {z}/{x}/{y} */
   readonly parcelTiles: string;
   readonly canalTiles: string;
@@ -90,7 +90,7 @@ function parcelLayers({ colours, theme }: MapStyleRequest, ink: Ink): LayerSpeci
 }
 
 /** Colour by class from feature state; also for repainting one map with other classes. */
-export function parcelColour(colours: readonly string[], theme: Theme): ExpressionSpecification | string {
+function parcelColour(colours: readonly string[], theme: Theme): ExpressionSpecification | string {
   if (colours.length === 0) return MISSING_COLOUR[theme];
   const pairs = colours.flatMap((colour, i) => [i, colour]);
   return ['match', state('class', -1), ...pairs, MISSING_COLOUR[theme]] as unknown as ExpressionSpecification;

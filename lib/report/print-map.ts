@@ -7,7 +7,7 @@ import { type Classes, classOf } from './classes.ts';
 import { CAPACITY_COLOURS, PRINT_PATTERNS } from './colour-scale.ts';
 import type { Legend } from './legend.ts';
 import { formatFlow } from './quantity-text.ts';
-import type { ReachPeriodRow } from './reaches-table.ts';
+import type { ReachPeriodRow } from './reach-period-row.ts';
 
 type LonLat = readonly number[];
 

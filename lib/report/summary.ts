@@ -1,10 +1,8 @@
 /**
  * Season totals by canal, crop or method.
  */
-import type { UnitSystem } from '../base/units.ts';
 import { depthToVolume, volumeToDepth } from '../base/units.ts';
-import type { ParcelPeriodRow } from './parcels-table.ts';
-import { type ColumnPlan, type TableDocument, tableOf } from './table.ts';
+import type { ParcelPeriodRow } from './parcel-period-row.ts';
 
 /** One group of parcels. Depths are means over the group's area [mm]. */
 export interface SummaryRow {
@@ -56,23 +54,4 @@ export function summaryOf(name: string, members: readonly ParcelPeriodRow[]): Su
     netVolume: volume('netRequirement'),
     grossVolume: volume('grossRequirement'),
   };
-}
-
-const PLANS: readonly ColumnPlan<SummaryRow>[] = [
-  { name: 'parcels', header: 'Parcels', quantity: 'plain', value: (row) => row.parcelCount },
-  { name: 'area', header: 'Area', quantity: 'm2', value: (row) => row.area },
-  { name: 'crop_et', header: 'Crop ET', quantity: 'mm', value: (row) => row.cropEt },
-  { name: 'adjusted_crop_et', header: 'Crop ET, adjusted', quantity: 'mm', value: (row) => row.adjustedCropEt },
-  { name: 'precipitation', header: 'Rain', quantity: 'mm', value: (row) => row.precipitation },
-  { name: 'effective_precipitation', header: 'Effective rain', quantity: 'mm', value: (row) => row.effectivePrecipitation },
-  { name: 'net_requirement', header: 'Net requirement', quantity: 'mm', value: (row) => row.netRequirement },
-  { name: 'gross_requirement', header: 'Gross requirement', quantity: 'mm', value: (row) => row.grossRequirement },
-  { name: 'net_requirement_volume', header: 'Net volume', quantity: 'm3', value: (row) => row.netVolume },
-  { name: 'gross_requirement_volume', header: 'Gross volume', quantity: 'm3', value: (row) => row.grossVolume },
-];
-
-/** @param by what the groups are, as a column header: `Canal`, `Crop` */
-export function summaryTable(by: string, rows: readonly SummaryRow[], units: UnitSystem): TableDocument {
-  const first: ColumnPlan<SummaryRow> = { name: by.toLowerCase(), header: by, quantity: 'text', value: (row) => row.name };
-  return tableOf(`Water requirement by ${by.toLowerCase()}`, [first, ...PLANS], rows, units);
 }

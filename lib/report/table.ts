@@ -5,9 +5,9 @@ import { roundOrNull } from '../base/missing.ts';
 import { BORDER_UNITS, type UnitSystem } from '../base/units.ts';
 import { inUnits, type Quantity, unitLabel } from './quantity-text.ts';
 
-export type Cell = string | number | null;
+type Cell = string | number | null;
 
-export interface TableColumn {
+interface TableColumn {
   /** column name in files, with the unit as suffix: `crop_et_mm`, `crop_et_in` */
   readonly key: string;
   readonly header: string;

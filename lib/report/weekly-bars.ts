@@ -18,7 +18,7 @@ export interface WeekVolume {
   readonly forecast?: boolean;
 }
 
-export interface Bar extends Box {
+interface Bar extends Box {
   readonly start: string;
   readonly end: string;
   readonly forecast: boolean;
@@ -40,7 +40,7 @@ export interface BarChart {
   readonly description: string;
 }
 
-export interface WeeklyBarsRequest {
+interface WeeklyBarsRequest {
   readonly weeks: readonly WeekVolume[];
   readonly width: number;
   readonly height: number;

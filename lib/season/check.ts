@@ -3,20 +3,11 @@
  */
 import { type IsoDate, isIsoDate } from '../base/civil-date.ts';
 import { RangeViolation, Refused, ShapeError } from '../base/errors.ts';
+import { COMPLETED_SERIES } from '../weather/variable.ts';
 import type { ApplicationMethod, Crop, CropCalendar, ParcelInput, SeasonInput, Soil } from './types.ts';
 
 /** The surface of the reference ET that drives a run; crops on another surface are refused. */
 export const RUN_SURFACE = 'short';
-
-const WEATHER_ARRAYS = [
-  'airTemperatureMax',
-  'airTemperatureMin',
-  'actualVapourPressure',
-  'solarRadiation',
-  'windSpeed2m',
-  'precipitation',
-  'flags',
-] as const;
 
 /**
  * Checks what all parcels of a run share: dates, settings and the shape of the weather.
@@ -32,7 +23,7 @@ export function checkSeason(input: SeasonInput): void {
   if (weather.siteCount !== input.sites.length) {
     throw new ShapeError(`weather has ${weather.siteCount} sites, the site table ${input.sites.length}`);
   }
-  for (const name of WEATHER_ARRAYS) {
+  for (const name of [...COMPLETED_SERIES, 'flags'] as const) {
     const length = weather[name].length;
     if (length !== weather.siteCount * dayCount) {
       throw new ShapeError(`weather.${name} has ${length} values: ${weather.siteCount} sites × ${dayCount} days are needed`);

@@ -1,14 +1,15 @@
 /**
  * The working of a planting's coefficients on one day: which stage it is in, and the climate its coefficients were adjusted to.
  */
+
+import { quantity } from '../base/working.ts';
 import { END_ADJUSTED_FROM } from '../crop/climate-adjustment.ts';
 import type { Cycle, Stage } from '../crop/curve.ts';
-import { quantity } from './day-working.ts';
 import { cycleCoefficients, type StageClimate } from './strip-curve.ts';
 import type { Crop, Trace, WorkingStep } from './types.ts';
 
 /** A planting on one day, as the curve has it. */
-export interface CoefficientDay {
+interface CoefficientDay {
   readonly crop: Crop;
   readonly cycle: Cycle;
   readonly climates: { readonly mid: StageClimate; readonly late: StageClimate };

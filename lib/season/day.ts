@@ -26,11 +26,12 @@ import {
   evaporationCoefficient as soilEvaporation,
   wettedSurfaceDepletion,
 } from '../crop/surface-layer.ts';
-import { recordUse, recordWetting } from './day-working.ts';
 import type { Trace } from './types.ts';
+import { recordUse } from './use-working.ts';
+import { recordWetting } from './wetting-working.ts';
 
 /** Root-zone depletion [mm] at or below which an irrigation counts as finished, and none is started. */
-export const REFILLED = 0.5;
+const REFILLED = 0.5;
 
 /** Rain [mm d⁻¹] above which the whole surface is wetted. Source: FAO-56, text of Eq. 75 (3 … 4 mm). */
 export const WETTING_RAIN = 3;

@@ -18,7 +18,7 @@ import {
 } from './types.ts';
 
 /** Someone who wants the working of one day; `strip` hears about each strip of the parcel before its days are stepped. */
-export interface Listener {
+interface Listener {
   readonly day: number;
   strip(plan: StripPlan, index: number, count: number): Trace;
 }

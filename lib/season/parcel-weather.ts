@@ -34,7 +34,14 @@ export function placeWeather(season: PackedSeason, parcel: ParcelInput): void {
   rainOff(season, parcel);
 }
 
-/** Correction of a site's temperature to the parcel's elevation [°C]; 0 where the site's elevation is unknown. */
+/**
+ * Correction of a site's temperature to the parcel's elevation.
+ *   ΔT = Γ (zsite − zparcel)
+ *
+ * @param lapseRate Γ [°C m⁻¹], positive when it gets colder upwards; 0.0065 in the standard atmosphere
+ * @returns ΔT [°C]; 0 where the site's elevation is unknown
+ * Source: ISO 2533:1975, Standard Atmosphere, for the value 0.0065.
+ */
 export function lapseCorrection(site: Site, parcel: ParcelInput, lapseRate: number): number {
   return Number.isNaN(site.elevation) ? 0 : lapseRate * (site.elevation - parcel.elevation);
 }

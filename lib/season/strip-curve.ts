@@ -20,7 +20,7 @@ import { MARK, type PackedSeason, type ParcelWeather, type StripCurve } from './
 import type { Crop, ParcelInput, Planting, Soil } from './types.ts';
 
 /** Height at which ground without a crop meets the wind in Kc max [m]: stubble and clods. Choice of ours; FAO-56 gives none. */
-export const BARE_HEIGHT = 0.05;
+const BARE_HEIGHT = 0.05;
 
 /** p of ground without a crop, used only to show a readily available water. Source: FAO-56, text of Eq. 83 (0.5 for many crops). */
 const BARE_FRACTION = 0.5;
@@ -96,7 +96,7 @@ export interface StageClimate {
  * @param from first day of the stage
  * @param length stage length [d]
  */
-export function stageClimate(weather: ParcelWeather, cycle: Cycle, from: number, length: number): StageClimate {
+function stageClimate(weather: ParcelWeather, cycle: Cycle, from: number, length: number): StageClimate {
   const days = weather.windSpeed2m.length;
   const first = Math.max(0, from);
   const end = Math.min(days, cycle.end, from + length);

@@ -7,7 +7,7 @@ import type { WorkingStep } from '../base/working.ts';
 import type { CompletedWeather, Site, SiteWeight } from '../weather/variable.ts';
 
 /** Which published combination equation gives the reference ET that drives the crops. Both for the short surface here: the crop library is on grass. */
-export type ReferenceMethod = 'fao56' | 'asce2005';
+type ReferenceMethod = 'fao56' | 'asce2005';
 
 /** Soil class. Water contents [m³ m⁻³], depths [m], water depths [mm]. */
 export interface Soil {

@@ -1,8 +1,9 @@
 /**
  * The working of a parcel's weather on one day: how the values of the sites became the values of the parcel.
  */
+
+import { quantity } from '../base/working.ts';
 import { potentialRetention } from '../crop/runoff.ts';
-import { quantity } from './day-working.ts';
 import type { PackedSeason } from './pack.ts';
 import { lapseCorrection } from './parcel-weather.ts';
 import type { ParcelInput, WorkingStep } from './types.ts';

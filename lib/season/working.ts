@@ -3,12 +3,12 @@
  */
 import { isoDate } from '../base/civil-date.ts';
 import { RangeViolation } from '../base/errors.ts';
+import { quantity } from '../base/working.ts';
 import { type Cycle, developmentProgress, stageOf } from '../crop/curve.ts';
 import { referenceEtDay } from '../energy/reference-day.ts';
 import { fallbackNames } from '../weather/variable.ts';
 import { RUN_SURFACE } from './check.ts';
 import { recordCoefficients } from './coefficient-working.ts';
-import { quantity } from './day-working.ts';
 import { walkParcel } from './kernel.ts';
 import { type PackedSeason, packSeason } from './pack.ts';
 import { lapseCorrection } from './parcel-weather.ts';

@@ -6,9 +6,9 @@ import { civilFromDayNumber, type DayNumber, dayNumber, dayNumberOf } from '../b
 import { FALLBACK, type SiteObservations } from './variable.ts';
 
 /** Longest gap that is bridged by a straight line between its neighbours [d]. */
-export const LONGEST_GAP_IN_TIME = 5;
+const LONGEST_GAP_IN_TIME = 5;
 /** Days on either side of the calendar day that make up its normal. */
-export const NORMAL_HALF_WINDOW = 7;
+const NORMAL_HALF_WINDOW = 7;
 
 /** Temperatures with their gaps filled, [site × day], and what was done, as bits of FALLBACK. The observations are never changed. */
 export interface FilledTemperatures {

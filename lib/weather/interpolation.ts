@@ -2,40 +2,24 @@
  * From sites to parcels: which sites speak for a parcel, and with what weight. Weights are made once per parcel and method and then
  * applied day by day.
  *
- * Distances are great circles on a sphere of radius 6 371 008.8 m, by the haversine form or, the same thing, by the chord between unit
- * vectors. Against the ellipsoid they are off by at most 0.6 %, which cancels nearly wholly in a ratio of distances.
- * Source: Sinnott (1984), "Virtues of the Haversine", Sky and Telescope 68, 159.
+ * Distances are great circles on a sphere of radius 6 371 008.8 m, from the chord between unit vectors: d = 2 R arcsin(chord/2), which is the
+ * haversine form of Sinnott (1984), Sky and Telescope 68, 159. Against the ellipsoid they are off by at most 0.6 %, which cancels nearly wholly
+ * in a ratio of distances.
  */
 import { EARTH_MEAN_RADIUS } from '../base/constants.ts';
 import { RangeViolation } from '../base/errors.ts';
 import type { Site, SiteWeight } from './variable.ts';
 
 /** Most sites that one parcel listens to. */
-export const MAXIMUM_SITES = 8;
+const MAXIMUM_SITES = 8;
 /** A parcel this near to a site is on it [m]. */
 const ON_SITE = 1;
 
 /** Longitude, latitude [degrees, WGS 84]. */
-export type LonLat = readonly [longitude: number, latitude: number];
-
-/**
- * Great-circle distance.
- *   a = sin²(Δφ/2) + cos φ1 cos φ2 sin²(Δλ/2),  d = 2 R arcsin √a
- *
- * @returns d [m]; NaN in gives NaN out
- * @example greatCircleDistance([0, 0], [0, 1]) // 111195
- * Source: Sinnott (1984).
- */
-export function greatCircleDistance(from: LonLat, to: LonLat): number {
-  const degree = Math.PI / 180;
-  const halfLatitude = Math.sin(((to[1] - from[1]) * degree) / 2);
-  const halfLongitude = Math.sin(((to[0] - from[0]) * degree) / 2);
-  const a = halfLatitude * halfLatitude + Math.cos(from[1] * degree) * Math.cos(to[1] * degree) * halfLongitude * halfLongitude;
-  return 2 * EARTH_MEAN_RADIUS * Math.asin(Math.min(1, Math.sqrt(a)));
-}
+type LonLat = readonly [longitude: number, latitude: number];
 
 /** Sites made ready for many parcels: their places as unit vectors from the centre of the Earth, [site × 3], NaN where unknown. */
-export interface PlacedSites {
+interface PlacedSites {
   readonly sites: readonly Site[];
   readonly vectors: Float64Array;
 }
@@ -110,7 +94,7 @@ export function nearestWeights(place: LonLat, sites: readonly Site[] | PlacedSit
 }
 
 /** A parcel and the sites around it. */
-export interface InverseDistanceInput {
+interface InverseDistanceInput {
   readonly longitude: number;
   readonly latitude: number;
   /** as they are, or made ready by `placeSites` */
@@ -140,34 +124,4 @@ export function inverseDistanceWeights({ longitude, latitude, sites, power, maxi
   const pull = distances.map((distance) => (distances[0] / distance) ** power);
   const total = pull.reduce((sum, value) => sum + value, 0);
   return near.map(({ site }, i) => ({ site, weight: pull[i] / total }));
-}
-
-/**
- * Weights of one day, when some sites have nothing: the others take over in proportion.
- *
- * @param available true when the site has a value that day
- * @returns the same array when all sites are there, a new one that sums to 1 when some are, null when none is
- */
-export function dailyWeightsAt(weights: readonly SiteWeight[], available: (site: number) => boolean): readonly SiteWeight[] | null {
-  const there = weights.filter(({ site }) => available(site));
-  if (there.length === weights.length) return weights.length === 0 ? null : weights;
-  const total = there.reduce((sum, { weight }) => sum + weight, 0);
-  if (!(total > 0)) return null;
-  return there.map(({ site, weight }) => ({ site, weight: weight / total }));
-}
-
-/**
- * Temperature brought from the elevation of a site to that of a parcel.
- *   Tparcel = Tsite − Γ (zparcel − zsite)
- *
- * @param temperature at the site [°C]
- * @param siteElevation [m]
- * @param parcelElevation [m]
- * @param lapseRate Γ [°C m⁻¹], positive when it gets colder upwards; 0.0065 in the standard atmosphere
- * @returns temperature at the parcel [°C]; NaN in gives NaN out
- * @example lapseCorrected(20, 100, 600, 0.0065) // 16.75
- * Source: ISO 2533:1975, Standard Atmosphere, for the value 0.0065.
- */
-export function lapseCorrected(temperature: number, siteElevation: number, parcelElevation: number, lapseRate: number): number {
-  return temperature - lapseRate * (parcelElevation - siteElevation);
 }

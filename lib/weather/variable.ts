@@ -27,7 +27,6 @@ export type WeatherVariable = keyof typeof WEATHER_VARIABLES;
 
 /** Quality of one stored value, one byte each. */
 export const QUALITY = { missing: 0, measured: 1, corrected: 2, filledInTime: 3, filledFromNormal: 4, suspect: 9 } as const;
-export type Quality = (typeof QUALITY)[keyof typeof QUALITY];
 
 /**
  * What was estimated on a completed site-day, as bits. The order within each group is the published order of fallbacks
@@ -114,6 +113,16 @@ export interface CompletedWeather {
   /** bits of FALLBACK */
   readonly flags: Uint16Array;
 }
+
+/** The series of completed weather, in the order in which they are stored. */
+export const COMPLETED_SERIES = [
+  'airTemperatureMax',
+  'airTemperatureMin',
+  'actualVapourPressure',
+  'solarRadiation',
+  'windSpeed2m',
+  'precipitation',
+] as const;
 
 /** One site's share in a parcel's weather; the weights of a parcel are ≥ 0 and sum to 1. At most 8 per parcel. */
 export interface SiteWeight {

@@ -1,13 +1,11 @@
 /** The words, numbers and style a reader sees, on a district of twelve parcels. */
 import { describe, test } from 'vitest';
-import { csvText } from '../../lib/files/csv-write.ts';
 import { classify } from '../../lib/report/classes.ts';
 import { classColours } from '../../lib/report/colour-scale.ts';
 import { districtReport } from '../../lib/report/district-report.ts';
 import { legendOf } from '../../lib/report/legend.ts';
 import { mapStyle } from '../../lib/report/map-style.ts';
-import { reachesTable } from '../../lib/report/reaches-table.ts';
-import { parcelRows, reachRows, reportInput } from '../support/report-district.ts';
+import { parcelRows, reportInput } from '../support/report-district.ts';
 import { expectGolden, goldenJson } from './golden-file.ts';
 
 describe('golden', () => {
@@ -23,10 +21,6 @@ describe('golden', () => {
       'legend.json',
       goldenJson(legendOf({ title: 'Gross requirement', quantity: 'mm', classes, units: 'us', scale: 'amount', theme: 'light' })),
     );
-  });
-
-  test('canal table as CSV', () => {
-    expectGolden('reaches.csv', csvText(reachesTable(reachRows(), 'metric')));
   });
 
   test('map style, light and dark', () => {

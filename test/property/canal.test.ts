@@ -1,8 +1,9 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { headInflow, type LossRule, lossCoefficients, tailOutflow } from '../../lib/canal/loss-rule.ts';
+import { type LossRule, lossCoefficients } from '../../lib/canal/loss-rule.ts';
 import { rollUp } from '../../lib/canal/roll-up.ts';
 import { buildTree, type TreeNode } from '../../lib/canal/tree.ts';
+import { headInflow } from '../support/head-inflow.ts';
 
 const SEED = { seed: 20240611, numRuns: 200 };
 
@@ -132,16 +133,6 @@ describe('roll-up of demand', () => {
 });
 
 describe('loss rules', () => {
-  test('tail outflow inverts head inflow', () => {
-    fc.assert(
-      fc.property(lossRule, fc.double({ min: 0, max: 20000, noNaN: true }), volume, volume, (rule, length, outflow, turnoutDemand) => {
-        const inflow = headInflow(rule, length, { outflow, turnoutDemand });
-        expect(Math.abs(tailOutflow(rule, length, { inflow, turnoutDemand }) - outflow)).toBeLessThanOrEqual(1e-9 * Math.max(1, inflow));
-      }),
-      SEED,
-    );
-  });
-
   test('nothing carried, nothing lost', () => {
     fc.assert(
       fc.property(lossRule, (rule) => {

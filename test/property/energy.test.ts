@@ -24,12 +24,9 @@ import {
   sunDay,
 } from '../../lib/energy/sun.ts';
 import { windSpeedAt2m, windSpeedFrom2m } from '../../lib/energy/wind.ts';
+import { between } from '../support/between.ts';
 
 const SEEDED = { seed: 20260401, numRuns: 400 };
-
-function between(min: number, max: number): fc.Arbitrary<number> {
-  return fc.double({ min, max, noNaN: true });
-}
 
 /** A day that weather can bring: Tmin below Tmax, air not above saturation, radiation not above the clear sky. */
 const physicalDay: fc.Arbitrary<ReferenceDayInput> = fc

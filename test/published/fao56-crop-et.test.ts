@@ -23,10 +23,7 @@ import {
   wettedSurfaceDepletion,
 } from '../../lib/crop/surface-layer.ts';
 import { saturationVapourPressure } from '../../lib/energy/humidity.ts';
-
-function near(actual: number, expected: number, tolerance: number): void {
-  expect(Math.abs(actual - expected), `${actual} against ${expected}`).toBeLessThanOrEqual(tolerance);
-}
+import { near } from '../support/near.ts';
 
 function recomputed(actual: number, expected: number): void {
   near(actual, expected, Math.max(0.005, Math.abs(expected) * 0.001));

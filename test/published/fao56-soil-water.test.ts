@@ -8,10 +8,7 @@ import { depletionFraction, drainage, refilledDepletion, stressCoefficient, tota
 import { potentialRetention, surfaceRunoff } from '../../lib/crop/runoff.ts';
 import { relativeYield, stressFromRelativeYield } from '../../lib/crop/yield-response.ts';
 import { emptyStripDay, emptyStripState, stepDay } from '../../lib/season/day.ts';
-
-function near(actual: number, expected: number, tolerance: number): void {
-  expect(Math.abs(actual - expected), `${actual} against ${expected}`).toBeLessThanOrEqual(tolerance);
-}
+import { near } from '../support/near.ts';
 
 describe('Example 36: TAW and RAW, printed in whole mm', () => {
   test.each([

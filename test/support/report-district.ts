@@ -1,7 +1,7 @@
 /** Twelve invented parcels on three reaches with round numbers, for reports. */
 import type { DistrictReportInput } from '../../lib/report/district-report.ts';
-import type { ParcelPeriodRow } from '../../lib/report/parcels-table.ts';
-import type { ReachPeriodRow } from '../../lib/report/reaches-table.ts';
+import type { ParcelPeriodRow } from '../../lib/report/parcel-period-row.ts';
+import type { ReachPeriodRow } from '../../lib/report/reach-period-row.ts';
 
 const SEASON = { name: 'Season 2024', start: '2024-04-01', end: '2024-04-30' } as const;
 

@@ -15,7 +15,7 @@ const MAY_IMPORT: Record<string, readonly string[]> = {
   db: ['base'],
 };
 /** Type-only imports a room may make beyond the rule. */
-const TYPES_ALSO: Record<string, readonly string[]> = { db: [...PURE_ROOMS, 'files'] };
+const TYPES_ALSO: Record<string, readonly string[]> = { db: [...PURE_ROOMS, 'files'], files: ['season', 'canal'] };
 const NEVER_IN_PURE = [/\bfrom 'node:/, /\bprocess\./, /\bDate\.now\b/, /\bnew Date\(\)/, /\bMath\.random\b/, /\bconsole\./, /\bfetch\(/];
 /** Packages that live in one place. */
 const HOME_OF: Record<string, RegExp> = {

@@ -2,7 +2,7 @@ import { describe, expect, test } from 'vitest';
 import { RangeViolation, ShapeError } from '../../lib/base/errors.ts';
 import { mulberry32 } from '../../lib/base/random.ts';
 import { classify, classOf, quantileSorted } from '../../lib/report/classes.ts';
-import { classColours, PRINT_PATTERNS, patternOf, textOn } from '../../lib/report/colour-scale.ts';
+import { classColours, PRINT_PATTERNS, patternOf } from '../../lib/report/colour-scale.ts';
 import { legendOf } from '../../lib/report/legend.ts';
 
 const METHODS = ['quantile', 'equal-interval', 'natural'] as const;
@@ -159,12 +159,6 @@ describe('colours', () => {
     for (let count = 1; count <= PRINT_PATTERNS.length; count++) {
       expect(new Set(Array.from({ length: count }, (_, i) => patternOf(i, count))).size).toBe(count);
     }
-  });
-
-  // WCAG 2.2: contrast with black and white is equal at relative luminance 0.179.
-  test('text on a colour', () => {
-    expect(textOn('#ffffcc')).toBe('#000000');
-    expect(textOn('#0c2c84')).toBe('#ffffff');
   });
 });
 

@@ -1,16 +1,15 @@
 import { type StyleSpecification, validateStyleMin } from '@maplibre/maplibre-gl-style-spec';
 import { beforeAll, describe, expect, test } from 'vitest';
-import { ShapeError } from '../../lib/base/errors.ts';
 import { pdfReport } from '../../lib/files/pdf-report.ts';
 import { CAUTIONS, INVENTED_CAUTION } from '../../lib/report/cautions.ts';
 import { classColours } from '../../lib/report/colour-scale.ts';
-import { dailyChart } from '../../lib/report/daily-chart.ts';
 import { districtReport } from '../../lib/report/district-report.ts';
 import { mapStyle } from '../../lib/report/map-style.ts';
-import { parcelsTable } from '../../lib/report/parcels-table.ts';
+import type { ParcelPeriodRow } from '../../lib/report/parcel-period-row.ts';
 import { formatArea, formatDepth, formatFlow, formatShare, formatVolume, numberText } from '../../lib/report/quantity-text.ts';
-import { reachesTable } from '../../lib/report/reaches-table.ts';
-import { summarise, summaryTable } from '../../lib/report/summary.ts';
+import type { ReachPeriodRow } from '../../lib/report/reach-period-row.ts';
+import { summarise } from '../../lib/report/summary.ts';
+import { type ColumnPlan, tableOf } from '../../lib/report/table.ts';
 import { weeklyBars } from '../../lib/report/weekly-bars.ts';
 import { parcelRows, reachRows, reportInput } from '../support/report-district.ts';
 
@@ -41,20 +40,35 @@ describe('numbers for people', () => {
 });
 
 describe('tables', () => {
+  const parcelPlans: readonly ColumnPlan<ParcelPeriodRow>[] = [
+    { name: 'crops', header: 'Crops', quantity: 'text', value: (row) => row.crops.join('; ') },
+    { name: 'area', header: 'Area', quantity: 'm2', value: (row) => row.area },
+    { name: 'crop_et', header: 'Crop ET', quantity: 'mm', value: (row) => row.cropEt },
+    { name: 'gross_requirement', header: 'Gross requirement', quantity: 'mm', value: (row) => row.grossRequirement },
+    { name: 'stress_coefficient', header: 'Stress coefficient', quantity: 'plain', value: (row) => row.stressCoefficient },
+    { name: 'gross_requirement_volume', header: 'Gross volume', quantity: 'm3', value: (row) => row.grossVolume },
+  ];
+  const reachPlans: readonly ColumnPlan<ReachPeriodRow>[] = [
+    { name: 'head_inflow', header: 'Head inflow', quantity: 'm3', value: (row) => row.headInflow },
+    { name: 'peak_flow', header: 'Peak flow', quantity: 'm3_s', value: (row) => row.peakFlow },
+    { name: 'capacity', header: 'Capacity', quantity: 'm3_s', value: (row) => row.capacity },
+    { name: 'capacity_share', header: 'Busiest week of capacity', quantity: 'percent', value: (row) => row.capacityShare },
+  ];
+
   test('columns carry the unit of the system in their key', () => {
-    const metric = parcelsTable(parcelRows(), 'metric');
-    const us = parcelsTable(parcelRows(), 'us');
+    const metric = tableOf('Parcels', parcelPlans, parcelRows(), 'metric');
+    const us = tableOf('Parcels', parcelPlans, parcelRows(), 'us');
     const keys = (table: typeof metric) => table.columns.map((column) => column.key);
     expect(keys(metric)).toEqual(expect.arrayContaining(['area_ha', 'crop_et_mm', 'gross_requirement_volume_m3', 'stress_coefficient']));
     expect(keys(us)).toEqual(expect.arrayContaining(['area_ac', 'crop_et_in', 'gross_requirement_volume_acft', 'stress_coefficient']));
-    expect(keys(reachesTable(reachRows(), 'us'))).toEqual(
+    expect(keys(tableOf('Canals', reachPlans, reachRows(), 'us'))).toEqual(
       expect.arrayContaining(['head_inflow_acft', 'peak_flow_cfs', 'capacity_cfs', 'capacity_share_pct']),
     );
     expect(new Set(keys(metric)).size).toBe(keys(metric).length);
   });
 
   test('values are converted, missing is null', () => {
-    const us = parcelsTable(parcelRows(), 'us');
+    const us = tableOf('Parcels', parcelPlans, parcelRows(), 'us');
     const cell = (row: number, key: string) => us.rows[row][us.columns.findIndex((column) => column.key === key)];
     // parcel 1: 100 mm on 10 ha = 10 000 m³ = 8.107 ac-ft; 10 ha = 24.711 ac
     expect(cell(0, 'gross_requirement_in')).toBe(3.937);
@@ -72,7 +86,6 @@ describe('tables', () => {
     expect(one?.grossRequirement).toBeCloseTo(17_750 / 75, 9);
     expect(one?.parcelCount).toBe(6);
     expect(rows.find((row) => row.name === 'L2')?.grossVolume).toBeNaN();
-    expect(summaryTable('Canal', rows, 'metric').columns[0].key).toBe('canal');
   });
 });
 
@@ -116,41 +129,6 @@ describe('charts', () => {
     });
     expect(empty.bars[0].height).toBe(0);
     expect(empty.description).toBe('No volume has been computed.');
-  });
-
-  const days = (of: (day: number) => number) => Float64Array.from({ length: 60 }, (_, day) => of(day));
-  const daily = {
-    startDate: '2024-02-01',
-    rain: days((day) => (day === 5 ? 12 : 0)),
-    irrigation: days((day) => (day === 30 ? 40 : 0)),
-    cropEt: days((day) => (day === 20 ? Number.NaN : 5)),
-    depletion: days((day) => Math.min(60, day)),
-    readilyAvailable: days(() => 50),
-    totalAvailable: days(() => 100),
-    width: 700,
-    height: 360,
-    units: 'metric' as const,
-  };
-
-  test('daily chart: one bar per wet or irrigated day, a gap where a value is missing', () => {
-    const { water, soil, xTicks } = dailyChart(daily);
-    expect(water.rain).toHaveLength(1);
-    expect(water.irrigation).toHaveLength(1);
-    expect(water.irrigation[0].height / water.rain[0].height).toBeCloseTo(40 / 12, 9);
-    expect(water.cropEt.match(/M/g)).toHaveLength(2);
-    expect(soil.depletion.match(/M/g)).toHaveLength(1);
-    expect(xTicks.map((tick) => tick.label)).toEqual(['Feb', 'Mar']);
-  });
-
-  test('depletion is drawn downward', () => {
-    const { soil } = dailyChart(daily);
-    const height = (path: string) => Number(/^M[\d.]+,([\d.]+)/.exec(path)?.[1]);
-    expect(height(soil.totalAvailable)).toBeGreaterThan(height(soil.readilyAvailable));
-    expect(height(soil.depletion)).toBeCloseTo(soil.plot.y, 1);
-  });
-
-  test('series of different length are refused', () => {
-    expect(() => dailyChart({ ...daily, depletion: new Float64Array(3) })).toThrow(ShapeError);
   });
 });
 

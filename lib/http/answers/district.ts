@@ -116,7 +116,7 @@ export async function createDistrict(wanted: DistrictRequest, managerId: string)
 }
 
 /** @example codeFromName('Río Verde No. 2') // 'rio-verde-no-2' */
-export function codeFromName(name: string): string {
+function codeFromName(name: string): string {
   const plain = name.normalize('NFKD').replace(/\p{M}/gu, '').toLowerCase();
   const code = plain
     .replace(/[^a-z0-9]+/g, '-')

@@ -79,7 +79,7 @@ function boundsOf(boundary: unknown): MapDescription['bounds'] {
   return [Math.min(...longitudes), Math.min(...latitudes), Math.max(...longitudes), Math.max(...latitudes)];
 }
 
-export interface ValuesWanted {
+interface ValuesWanted {
   readonly variable: string;
   readonly period: 'week' | 'month' | 'season';
   /** counted from 0; null for every period */

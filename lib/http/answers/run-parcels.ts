@@ -21,7 +21,7 @@ import { readCursor, writeCursor } from '../paging.ts';
 import type { Page, PageWanted } from './land.ts';
 import { periodsWanted, readFinishedRun, type SpanWanted } from './run.ts';
 
-export interface RunParcelsWanted extends SpanWanted {
+interface RunParcelsWanted extends SpanWanted {
   readonly parcel?: string;
   readonly reach?: string;
   readonly crop?: string;
@@ -82,7 +82,7 @@ export async function* eachRunParcels(
 }
 
 /** Rows of one parcel. A day of missing makes the sum of its period missing. */
-export function parcelPeriods(
+function parcelPeriods(
   parcel: RunParcelDays,
   run: Pick<RunHead, 'dayCount'>,
   periods: readonly Period[],

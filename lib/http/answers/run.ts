@@ -66,7 +66,7 @@ export function isOver(run: { state: RunAnswer['state'] }): boolean {
   return run.state !== 'queued' && run.state !== 'running';
 }
 
-export async function readRun(tx: Tx, districtId: string, runId: string): Promise<RunHead> {
+async function readRun(tx: Tx, districtId: string, runId: string): Promise<RunHead> {
   const row = await findRun(tx, districtId, runId);
   if (!row) throw new NotFound(`no run ${runId} in this district`);
   return row;
@@ -81,7 +81,7 @@ export async function readFinishedRun(tx: Tx, districtId: string, runId: string)
 }
 
 /** Weekday on which the delivery weeks of a run begin: as the run was made, else as the district has it now. */
-export function weekStartOf(run: RunHead, caller: Caller): number {
+function weekStartOf(run: RunHead, caller: Caller): number {
   const frozen = (run.manifest as { week_start?: unknown }).week_start;
   return typeof frozen === 'number' ? frozen : caller.district.weekStart;
 }

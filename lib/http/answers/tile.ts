@@ -9,7 +9,7 @@ import type { Caller } from '../../access/caller.ts';
 import { database } from '../../access/database.ts';
 import { NotFound } from '../../base/errors.ts';
 
-export interface TileWanted {
+interface TileWanted {
   readonly layer: 'parcels' | 'canals';
   readonly version: number;
   readonly z: number;
@@ -48,7 +48,7 @@ export function answerTile(caller: Caller, wanted: TileWanted): Promise<Uint8Arr
 }
 
 /** Encodes one tile. Simplified below the deepest zoom; empty when no feature touches it. */
-export function encodeTile(wanted: Pick<TileWanted, 'layer' | 'z' | 'x' | 'y'>, features: Feature[]): Uint8Array {
+function encodeTile(wanted: Pick<TileWanted, 'layer' | 'z' | 'x' | 'y'>, features: Feature[]): Uint8Array {
   if (features.length === 0) return new Uint8Array();
   const { layer, z, x, y } = wanted;
   const maxZoom = z < 14 ? z + 1 : z;

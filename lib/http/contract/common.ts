@@ -9,7 +9,7 @@ export const unitSystem = z.enum(['metric', 'us']);
 export const periodKind = z.enum(['day', 'week', 'month', 'season']);
 export const role = z.enum(['manager', 'operator', 'regulator', 'grower']);
 export const scope = z.enum(['read', 'write', 'administer']);
-export const severity = z.enum(['error', 'warning', 'note']);
+const severity = z.enum(['error', 'warning', 'note']);
 
 export const finding = z
   .object({

@@ -1,19 +1,29 @@
 import { z } from 'zod';
+import { DEFAULT_RUN_SETTINGS as usual } from '../../jobs/run-settings.ts';
 import { isoDate, nullableNumber as n } from './common.ts';
 
 export const runSettings = z
   .object({
-    method: z.enum(['fao56', 'asce2005']).default('fao56').meta({ description: 'combination equation, short surface' }),
-    interpolation: z.enum(['inverse-distance', 'nearest']).default('inverse-distance'),
-    power: z.number().min(0.5).max(6).default(2),
-    maximum_sites: z.number().int().min(1).max(8).default(6),
-    lapse_rate_c_per_m: z.number().min(0).max(0.012).default(0.0065),
-    initial_depletion: z.number().min(0).max(1).default(0.3).meta({ description: 'root-zone depletion on the first day, fraction of TAW' }),
-    irrigate: z.boolean().default(true),
-    runoff: z.boolean().default(true),
-    default_soil: z.string().default('loam'),
-    default_method: z.string().default('furrow'),
-    source: z.string().nullable().default(null).meta({ description: 'weather source by name; null takes every site of the district' }),
+    method: z.enum(['fao56', 'asce2005']).default(usual.method).meta({ description: 'combination equation, short surface' }),
+    interpolation: z.enum(['inverse-distance', 'nearest']).default(usual.interpolation),
+    power: z.number().min(0.5).max(6).default(usual.power),
+    maximum_sites: z.number().int().min(1).max(8).default(usual.maximum_sites),
+    lapse_rate_c_per_m: z.number().min(0).max(0.012).default(usual.lapse_rate_c_per_m),
+    initial_depletion: z
+      .number()
+      .min(0)
+      .max(1)
+      .default(usual.initial_depletion)
+      .meta({ description: 'root-zone depletion on the first day, fraction of TAW' }),
+    irrigate: z.boolean().default(usual.irrigate),
+    runoff: z.boolean().default(usual.runoff),
+    default_soil: z.string().default(usual.default_soil),
+    default_method: z.string().default(usual.default_method),
+    source: z
+      .string()
+      .nullable()
+      .default(usual.source)
+      .meta({ description: 'weather source by name; null takes every site of the district' }),
   })
   .meta({ id: 'RunSettings' });
 
@@ -265,18 +275,6 @@ export const reachValues = z
 export type ReachValues = z.infer<typeof reachValues>;
 
 /** What the map offers, and how to read its binary arrays. */
-export const MAP_VARIABLES = [
-  'gross_requirement',
-  'net_requirement',
-  'crop_et',
-  'adjusted_crop_et',
-  'reference_et',
-  'precipitation',
-  'effective_precipitation',
-  'root_zone_depletion',
-  'depletion_share',
-  'stress_coefficient',
-] as const;
 export const mapDescription = z
   .object({
     run: z.string(),

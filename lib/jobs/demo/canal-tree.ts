@@ -132,7 +132,7 @@ function edgeCrossing(line: CanalLine, a: PlanePoint, b: PlanePoint): number | n
 }
 
 /** True when the point lies farther from the river than the line, on the line's side. */
-export function outside(line: CanalLine, point: PlanePoint): boolean {
+function outside(line: CanalLine, point: PlanePoint): boolean {
   return riverDistance(line, point) > line.distance(valleyFromPlane(point).along);
 }
 

@@ -8,7 +8,7 @@ import type { LossRule } from '../../canal/loss-rule.ts';
 import { rollUp } from '../../canal/roll-up.ts';
 import { buildTree, reachesBelow } from '../../canal/tree.ts';
 
-export interface SizedReach {
+interface SizedReach {
   readonly code: string;
   readonly parentCode: string | null;
   readonly kind: string;

@@ -3,7 +3,7 @@
  */
 
 /** Mean and amplitude of a yearly cosine with its peak on a day of the year. */
-export interface Harmonic {
+interface Harmonic {
   readonly mean: number;
   readonly amplitude: number;
   readonly peakDay: number;

@@ -3,22 +3,10 @@
  */
 import { addDays } from '../../base/civil-date.ts';
 import type { Random } from '../../base/random.ts';
-
-export interface DemoPlanting {
-  readonly parcelCode: string;
-  readonly seasonCode: string;
-  /** order within the parcel and season, from 1 */
-  readonly sequence: number;
-  readonly cropCode: string;
-  readonly calendarCode: string;
-  readonly plantingDate: string;
-  readonly harvestDate: string | null;
-  readonly cutDates: readonly string[];
-  readonly areaShare: number;
-}
+import type { StagedPlanting } from '../../files/reading.ts';
 
 /** What decides a parcel's crop. */
-export interface Ground {
+interface Ground {
   readonly zone: 'bottom' | 'bench';
   readonly pivot: boolean;
   /** ha */
@@ -188,7 +176,7 @@ export function methodFor(crop: CropPlan, ground: Ground, random: Random): strin
 }
 
 /** Plantings of one parcel in one season (water year `year`), sown within twelve days of the custom. One in thirty is shared by two crops. */
-export function plantingsOf(parcelCode: string, year: number, crop: CropPlan, random: Random): DemoPlanting[] {
+export function plantingsOf(parcelCode: string, year: number, crop: CropPlan, random: Random): StagedPlanting[] {
   const shift = Math.round((random() - 0.5) * 24);
   const base = { parcelCode, year, shift, haste: Math.round(random() * 14) };
   const draw = random();
@@ -216,7 +204,7 @@ interface PlantingPlace {
   readonly haste: number;
 }
 
-function planting({ parcelCode, year, shift, haste }: PlantingPlace, habit: Habit, sequence: number, areaShare = 1): DemoPlanting {
+function planting({ parcelCode, year, shift, haste }: PlantingPlace, habit: Habit, sequence: number, areaShare = 1): StagedPlanting {
   const customary = addDays(`${habit.autumn ? year - 1 : year}-${habit.plantingDay}`, shift);
   const first = `${year - 1}-10-01`;
   const plantingDate = customary < first ? first : customary;

@@ -3,22 +3,21 @@
  */
 import { mulberry32 } from '../../base/random.ts';
 import type { LossRule } from '../../canal/loss-rule.ts';
+import type { StagedPlanting } from '../../files/reading.ts';
 import { geodesicArea, geodesicLength } from '../../geo/geodesic.ts';
 import { linePoint, NORTH_CANAL, SOUTH_CANAL } from './canal-lines.ts';
 import { type DemoReachShape, demoReachShapes } from './canal-tree.ts';
 import { demoCapacities } from './capacity.ts';
-import { type DemoPlanting, firstCrop, methodFor, nextCrop, plantingsOf, soilAt } from './crop-plan.ts';
+import { firstCrop, methodFor, nextCrop, plantingsOf, soilAt } from './crop-plan.ts';
 import { centre, type DemoShape, demoParcelShapes } from './parcel-shapes.ts';
 import { demoService, type Service } from './service.ts';
 import { elevationAt, HEADWORKS, lonLat, type PlanePoint, riverAcross, valleyFromPlane } from './terrain.ts';
 
-export const DEMO_NAME = 'Arrowmere Valley Irrigation District';
-export const INVENTED_NOTICE =
-  'Arrowmere Valley is invented: its land, canals, parcels, crops and weather are made up to show the product.';
+const DEMO_NAME = 'Arrowmere Valley Irrigation District';
 /** Water years of the demo, by the calendar year in which they end. */
-export const DEMO_YEARS = [2024, 2025] as const;
+const DEMO_YEARS = [2024, 2025] as const;
 
-export interface DemoReach {
+interface DemoReach {
   readonly code: string;
   readonly name: string;
   readonly parentCode: string | null;
@@ -31,7 +30,7 @@ export interface DemoReach {
   readonly geometry: { readonly type: 'LineString'; readonly coordinates: [number, number][] };
 }
 
-export interface DemoParcel {
+interface DemoParcel {
   readonly code: string;
   readonly ordinal: number;
   readonly name: string | null;
@@ -65,7 +64,7 @@ export interface DemoDistrict {
   readonly reaches: readonly DemoReach[];
   readonly turnouts: readonly { readonly code: string; readonly reachCode: string; readonly capacity: number }[];
   readonly parcels: readonly DemoParcel[];
-  readonly plantings: readonly DemoPlanting[];
+  readonly plantings: readonly StagedPlanting[];
 }
 
 /**
@@ -116,7 +115,7 @@ function inReadingOrder(shapes: readonly DemoShape[]): DemoShape[] {
 function growOnParcels(shapes: readonly DemoShape[], centres: readonly PlanePoint[], services: readonly Service[], seed: number) {
   const random = mulberry32(seed ^ 0xc20b);
   const parcels: DemoParcel[] = [];
-  const plantings: DemoPlanting[] = [];
+  const plantings: StagedPlanting[] = [];
   shapes.forEach((shape, ordinal) => {
     const code = `AV${String(ordinal + 1).padStart(4, '0')}`;
     const { along, across } = valleyFromPlane(centres[ordinal]);

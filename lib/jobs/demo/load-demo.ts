@@ -10,11 +10,11 @@ import { demoWeather } from './weather.ts';
 
 /** Seed of everything invented: the same district on every machine. */
 export const DEMO_SEED = 20240401;
-export const DEMO_SOURCE = 'Arrowmere stations (invented)';
+const DEMO_SOURCE = 'Arrowmere stations (invented)';
 /** How many parcels the demo's grower tends. */
 const GROWER_PARCELS = 6;
 
-export interface DemoLoad {
+interface DemoLoad {
   readonly district: DemoDistrict['district'];
   readonly seasonCodes: readonly string[];
   /** inside a transaction of the district */

@@ -12,7 +12,7 @@ interface Outage {
   readonly variable?: keyof DemoValues;
 }
 
-export const OUTAGES: readonly Outage[] = [
+const OUTAGES: readonly Outage[] = [
   { site: 1, from: '2024-02-11', to: '2024-02-13' },
   { site: 3, from: '2024-07-08', to: '2024-07-19', variable: 'dew_point_c' },
   { site: 4, from: '2024-05-20', to: '2024-05-26', variable: 'solar_radiation_mj_m2_d' },

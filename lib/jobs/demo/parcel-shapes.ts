@@ -249,7 +249,7 @@ function isParcel(ring: readonly PlanePoint[]): boolean {
 }
 
 /** Area of a ring on the plane, positive when counter-clockwise [m²]. */
-export function planeArea(ring: readonly PlanePoint[]): number {
+function planeArea(ring: readonly PlanePoint[]): number {
   return ring.reduce((sum, [x, y], i) => sum + x * ring[(i + 1) % ring.length][1] - ring[(i + 1) % ring.length][0] * y, 0) / 2;
 }
 

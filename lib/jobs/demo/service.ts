@@ -65,8 +65,3 @@ function alongLine(point: PlanePoint, line: readonly PlanePoint[]): { away: numb
   }
   return best;
 }
-
-/** Length of a line on the plane [m]. */
-export function lineLength(line: readonly PlanePoint[]): number {
-  return line.slice(1).reduce((sum, point, i) => sum + distance(line[i], point), 0);
-}

@@ -48,7 +48,7 @@ export function riverAcross(along: number): number {
 }
 
 /** Ground elevation [m] at a distance from the river on one side. */
-export function groundElevation(along: number, distance: number, side: Side): number {
+function groundElevation(along: number, distance: number, side: Side): number {
   const bed = HEADWORKS.elevation - 5 - RIVER_SLOPE * along;
   const steep = side === 1 ? 1 : 1.18;
   const terrace = 4 * smooth((distance - 110) / 160);

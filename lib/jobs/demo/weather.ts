@@ -49,7 +49,7 @@ const PLACES = [
   { code: 'AV-TL', name: 'Tail Meadow', along: 29200, across: 700 },
 ] as const;
 
-export function demoSites(): Site[] {
+function demoSites(): Site[] {
   return PLACES.map(({ code, name, along, across }) => {
     const point = planeFromValley(along, riverAcross(along) + across);
     const [longitude, latitude] = lonLat(point);
