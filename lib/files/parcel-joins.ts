@@ -1,6 +1,7 @@
 /**
  * The codes on a parcel that point elsewhere: turnout, reach, soil, application method.
  */
+import { counted } from '../base/counted.ts';
 import { numberOf, textOf } from './feature-properties.ts';
 import { type FindingList, shown } from './finding-list.ts';
 import type { RawFeature } from './geojson.ts';
@@ -135,5 +136,10 @@ function listUnknown(
 }
 
 function noteMissing(count: number, role: string, effect: string, findings: FindingList): void {
-  if (count > 0) findings.note({ code: `no-${role}`, message: `${count} parcels name no known ${role}; ${effect}.`, column: role });
+  if (count > 0)
+    findings.note({
+      code: `no-${role}`,
+      message: `${counted(count, 'parcel names', 'parcels name')} no known ${role}; ${effect}.`,
+      column: role,
+    });
 }

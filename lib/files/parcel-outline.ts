@@ -72,5 +72,6 @@ export function reportCrossing(
 }
 
 function percent(change: number): string {
+  if (change > 10) return 'more than tenfold';
   return `${change >= 0 ? '+' : '−'}${Math.abs(change * 100).toPrecision(2)} %`;
 }

@@ -1,6 +1,7 @@
 /**
  * Crops named on parcels → plantings of one season.
  */
+import { counted } from '../base/counted.ts';
 import { proposeCrops } from './crop-mapping.ts';
 import { type BoundProperties, textOf } from './feature-properties.ts';
 import { type FindingList, shown } from './finding-list.ts';
@@ -63,7 +64,7 @@ export function plantingsOf(work: PlantingWork, crops: ReadonlyMap<string, CropC
   if (plantings.length > 0)
     findings.note({
       code: 'planting-date-assumed',
-      message: `${plantings.length} plantings take the first calendar of their crop and its customary planting day.`,
+      message: `${counted(plantings.length, 'planting takes', 'plantings take')} the first calendar of the crop and its customary planting day.`,
     });
   if (starts.season > 0)
     findings.warn({

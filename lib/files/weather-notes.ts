@@ -1,7 +1,9 @@
 /**
  * What a reader of weather tells once per file rather than once per row.
  */
+
 import { type DayNumber, isoDate } from '../base/civil-date.ts';
+import { counted } from '../base/counted.ts';
 import { type FindingList, shown } from './finding-list.ts';
 import type { siteFinder } from './site-finder.ts';
 import { windHeightOf } from './weather-column.ts';
@@ -47,7 +49,7 @@ export function noteUnknownSites(sites: ReturnType<typeof siteFinder>, knownCoun
   const list = entries.slice(0, LISTED).map(([code, entry]) => `${shown(code) || '(empty)'} (${entry.rows})`);
   findings.error({
     code: 'unknown-site',
-    message: `${rows} rows name ${entries.length} unknown sites and are left out: ${list.join(', ')}${entries.length > LISTED ? ' …' : ''}.`,
+    message: `${counted(rows, 'row names', 'rows name')} ${counted(entries.length, 'unknown site', 'unknown sites')} and ${rows === 1 ? 'is' : 'are'} left out: ${list.join(', ')}${entries.length > LISTED ? ' …' : ''}.`,
     file: entries[0][1].file,
     row: entries[0][1].firstRow,
     value: shown(entries[0][0]),

@@ -1,6 +1,7 @@
 /**
  * One row of a weather table → one value per variable: conversion, limits, missing codes, and the combinations of hour readings.
  */
+import { WEATHER_VARIABLES, type WeatherVariable } from '../weather/variable.ts';
 import { type FindingList, shown } from './finding-list.ts';
 import { type HourReading, vapourPressureFromDeficit, vapourPressureFromHours } from './hour-readings.ts';
 import { isMissingNumber, NOT_A_NUMBER, type NumberReader } from './number-cell.ts';
@@ -95,7 +96,8 @@ export function weatherRowReader(columns: readonly ValueColumn[], reader: Number
 
   function outOfRange(column: ValueColumn, text: string, value: number, row: number): number {
     const unit = insideUnit(ROLE_KIND[column.role]);
-    const message = `${column.role} ${shown(text.trim())} ${column.unit} is outside ${column.low} to ${column.high} ${unit}; the cell is left out.`;
+    const told = column.unit === unit || !Number.isFinite(value) ? '' : ` (${Number(value.toPrecision(4))} ${unit})`;
+    const message = `${termOf(column.role)} ${shown(text.trim())} ${column.unit}${told} is outside ${column.low} to ${column.high} ${unit}; the cell is left out.`;
     const limit = `${column.low} to ${column.high} ${unit}`;
     const advice = 'Correct the cell, choose another unit for the column, or list the value as a code for missing.';
     findings.error({
@@ -178,4 +180,9 @@ export function hourPairs(columns: readonly ValueColumn[]): [ValueColumn, ValueC
 /** Mean of the hours read; NaN when any is missing, so that days stay comparable. */
 function meanOf(values: readonly number[]): number {
   return values.reduce((sum, value) => sum + value, 0) / values.length;
+}
+
+/** What readers call a role; roles that are only read on the way to another variable are spelt out. */
+function termOf(role: string): string {
+  return role in WEATHER_VARIABLES ? WEATHER_VARIABLES[role as WeatherVariable].term : role.replaceAll('_', ' ');
 }

@@ -110,7 +110,7 @@ describe('a table of weather', () => {
         severity: 'error',
         code: 'unknown-site',
         row: 2,
-        message: '2 rows name 1 unknown sites and are left out: Z9 (2).',
+        message: '2 rows name 1 unknown site and are left out: Z9 (2).',
       }),
     );
     expect(codes(reading, 'warning')).toEqual(['site-joined', 'site-joined']);
