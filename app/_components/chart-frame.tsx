@@ -1,6 +1,6 @@
 import { type ScaleLinear, scaleLinear } from 'd3-scale';
 import { line } from 'd3-shape';
-import type { ReactNode } from 'react';
+import type { CSSProperties, ReactNode } from 'react';
 import styles from './chart-frame.module.css';
 import { plain } from './figures.ts';
 
@@ -60,7 +60,7 @@ export function ChartFrame(props: ChartFrameProps) {
         <svg
           className={styles.svg}
           viewBox={`0 0 ${width} ${height}`}
-          style={{ minWidth: Math.min(width, props.narrowest ?? 820) }}
+          style={{ '--narrowest': `${Math.min(width, props.narrowest ?? 820)}px` } as CSSProperties}
           role="img"
           aria-labelledby={`${id}-title ${id}-desc`}
         >

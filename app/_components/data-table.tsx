@@ -72,7 +72,13 @@ export function DataTable<Row>(props: DataTableProps<Row>) {
 }
 
 const MAY_WRAP = { whiteSpace: 'normal' } as const;
+const ONE_LINE = { whiteSpace: 'nowrap' } as const;
 const WIDE = { whiteSpace: 'normal', minWidth: '11rem' } as const;
+
+function headStyle({ wide, oneLine }: { wide?: boolean; oneLine?: boolean }) {
+  if (wide) return WIDE;
+  return oneLine ? ONE_LINE : MAY_WRAP;
+}
 
 function HeadCell<Row>({ column, sort }: { column: Column<Row>; sort?: SortState }) {
   const sortable = sort?.keys.includes(column.key);
@@ -90,7 +96,7 @@ function HeadCell<Row>({ column, sort }: { column: Column<Row>; sort?: SortState
     </>
   );
   return (
-    <th scope="col" className={column.numeric ? 'num' : undefined} style={column.wide ? WIDE : MAY_WRAP} aria-sort={order}>
+    <th scope="col" className={column.numeric ? 'num' : undefined} style={headStyle(column)} aria-sort={order}>
       {sortable && sort ? (
         <Go href={sort.href(column.key, active ? !sort.descending : Boolean(column.numeric))}>
           {label}
@@ -102,8 +108,6 @@ function HeadCell<Row>({ column, sort }: { column: Column<Row>; sort?: SortState
     </th>
   );
 }
-
-const ONE_LINE = { whiteSpace: 'nowrap' } as const;
 
 function BodyCell<Row>({ column, row }: { column: Column<Row>; row: Row }) {
   const style = column.oneLine ? ONE_LINE : undefined;

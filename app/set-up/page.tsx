@@ -17,7 +17,9 @@ export default async function SetUpPage() {
         <h1 className="sign-in-name">
           <Mark /> Set up the first district
         </h1>
-        <p className="lede">Whose water this is, and who looks after it. Everything but the code can be changed later in Settings.</p>
+        <p className="lede">
+          Whose water this is, and who looks after it. Everything about the district but its code can be changed later in Settings.
+        </p>
         <SetUpForm timeZones={knownTimeZones()} />
         <p className="small">
           <a href="/sign-in">Sign in instead</a>

@@ -99,7 +99,7 @@ function columnsOf(list: ParcelListResult, units: UnitSystem, detail: Readonly<R
     {
       key: 'stress',
       head: 'Stress',
-      unit: 'of crop ET not met',
+      unit: 'ET not met',
       numeric: true,
       cell: (row) => percent(row.stress, 1),
       total: percent(unmetShare(list.total.depths.crop_et, list.total.depths.adjusted_crop_et), 1),

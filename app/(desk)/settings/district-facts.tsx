@@ -48,7 +48,7 @@ function Seasons({ district, mayAdd }: { district: DistrictAnswer; mayAdd: boole
           rowKey={(season) => season.code}
           columns={[
             { key: 'code', head: 'Season', rowHead: true, oneLine: true, cell: (season) => season.code },
-            { key: 'name', head: 'Name', cell: (season) => season.name },
+            { key: 'name', oneLine: true, head: 'Name', cell: (season) => season.name },
             { key: 'start', oneLine: true, head: 'First day', cell: (season) => longDate(season.start_date) },
             { key: 'end', oneLine: true, head: 'Last day', cell: (season) => longDate(season.end_date) },
           ]}

@@ -27,6 +27,7 @@ export function MemberTable({ members, district, self }: MemberTableProps) {
           {
             key: 'parcels',
             head: 'Parcels',
+            wide: true,
             cell: (member) => (member.role === 'grower' ? member.parcels.join(', ') || 'none yet' : 'all'),
           },
           {

@@ -57,7 +57,8 @@ function Beginning() {
       <p>
         For programs: <a href="/api/v1/openapi.json">OpenAPI 3.1 document</a>.
       </p>
-      <pre>
+      {/* biome-ignore lint/a11y/noNoninteractiveTabindex: a region that scrolls must be reachable from the keyboard */}
+      <pre tabIndex={0}>
         <code>curl -H "Authorization: Bearer $TOKEN" "http://localhost:3000/api/v1/runs?season=2024"</code>
       </pre>
     </>
