@@ -111,6 +111,7 @@ interface WorkerFixtures {
 
 /** Playwright's test with a signed-in page (the manager unless the test says otherwise) that must stay free of faults. */
 export const test = base.extend<TestFixtures, WorkerFixtures>({
+  actionTimeout: 20_000,
   signedInAs: ['manager', { option: true }],
   sessions: [
     async ({ playwright }, provide, { project }) => {
@@ -192,11 +193,19 @@ export function shows(text: string, value: number): boolean {
   return Math.abs(numberIn(text) - value) <= 0.5 * 10 ** -digits + 1e-6 * Math.abs(value) + 1e-9;
 }
 
-/** Fails unless the element shows `value`, rounded to the digits it writes. */
+export async function textOf(element: Locator): Promise<string> {
+  return (await element.textContent()) ?? '';
+}
+
+/** Fails unless `text` is `value`, rounded to the digits it writes; a dash for missing. */
+export function expectText(text: string, value: number | null, what: string): void {
+  if (value === null) expect(text.trim(), what).toBe('–');
+  else expect(shows(text, value), `${what}: the screen shows "${text.trim()}", the API says ${value}`).toBe(true);
+}
+
+/** The same for an element, once it is there. */
 export async function expectFigure(element: Locator, value: number | null, what: string): Promise<void> {
-  const text = (await element.innerText()).trim();
-  if (value === null) expect(text, what).toBe('–');
-  else expect(shows(text, value), `${what}: the screen shows "${text}", the API says ${value}`).toBe(true);
+  expectText(await textOf(element), value, what);
 }
 
 /** Sum of what is there. */
