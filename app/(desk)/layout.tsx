@@ -51,6 +51,20 @@ async function DistrictInView() {
   );
 }
 
+/** What every figure of the run in view rests on and a reader must know. */
+async function RunWarnings() {
+  const run = await runInView();
+  if (!run || run.warnings.length === 0) return null;
+  return (
+    <p className="head-note">
+      {run.warnings[0]}{' '}
+      <Link href={`/runs/${run.id}#warnings`}>
+        {run.warnings.length > 1 ? `${run.warnings.length} warnings of this run` : 'About this run'}
+      </Link>
+    </p>
+  );
+}
+
 /** The desk: whose water, which season, where to go; the page itself comes below. */
 export default async function DeskLayout({ children }: { children: ReactNode }) {
   const caller = await callerInView();
@@ -82,7 +96,8 @@ export default async function DeskLayout({ children }: { children: ReactNode }) 
           </div>
           <PlaceLine />
         </div>
-        {caller.district.invented ? <p className="invented">{INVENTED_CAUTION}</p> : null}
+        {caller.district.invented ? <p className="head-note">{INVENTED_CAUTION}</p> : null}
+        <RunWarnings />
       </header>
       <main id="main" tabIndex={-1}>
         {children}

@@ -115,7 +115,7 @@ function linksOf(season: ParcelSeason, units: UnitSystem): readonly Link[] {
     },
     {
       name: 'Effective rain',
-      note: 'rain − runoff − what drains: stays for the crop',
+      note: 'rain − runoff − percolation past the roots: stays for the crop',
       water: 'rain',
       part: 'root-zone',
       unit: mm,
@@ -123,11 +123,11 @@ function linksOf(season: ParcelSeason, units: UnitSystem): readonly Link[] {
     },
     {
       name: 'Drawn from the soil',
-      note: 'depletion at the end − at the start; below 0: refilled',
+      note: 'crop ET, adjusted − effective rain − net requirement; below 0: refilled',
       water: 'soil',
       part: 'balance',
       unit: mm,
-      value: (days) => figure(soilDrawn(season.days, days), 'depth', units),
+      value: (days) => figure(soilDrawn(days), 'depth', units),
     },
     {
       name: 'Net requirement',
@@ -180,11 +180,11 @@ function steadyFlow(flow: number, units: UnitSystem): string {
   return units === 'us' ? figure(flow, 'flow', units) : plain(flow * 1000, 2);
 }
 
-/** Growth of depletion over a span: closing depletion minus the depletion the span opened with; NaN on the first day of the run. */
-function soilDrawn(all: readonly ParcelDay[], days: readonly ParcelDay[]): number {
-  if (days.length === 0) return Number.NaN;
-  const opening = all.findIndex((day) => day.date === days[0].date) - 1;
-  const before = opening >= 0 ? all[opening].root_zone_depletion_mm : days[0].root_zone_depletion_mm;
-  const after = days[days.length - 1].root_zone_depletion_mm;
-  return before === null || after === null ? Number.NaN : after - before;
+/** What the soil gave over a span: by the water balance, what the crop took beyond rain and irrigation [mm]. */
+function soilDrawn(days: readonly ParcelDay[]): number {
+  const given = (value: number | null) => value ?? Number.NaN;
+  return days.reduce(
+    (sum, day) => sum + given(day.adjusted_crop_et_mm) - given(day.effective_precipitation_mm) - given(day.net_requirement_mm),
+    0,
+  );
 }

@@ -1,5 +1,5 @@
 /** The life of a run: asked for, cut into slices, sliced through, finished, swapped in. */
-import { and, eq, getTableColumns, inArray, isNull, sql } from 'drizzle-orm';
+import { and, eq, getTableColumns, inArray, isNull, ne, sql } from 'drizzle-orm';
 import type { Tx } from '../connect.ts';
 import { run, runParcel, runSlice } from '../schema/run.ts';
 
@@ -120,9 +120,31 @@ export async function makeStanding(tx: Tx, districtId: string, seasonCode: strin
 }
 
 /** Runs of a season that wait and have not begun: a newer request replaces them. */
-export async function cancelWaitingRuns(tx: Tx, districtId: string, seasonCode: string): Promise<void> {
+export async function cancelWaitingRuns(tx: Tx, districtId: string, seasonCode: string, byRunId: string): Promise<void> {
   await tx
     .update(run)
-    .set({ state: 'cancelled', stage: 'replaced by a newer request', finishedAt: new Date() })
-    .where(and(eq(run.districtId, districtId), eq(run.seasonCode, seasonCode), eq(run.state, 'queued'), isNull(run.startedAt)));
+    .set({
+      state: 'cancelled',
+      stage: 'replaced by a newer request',
+      error: `Replaced by run ${byRunId} before it began.`,
+      finishedAt: new Date(),
+    })
+    .where(
+      and(
+        eq(run.districtId, districtId),
+        eq(run.seasonCode, seasonCode),
+        eq(run.state, 'queued'),
+        isNull(run.startedAt),
+        ne(run.runId, byRunId),
+      ),
+    );
+}
+
+/** Settings of the run a season's readers see; null where none stands. */
+export async function findStandingSettings(tx: Tx, districtId: string, seasonCode: string): Promise<unknown> {
+  const [row] = await tx
+    .select({ settings: run.settings })
+    .from(run)
+    .where(and(eq(run.districtId, districtId), eq(run.seasonCode, seasonCode), eq(run.standing, true)));
+  return row?.settings ?? null;
 }

@@ -59,7 +59,7 @@ async function askForRuns(districtId: string, seasons: readonly string[]): Promi
   const refused: string[] = [];
   for (const season of seasons) {
     try {
-      runs.push(await requestRun({ districtId, userId: null }, { season }));
+      runs.push(await requestRun({ districtId, userId: null }, { season, likeStanding: true }));
     } catch (error) {
       if (!(error instanceof TillwaterError)) throw error;
       refused.push(`${season}: ${error.message}`);

@@ -6,12 +6,13 @@ import { listParcelDays, saveRunReaches, saveRunValues } from '../../db/queries/
 import { countSlices, findRun, makeStanding, type RunRow, updateGoingRun } from '../../db/queries/run-state.ts';
 import { database } from '../access/database.ts';
 import { type Period, periodsOf } from '../base/civil-date.ts';
+import { counted } from '../base/counted.ts';
 import { depthToVolume } from '../base/units.ts';
 import type { LossRule } from '../canal/loss-rule.ts';
 import { rollUp, rollUpImbalance } from '../canal/roll-up.ts';
 import { buildTree } from '../canal/tree.ts';
 import { dailyValues, storedArray } from '../season/daily-store.ts';
-import { FALLBACK, type Fallback } from '../weather/variable.ts';
+import { FALLBACK, FALLBACK_TEXT, type Fallback } from '../weather/variable.ts';
 import { MapArrays } from './map-arrays.ts';
 import { failRun, type RunJob } from './run-failure.ts';
 
@@ -56,8 +57,28 @@ async function closeRun(tx: Tx, job: RunJob): Promise<void> {
       fallback_shares: Object.fromEntries([...fallbackDays].map(([name, days]) => [name, days / parcelDays])),
       seconds: run.startedAt ? (Date.now() - run.startedAt.getTime()) / 1000 : undefined,
       parcels_without_canal: demand.withoutCanal,
+      warnings: runWarnings(fallbackDays, parcelDays, demand.withoutCanal),
     },
   });
+}
+
+/** Shares of parcel-days from which an estimate is worth a warning on the whole run. Common practice, no source. */
+const WORTH_A_WARNING: Partial<Record<Fallback, number>> = {
+  temperatureFromNormal: 0.05,
+  precipitationAssumedZero: 0.05,
+  temperatureExtremesFromMean: 0.05,
+};
+
+function runWarnings(days: ReadonlyMap<Fallback, number>, parcelDays: number, withoutCanal: number): string[] {
+  const warnings = (Object.entries(WORTH_A_WARNING) as [Fallback, number][])
+    .filter(([name, share]) => (days.get(name) ?? 0) > share * parcelDays)
+    .map(
+      ([name]) =>
+        `${Math.round((100 * (days.get(name) ?? 0)) / parcelDays)} % of the parcel-days rest on an estimate: ${FALLBACK_TEXT[name]}.`,
+    );
+  if (withoutCanal > 0)
+    warnings.push(`${counted(withoutCanal, 'parcel names', 'parcels name')} no reach: the demand of these reaches no canal.`);
+  return warnings;
 }
 
 function periodSets(run: FinishedRun, weekStart: number): { kind: 'week' | 'month' | 'season'; periods: Period[] }[] {

@@ -67,10 +67,12 @@ function byCode<Row extends { code: string }, Value>(rows: readonly Row[], value
  * @throws Refused naming the days on which no site has air temperature
  */
 export function seasonWeather(
-  observations: SiteObservations,
+  stored: SiteObservations,
   span: { startDate: string; dayCount: number },
   options: { defaultElevation: number; radiationCoefficient: number },
 ): CompletedWeather {
+  const observations = coveringDays(stored, span);
+  refuseUnobserved(observations, span);
   const whole = completeWeather(observations, { ...options, temperatures: fillTemperatureGaps(observations) });
   const offset = dayNumber(span.startDate) - dayNumber(observations.startDate);
   const weather = windowOf(whole, offset, span.dayCount);
@@ -83,6 +85,39 @@ export function seasonWeather(
     );
   }
   return weather;
+}
+
+/** Observations over at least the days of the season, so that days past the record's end are filled by the same rule as gaps within it. */
+function coveringDays(observations: SiteObservations, span: { startDate: string; dayCount: number }): SiteObservations {
+  const [first, seasonFirst] = [dayNumber(observations.startDate), dayNumber(span.startDate)];
+  const from = Math.min(first, seasonFirst);
+  const to = Math.max(first + observations.dayCount, seasonFirst + span.dayCount);
+  const dayCount = to - from;
+  if (dayCount === observations.dayCount) return observations;
+  const values = Object.entries(observations.values).map(([variable, old]) => {
+    const wide = new Float64Array(observations.sites.length * dayCount).fill(Number.NaN);
+    for (let site = 0; site < observations.sites.length; site++) {
+      wide.set(old.subarray(site * observations.dayCount, (site + 1) * observations.dayCount), site * dayCount + first - from);
+    }
+    return [variable, wide];
+  });
+  return { sites: observations.sites, startDate: isoDate(from), dayCount, values: Object.fromEntries(values) };
+}
+
+/** Normals stand in for missing days of a season, not for a season. */
+function refuseUnobserved(observations: SiteObservations, span: { startDate: string; dayCount: number }): void {
+  const from = dayNumber(span.startDate) - dayNumber(observations.startDate);
+  const observed = (['air_temperature_max_c', 'air_temperature_mean_c'] as const).some((variable) => {
+    const all = observations.values[variable];
+    return observations.sites.some((_, site) =>
+      all
+        ?.subarray(site * observations.dayCount + from, site * observations.dayCount + from + span.dayCount)
+        .some((value) => !Number.isNaN(value)),
+    );
+  });
+  if (observed) return;
+  const to = isoDate(dayNumber(span.startDate) + span.dayCount - 1);
+  throw new Refused(`No site has air temperature on any day of the season, ${span.startDate} to ${to}. Import weather of these days.`);
 }
 
 function windowOf(whole: CompletedWeather, offset: number, dayCount: number): CompletedWeather {

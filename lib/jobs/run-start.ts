@@ -51,15 +51,15 @@ async function planRun(tx: Tx, { districtId, runId }: RunJob): Promise<number> {
     );
   }
   const libraries = librariesOf(await listLibraries(tx, districtId));
-  const observations = await loadObservations(tx, districtId, { source: settings.source });
-  if (observations.sites.length === 0 || observations.dayCount === 0) {
+  const stored = await loadObservations(tx, districtId, { source: settings.source });
+  if (stored.sites.length === 0 || stored.dayCount === 0) {
     throw new Refused('The district has no weather yet: import stations, then their weather.');
   }
-  const weather = seasonWeather(observations, run, {
+  const weather = seasonWeather(stored, run, {
     defaultElevation: district.defaultElevation,
     radiationCoefficient: district.radiationCoefficient,
   });
-  const sites = observations.sites;
+  const { sites } = stored;
   const frozen = frozenParcels({ parcels, plantings, sites, weather, settings, defaultElevation: district.defaultElevation });
   seasonInput({
     startDate: run.startDate,
@@ -89,7 +89,7 @@ async function planRun(tx: Tx, { districtId, runId }: RunJob): Promise<number> {
       canal,
       settings,
       weekStart: district.weekStart,
-      observations: { from: observations.startDate, days: observations.dayCount },
+      observations: { from: stored.startDate, days: stored.dayCount },
     }),
   });
   return sliceCount;

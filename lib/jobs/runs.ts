@@ -1,8 +1,9 @@
 /** Asking for runs and calling them off. The work itself is in run-start, run-slice and run-finish. */
 
 import type { Tx } from '../../db/connect.ts';
+import { listSources } from '../../db/queries/import-context.ts';
 import { findDistrict, findSeason, listLibraries, listRunParcels } from '../../db/queries/run-inputs.ts';
-import { cancelWaitingRuns, findRun, insertRun, notifyRun, updateGoingRun } from '../../db/queries/run-state.ts';
+import { cancelWaitingRuns, findRun, findStandingSettings, insertRun, notifyRun, updateGoingRun } from '../../db/queries/run-state.ts';
 import { database } from '../access/database.ts';
 import { dayNumber } from '../base/civil-date.ts';
 import { Conflict, NotFound, Refused } from '../base/errors.ts';
@@ -12,6 +13,8 @@ import { DEFAULT_RUN_SETTINGS, type RunSettings } from './run-settings.ts';
 interface RunWanted {
   readonly season: string;
   readonly settings?: Partial<RunSettings>;
+  /** true: settings not given are those of the season's standing run, as when changed inputs are computed anew */
+  readonly likeStanding?: boolean;
 }
 
 /** Longest season a run takes [d]: what one parcel's stored arrays are sized for. */
@@ -25,7 +28,8 @@ const LONGEST_SEASON = 400;
  */
 export async function requestRun(who: { districtId: string; userId: string | null }, wanted: RunWanted): Promise<string> {
   return database().inDistrict(who.districtId, async (tx) => {
-    const settings = { ...DEFAULT_RUN_SETTINGS, ...wanted.settings };
+    const standing = wanted.likeStanding ? await findStandingSettings(tx, who.districtId, wanted.season) : null;
+    const settings = { ...DEFAULT_RUN_SETTINGS, ...(standing as Partial<RunSettings> | null), ...wanted.settings };
     const season = await findSeason(tx, who.districtId, wanted.season);
     if (!season) throw new NotFound(`There is no season "${wanted.season}" in this district. List them at /api/v1/seasons.`);
     const dayCount = dayNumber(season.endDate) - dayNumber(season.startDate) + 1;
@@ -34,7 +38,6 @@ export async function requestRun(who: { districtId: string; userId: string | nul
     }
     const parcelCount = await checkedParcelCount(tx, who.districtId, settings);
     const district = await findDistrict(tx, who.districtId);
-    await cancelWaitingRuns(tx, who.districtId, season.code);
     const runId = await insertRun(tx, {
       districtId: who.districtId,
       seasonCode: season.code,
@@ -46,6 +49,7 @@ export async function requestRun(who: { districtId: string; userId: string | nul
       geometryVersion: district?.geometryVersion ?? 1,
       createdBy: who.userId,
     });
+    await cancelWaitingRuns(tx, who.districtId, season.code, runId);
     await enqueue('run-start', { districtId: who.districtId, runId }, { singletonKey: runId, tx });
     return runId;
   });
@@ -63,6 +67,10 @@ async function checkedParcelCount(tx: Tx, districtId: string, settings: RunSetti
   if (!methods.some((method) => method.code === settings.default_method)) {
     const known = methods.map((m) => m.code).join(', ');
     throw new Refused(`default_method "${settings.default_method}" is not an application method of this district; known: ${known}.`);
+  }
+  const sources = (await listSources(tx, districtId)).map((source) => source.name);
+  if (settings.source !== null && !sources.includes(settings.source)) {
+    throw new Refused(`source "${settings.source}" is not a weather source of this district; known: ${sources.join(', ') || 'none yet'}.`);
   }
   return parcels.length;
 }

@@ -108,7 +108,7 @@ export interface StripDay {
   refilled: number;
   /** De after wetting */
   wettedSurface: number;
-  /** infiltrated rain less what of it drains out of the root zone */
+  /** infiltrated rain less what of it percolates past the deepest root */
   effectivePrecipitation: number;
   deepPercolation: number;
   /** ETc, unstressed */
@@ -120,6 +120,8 @@ export interface StripDay {
   evaporation: number;
   /** Dr at the end of the day */
   closingDepletion: number;
+  /** Db at the end of the day */
+  closingBelow: number;
   /** what the day's water balance fails to close by */
   residual: number;
 }
@@ -238,8 +240,8 @@ function wetStrip(ground: StripGround, state: StripState, day: StripDay, trace: 
   day.irrigation = irrigation;
   day.refilled = refilledDepletion(grownDepletion, infiltration, irrigation);
   day.wettedSurface = wettedSurfaceDepletion(openingSurface, infiltration, irrigation, ground.methodWetted);
-  day.effectivePrecipitation = infiltration - rainExcess;
   day.deepPercolation = rainExcess - rainKept;
+  day.effectivePrecipitation = infiltration - day.deepPercolation;
   if (trace === null) return;
   const roots = { openingRootDepth, openingDepletion, openingBelow, moved, grownDepletion };
   const water = { infiltration, rainedDepletion, rainExcess, irrigationExcess, openingSurface };
@@ -280,6 +282,7 @@ function spendWater(ground: StripGround, state: StripState, day: StripDay, trace
   day.transpiration = transpiration;
   day.evaporation = evaporation;
   day.closingDepletion = closingDepletion;
+  day.closingBelow = closingBelow;
   const gain = day.opening - closingDepletion - closingBelow;
   day.residual = day.precipitation + day.irrigation - day.surfaceRunoff - evaporation - transpiration - day.deepPercolation - gain;
   if (trace === null) return;
@@ -317,6 +320,7 @@ export function emptyStripDay(): StripDay {
     transpiration: unset,
     evaporation: unset,
     closingDepletion: unset,
+    closingBelow: unset,
     residual: unset,
   };
 }

@@ -170,6 +170,7 @@ function addDay(daily: Float64Array, day: StripDay, shares: Shares, d: number, d
   daily[12 * days + d] += state * day.readilyAvailable;
   daily[13 * days + d] += share * day.basal;
   daily[14 * days + d] += state * day.stress;
+  daily[15 * days + d] += share * (day.closingDepletion + day.closingBelow);
   if (day.irrigation === 0) return;
   daily[7 * days + d] += share * day.irrigation;
   daily[8 * days + d] += shares.gross * day.irrigation;

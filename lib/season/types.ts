@@ -143,9 +143,15 @@ export const DAILY_VARIABLES = [
   { id: 'readily_available_water', unit: 'mm', scale: 100, term: 'Readily available water' },
   { id: 'basal_crop_coefficient', unit: '1', scale: 10000, term: 'Basal crop coefficient' },
   { id: 'stress_coefficient', unit: '1', scale: 10000, term: 'Stress coefficient' },
+  { id: 'soil_water_depletion', unit: 'mm', scale: 100, term: 'Depletion of the soil to the deepest root' },
 ] as const;
 
 export type DailyVariable = (typeof DAILY_VARIABLES)[number]['id'];
+/*
+ * The stored days close: soil_water_depletion less that of the day before = adjusted_crop_et − effective_precipitation − net_requirement,
+ * where effective_precipitation = precipitation − surface_runoff − deep_percolation. It is of all strips and of all soil the season's roots
+ * reach; root_zone_depletion is of the planted strips and the root zone of the day.
+ */
 export const DAILY_VARIABLE_COUNT = DAILY_VARIABLES.length;
 export const MISSING_STORED = 65535;
 

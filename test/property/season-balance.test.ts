@@ -58,6 +58,20 @@ describe('water balance', () => {
     }
   });
 
+  test.each(SEEDS)('every day of every parcel closes from the rows that are stored, seed %i', (seed) => {
+    const input = randomSeason({ seed, parcels: 60, days: 300 });
+    const exact = exactOf(input);
+    let worst = 0;
+    for (let p = 0; p < input.parcels.length; p++) {
+      const get = (variable: string) => row(exact, 300, p, variable);
+      for (let d = 1; d < 300; d++) {
+        const drawn = get('adjusted_crop_et')[d] - get('effective_precipitation')[d] - get('net_requirement')[d];
+        worst = Math.max(worst, Math.abs(get('soil_water_depletion')[d] - get('soil_water_depletion')[d - 1] - drawn));
+      }
+    }
+    expect(worst).toBeLessThan(1e-6);
+  });
+
   test.each(SEEDS)('stores and coefficients stay within their limits, seed %i', (seed) => {
     const input = randomSeason({ seed, parcels: 60, days: 400 });
     const exact = exactOf(input);

@@ -22,6 +22,7 @@ export interface ScalarDay {
   readily_available_water: number;
   basal_crop_coefficient: number;
   stress_coefficient: number;
+  soil_water_depletion: number;
 }
 
 interface Weather {
@@ -86,6 +87,7 @@ export function scalarSeason(input: SeasonInput, parcel: ParcelInput): ScalarDay
       readily_available_water: soil((x) => x.raw),
       basal_crop_coefficient: mean((x) => x.kcb),
       stress_coefficient: soil((x) => x.ks),
+      soil_water_depletion: mean((x) => x.whole),
     };
   });
 }
@@ -283,6 +285,7 @@ interface LandDay {
   irrigation: number;
   percolation: number;
   depletion: number;
+  whole: number;
   taw: number;
   raw: number;
   kcb: number;
@@ -368,7 +371,8 @@ function runLand(input: SeasonInput, parcel: ParcelInput, land: Land, weather: W
     de = Math.min(soil.totalEvaporableWater, de + evaporation / few);
     exposed = few;
     dr += transpiration + evaporation;
-    const effective = pi - throughRoots;
-    return { etc, transpiration, evaporation, effective, irrigation, percolation, depletion: dr, taw, raw: p * taw, kcb, ks };
+    const effective = pi - percolation;
+    const whole = dr + below;
+    return { etc, transpiration, evaporation, effective, irrigation, percolation, depletion: dr, whole, taw, raw: p * taw, kcb, ks };
   });
 }

@@ -1,8 +1,10 @@
 /** The season pool: the same numbers as one thread, its errors, abort and close. */
+
 import { afterAll, describe, expect, test } from 'vitest';
 import { RangeViolation } from '../../lib/base/errors.ts';
 import { makeSeasonPool } from '../../lib/jobs/season-pool.ts';
 import { runSeason } from '../../lib/season/kernel.ts';
+import { DAILY_VARIABLE_COUNT } from '../../lib/season/types.ts';
 import { randomSeason } from '../support/random-season.ts';
 
 const pool = makeSeasonPool(2);
@@ -24,7 +26,7 @@ describe('season pool', () => {
     const refusal = await pool.run(wrong).catch((error: unknown) => error);
     expect(refusal).toBeInstanceOf(RangeViolation);
     expect((refusal as Error).message).toMatch(/latitude 120 is not within -90 … 90 \(parcel P1\)/);
-    expect((await pool.run({ ...input, parcels: input.parcels.slice(0, 1) })).daily.length).toBe(15 * 120);
+    expect((await pool.run({ ...input, parcels: input.parcels.slice(0, 1) })).daily.length).toBe(DAILY_VARIABLE_COUNT * 120);
   });
 
   test('an aborted season rejects with the reason, and the pool serves the next', async () => {

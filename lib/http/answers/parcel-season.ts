@@ -107,6 +107,7 @@ function parcelDays(parcel: RunParcelDays, run: RunHead): ParcelDay[] {
       readily_available_water_mm: value('readily_available_water'),
       basal_crop_coefficient: value('basal_crop_coefficient'),
       stress_coefficient: value('stress_coefficient'),
+      soil_water_depletion_mm: value('soil_water_depletion'),
       gross_volume_m3: roundOrNull(depthToVolume(reader.at('gross_requirement', day), parcel.area), 3),
       fallbacks: reader.fallbacks({ from: day, to: day }),
     };

@@ -3,7 +3,7 @@ import { DEFAULT_RUN_SETTINGS as usual } from '../../jobs/run-settings.ts';
 import { isoDate, nullableNumber as n } from './common.ts';
 
 export const runSettings = z
-  .object({
+  .strictObject({
     method: z.enum(['fao56', 'asce2005']).default(usual.method).meta({ description: 'combination equation, short surface' }),
     interpolation: z.enum(['inverse-distance', 'nearest']).default(usual.interpolation),
     power: z.number().min(0.5).max(6).default(usual.power),
@@ -27,7 +27,7 @@ export const runSettings = z
   })
   .meta({ id: 'RunSettings' });
 
-export const runRequest = z.object({ season: z.string(), settings: runSettings.partial().optional() }).meta({ id: 'RunRequest' });
+export const runRequest = z.strictObject({ season: z.string(), settings: runSettings.partial().optional() }).meta({ id: 'RunRequest' });
 
 export const runAnswer = z
   .object({
@@ -107,6 +107,7 @@ export const parcelDay = z
     readily_available_water_mm: n,
     basal_crop_coefficient: n,
     stress_coefficient: n,
+    soil_water_depletion_mm: n.meta({ description: 'of the whole parcel, to the deepest root of the season; closes the day with effective rain, net requirement and adjusted crop ET' }),
     gross_volume_m3: n,
     fallbacks: z.array(z.string()),
   })

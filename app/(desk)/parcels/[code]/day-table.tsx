@@ -24,6 +24,7 @@ const STATES: readonly (readonly [DepthKey, string])[] = [
   ['root_zone_depletion_mm', 'Root-zone depletion'],
   ['readily_available_water_mm', 'RAW'],
   ['total_available_water_mm', 'TAW'],
+  ['soil_water_depletion_mm', 'Depletion of all soil'],
 ];
 
 /** Most days that are worth the paper. */

@@ -6,6 +6,7 @@ import { createImportOperation, importOptions, listImportsOperation } from '../.
 import { malformedFrom } from '../../../../lib/http/problem.ts';
 import { readUpload } from '../../../../lib/http/read-upload.ts';
 import { route } from '../../../../lib/http/route.ts';
+import { requireStorable } from '../../../../lib/http/storable-text.ts';
 import { createImport, type PipelineOptions } from '../../../../lib/jobs/imports.ts';
 
 export const GET = route(listImportsOperation, async ({ caller }) => ({ items: await answerImports(caller) }));
@@ -18,7 +19,9 @@ export const POST = route(createImportOperation, async ({ request, caller }) => 
       `the part "kind" is ${fields.has('kind') ? `"${fields.get('kind')}"` : 'missing'}; it must be one of ${importKind.options.join(', ')}`,
     );
   }
-  const options = importOptions.safeParse(optionsOf(fields.get('options')));
+  const wanted = optionsOf(fields.get('options'));
+  requireStorable(wanted, 'part "options"');
+  const options = importOptions.safeParse(wanted);
   if (!options.success) throw malformedFrom(options.error, 'part "options"');
   const id = await createImport(caller, { kind: kind.data, files, options: options.data as PipelineOptions });
   return answerImport(caller, id);
