@@ -70,10 +70,11 @@ test('a token is shown once, works, and is refused once it is withdrawn', async 
   await expect(page.getByRole('main'), 'shown once').not.toContainText(token);
   const row = tokens.locator('tbody tr').filter({ hasText: name });
   await expect(row).toHaveCount(1);
-  const withdraw = row.getByRole('button');
-  await withdraw.click();
+  await row.getByRole('button').first().click();
+  const question = page.getByRole('dialog');
+  await expect(question).toBeVisible();
   expect((await script.get('/api/v1/district')).status(), 'the first press only asks').toBe(200);
-  await withdraw.click();
+  await question.locator('button.danger').click();
   await expect(row).toHaveCount(0);
   expect((await script.get('/api/v1/district')).status(), 'a withdrawn token').toBe(401);
   await script.dispose();

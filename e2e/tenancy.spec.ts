@@ -59,7 +59,7 @@ test('every changing call of the interface, with the other district’s ids', as
     ['POST', `/api/v1/imports/${other.importId}/apply`],
     ['POST', `/api/v1/imports/${other.importId}/undo`],
     ['POST', `/api/v1/imports/${other.importId}/cancel`],
-    ['PATCH', `/api/v1/imports/${other.importId}`, { options: {} }],
+    ['PATCH', `/api/v1/imports/${other.importId}`, { recompute: false }],
     ['DELETE', `/api/v1/tokens/${other.token}`],
     ['DELETE', `/api/v1/members/${other.member}`],
   ];

@@ -159,7 +159,7 @@ function drawLegend(doc: Pdf, map: PrintMap, note: string): void {
   for (const [i, entry] of rows.entries())
     legendRow(doc, map, entry, { x, y: top + LEGEND_ROW * (i + 1) + 2, barWidth: (70 * entry.areaShare) / most });
   const right = x + contentWidth(doc) * 0.62;
-  doc.font('strong').fontSize(8).fillColor(INK.text).text('Canals at their peak', right, top, { lineBreak: false });
+  doc.font('strong').fontSize(8).fillColor(INK.text).text('Canals, busiest week', right, top, { lineBreak: false });
   map.canalLegend.forEach(({ label, colour, width }, i) => {
     const y = top + LEGEND_ROW * (i + 1) + 7;
     doc

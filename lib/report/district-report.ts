@@ -114,7 +114,7 @@ function keyFigures({ parcels, canals, units }: DistrictReportInput) {
     { label: 'Gross requirement', value: formatVolume(all.grossVolume, units) },
     { label: 'Inflow at headworks', value: head ? formatVolume(head.headInflow, units) : MISSING_TEXT },
     { label: 'Delivered of inflow', value: formatShare(delivered) },
-    { label: 'Peak at headworks', value: head ? formatFlow(head.peakFlow, units) : MISSING_TEXT },
+    { label: 'Busiest week at headworks', value: head ? formatFlow(head.busiestFlow, units) : MISSING_TEXT },
     { label: 'Reaches over capacity', value: `${over} of ${canals.length}` },
   ];
 }
@@ -124,8 +124,8 @@ function mapBlock({ parcels, shapes, canals, units, classMethod }: DistrictRepor
   const classes = classify({ values, areas: parcels.map((row) => row.area), method: classMethod, count: 6 });
   const legend = legendOf({ title: 'Gross requirement', quantity: 'mm', classes, units, scale: 'amount', theme: 'light' });
   const alt = `Map of ${parcels.length} parcels coloured by gross requirement in ${legend.entries.length} classes, with ${canals.length} reaches.`;
-  const peak = Math.max(0, ...canals.map(({ row }) => row.peakFlow).filter(Number.isFinite));
-  const note = `Classes: ${CLASS_METHODS[classMethod].toLowerCase()}. Canals as wide as their peak flow: ${widestCanalText(peak, units)}.`;
+  const busiest = Math.max(0, ...canals.map(({ row }) => row.busiestFlow).filter(Number.isFinite));
+  const note = `Classes: ${CLASS_METHODS[classMethod].toLowerCase()}. Canals as wide as the flow of their busiest seven days: ${widestCanalText(busiest, units)}.`;
   return {
     kind: 'map',
     heading: 'Gross requirement of each parcel',

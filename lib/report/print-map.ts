@@ -57,7 +57,7 @@ const METRES_PER_DEGREE = 111195.08;
 export function printMap({ shapes, values, classes, legend, canals, alt, units }: PrintMapRequest): PrintMap {
   if (values.length !== shapes.length) throw new ShapeError(`${values.length} values for ${shapes.length} parcel shapes`);
   const project = projection([...shapes.flat(2), ...canals.flatMap(({ lines }) => lines)]);
-  const most = Math.max(1e-9, ...canals.map(({ row }) => row.peakFlow).filter(Number.isFinite));
+  const most = Math.max(1e-9, ...canals.map(({ row }) => row.busiestFlow).filter(Number.isFinite));
   const parcels = shapes.map((polygons, i) => ({
     rings: polygons.flatMap((rings) => rings.map((ring) => ring.map(project.point))),
     classIndex: classOf(classes.breaks, values[i]),
@@ -65,7 +65,7 @@ export function printMap({ shapes, values, classes, legend, canals, alt, units }
   const drawn = canals.flatMap(({ lines, row }) =>
     lines.map((line) => ({
       points: line.map(project.point),
-      width: canalWidth(row.peakFlow / most),
+      width: canalWidth(row.busiestFlow / most),
       colour: CAPACITY_COLOURS.light[row.status ?? 'unknown'],
     })),
   );
@@ -114,6 +114,6 @@ function canalLegend(rows: readonly ReachPeriodRow[]): PrintMap['canalLegend'] {
 }
 
 /** Words for the widest line of the map. @example widestCanalText(1.2, 'metric') // 'widest line 1.20 m³/s' */
-export function widestCanalText(peakFlow: number, units: UnitSystem): string {
-  return `widest line ${formatFlow(peakFlow, units)}`;
+export function widestCanalText(busiestFlow: number, units: UnitSystem): string {
+  return `widest line ${formatFlow(busiestFlow, units)}`;
 }

@@ -177,7 +177,7 @@ describe('district report', () => {
     const of = (label: string) => figures.items.find((item) => item.label === label)?.value;
     expect(of('Inflow at headworks')).toBe('750 thousand m³');
     expect(of('Delivered of inflow')).toBe('80 %');
-    expect(of('Peak at headworks')).toBe('1.10 m³/s');
+    expect(of('Busiest week at headworks')).toBe('1.10 m³/s');
     expect(of('Reaches over capacity')).toBe('1 of 3');
   });
 

@@ -120,6 +120,7 @@ function reachRow(row: ReachPeriod): ReachRow {
     headInflow: nanFromNull(row.head_inflow_m3),
     meanFlow,
     peakFlow: nanFromNull(row.peak_inflow_m3_s),
+    busiestFlow: nanFromNull(row.busiest_week_inflow_m3_s),
     capacity,
     capacityShare,
     meanShare: meanFlow / capacity,
