@@ -1,5 +1,5 @@
 /** What a district already knows, for a reader to check and join against. */
-import { and, asc, eq, sql } from 'drizzle-orm';
+import { and, asc, eq, isNotNull, sql } from 'drizzle-orm';
 import type { ImportContext } from '../../lib/files/reading.ts';
 import type { Tx } from '../connect.ts';
 import { district } from '../schema/district.ts';
@@ -26,6 +26,9 @@ export async function findImportContext(tx: Tx, districtId: string): Promise<Imp
     knownReaches: reaches,
     knownTurnouts: turnouts,
     districtBox: await districtBox(tx, districtId),
+    siteBox: await siteBox(tx, districtId),
+    plantingCounts: await plantingCounts(tx, districtId),
+    parcelCounts: await parcelCounts(tx, districtId),
     ...(await libraries(tx, districtId)),
   };
 }
@@ -74,6 +77,38 @@ async function districtBox(tx: Tx, districtId: string): Promise<[number, number,
     .where(eq(parcel.districtId, districtId));
   if (!box || box.west === null || box.south === null || box.east === null || box.north === null) return null;
   return [box.west, box.south, box.east, box.north];
+}
+
+async function siteBox(tx: Tx, districtId: string): Promise<[number, number, number, number] | null> {
+  const [box] = await tx
+    .select({
+      west: sql<number | null>`min(${site.longitude})`,
+      south: sql<number | null>`min(${site.latitude})`,
+      east: sql<number | null>`max(${site.longitude})`,
+      north: sql<number | null>`max(${site.latitude})`,
+    })
+    .from(site)
+    .where(eq(site.districtId, districtId));
+  if (!box || box.west === null || box.south === null || box.east === null || box.north === null) return null;
+  return [box.west, box.south, box.east, box.north];
+}
+
+async function plantingCounts(tx: Tx, districtId: string): Promise<Record<string, number>> {
+  const rows = await tx
+    .select({ code: planting.parcelCode, count: sql<number>`count(*)::int` })
+    .from(planting)
+    .where(eq(planting.districtId, districtId))
+    .groupBy(planting.parcelCode);
+  return Object.fromEntries(rows.map(({ code, count }) => [code, count]));
+}
+
+async function parcelCounts(tx: Tx, districtId: string): Promise<Record<string, number>> {
+  const rows = await tx
+    .select({ code: parcel.reachCode, count: sql<number>`count(*)::int` })
+    .from(parcel)
+    .where(and(eq(parcel.districtId, districtId), isNotNull(parcel.reachCode)))
+    .groupBy(parcel.reachCode);
+  return Object.fromEntries(rows.map(({ code, count }) => [code ?? '', count]));
 }
 
 /** Seasons that could be computed now: the district has parcels, the season has plantings, and some weather falls in it. */

@@ -72,6 +72,21 @@ export function listPlantingKeys(tx: Tx, districtId: string, parcelCodes: readon
     .where(and(eq(planting.districtId, districtId), inArray(planting.parcelCode, [...parcelCodes])));
 }
 
+/** Turnouts and parcels that name some reaches. */
+export async function listReachUsers(tx: Tx, districtId: string, reachCodes: readonly string[]) {
+  const turnouts = await tx
+    .select({ code: turnout.code, reachCode: turnout.reachCode })
+    .from(turnout)
+    .where(and(eq(turnout.districtId, districtId), inArray(turnout.reachCode, [...reachCodes])))
+    .orderBy(asc(turnout.code));
+  const parcels = await tx
+    .select({ code: parcel.code, reachCode: parcel.reachCode })
+    .from(parcel)
+    .where(and(eq(parcel.districtId, districtId), inArray(parcel.reachCode, [...reachCodes])))
+    .orderBy(asc(parcel.code));
+  return { turnouts, parcels };
+}
+
 export function listTreeNodes(tx: Tx, districtId: string) {
   return tx
     .select({ code: reach.code, parentCode: reach.parentCode })

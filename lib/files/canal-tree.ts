@@ -2,6 +2,7 @@
  * Reaches → one tree: parents checked, or found from lines that touch.
  */
 import type { LineString, MultiLineString, Position } from 'geojson';
+import { counted } from '../base/counted.ts';
 import { geodesicDistance } from '../geo/geodesic.ts';
 import { type FindingList, shown } from './finding-list.ts';
 
@@ -26,7 +27,7 @@ export function inferParents(reaches: readonly TreeReach[], findings: FindingLis
   });
   findings.note({
     code: 'tree-inferred',
-    message: `No property names a parent; ${inferred.filter((reach) => reach.parentCode !== null).length} reaches are joined to the reach whose tail touches their head (within ${TOUCH} m).`,
+    message: `No property names a parent; ${counted(inferred.filter((reach) => reach.parentCode !== null).length, 'reach is', 'reaches are')} joined to the reach whose tail touches the head (within ${TOUCH} m).`,
     file: reaches[0]?.file,
     advice: 'Lines must be drawn from head to tail.',
   });
@@ -50,43 +51,69 @@ function near(a: Position, b: Position): boolean {
   return Math.abs(a[1] - b[1]) < TOUCH_DEGREES && geodesicDistance(a[0], a[1], b[0], b[1]) <= TOUCH;
 }
 
-/** One head, no unknown parents, no cycle: true. Each fault is a file-level error that names the reaches. */
-export function checkTree(reaches: readonly TreeReach[], findings: FindingList): boolean {
+/** A reach of the tree that is to be: of the file, or stored and kept. */
+type TreeNode = Pick<TreeReach, 'code' | 'parentCode'> & Partial<TreeReach>;
+
+/** What the reaches of a file are put together with. */
+interface TreeSurroundings {
+  /** reaches the district has and keeps */
+  readonly stored: readonly { readonly code: string; readonly parentCode: string | null }[];
+  /** reaches of the file that were left out, with the reason */
+  readonly leftOut: ReadonlyMap<string, string>;
+}
+
+/** The reaches of the file with the stored ones: one head, no unknown parents, no cycle: true. Each fault is a file-level error that names the reaches. */
+export function checkTree(reaches: readonly TreeReach[], { stored, leftOut }: TreeSurroundings, findings: FindingList): boolean {
   if (reaches.length === 0) return false;
-  const byCode = new Map(reaches.map((reach) => [reach.code, reach]));
-  const orphans = reaches.filter((reach) => reach.parentCode !== null && !byCode.has(reach.parentCode));
-  const heads = reaches.filter((reach) => reach.parentCode === null);
-  const looped = reaches.filter((reach) => isLooped(reach, byCode));
-  for (const orphan of orphans) {
-    refuse(
-      findings,
-      orphan,
-      'orphan-reach',
-      `Reach ${shown(orphan.code)} hangs on reach ${shown(orphan.parentCode ?? '')}, which is not in the file.`,
-      'Bring the whole tree in one import, or correct the parent.',
-    );
-  }
+  const own = new Set(reaches.map((reach) => reach.code));
+  const nodes: TreeNode[] = [...reaches, ...stored.filter((reach) => !own.has(reach.code))];
+  const byCode = new Map(nodes.map((reach) => [reach.code, reach]));
+  const orphans = nodes.filter((reach) => reach.parentCode !== null && !byCode.has(reach.parentCode));
+  const heads = nodes.filter((reach) => reach.parentCode === null);
+  const looped = nodes.filter((reach) => isLooped(reach, byCode));
+  for (const orphan of orphans) refuseOrphan(orphan, leftOut, findings);
   if (looped.length > 0)
-    refuse(findings, looped[0], 'reach-cycle', `Reaches hang on each other in a circle: ${listed(looped)}.`, 'Correct the parents.');
-  if (heads.length === 0)
-    refuse(findings, reaches[0], 'no-head', 'No reach is the head: every one has a parent.', 'Leave the parent of the head reach empty.');
-  if (heads.length > 1)
-    refuse(
-      findings,
-      heads[1],
-      'several-heads',
-      `${heads.length} reaches have no parent: ${listed(heads)}. There must be one head.`,
-      'Give each but one its parent.',
-    );
+    refuse(findings, looped, 'reach-cycle', `Reaches hang on each other in a circle: ${listed(looped)}.`, 'Correct the parents.');
+  if (heads.length === 0 && orphans.length === 0)
+    refuse(findings, nodes, 'no-head', 'No reach is the head: every one has a parent.', 'Leave the parent of the head reach empty.');
+  if (heads.length > 1) refuseHeads(heads, leftOut, findings);
   return orphans.length === 0 && looped.length === 0 && heads.length === 1;
 }
 
-function refuse(findings: FindingList, reach: TreeReach, code: string, message: string, advice: string): void {
-  findings.refuse({ code, message, file: reach.file, row: reach.row, value: shown(reach.code), advice });
+function refuseOrphan(orphan: TreeNode, leftOut: TreeSurroundings['leftOut'], findings: FindingList): void {
+  const parent = orphan.parentCode ?? '';
+  const reason = leftOut.get(parent);
+  refuse(
+    findings,
+    [orphan],
+    'orphan-reach',
+    `Reach ${named(orphan)} hangs on reach ${shown(parent)}, ${reason ? `which was left out: ${reason}` : 'which is neither in the file nor among the canals that stay.'}`,
+    reason ? 'Correct that reach.' : 'Bring the whole tree in one import, or correct the parent.',
+  );
+}
+
+function refuseHeads(heads: readonly TreeNode[], leftOut: TreeSurroundings['leftOut'], findings: FindingList): void {
+  const missing = leftOut.size > 0 ? ` ${counted(leftOut.size, 'reach was', 'reaches were')} left out of the file.` : '';
+  const withStored = heads.some((reach) => reach.file === undefined);
+  refuse(
+    findings,
+    heads.slice(1),
+    'several-heads',
+    `${heads.length} reaches have no parent: ${listed(heads)}. There must be one head.${missing}`,
+    withStored
+      ? 'Give each but one its parent, or choose to replace the stored canals if the file holds the whole tree.'
+      : 'Give each but one its parent.',
+  );
+}
+
+/** Refuses at the first of the reaches that stands in the file. */
+function refuse(findings: FindingList, reaches: readonly TreeNode[], code: string, message: string, advice: string): void {
+  const at = reaches.find((reach) => reach.file !== undefined) ?? reaches[0];
+  findings.refuse({ code, message, file: at.file, row: at.row, value: shown(at.code), advice });
 }
 
 /** True when the reach stands on a circle of parents. */
-function isLooped(reach: TreeReach, byCode: ReadonlyMap<string, TreeReach>): boolean {
+function isLooped(reach: TreeNode, byCode: ReadonlyMap<string, TreeNode>): boolean {
   const seen = new Set<string>([reach.code]);
   let at = reach.parentCode === null ? undefined : byCode.get(reach.parentCode);
   while (at) {
@@ -98,9 +125,10 @@ function isLooped(reach: TreeReach, byCode: ReadonlyMap<string, TreeReach>): boo
   return false;
 }
 
-function listed(reaches: readonly TreeReach[]): string {
-  return `${reaches
-    .slice(0, 12)
-    .map((reach) => shown(reach.code))
-    .join(', ')}${reaches.length > 12 ? ' …' : ''}`;
+function named({ code, file }: TreeNode): string {
+  return file === undefined ? `${shown(code)} (stored)` : shown(code);
+}
+
+function listed(reaches: readonly TreeNode[]): string {
+  return `${reaches.slice(0, 12).map(named).join(', ')}${reaches.length > 12 ? ' …' : ''}`;
 }

@@ -2,13 +2,16 @@
  * Canals as lines in GeoJSON → the reaches of one conveyance tree.
  */
 import type { LineString, MultiLineString, Position } from 'geojson';
+import { counted } from '../base/counted.ts';
 import { geodesicLength } from '../geo/geodesic.ts';
 import { samePosition } from '../geo/ring.ts';
+import { reachesRemoved } from './canal-removal.ts';
 import { checkTree, inferParents, type TreeReach } from './canal-tree.ts';
+import { codeFault } from './code-text.ts';
 import { type BoundProperties, bindWithCode, numberOf, textOf } from './feature-properties.ts';
 import { FindingList, shown } from './finding-list.ts';
 import { hasHeight, type RawFeature, readFeatures } from './geojson.ts';
-import { lossRuleOf } from './loss-rule-columns.ts';
+import { lossRuleOf, reportLossFault } from './loss-rule-columns.ts';
 import { MapPreviewFeatures } from './map-preview.ts';
 import type { ImportContext, ImportFile, ImportOptions, ImportReading, Progress, StagedReach } from './reading.ts';
 import { NOTHING_UNDERSTOOD } from './reading.ts';
@@ -16,7 +19,6 @@ import type { TableRole } from './table-columns.ts';
 
 /** Largest reach that is believed [m³ s⁻¹]. */
 const CAPACITY_HIGH = 5000;
-const CODE_LENGTH = 80;
 
 export const CANAL_ROLES: readonly TableRole[] = [
   { role: 'code', names: ['reach', 'reach code', 'reach id', 'code', 'id'] },
@@ -34,7 +36,10 @@ interface Work {
   readonly preview: MapPreviewFeatures;
   readonly reaches: { reach: StagedReach; row: number; file: string }[];
   readonly byCode: Map<string, number>;
+  /** code → why its feature was left out */
+  readonly leftOut: Map<string, string>;
   heights: number;
+  percents: number;
 }
 
 /** Reads canals from one or more GeoJSON files. */
@@ -50,12 +55,29 @@ export async function readCanals(
   const assumed = { flow: context.districtUnits === 'us' ? 'cfs' : 'm³/s' };
   const request = { roles: CANAL_ROLES, options, chosen: { code: options.codeColumn }, assumed };
   const properties = bindWithCode(features, request, { thing: 'reach', numbered: 'R001, R002' }, findings);
-  const work: Work = { findings, preview: new MapPreviewFeatures(), reaches: [], byCode: new Map(), heights: 0 };
+  const work: Work = {
+    findings,
+    preview: new MapPreviewFeatures(),
+    reaches: [],
+    byCode: new Map(),
+    leftOut: new Map(),
+    heights: 0,
+    percents: 0,
+  };
   for (const feature of features) takeFeature(feature, properties, work);
   await progress(0.5);
   if (work.heights > 0)
-    findings.note({ code: 'line-height-dropped', message: `${work.heights} lines carried heights, which are dropped.` });
-  const reaches = asTree(work, properties);
+    findings.note({
+      code: 'line-height-dropped',
+      message: `${counted(work.heights, 'line', 'lines')} carried heights, which are dropped.`,
+    });
+  if (work.percents > 0)
+    findings.note({
+      code: 'efficiency-percent',
+      message: `The efficiency of ${counted(work.percents, 'reach', 'reaches')} is above 1 and read as percent.`,
+      column: properties.bound.get('loss_value')?.header,
+    });
+  const reaches = asTree(work, properties, { options, context });
   await progress(1);
   return {
     understood: {
@@ -80,13 +102,22 @@ function takeFeature(feature: RawFeature, properties: BoundProperties, work: Wor
   const { findings, preview, byCode } = work;
   const { row, file } = feature;
   const { bound } = properties;
-  const code = bound.has('code') ? (textOf(feature, bound, 'code')?.slice(0, CODE_LENGTH) ?? null) : `R${String(row).padStart(3, '0')}`;
+  const code = bound.has('code') ? textOf(feature, bound, 'code') : `R${String(row).padStart(3, '0')}`;
   const refuse = (rule: string, reason: string, advice: string): void => {
-    findings.error({ code: rule, message: reason, file, row, value: code ?? undefined, advice });
+    findings.error({ code: rule, message: reason, file, row, value: code === null ? undefined : shown(code), advice });
+    leaveOut(reason);
+  };
+  const leaveOut = (reason: string): void => {
+    if (code !== null && !byCode.has(code)) work.leftOut.set(code, reason);
     preview.add({ row, code, status: 'refused', reason }, feature.geometry);
   };
-  if (!feature.geometry) return preview.add({ row, code, status: 'refused', reason: feature.problem }, null);
+  if (!feature.geometry) return leaveOut(feature.problem ?? 'The feature has no geometry.');
   if (code === null) return refuse('missing-code', 'The reach has no code.', 'Give it a code.');
+  const fault = codeFault('Reach', code);
+  if (fault) {
+    findings.error({ ...fault, file, row, column: bound.get('code')?.header, value: shown(code) });
+    return leaveOut(fault.message);
+  }
   const earlier = byCode.get(code);
   if (earlier !== undefined)
     return refuse(
@@ -97,6 +128,13 @@ function takeFeature(feature: RawFeature, properties: BoundProperties, work: Wor
   const line = cleanLine(feature.geometry as LineString | MultiLineString, work);
   const length = line ? geodesicLength(line) : 0;
   if (!line || !(length > 0)) return refuse('zero-length', `Reach ${shown(code)} has no length.`, 'Draw the line again.');
+  const loss = lossRuleOf(feature, bound);
+  if (loss.rule === null) {
+    const reason = `Reach ${shown(code)} is left out: ${loss.fault.message}`;
+    reportLossFault(feature, reason, loss.fault, findings);
+    return leaveOut(reason);
+  }
+  if (loss.percent) work.percents++;
   byCode.set(code, work.reaches.length);
   preview.add({ row, code, status: 'ok', reason: null }, line);
   const reach: StagedReach = {
@@ -105,7 +143,7 @@ function takeFeature(feature: RawFeature, properties: BoundProperties, work: Wor
     parentCode: textOf(feature, bound, 'parent'),
     kind: textOf(feature, bound, 'kind')?.toLowerCase() ?? 'lateral',
     capacity: numberOf(feature, bound, { role: 'capacity', low: 0, high: CAPACITY_HIGH, unit: 'm³/s' }, findings),
-    lossRule: lossRuleOf(feature, bound, findings),
+    lossRule: loss.rule,
     length: Math.round(length * 1000) / 1000,
     geometry: line,
   };
@@ -130,7 +168,13 @@ function withoutRepeats(part: readonly Position[]): Position[] {
   return kept;
 }
 
-function asTree({ reaches, findings }: Work, { bound }: BoundProperties): StagedReach[] {
+interface Surroundings {
+  readonly options: ImportOptions;
+  readonly context: ImportContext;
+}
+
+/** The reaches with their parents, or none when they and the stored reaches that stay would not be one tree. */
+function asTree({ reaches, findings, leftOut }: Work, { bound }: BoundProperties, { options, context }: Surroundings): StagedReach[] {
   const tree: TreeReach[] = reaches.map(({ reach, row, file }) => ({
     code: reach.code,
     parentCode: reach.parentCode,
@@ -140,7 +184,10 @@ function asTree({ reaches, findings }: Work, { bound }: BoundProperties): Staged
   }));
   const parents = bound.has('parent') || tree.length === 0 ? tree : inferParents(tree, findings);
   const staged = reaches.map(({ reach }, index) => ({ ...reach, parentCode: parents[index].parentCode }));
-  return checkTree(parents, findings) ? staged : [];
+  const stored = options.replace === true ? [] : context.knownReaches;
+  const sound = checkTree(parents, { stored, leftOut }, findings);
+  if (sound && options.replace === true) reachesRemoved(staged, leftOut, context, findings);
+  return sound && !findings.fatal ? staged : [];
 }
 
 function boxOfLines(reaches: readonly StagedReach[]): [number, number, number, number] | null {

@@ -3,6 +3,7 @@
  */
 import { type CsvError, type Options, parse } from 'csv-parse';
 import { parse as parseAll } from 'csv-parse/sync';
+import { counted } from '../base/counted.ts';
 import { type Delimiter, findHeader, isBlankRecord, isCommentRecord, sniffDecimalComma, sniffDelimiter } from './csv-dialect.ts';
 import { type FindingList, shown } from './finding-list.ts';
 import { type ColumnPlan, type ImportFile, NOTHING_UNDERSTOOD, type Progress, type Understood } from './reading.ts';
@@ -218,7 +219,7 @@ function rowCounter(
     rows++;
     while (cells.length > width && cells[cells.length - 1].trim() === '') cells.pop();
     if (cells.length === width) return sink.each({ row, cells });
-    const message = `The row has ${cells.length} cells; the header has ${width}.`;
+    const message = `The row has ${counted(cells.length, 'cell', 'cells')}; the header has ${width}.`;
     findings.error({
       code: 'row-cell-count',
       message,

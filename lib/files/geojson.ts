@@ -70,7 +70,9 @@ function featuresOf(value: Json): unknown[] | string {
   if (value.type === 'Feature') return [value];
   if (typeof value.type === 'string' && 'coordinates' in value)
     return 'The file is a bare geometry without properties; features are needed.';
-  return `The type "${shown(String(value.type))}" is not a GeoJSON FeatureCollection or Feature.`;
+  if (value.type === undefined) return 'The file has no type member: it is JSON, but not a GeoJSON FeatureCollection or Feature.';
+  if (typeof value.type !== 'string') return 'The type member of the file is not a text: it should say FeatureCollection or Feature.';
+  return `The type "${shown(value.type)}" is not a GeoJSON FeatureCollection or Feature.`;
 }
 
 function crsOf(value: Json, file: ImportFile, findings: FindingList): string | null {

@@ -2,6 +2,7 @@
  * The codes on a parcel that point elsewhere: turnout, reach, soil, application method.
  */
 import { counted } from '../base/counted.ts';
+import { codeFault } from './code-text.ts';
 import { numberOf, textOf } from './feature-properties.ts';
 import { type FindingList, shown } from './finding-list.ts';
 import type { RawFeature } from './geojson.ts';
@@ -56,6 +57,7 @@ export function parcelJoins(context: ImportContext, findings: FindingList) {
     feature: RawFeature,
     bound: BoundTable['bound'],
   ): { turnoutCode: string | null; reachCode: string | null } {
+    if (refusedCode(code, feature, bound, findings)) return { turnoutCode: null, reachCode: reach };
     const reachCode = reach ?? made.get(code)?.reachCode ?? known.get(code) ?? null;
     if (reachCode === null) {
       tally(unknown.turnout, code);
@@ -89,6 +91,13 @@ export function parcelJoins(context: ImportContext, findings: FindingList) {
   }
 
   return { join, finish, turnouts: () => [...made.values()] };
+}
+
+/** True when a turnout's code cannot be used, which is told; the parcel comes without turnout. */
+function refusedCode(code: string, feature: RawFeature, bound: BoundTable['bound'], findings: FindingList): boolean {
+  const fault = codeFault('Turnout', code);
+  if (fault) findings.error({ ...fault, file: feature.file, row: feature.row, column: bound.get('turnout')?.header, value: shown(code) });
+  return fault !== null;
 }
 
 function refuseSecondReach(turnout: StagedTurnout, reachCode: string, feature: RawFeature, findings: FindingList): void {
@@ -129,7 +138,7 @@ function listUnknown(
   findings.add({
     severity,
     code: `unknown-${role}`,
-    message: `${unknown.size} ${role} codes are not known: ${list.join(', ')}${unknown.size > LISTED ? ' …' : ''}. ${effect}`,
+    message: `${counted(unknown.size, `${role} code is`, `${role} codes are`)} not known: ${list.join(', ')}${unknown.size > LISTED ? ' …' : ''}. ${effect}`,
     column: role,
     advice: `Add them first, or correct the codes.`,
   });

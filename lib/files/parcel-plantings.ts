@@ -69,7 +69,7 @@ export function plantingsOf(work: PlantingWork, crops: ReadonlyMap<string, CropC
   if (starts.season > 0)
     findings.warn({
       code: 'planting-date-season-start',
-      message: `${starts.season} plantings start on the first day of the season: their calendar has no day within it.`,
+      message: `${counted(starts.season, 'planting starts', 'plantings start')} on the first day of the season: the calendar has no day within it.`,
       advice: 'Import plantings with dates.',
     });
   if (withoutCalendar.size > 0)
@@ -95,7 +95,7 @@ function warnUnmapped(crops: ReadonlyMap<string, CropCount>, column: string | un
       .map((crop) => `${shown(crop.foreignCode)} (${crop.count}${crop.proposed ? `, perhaps ${crop.proposed}` : ''})`);
     findings.warn({
       code: 'unmapped-crop',
-      message: `${unmapped.length} crop codes are not in the library; their parcels come without planting: ${parts.join(', ')}${unmapped.length > 20 ? ' …' : ''}.`,
+      message: `${counted(unmapped.length, 'crop code is', 'crop codes are')} not in the library; the parcels come without planting: ${parts.join(', ')}${unmapped.length > 20 ? ' …' : ''}.`,
       column: column,
       advice: 'Map them to crops of the library in the options.',
     });

@@ -5,6 +5,7 @@ import type { MultiPolygon, Polygon } from 'geojson';
 import { findOverlaps } from '../geo/overlap.ts';
 import { boxOf, pointInside } from '../geo/point-inside.ts';
 import { type RepairedPolygon, type RepairNote, repairPolygon } from '../geo/polygon-repair.ts';
+import { codeFault } from './code-text.ts';
 import { attributesOf, type BoundProperties, bindWithCode, numberOf, textOf } from './feature-properties.ts';
 import { FindingList, shown } from './finding-list.ts';
 import { type RawFeature, readFeatures } from './geojson.ts';
@@ -12,6 +13,7 @@ import { MapPreviewFeatures } from './map-preview.ts';
 import { parcelJoins } from './parcel-joins.ts';
 import { NOTE_TEXT, reportCrossing, reportFault } from './parcel-outline.ts';
 import { cropsOf, mappingsOf, plantingsOf } from './parcel-plantings.ts';
+import { warnFar, warnLarge, warnRemoved } from './parcel-plausible.ts';
 import type { CropCount, ImportContext, ImportFile, ImportOptions, ImportReading, Progress, StagedParcel } from './reading.ts';
 import { NOTHING_UNDERSTOOD } from './reading.ts';
 import type { TableRole } from './table-columns.ts';
@@ -20,7 +22,6 @@ import type { TableRole } from './table-columns.ts';
 const OVERLAP_LIMIT = 0.01;
 const OVERLAPS_REPORTED = 1000;
 const BREATH = 500;
-const CODE_LENGTH = 80;
 
 export const PARCEL_ROLES: readonly TableRole[] = [
   {
@@ -61,6 +62,8 @@ interface Work {
   readonly parcels: StagedParcel[];
   readonly rows: { row: number; file: string }[];
   readonly byCode: Map<string, number>;
+  /** codes of features that were left out */
+  readonly refused: Set<string>;
   readonly repairs: Map<RepairNote, number>;
   readonly joins: ReturnType<typeof parcelJoins>;
 }
@@ -92,6 +95,7 @@ export async function readParcels(
     parcels: [],
     rows: [],
     byCode: new Map(),
+    refused: new Set(),
     repairs: new Map(),
     joins: parcelJoins(context, findings),
   };
@@ -133,7 +137,10 @@ function takeFeature(feature: RawFeature, properties: BoundProperties, crops: Re
   const { preview, findings, byCode } = work;
   const { row, file } = feature;
   const code = codeOf(feature, properties);
-  const refuse = (reason: string) => preview.add({ row, code, status: 'refused', reason }, feature.geometry);
+  const refuse = (reason: string) => {
+    if (code !== null) work.refused.add(code);
+    preview.add({ row, code, status: 'refused', reason }, feature.geometry);
+  };
   if (!feature.geometry) return refuse(feature.problem ?? 'no geometry');
   if (code === null) {
     findings.error({
@@ -145,6 +152,11 @@ function takeFeature(feature: RawFeature, properties: BoundProperties, crops: Re
       advice: 'Give it a code.',
     });
     return refuse('The parcel has no code.');
+  }
+  const fault = codeFault('Parcel', code);
+  if (fault) {
+    findings.error({ ...fault, file, row, column: properties.bound.get('code')?.header, value: shown(code) });
+    return refuse(fault.message);
   }
   const earlier = byCode.get(code);
   if (earlier !== undefined) {
@@ -173,7 +185,7 @@ function takeFeature(feature: RawFeature, properties: BoundProperties, crops: Re
 
 function codeOf(feature: RawFeature, { bound }: BoundProperties): string | null {
   if (!bound.has('code')) return `P${String(feature.row).padStart(4, '0')}`;
-  return textOf(feature, bound, 'code')?.slice(0, CODE_LENGTH) ?? null;
+  return textOf(feature, bound, 'code');
 }
 
 function parcelOf(
@@ -202,18 +214,25 @@ function parcelOf(
 }
 
 function finishNotes(work: Work, properties: BoundProperties, features: readonly RawFeature[]): void {
-  const { findings, parcels, rows } = work;
+  const { findings, parcels } = work;
   for (const [note, count] of work.repairs)
     findings.note({ code: `polygon-${note}`, message: `${count} ${count === 1 ? 'polygon' : 'polygons'} ${NOTE_TEXT[note]}.` });
   work.joins.finish(parcels.length);
   if (features.length > 0 && !properties.bound.has('crop'))
     findings.note({ code: 'no-crop-column', message: 'No property holds a crop; the parcels come without plantings.' });
+  warnLarge(work, findings);
+  if (parcels.length > 0) warnFar(work, work.context, work.options, findings);
+  if (work.options.replace === true && !findings.fatal) warnRemoved(parcels, work.refused, work.context, findings);
+  warnOverlaps(work);
+}
+
+function warnOverlaps({ findings, parcels, rows }: Work): void {
   const shapes = parcels.map((parcel) => parcel.geometry);
   const areas = parcels.map((parcel) => parcel.area);
   for (const { first, second, share } of findOverlaps(shapes, areas, { threshold: OVERLAP_LIMIT, limit: OVERLAPS_REPORTED })) {
     findings.warn({
       code: 'parcels-overlap',
-      message: `Parcels ${shown(parcels[first].code)} and ${shown(parcels[second].code)} overlap by ${(share * 100).toPrecision(2)} % of the smaller one.`,
+      message: `Parcels ${shown(parcels[first].code)} and ${shown(parcels[second].code)} overlap by ${overlapText(share)} % of the smaller one.`,
       file: rows[second].file,
       row: rows[second].row,
       value: shown(parcels[second].code),
@@ -221,6 +240,11 @@ function finishNotes(work: Work, properties: BoundProperties, features: readonly
       advice: 'Water would be counted twice on the shared land: correct the outlines.',
     });
   }
+}
+
+/** @example overlapText(0.995) // '100' */
+function overlapText(share: number): string {
+  return String(Number((share * 100).toPrecision(2)));
 }
 
 function boxOfAll(parcels: readonly StagedParcel[]): [number, number, number, number] | null {

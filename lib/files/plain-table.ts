@@ -2,10 +2,11 @@
  * A plain table (stations, plantings, soils): opened, its columns bound, its rows handed out with typed access to their cells.
  */
 import { isoDate } from '../base/civil-date.ts';
+import { counted } from '../base/counted.ts';
 import { openTable, readRows, type TableHead, understoodHead } from './csv.ts';
 import { parseDate, sniffDateOrder } from './date-cell.ts';
 import { FindingList, shown } from './finding-list.ts';
-import { isMissingText, NOT_A_NUMBER, type NumberReader, numberReader } from './number-cell.ts';
+import { isMissingNumber, isMissingText, NOT_A_NUMBER, type NumberReader, numberReader } from './number-cell.ts';
 import {
   type DateOrder,
   type ImportFile,
@@ -24,8 +25,8 @@ export interface PlainRow {
   readonly row: number;
   /** trimmed text, or null when the column or the cell is missing */
   text(role: string): string | null;
-  /** number in the inside unit, or null; outside the limits is a problem */
-  number(role: string, limits: { low: number; high: number; unit: string }): number | null;
+  /** number in the inside unit, or null; outside the limits is a problem, unless customary codes for missing are allowed and it is one */
+  number(role: string, limits: NumberLimits): number | null;
   /** ISO date, or null; a text that is no date is a problem */
   date(role: string): string | null;
   /** marks the row as bad */
@@ -33,6 +34,14 @@ export interface PlainRow {
   /** true while no problem was found */
   readonly good: boolean;
   readonly header: (role: string) => string | undefined;
+}
+
+interface NumberLimits {
+  readonly low: number;
+  readonly high: number;
+  readonly unit: string;
+  /** -9999, -999 … outside the limits count as missing */
+  readonly missingCodes?: boolean;
 }
 
 interface PlainTableRequest {
@@ -48,6 +57,8 @@ export interface PlainTable {
   readonly preview: TablePreviewRows;
   readonly bound: BoundTable['bound'];
   readonly file: string;
+  /** header → code for missing → cells */
+  readonly missing: Map<string, Map<string, number>>;
 }
 
 /** Reads the tables and calls `each` for every row; `finish` makes what is staged from the rows that were kept. */
@@ -113,7 +124,7 @@ async function readOne(
     dateOrder: order,
   };
   if (!requireRoles(roles, bound, file.name, findings)) return { understood, header: head.header };
-  const table: PlainTable = { findings, preview, bound, file: file.name };
+  const table: PlainTable = { findings, preview, bound, file: file.name, missing: new Map() };
   const reader = numberReader(head.decimalComma, options.missingCodes);
   const count = await readRows(
     file,
@@ -132,7 +143,21 @@ async function readOne(
     findings,
   );
   totals.rows += Math.max(0, count);
+  noteMissing(table);
   return { understood, header: head.header };
+}
+
+function noteMissing({ missing, findings, file }: PlainTable): void {
+  for (const [header, codes] of missing) {
+    for (const [text, cells] of codes)
+      findings.note({
+        code: 'missing-value',
+        message: `"${shown(text)}" treated as missing in column "${shown(header)}", ${counted(cells, 'cell', 'cells')}.`,
+        file,
+        column: header,
+        value: shown(text),
+      });
+  }
 }
 
 function dateOrderOf(head: TableHead, options: ImportOptions, bound: BoundTable['bound'], file: string, findings: FindingList): DateOrder {
@@ -148,6 +173,10 @@ function dateOrderOf(head: TableHead, options: ImportOptions, bound: BoundTable[
     advice: 'Choose the date order in the column plan.',
   });
   return 'dmy';
+}
+
+function within(value: number, { low, high }: NumberLimits): boolean {
+  return value >= low && value <= high;
 }
 
 class PlainRowCells implements PlainRow {
@@ -169,7 +198,7 @@ class PlainRowCells implements PlainRow {
     return isMissingText(cell) ? null : cell;
   }
 
-  number(role: string, limits: { low: number; high: number; unit: string }): number | null {
+  number(role: string, limits: NumberLimits): number | null {
     const column = this.table.bound.get(role);
     if (!column) return null;
     const cell = this.cells[column.index];
@@ -185,7 +214,11 @@ class PlainRowCells implements PlainRow {
     }
     if (Number.isNaN(number)) return null;
     const value = column.convert(number);
-    if (value >= limits.low && value <= limits.high) return value;
+    if (limits.missingCodes && isMissingNumber(number) && !(within(number, limits) && within(value, limits))) {
+      this.countMissing(column.header, cell.trim());
+      return null;
+    }
+    if (within(value, limits)) return value;
     const limit = `${limits.low} to ${limits.high} ${limits.unit}`.trim();
     this.fail({
       code: 'value-out-of-range',
@@ -195,6 +228,11 @@ class PlainRowCells implements PlainRow {
       advice: 'Correct the cell, or choose another unit in the column plan.',
     });
     return null;
+  }
+
+  private countMissing(header: string, text: string): void {
+    const codes = this.table.missing.get(header) ?? new Map<string, number>();
+    this.table.missing.set(header, codes.set(text, (codes.get(text) ?? 0) + 1));
   }
 
   date(role: string): string | null {

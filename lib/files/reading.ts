@@ -34,6 +34,12 @@ export interface ImportContext {
   readonly cropMappings: Readonly<Record<string, string | null>>;
   /** bounding box of the district's parcels [west, south, east, north], when it has any */
   readonly districtBox?: readonly [number, number, number, number] | null;
+  /** bounding box of the district's stations [west, south, east, north], when it has any */
+  readonly siteBox?: readonly [number, number, number, number] | null;
+  /** parcel → its plantings in all seasons; parcels without plantings are left out */
+  readonly plantingCounts?: Readonly<Record<string, number>>;
+  /** reach → parcels that name it; reaches without parcels are left out */
+  readonly parcelCounts?: Readonly<Record<string, number>>;
 }
 
 export type DateOrder = 'ymd' | 'dmy' | 'mdy';
@@ -60,7 +66,7 @@ export interface ImportOptions {
   readonly source?: string;
   /** weather: site of a file without a site column */
   readonly site?: string;
-  /** the pipeline's choice to overwrite stored values; readers only carry it */
+  /** parcels and canals: what the district has and the file does not is removed */
   readonly replace?: boolean;
   /** further cell texts that mean missing, e.g. "-99.9" */
   readonly missingCodes?: readonly string[];

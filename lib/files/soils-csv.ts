@@ -1,10 +1,15 @@
 /**
  * Soil classes, one row each, in a delimited file.
  */
-import type { FindingList } from './finding-list.ts';
-import { type PlainRow, readPlainTable } from './plain-table.ts';
+import { counted } from '../base/counted.ts';
+import { codeFault } from './code-text.ts';
+import { type FindingList, shown } from './finding-list.ts';
+import { type PlainRow, type PlainTable, readPlainTable } from './plain-table.ts';
 import type { ImportContext, ImportFile, ImportOptions, ImportReading, Progress, StagedSoil } from './reading.ts';
 import type { TableRole } from './table-columns.ts';
+
+/** Columns of water contents. */
+const WATER_ROLES = ['field_capacity', 'wilting_point'] as const;
 
 /** Depth of the layer that dries by evaporation where the table gives none [m]: FAO-56 chapter 7, 0.10 to 0.15 m. */
 const EVAPORATION_DEPTH = 0.1;
@@ -63,8 +68,9 @@ export async function readSoils(
   const kept = new Map<string, { soil: StagedSoil; row: number }>();
   const derived = { tew: 0, rew: 0 };
   const known = new Set(context.soils);
-  const each = (row: PlainRow) => {
-    const soil = soilOf(row, files[0]?.name ?? 'import', derived);
+  const units = await waterUnits(files, options);
+  const each = (row: PlainRow, { file }: PlainTable) => {
+    const soil = soilOf(row, file, { derived, units });
     if (!soil) return;
     const earlier = kept.get(soil.code);
     if (earlier)
@@ -77,27 +83,36 @@ export async function readSoils(
     kept.set(soil.code, { soil, row: row.row });
   };
   const finish = (findings: FindingList) => {
+    for (const unit of units.values()) noteUnit(unit, findings);
     if (derived.tew > 0)
-      findings.note({ code: 'tew-derived', message: `TEW of ${derived.tew} soils is 1000 (FC − 0.5 WP) Ze (FAO-56 Eq. 73).` });
+      findings.note({
+        code: 'tew-derived',
+        message: `TEW of ${counted(derived.tew, 'soil', 'soils')} is 1000 (FC − 0.5 WP) Ze (FAO-56 Eq. 73).`,
+      });
     if (derived.rew > 0)
-      findings.note({ code: 'rew-derived', message: `REW of ${derived.rew} soils is taken by texture from FAO-56 Table 19.` });
+      findings.note({
+        code: 'rew-derived',
+        message: `REW of ${counted(derived.rew, 'soil', 'soils')} is taken by texture from FAO-56 Table 19.`,
+      });
     const again = [...kept.keys()].filter((code) => known.has(code));
     if (again.length > 0)
       findings.note({
         code: 'soil-replaced',
-        message: `${again.length} soils are known already and will be replaced: ${again.slice(0, 10).join(', ')}.`,
+        message: `${counted(again.length, 'soil is', 'soils are')} known already and will be replaced: ${again.slice(0, 10).join(', ')}.`,
       });
     return { kind: 'soils' as const, soils: findings.fatal ? [] : [...kept.values()].map(({ soil }) => soil) };
   };
   return readPlainTable({ files, options, progress, roles: SOIL_ROLES }, each, finish);
 }
 
-function soilOf(row: PlainRow, source: string, derived: { tew: number; rew: number }): StagedSoil | null {
+function soilOf(row: PlainRow, source: string, { derived, units }: SoilWork): StagedSoil | null {
   const code = row.text('code');
   if (code === null)
     row.fail({ code: 'missing-code', message: 'The row has no soil code.', role: 'code', advice: 'Give the soil a code.' });
-  const fieldCapacity = waterContent(row, 'field_capacity');
-  const wiltingPoint = waterContent(row, 'wilting_point');
+  const fault = code === null ? null : codeFault('Soil', code);
+  if (fault) row.fail({ ...fault, role: 'code' });
+  const fieldCapacity = waterContent(row, 'field_capacity', units.get(`${source} field_capacity`));
+  const wiltingPoint = waterContent(row, 'wilting_point', units.get(`${source} wilting_point`));
   const evaporationDepth = row.number('ze', { low: 0.05, high: 0.3, unit: 'm' }) ?? EVAPORATION_DEPTH;
   const rew = row.number('rew', { low: 0, high: 30, unit: 'mm' });
   const tew = row.number('tew', { low: 1, high: 100, unit: 'mm' });
@@ -142,8 +157,54 @@ function soilOf(row: PlainRow, source: string, derived: { tew: number; rew: numb
   };
 }
 
-/** Water content as a fraction; values above 1 are percent by volume. */
-function waterContent(row: PlainRow, role: string): number | null {
+/** Unit of a column of water contents. */
+interface WaterUnit {
+  readonly file: string;
+  readonly header: string;
+  readonly percent: boolean;
+}
+
+interface SoilWork {
+  readonly derived: { tew: number; rew: number };
+  /** file and role → unit */
+  readonly units: ReadonlyMap<string, WaterUnit>;
+}
+
+/** The unit of each column of water contents, told from all its values: percent by volume when their median is above 1, else fractions. */
+async function waterUnits(files: readonly ImportFile[], options: ImportOptions): Promise<Map<string, WaterUnit>> {
+  const columns = new Map<string, { file: string; header: string; values: number[] }>();
+  const each = (row: PlainRow, { file }: PlainTable) => {
+    for (const role of WATER_ROLES) {
+      const value = row.number(role, { low: 0, high: 100, unit: '' });
+      if (value === null) continue;
+      const key = `${file} ${role}`;
+      const column = columns.get(key) ?? { file, header: row.header(role) ?? role, values: [] };
+      columns.set(key, column);
+      column.values.push(value);
+    }
+  };
+  const nothing = () => ({ kind: 'soils' as const, soils: [] });
+  await readPlainTable({ files, options, progress: () => undefined, roles: SOIL_ROLES }, each, nothing);
+  return new Map([...columns].map(([key, { file, header, values }]) => [key, { file, header, percent: medianOf(values) > 1 }]));
+}
+
+function medianOf(values: readonly number[]): number {
+  const sorted = [...values].sort((a, b) => a - b);
+  const half = sorted.length >> 1;
+  return sorted.length % 2 === 1 ? sorted[half] : (sorted[half - 1] + sorted[half]) / 2;
+}
+
+function noteUnit({ file, header, percent }: WaterUnit, findings: FindingList): void {
+  findings.note({
+    code: 'water-content-unit',
+    message: `Column "${shown(header)}" is read ${percent ? 'in percent by volume: its median is above 1' : 'as fractions (m³ m⁻³): its median is not above 1'}.`,
+    file,
+    column: header,
+  });
+}
+
+/** Water content as a fraction, from a cell in the unit of its column. */
+function waterContent(row: PlainRow, role: string, unit: WaterUnit | undefined): number | null {
   const value = row.number(role, { low: 0, high: 100, unit: '% by volume' });
   if (value === null) {
     if (row.good)
@@ -155,14 +216,14 @@ function waterContent(row: PlainRow, role: string): number | null {
       });
     return null;
   }
-  const fraction = value > 1 ? value / 100 : value;
-  if (fraction > 0 && fraction < 0.9) return round(fraction);
+  const percent = unit?.percent === true;
+  if (percent ? value >= 1 && value < 90 : value > 0 && value < 0.9) return round(percent ? value / 100 : value);
   row.fail({
     code: 'value-out-of-range',
-    message: `${role.replace('_', ' ')} ${value} is not a water content.`,
+    message: `${role.replace('_', ' ')} ${value} does not fit its column, which is read ${percent ? 'in percent by volume' : 'as fractions'}.`,
     role,
-    limit: '0 to 0.9 m³ m⁻³',
-    advice: 'Give it as a fraction or in percent by volume.',
+    limit: percent ? '1 to 90 % by volume' : '0 to 0.9 m³ m⁻³',
+    advice: 'Write the whole column as fractions, or the whole column in percent by volume.',
   });
   return null;
 }

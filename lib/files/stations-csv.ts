@@ -1,7 +1,9 @@
 /**
  * Weather stations, one row each, in a delimited file. A table that repeats its stations row by row (weather with coordinates) gives each once.
  */
+import { counted } from '../base/counted.ts';
 import { geodesicDistance } from '../geo/geodesic.ts';
+import { codeFault } from './code-text.ts';
 import type { FindingList } from './finding-list.ts';
 import { type PlainRow, type PlainTable, readPlainTable } from './plain-table.ts';
 import type { ImportContext, ImportFile, ImportOptions, ImportReading, Progress, StagedSite } from './reading.ts';
@@ -78,10 +80,12 @@ function stationOf(row: PlainRow, options: ImportOptions): StagedSite | null {
   const code = row.text('code');
   if (code === null)
     row.fail({ code: 'missing-code', message: 'The row has no station code.', role: 'code', advice: 'Give the station a code.' });
+  const fault = code === null ? null : codeFault('Station', code);
+  if (fault) row.fail({ ...fault, role: 'code' });
   const latitude = row.number('latitude', { low: -90, high: 90, unit: '°' });
   const longitude = row.number('longitude', { low: -180, high: 360, unit: '°' });
-  const elevation = row.number('elevation', { low: -450, high: 9000, unit: 'm' });
-  const windHeight = row.number('wind_height', { low: 0.5, high: 200, unit: 'm' });
+  const elevation = row.number('elevation', { low: -450, high: 9000, unit: 'm', missingCodes: true });
+  const windHeight = row.number('wind_height', { low: 0.5, high: 200, unit: 'm', missingCodes: true });
   if (row.good && (latitude === null || longitude === null)) {
     row.fail({
       code: 'missing-coordinates',
@@ -122,13 +126,13 @@ function noteStations(sites: readonly StagedSite[], repeated: number, context: I
   if (repeated > 0)
     findings.note({
       code: 'repeated-stations',
-      message: `${repeated} rows repeat a station of an earlier row; each station is taken once.`,
+      message: `${counted(repeated, 'row repeats', 'rows repeat')} a station of an earlier row; each station is taken once.`,
     });
   const noElevation = sites.filter((site) => site.elevation === null);
   if (noElevation.length > 0) {
     findings.warn({
       code: 'no-elevation',
-      message: `${noElevation.length} stations have no elevation (${codes(noElevation)}); the district's elevation will be assumed.`,
+      message: `${counted(noElevation.length, 'station has', 'stations have')} no elevation (${codes(noElevation)}); the district's elevation will be assumed.`,
       advice: 'Add a column "elevation".',
     });
   }
@@ -136,7 +140,7 @@ function noteStations(sites: readonly StagedSite[], repeated: number, context: I
   if (noHeight.length > 0) {
     findings.warn({
       code: 'no-wind-height',
-      message: `${noHeight.length} stations have no wind height (${codes(noHeight)}); wind will be taken as measured at ${ASSUMED_WIND_HEIGHT} m.`,
+      message: `${counted(noHeight.length, 'station has', 'stations have')} no wind height (${codes(noHeight)}); wind will be taken as measured at ${ASSUMED_WIND_HEIGHT} m.`,
       advice: 'Add a column "wind_height", or set one height in the options. Many networks measure at 10 m.',
     });
   }

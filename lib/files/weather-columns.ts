@@ -3,6 +3,7 @@
  */
 import { WEATHER_VARIABLES, type WeatherVariable } from '../weather/variable.ts';
 import type { TableHead } from './csv.ts';
+import { parseDate } from './date-cell.ts';
 import { type FindingList, shown } from './finding-list.ts';
 import { NOT_A_NUMBER, numberReader } from './number-cell.ts';
 import type { DateOrder, ImportContext, ImportOptions, UnderstoodColumn } from './reading.ts';
@@ -81,7 +82,7 @@ export function isWeatherHeader(header: string): boolean {
 
 /** Gives every column its role and unit; null after a file-level finding. */
 export function bindWeatherColumns(request: ColumnRequest, findings: FindingList): WeatherColumns | UnusableColumns {
-  const assigned = assignRoles(request, findings);
+  const assigned = withDayAsDate(assignRoles(request, findings), request.head);
   const find = (role: WeatherRole) => assigned.find((column) => column.role === role)?.index ?? -1;
   const date = dateColumns(find, request, findings);
   const unusable = (): UnusableColumns => ({ columns: describeColumns(assigned, [], request), date: null, dateOrder: null });
@@ -98,6 +99,17 @@ export function bindWeatherColumns(request: ColumnRequest, findings: FindingList
     return unusable();
   }
   return { columns: describeColumns(assigned, values, request), site: find('site'), date, dateOrder, values };
+}
+
+/** A column headed "day" whose cells are full dates is the date, unless another column is. */
+function withDayAsDate(assigned: Assigned[], { sample }: ColumnRequest['head']): Assigned[] {
+  if (assigned.some(({ role }) => role === 'date')) return assigned;
+  return assigned.map((column) => {
+    if (column.role !== 'day' || column.planned) return column;
+    const cells = sample.map((row) => row[column.index]?.trim() ?? '').filter((cell) => cell !== '');
+    const dates = cells.filter((cell) => parseDate(cell, 'dmy') ?? parseDate(cell, 'mdy'));
+    return dates.length > cells.length / 2 ? { ...column, role: 'date' } : column;
+  });
 }
 
 function assignRoles({ head, options, file }: ColumnRequest, findings: FindingList): Assigned[] {

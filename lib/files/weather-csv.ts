@@ -2,6 +2,7 @@
  * Daily weather of stations, one row per site and day, in one or more delimited files → monthly blocks in the units of the product.
  */
 import { type DayNumber, dayNumberOf, isLeapYear, isoDate } from '../base/civil-date.ts';
+import { counted } from '../base/counted.ts';
 import { openTable, readRows, type TableHead, type TableRow, understoodHead } from './csv.ts';
 import { type DateReading, dayFromParts, parseDate, YEAR_LIMITS } from './date-cell.ts';
 import { FindingList, shown } from './finding-list.ts';
@@ -104,7 +105,7 @@ function finishNotes(reading: Reading): void {
   if (reading.outOfOrder > 0) {
     findings.note({
       code: 'rows-not-in-order',
-      message: `${reading.outOfOrder} rows step back in time; rows may come in any order, each is stored under its own date.`,
+      message: `${counted(reading.outOfOrder, 'row steps', 'rows step')} back in time; rows may come in any order, each is stored under its own date.`,
     });
   }
   noteDays(store, sites.codes(), findings);
@@ -146,7 +147,7 @@ function checkSite(columns: WeatherColumns, file: ImportFile, { options, context
   }
   findings.refuse({
     code: 'missing-column',
-    message: `The file has no site column, and ${context.knownSites.length} sites are known.`,
+    message: `The file has no site column, and ${counted(context.knownSites.length, 'site is', 'sites are')} known.`,
     file: file.name,
     column: 'site',
     advice: context.knownSites.length === 0 ? 'Import stations first.' : 'Add a site column, or name the site in the options.',

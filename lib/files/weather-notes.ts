@@ -22,7 +22,7 @@ export function noteMissing(counts: RowCounts, columns: readonly ValueColumn[], 
       const what = text === '' ? 'Empty cells' : `"${shown(text)}"`;
       findings.note({
         code: 'missing-value',
-        message: `${what} treated as missing in column "${shown(header)}", ${cells} cells.`,
+        message: `${what} treated as missing in column "${shown(header)}", ${counted(cells, 'cell', 'cells')}.`,
         file,
         column: header,
         value: shown(text),
@@ -30,7 +30,11 @@ export function noteMissing(counts: RowCounts, columns: readonly ValueColumn[], 
     }
   }
   if (counts.traceRain > 0)
-    findings.note({ code: 'trace-rain', message: `${counts.traceRain} cells with a trace of rain are read as 0 mm.`, file });
+    findings.note({
+      code: 'trace-rain',
+      message: `${counted(counts.traceRain, 'cell with a trace of rain is', 'cells with a trace of rain are')} read as 0 mm.`,
+      file,
+    });
 }
 
 /** Sites that are not known: one error with the codes and the rows left out. */
@@ -114,7 +118,7 @@ export function noteDays(store: WeatherStore, codes: readonly string[], findings
   const more = gaps.length > LISTED ? ` and ${gaps.length - LISTED} more` : '';
   findings.note({
     code: 'missing-days',
-    message: `${missing} days are absent between the first and last day of ${gaps.length} sites: ${gaps.slice(0, LISTED).join(', ')}${more}.`,
+    message: `${counted(missing, 'day is', 'days are')} absent between the first and last day of ${counted(gaps.length, 'site', 'sites')}: ${gaps.slice(0, LISTED).join(', ')}${more}.`,
   });
 }
 

@@ -9,7 +9,16 @@ import { changeImport, findImport, holdDistrict, type ImportRow, type ImportStat
 import { database } from '../access/database.ts';
 import { Refused, TillwaterError } from '../base/errors.ts';
 import { type ApplyCounts, countsChanged, type Touched } from './import-counts.ts';
-import { applyCropMappings, applyPlantings, applyReaches, applySoils, applyTurnouts, checkTree, ParcelWriter } from './import-land.ts';
+import {
+  applyCropMappings,
+  applyPlantings,
+  applyReaches,
+  applySoils,
+  applyTurnouts,
+  checkTree,
+  ParcelWriter,
+  removeAbsentReaches,
+} from './import-land.ts';
 import { refuseDangling } from './import-references.ts';
 import { seasonsTouched, startImportRuns } from './import-runs.ts';
 import { findStagedHead, type StagedHead, type StagedPart, stagedParts } from './import-staged.ts';
@@ -86,6 +95,7 @@ class Applier {
   private readonly counts: ApplyCounts = {};
   private readonly months = new Set<string>();
   private readonly seasons = new Set<string>();
+  private readonly reaches = new Set<string>();
   private parcels: ParcelWriter | null = null;
   private lastProgress = 0;
 
@@ -130,6 +140,7 @@ class Applier {
         for (const planting of part.items) this.seasons.add(planting.seasonCode);
         return this.count('plantings', await applyPlantings(tx, own, part.items));
       case 'reaches':
+        for (const reach of part.items) this.reaches.add(reach.code);
         return this.count('reaches', await applyReaches(tx, own, part.items));
       case 'soils':
         return this.count('soils', await applySoils(tx, own, part.items));
@@ -140,6 +151,7 @@ class Applier {
     const { tx, own } = this;
     const replace = (this.row.options as { replace?: unknown }).replace === true;
     if (replace && this.parcels) this.counts.parcels_removed = await this.parcels.removeAbsent(tx, own);
+    if (replace && this.reaches.size > 0) this.counts.reaches_removed = await removeAbsentReaches(tx, own, this.reaches);
     if (this.head.kind === 'canals') await checkTree(tx, own.districtId);
     const land = this.head.kind === 'parcels' || this.head.kind === 'canals';
     if (land && countsChanged(this.counts)) await countGeometryUp(tx, own.districtId);

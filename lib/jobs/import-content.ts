@@ -49,7 +49,7 @@ function checkFile(kind: ImportKind, file: ImportFile): void {
   const seen = kindOfContent(file.bytes);
   if (seen === wanted) return;
   throw new UnknownKind(
-    `"${file.name}" is ${seen === 'csv' || seen === 'geojson' ? ACCEPTED_TEXT[seen] : seen}; ${kind} are read from ${ACCEPTED_TEXT[wanted]}.`,
+    `"${file.name}" is ${seen === 'csv' || seen === 'geojson' ? ACCEPTED_TEXT[seen] : seen}; ${kind} ${kind === 'weather' ? 'is' : 'are'} read from ${ACCEPTED_TEXT[wanted]}.`,
   );
 }
 

@@ -1,7 +1,16 @@
 /** Applying parcels, plantings, canals and soils. */
 import type { Tx } from '../../db/connect.ts';
 import { type ImportKey, type RowChanges, removeRows, replaceRows } from '../../db/queries/import-before.ts';
-import { listPlantingKeys, listTreeNodes, mapStoredParcels, mapTurnouts, nextParcelOrdinal } from '../../db/queries/import-land.ts';
+import {
+  listPlantingKeys,
+  listReachUsers,
+  listTreeNodes,
+  mapStoredParcels,
+  mapTurnouts,
+  nextParcelOrdinal,
+} from '../../db/queries/import-land.ts';
+import { counted } from '../base/counted.ts';
+import { Refused } from '../base/errors.ts';
 import { checkLossRule } from '../canal/loss-rule.ts';
 import { buildTree } from '../canal/tree.ts';
 import type { StagedParcel, StagedPlanting, StagedReach, StagedSoil, StagedTurnout } from '../files/reading.ts';
@@ -127,6 +136,40 @@ export function applyReaches(tx: Tx, own: ImportKey, reaches: readonly StagedRea
     };
   });
   return replaceRows(tx, own, 'reach', rows);
+}
+
+/** Most codes named in a refusal. */
+const NAMED = 8;
+
+/**
+ * Removes the reaches that the file did not have.
+ *
+ * @throws Refused naming the turnouts and parcels that still name one of them
+ */
+export async function removeAbsentReaches(tx: Tx, own: ImportKey, kept: ReadonlySet<string>): Promise<number> {
+  const absent = (await listTreeNodes(tx, own.districtId)).map(({ code }) => code).filter((code) => !kept.has(code));
+  if (absent.length === 0) return 0;
+  const { turnouts, parcels } = await listReachUsers(tx, own.districtId, absent);
+  if (turnouts.length + parcels.length > 0) {
+    const users = [
+      ...(turnouts.length > 0 ? [`${counted(turnouts.length, 'turnout', 'turnouts')} (${named(turnouts)})`] : []),
+      ...(parcels.length > 0 ? [`${counted(parcels.length, 'parcel', 'parcels')} (${named(parcels)})`] : []),
+    ].join(' and ');
+    throw new Refused(
+      `Replacing the canals would remove reaches that ${users} still name. Move them to reaches of the file first, or add those reaches to the file.`,
+    );
+  }
+  return removeRows(
+    tx,
+    own,
+    'reach',
+    absent.map((code) => ({ code })),
+  );
+}
+
+function named(users: readonly { code: string; reachCode: string | null }[]): string {
+  const list = users.slice(0, NAMED).map(({ code, reachCode }) => `${code} on ${reachCode}`);
+  return `${list.join(', ')}${users.length > NAMED ? ' …' : ''}`;
 }
 
 /** Proves that the reaches as they now stand are one tree. @throws TreeError naming the codes at fault */

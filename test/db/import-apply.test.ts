@@ -78,6 +78,10 @@ const KINDS: Record<string, { staged: StagedImport; options?: Record<string, unk
   },
   'parcels that replace all': { staged: parcels([parcel('0010')]), options: { replace: true } },
   canals: { staged: { kind: 'canals', reaches: [reach('L1', 'main'), { ...reach('L2', 'L1'), capacity: null }] } },
+  'canals that replace all': {
+    staged: { kind: 'canals', reaches: [reach('L1', null), { ...reach('L2', 'L1'), capacity: null }] },
+    options: { replace: true },
+  },
   plantings: { staged: { kind: 'plantings', plantings: [planting('8', 1, '2023-03-20'), planting('8', 2, '2023-08-01')] } },
   soils: {
     staged: {
@@ -238,6 +242,28 @@ describe('parcels', () => {
     expect(await rowsOf(districtId, 'select count(*)::int as n from planting')).toEqual([{ n: 4600 }]);
     await undo(own);
     expect(await rowsOf(districtId, 'select count(*)::int as n from planting')).toEqual([{ n: 0 }]);
+  });
+});
+
+describe('canals that replace all', () => {
+  it('removes the reaches that the file does not have', async () => {
+    const districtId = await newDistrict();
+    await apply(districtId, { kind: 'canals', reaches: [reach('main', null), reach('L1', 'main'), reach('L2', 'L1')] });
+    const own = await apply(districtId, { kind: 'canals', reaches: [reach('L2', null)] }, { replace: true });
+    const { state, understood } = await stateOf(own);
+    expect(state).toBe('applied');
+    expect(understood.applied).toMatchObject({ reaches_added: 0, reaches_changed: 1, reaches_removed: 2 });
+    expect(await rowsOf(districtId, 'select code, parent_code from reach')).toEqual([{ code: 'L2', parent_code: null }]);
+  });
+
+  it('refuses while turnouts and parcels stand on a removed reach, naming them', async () => {
+    const districtId = await settledDistrict();
+    const before = await dumpTables(districtId);
+    const own = await apply(districtId, { kind: 'canals', reaches: [reach('main', null)] }, { replace: true });
+    const { state, error } = await stateOf(own);
+    expect(state).toBe('failed');
+    expect(error).toContain('1 turnout (T1 on L1) and 1 parcel (0007 on L1) still name');
+    expect(await dumpTables(districtId)).toEqual(before);
   });
 });
 

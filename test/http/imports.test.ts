@@ -154,6 +154,47 @@ describe('the whole way', () => {
     expect(lines).toHaveLength(1 + ready.findings.length);
   });
 
+  it('tells before replacing what it would remove: parcels with their plantings, reaches that parcels still name', async () => {
+    const geojson = (type: string, features: [object, unknown][]) =>
+      JSON.stringify({
+        type: 'FeatureCollection',
+        features: features.map(([properties, coordinates]) => ({ type: 'Feature', properties, geometry: { type, coordinates } })),
+      });
+    const square = (x: number) => [
+      [
+        [x, 45],
+        [x + 0.01, 45],
+        [x + 0.01, 45.01],
+        [x, 45.01],
+        [x, 45],
+      ],
+    ];
+    const line = (code: string, parent: string | null, x: number): [object, unknown] => [
+      { reach: code, parent },
+      [
+        [x, 45],
+        [x + 0.01, 45],
+      ],
+    ];
+    const parcel = (code: string, x: number): [object, unknown] => [{ parcel: code, crop: 'maize', reach: 'L1' }, square(x)];
+    const canals = { 'c.geojson': geojson('LineString', [line('main', null, -120), line('L1', 'main', -119.99)]) };
+    expect((await applied('canals', canals)).state).toBe('applied');
+    const land = { 'p.geojson': geojson('Polygon', [parcel('a', -120), parcel('b', -119.9), parcel('c', -119.8)]) };
+    expect((await applied('parcels', land, { season: '2023' })).state).toBe('applied');
+
+    const parcels = await read('parcels', { 'p.geojson': geojson('Polygon', [parcel('a', -120)]) }, { season: '2023', replace: true });
+    expect(parcels.findings.find(({ code }) => code === 'parcels-removed')).toMatchObject({
+      severity: 'warning',
+      message: 'Replacing the parcels removes 2 parcels and 2 plantings: b, c.',
+    });
+    const one = await read('canals', { 'c.geojson': geojson('LineString', [line('main', null, -120)]) }, { replace: true });
+    expect(one.findings.filter(({ severity }) => severity === 'error')).toMatchObject([
+      { code: 'removed-reach-in-use', message: 'Parcels name reaches that would be removed: 3 parcels on L1.' },
+    ]);
+    const second = await read('canals', { 'c.geojson': geojson('LineString', [line('other', null, -120)]) });
+    expect(second.findings.filter(({ severity }) => severity === 'error')).toMatchObject([{ code: 'several-heads' }]);
+  });
+
   it('survives characters that the database cannot hold', async () => {
     const ready = await read('stations', { 'odd\u0000name.csv': `${STATIONS}"0\u000b8",Name \ud800,95,-120,1\n` });
     expect(ready.state).toBe('ready');
@@ -171,7 +212,7 @@ describe('refusals', () => {
     const zip = new Uint8Array([0x50, 0x4b, 3, 4, 20, 0, 0, 0]);
     expect(await problem(await upload('weather', { 'w.xlsx': zip }))).toMatchObject({
       status: 415,
-      detail: expect.stringMatching(/w\.xlsx.*spreadsheet.*CSV/),
+      detail: expect.stringMatching(/w\.xlsx.*spreadsheet; weather is read from.*CSV/),
     });
     expect(await problem(await upload('parcels', { 'p.csv': 'a,b\n1,2\n' }))).toMatchObject({
       status: 415,

@@ -56,6 +56,7 @@ describe('border units', () => {
     ['mean_inflow_m3_s', 'mean_inflow_cfs', 0.028316846592, 1],
     ['area_ha', 'area_ac', 0.40468564224, 1],
     ['elevation_m', 'elevation_ft', 0.3048, 1],
+    ['length_km', 'length_mi', 1.609344, 1],
     ['wind_speed_2m_m_s', 'wind_speed_2m_mph', 0.44704, 1],
     ['air_temperature_max_c', 'air_temperature_max_f', 100, 212],
   ])('%s becomes %s', (name, us, metric, expected) => {
@@ -72,7 +73,7 @@ describe('border units', () => {
     'specific_humidity_kg_kg',
     'vapour_pressure_kpa',
     'code',
-    'length_km',
+    'fraction_per_km',
   ])('leaves %s as it is', (name) => {
     expect(nameIn('us', name)).toBe(name);
     expect(valueIn('us', name, 0.25)).toBe(0.25);
@@ -89,5 +90,14 @@ describe('border units', () => {
       settings: { depth_mm: 1 },
       flow_cfs: [[1, null]],
     });
+  });
+
+  it('leaves counts and shares that are named after quantities', () => {
+    const answer = {
+      coverage_days: { precipitation_mm: 30, air_temperature_max_c: 0 },
+      fallback_shares: { depth_mm: 0.5 },
+      loss_rule: { kind: 'seepage', depth_mm: 3 },
+    };
+    expect(answerIn('us', { items: [answer] })).toEqual({ items: [answer] });
   });
 });

@@ -94,6 +94,68 @@ describe('parcels', () => {
     expect(reading.findings.find(({ code }) => code === 'parcels-overlap')?.message).toContain('overlap by 50 %');
   });
 
+  test('two of one outline overlap by 100 %', async () => {
+    const reading = await parcels(featureFile([polygon({ parcel: 'a' }, square(10, 45)), polygon({ parcel: 'b' }, square(10, 45))]));
+    expect(reading.findings.find(({ code }) => code === 'parcels-overlap')?.message).toContain('overlap by 100 %');
+  });
+
+  test('replacing tells how many parcels and plantings it removes', async () => {
+    const file = featureFile([polygon({ parcel: 'a' }, square(10, 45)), feature({ parcel: 'bad' }, 'Polygon', [[[0, 0]]])]);
+    const over = { knownParcels: ['a', 'bad', 'old', 'older'], plantingCounts: { a: 4, old: 2, older: 1 } };
+    const replacing = await parcels(file, { replace: true }, over);
+    expect(replacing.findings.filter(({ code }) => code === 'parcels-removed')).toMatchObject([
+      {
+        severity: 'warning',
+        message:
+          'Replacing the parcels removes 3 parcels and 3 plantings: bad, old, older. 1 of them stands in the file but could not be read: bad.',
+      },
+    ]);
+    expect(codes(await parcels(file, {}, over), 'warning')).not.toContain('parcels-removed');
+    expect(codes(await parcels(file, { replace: true }, { knownParcels: ['a'] }), 'warning')).not.toContain('parcels-removed');
+  });
+
+  test('codes that are too long or read as a folder are refused', async () => {
+    const names = ['a', 'x'.repeat(101), 'y'.repeat(100), '.'];
+    const reading = await parcels(featureFile(names.map((parcel, i) => polygon({ parcel }, square(i, 45)))));
+    expect(reading.parcels.map(({ code }) => code)).toEqual(['a', 'y'.repeat(100)]);
+    expect(reading.findings.filter(({ severity }) => severity === 'error')).toMatchObject([
+      { code: 'code-too-long', row: 2, limit: 'at most 100 characters' },
+      { code: 'bad-code', row: 4, value: '.' },
+    ]);
+  });
+
+  test('a turnout code that is too long is refused, its parcel kept', async () => {
+    const reading = await parcels(featureFile([polygon({ parcel: 'a', turnout: 'T'.repeat(101), reach: 'L1' }, square(0, 45))]));
+    expect(reading.parcels[0]).toMatchObject({ turnoutCode: null, reachCode: 'L1' });
+    expect(reading.turnouts).toEqual([]);
+    expect(reading.findings[0]).toMatchObject({ severity: 'error', code: 'code-too-long', column: 'turnout' });
+  });
+
+  test('a parcel above 5,000 ha is a warning', async () => {
+    // a hundredth of a degree squared at the equator is 123 ha (Snyder 1987, as above): 0.06° gives 4 431 ha, 0.07° gives 6 031 ha
+    const reading = await parcels(
+      featureFile([polygon({ parcel: 'fits' }, square(0, 0, 0.06)), polygon({ parcel: 'large' }, square(1, 0, 0.07))]),
+    );
+    expect(reading.findings.filter(({ code }) => code === 'parcel-large')).toMatchObject([
+      { severity: 'warning', value: 'large', limit: '5000 ha', row: 2 },
+    ]);
+    expect(reading.parcels).toHaveLength(2);
+  });
+
+  test('a parcel more than 500 km from the district is a warning', async () => {
+    // a degree of the WGS 84 equator is 111.319 km: 4° is 445 km, 5° is 557 km
+    const file = featureFile([polygon({ parcel: 'near' }, square(4, 0)), polygon({ parcel: 'far' }, square(5, 0))]);
+    const far = { code: 'parcel-far-away', severity: 'warning', value: expect.stringContaining('5.0'), row: 2, limit: '500 km' };
+    const found = async (over: Partial<ImportContext>, options: ImportOptions = {}) =>
+      (await parcels(file, options, over)).findings.filter(({ code }) => code === 'parcel-far-away');
+    expect(await found({ districtBox: [-1, -1, 0, 1] })).toMatchObject([far]);
+    expect(await found({ siteBox: [-1, -1, 0, 1] })).toMatchObject([far]);
+    expect(await found({ districtBox: [-1, -1, 0, 1], siteBox: [5, 0, 6, 1] })).toEqual([]);
+    expect(await found({ districtBox: [-1, -1, 0, 1] }, { replace: true })).toEqual([]);
+    const alone = await parcels(featureFile([0, 1, 2, 9].map((x) => polygon({ parcel: `p${x}` }, square(x, 0)))));
+    expect(alone.findings.filter(({ code }) => code === 'parcel-far-away')).toMatchObject([{ row: 4 }]);
+  });
+
   test('unknown reaches are told once the district has canals', async () => {
     const file = featureFile([polygon({ parcel: 'a', reach: 'L9' }, square(10, 45))]);
     expect((await parcels(file)).parcels[0].reachCode).toBe('L9');
@@ -195,6 +257,10 @@ describe('files that are refused', () => {
       expect(reading.parcels).toEqual([]);
     });
   }
+
+  test('a file without a type says so', async () => {
+    expect((await parcels(textFile('{"features":[]}', 'x.geojson'))).findings[0].message).toContain('The file has no type member');
+  });
 
   test('another coordinate system is refused by its name; CRS84 is not', async () => {
     const crs = (name: string) => ({ crs: { type: 'name', properties: { name } } });

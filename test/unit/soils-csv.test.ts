@@ -9,10 +9,10 @@ async function soils(text: string) {
 }
 
 describe('a table of soils', () => {
-  test('percent and fraction, TEW by FAO-56 Eq. 73, REW by texture', async () => {
+  test('percent, TEW by FAO-56 Eq. 73, REW by texture', async () => {
     // FAO-56 Example 35: sandy loam θFC 0.23, θWP 0.10, Ze 0.1 m has TEW 18 mm and REW 8 mm
     const { soils: rows, findings } = await soils(
-      'code,name,field_capacity,wilting_point,rew,tew,ze_m,curve_number,root_limit_m\nsl,Sandy loam,23,10,,,0.1,70,\nlo,Loam,0.25,0.12,9,20,,,1.2\n',
+      'code,name,field_capacity,wilting_point,rew,tew,ze_m,curve_number,root_limit_m\nsl,Sandy loam,23,10,,,0.1,70,\nlo,Loam,25,12,9,20,,,1.2\n',
     );
     expect(rows[0]).toMatchObject({
       code: 'sl',
@@ -30,7 +30,38 @@ describe('a table of soils', () => {
       evaporationDepth: 0.1,
       rootLimit: 1.2,
     });
-    expect(findings.map(({ code }) => code)).toEqual(['tew-derived', 'rew-derived']);
+    expect(findings.map(({ code }) => code)).toEqual(['water-content-unit', 'water-content-unit', 'tew-derived', 'rew-derived']);
+  });
+
+  test('the unit of water contents is that of the column; a cell of the other is refused', async () => {
+    const percent = await soils('code,fc,wp\na,23,10\nb,0.25,12\nc,36,0.2\nd,30,15\n');
+    expect(percent.soils.map(({ code, fieldCapacity, wiltingPoint }) => [code, fieldCapacity, wiltingPoint])).toEqual([
+      ['a', 0.23, 0.1],
+      ['d', 0.3, 0.15],
+    ]);
+    expect(percent.findings.filter(({ severity }) => severity === 'error')).toMatchObject([
+      { code: 'value-out-of-range', row: 3, column: 'fc', value: '0.25' },
+      { code: 'value-out-of-range', row: 4, column: 'wp', value: '0.2' },
+    ]);
+    expect(percent.findings.find(({ code }) => code === 'water-content-unit')).toMatchObject({
+      severity: 'note',
+      message: 'Column "fc" is read in percent by volume: its median is above 1.',
+    });
+    const fraction = await soils('code,fc,wp\na,0.23,0.1\nb,25,0.12\nc,0.36,0.2\n');
+    expect(fraction.soils.map(({ code, fieldCapacity }) => [code, fieldCapacity])).toEqual([
+      ['a', 0.23],
+      ['c', 0.36],
+    ]);
+    expect(fraction.findings.filter(({ severity }) => severity === 'error')).toMatchObject([{ row: 3, column: 'fc', value: '25' }]);
+  });
+
+  test('codes that are too long or read as a folder are refused', async () => {
+    const reading = await soils(`code,fc,wp\n..,0.3,0.1\n${'x'.repeat(101)},0.3,0.1\n${'y'.repeat(100)},0.3,0.1\n`);
+    expect(reading.soils.map(({ code }) => code)).toEqual(['y'.repeat(100)]);
+    expect(reading.findings.filter(({ severity }) => severity === 'error')).toMatchObject([
+      { code: 'bad-code', row: 2 },
+      { code: 'code-too-long', row: 3, limit: 'at most 100 characters' },
+    ]);
   });
 
   test('defaults lie in the ranges of FAO-56 Table 19', () => {

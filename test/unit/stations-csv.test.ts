@@ -49,6 +49,37 @@ describe('a table of stations', () => {
     expect(reading.findings).toMatchObject([{ code: 'station-far-away', advice: 'West longitudes are negative: change the sign.' }]);
   });
 
+  test('codes for missing in elevation and wind height leave them empty, with a note', async () => {
+    const reading = await stations(
+      'site,lat,lon,elevation_m,wind_height_m\na,37,-120,-9999,-999\nb,37,-120,-9999.0,2\nc,37,-120,-30,999\n',
+    );
+    expect(reading.sites.map(({ code, elevation, windHeight }) => [code, elevation, windHeight])).toEqual([
+      ['a', null, null],
+      ['b', null, 2],
+      ['c', -30, null],
+    ]);
+    expect(reading.findingCounts.error).toBe(0);
+    expect(reading.findings.filter(({ code }) => code === 'missing-value')).toMatchObject([
+      { severity: 'note', message: '"-9999" treated as missing in column "elevation_m", 1 cell.' },
+      { severity: 'note', message: '"-9999.0" treated as missing in column "elevation_m", 1 cell.' },
+      { severity: 'note', message: '"-999" treated as missing in column "wind_height_m", 1 cell.' },
+      { severity: 'note', message: '"999" treated as missing in column "wind_height_m", 1 cell.' },
+    ]);
+    const one = await stations('site,lat,lon\na,37,-120\n');
+    expect(one.findings.map(({ message }) => message.slice(0, 14))).toEqual(['1 station has ', '1 station has ']);
+    // -999 ft would be a place 304 m below the sea, but is the code
+    expect((await stations('site,lat,lon,elevation_ft\na,37,-120,-999\n')).sites[0].elevation).toBeNull();
+  });
+
+  test('codes that are too long or read as a folder are refused', async () => {
+    const reading = await stations(`site,lat,lon\n.,37,-120\n${'x'.repeat(101)},37,-120\n${'y'.repeat(100)},37,-120\n`);
+    expect(reading.sites.map(({ code }) => code)).toEqual(['y'.repeat(100)]);
+    expect(reading.findings.filter(({ severity }) => severity === 'error')).toMatchObject([
+      { code: 'bad-code', row: 2, value: '.' },
+      { code: 'code-too-long', row: 3, limit: 'at most 100 characters' },
+    ]);
+  });
+
   test('without coordinates the file is refused', async () => {
     const reading = await stations('site,name\na,b\n');
     expect(codes(reading)).toEqual(['missing-column', 'missing-column']);

@@ -43,6 +43,17 @@ describe('a table of weather', () => {
     expect(reading.staged).toMatchObject({ source: 'w', rows: 2, sites: 1 });
   });
 
+  test('a column headed "day" whose cells are full dates is the date', async () => {
+    const reading = await weather('Station,Day,tmax_c\nB,2024-02-28,20\nB,2024-02-29,21\n');
+    expect(reading.findingCounts.error).toBe(0);
+    expect(value(reading, 'air_temperature_max_c', 'B', '2024-02-29')).toBe(21);
+    expect(reading.understood.columns[1]).toMatchObject({ header: 'Day', role: 'date' });
+    const american = await weather('site,day,tmax_c\nB,2/28/2024,20\nB,2/29/2024,21\n');
+    expect(value(american, 'air_temperature_max_c', 'B', '2024-02-29')).toBe(21);
+    const parts = await weather('site,year,month,day,tmax_c\nB,2024,2,28,20\n');
+    expect(value(parts, 'air_temperature_max_c', 'B', '2024-02-28')).toBe(20);
+  });
+
   test('blocks have a value per day of the month and sorted sites', async () => {
     const reading = await weather('site,date,tmax_c\nB,2024-02-03,9\n04127,2024-02-01,8\n');
     expect(reading.staged.kind === 'weather' && reading.staged.blocks).toEqual([
@@ -71,9 +82,9 @@ describe('a table of weather', () => {
     );
     expect(reading.findingCounts.error).toBe(0);
     const notes = reading.findings.filter((finding) => finding.code === 'missing-value').map((finding) => finding.message);
-    expect(notes).toContain('"-9999" treated as missing in column "tmax_c", 1 cells.');
-    expect(notes).toContain('"999" treated as missing in column "rain_mm", 1 cells.');
-    expect(notes).toContain('Empty cells treated as missing in column "rain_mm", 1 cells.');
+    expect(notes).toContain('"-9999" treated as missing in column "tmax_c", 1 cell.');
+    expect(notes).toContain('"999" treated as missing in column "rain_mm", 1 cell.');
+    expect(notes).toContain('Empty cells treated as missing in column "rain_mm", 1 cell.');
     expect(value(reading, 'precipitation_mm', 'B', '2024-01-02')).toBeNull();
   });
 

@@ -28,7 +28,7 @@ export const importOptions = z
       .nullable()
       .optional()
       .meta({ description: 'anemometer height in metres of stations that bring none' }),
-    replace: z.boolean().nullable().optional().meta({ description: 'parcels: remove parcels that the file does not have' }),
+    replace: z.boolean().nullable().optional().meta({ description: 'parcels and canals: remove those that the file does not have' }),
     recompute: z.boolean().nullable().optional().meta({ description: 'false: applying starts no run; true unless said' }),
     cropMappings: z
       .record(z.string(), z.string().nullable())
