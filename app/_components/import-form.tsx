@@ -194,15 +194,15 @@ function KindOptions({ kind, seasons, sources }: ImportFormProps & { kind: Impor
           </datalist>
         </div>
       ) : null}
-      {kind.kind === 'parcels' ? (
+      {kind.kind === 'parcels' || kind.kind === 'canals' ? (
         <label className="check">
           <input type="checkbox" name="replace" />
-          Remove parcels that these files do not have
+          Remove {kind.kind === 'parcels' ? 'parcels' : 'reaches'} that these files do not have
         </label>
       ) : null}
       <label className="check">
         <input type="checkbox" name="recompute" defaultChecked />
-        Compute the seasons anew after applying
+        Compute the seasons anew after applying, with the settings of the runs in use
       </label>
     </div>
   );
