@@ -15,6 +15,8 @@ export const SQUARE_METRES_PER_ACRE = 4046.8564224;
 export const MILLIMETRES_PER_INCH = 25.4;
 /** m in a foot, exact. */
 export const METRES_PER_FOOT = 0.3048;
+/** km in a mile (international), exact. */
+export const KILOMETRES_PER_MILE = 1.609344;
 /** m s⁻¹ in a mile per hour, exact. */
 export const METRES_PER_SECOND_PER_MPH = 0.44704;
 /** m s⁻¹ in a knot, exact 1852/3600. */
@@ -142,6 +144,7 @@ export const BORDER_UNITS: Record<string, { metric: BorderUnit; us: BorderUnit }
     us: { suffix: 'ac', label: 'ac', fromMetric: 1 / SQUARE_METRES_PER_ACRE },
   },
   m: { metric: { suffix: 'm', label: 'm', fromMetric: 1 }, us: { suffix: 'ft', label: 'ft', fromMetric: 1 / METRES_PER_FOOT } },
+  km: { metric: { suffix: 'km', label: 'km', fromMetric: 1 }, us: { suffix: 'mi', label: 'mi', fromMetric: 1 / KILOMETRES_PER_MILE } },
   m_s: {
     metric: { suffix: 'm_s', label: 'm/s', fromMetric: 1 },
     us: { suffix: 'mph', label: 'mph', fromMetric: 1 / METRES_PER_SECOND_PER_MPH },

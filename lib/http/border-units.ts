@@ -21,9 +21,12 @@ const CHANGES: readonly (readonly [string, Change])[] = [
 ].sort((a, b) => b[0].length - a[0].length);
 
 /** Compound units whose tail looks like one of ours. */
-const LEFT_ALONE = /_(m3_m3|c_per_m|mj_m2_d|kg_kg|m3_ha)$/;
+const LEFT_ALONE = /_(m3_m3|c_per_m|per_km|mj_m2_d|kg_kg|m3_ha)$/;
 /** Members that are settings or definitions, to be sent back as they came. */
-const DEFINITIONS = new Set(['settings', 'manifest', 'definition', 'options', 'boundary', 'geometry']);
+const DEFINITIONS = ['settings', 'manifest', 'definition', 'options', 'boundary', 'geometry', 'loss_rule'];
+/** Members whose own members are named after quantities, while the values are counts, shares or words. */
+const NAMED_AFTER_QUANTITIES = ['coverage_days', 'fallback_shares', 'sources'];
+const AS_THEY_CAME = new Set([...DEFINITIONS, ...NAMED_AFTER_QUANTITIES]);
 
 function changeOf(name: string): { name: string; value: (metric: number) => number } | null {
   if (LEFT_ALONE.test(name)) return null;
@@ -49,7 +52,7 @@ export function answerIn(units: UnitSystem, answer: unknown): unknown {
 }
 
 function memberIn(name: string, value: unknown): [string, unknown] {
-  if (DEFINITIONS.has(name)) return [name, value];
+  if (AS_THEY_CAME.has(name)) return [name, value];
   const change = changeOf(name);
   return change ? [change.name, numbersIn(value, change.value)] : [name, answerIn('us', value)];
 }

@@ -1,14 +1,16 @@
 /** Every refusal leaves as problem details (RFC 9457); a failure of ours leaves as an id that the log has. */
 import { randomUUID } from 'node:crypto';
-import { ZodError } from 'zod';
+import { ZodError, type z } from 'zod';
 import { log } from '../access/log.ts';
 import { type Finding, Malformed, TillwaterError, TooMany } from '../base/errors.ts';
+import { WrongMethod } from './wrong-method.ts';
 
 const TITLES: Record<number, string> = {
   400: 'The request cannot be read',
   401: 'Not signed in',
   403: 'Not allowed',
   404: 'Not there',
+  405: 'Not a method of this address',
   409: 'The state does not allow this now',
   413: 'Too large',
   415: 'Unknown kind of content',
@@ -23,6 +25,7 @@ export const PROBLEM_CODES: Record<string, number> = {
   unauthenticated: 401,
   forbidden: 403,
   'not-found': 404,
+  'wrong-method': 405,
   conflict: 409,
   'too-large': 413,
   'unknown-kind': 415,
@@ -40,6 +43,7 @@ export function problemResponse(error: unknown, request: Request): Response {
   const findings = 'findings' in error ? (error.findings as readonly Finding[]) : [];
   const headers: Record<string, string> = {};
   if (error instanceof TooMany) headers['retry-after'] = String(error.retryAfterSeconds);
+  if (error instanceof WrongMethod) headers.allow = error.allow.join(', ');
   if (error.status === 401) headers['www-authenticate'] = 'Bearer';
   return problem({ code: error.code, status: error.status, detail: error.message, findings }, headers);
 }
@@ -71,11 +75,19 @@ function failure(error: unknown, request: Request): Response {
 
 /** One finding for each member at fault. */
 export function malformedFrom(error: ZodError, where = 'request'): Malformed {
-  const findings = error.issues.map((issue): Finding => {
-    const column = issue.path.join('.');
-    return { severity: 'error', code: issue.code.replaceAll('_', '-'), message: issue.message, ...(column ? { column } : {}) };
-  });
+  const findings = error.issues.flatMap(findingsOf);
   const lines = findings.slice(0, 3).map((finding) => (finding.column ? `${finding.column}: ${finding.message}` : finding.message));
   const more = findings.length > 3 ? ` and ${findings.length - 3} more` : '';
   return new Malformed(`the ${where} cannot be read: ${lines.join('; ')}${more}`, findings);
+}
+
+/** A member that nobody knows is named itself, not the object it stands in. */
+function findingsOf(issue: z.core.$ZodIssue): Finding[] {
+  const code = issue.code.replaceAll('_', '-');
+  const at = (path: readonly PropertyKey[]) => path.map(String).join('.');
+  if (issue.code === 'unrecognized_keys') {
+    return issue.keys.map((key) => ({ severity: 'error', code, message: 'not known here', column: at([...issue.path, key]) }));
+  }
+  const column = at(issue.path);
+  return [{ severity: 'error', code, message: issue.message, ...(column ? { column } : {}) }];
 }

@@ -2,6 +2,7 @@
 import type { z } from 'zod';
 import { Malformed, TooLarge, UnknownKind } from '../base/errors.ts';
 import { malformedFrom } from './problem.ts';
+import { requireStorable } from './storable-text.ts';
 
 const DEFAULT_BODY_LIMIT = 256 * 1024;
 
@@ -15,7 +16,9 @@ export async function readJson<T extends z.ZodType>(request: Request, schema: T,
   if (!/^application\/(json|[\w.-]+\+json)\b/i.test(type)) {
     throw new UnknownKind(`the body is ${type ? `"${type}"` : 'of no stated type'}: send "Content-Type: application/json"`);
   }
-  const result = schema.safeParse(parseJson(await readText(request, limit)));
+  const given = parseJson(await readText(request, limit));
+  requireStorable(given, 'body');
+  const result = schema.safeParse(given);
   if (!result.success) throw malformedFrom(result.error, 'body');
   return result.data;
 }

@@ -1,5 +1,6 @@
 /** Reading a multipart upload within a limit. */
 import { Malformed, TooLarge, UnknownKind } from '../base/errors.ts';
+import { requireStorable } from './storable-text.ts';
 
 interface Upload {
   readonly files: readonly { readonly name: string; readonly bytes: Uint8Array }[];
@@ -13,7 +14,7 @@ const OVERHEAD_BYTES = 1024 * 1024;
 /**
  * The files (parts named `file`) and text parts of a request.
  *
- * @throws UnknownKind when it is not multipart; TooLarge above the limit; Malformed when it is cut off or names other file parts
+ * @throws UnknownKind when it is not multipart; TooLarge above the limit; Malformed when it is cut off, names other file parts, or a text holds NUL
  */
 export async function readUpload(request: Request, limitMegabytes: number): Promise<Upload> {
   const type = request.headers.get('content-type') ?? '';
@@ -28,8 +29,10 @@ export async function readUpload(request: Request, limitMegabytes: number): Prom
   const files: { name: string; bytes: Uint8Array }[] = [];
   const fields = new Map<string, string>();
   for (const [name, value] of form.entries()) {
-    if (typeof value === 'string') fields.set(name, value);
-    else if (name === 'file') files.push({ name: value.name, bytes: new Uint8Array(await value.arrayBuffer()) });
+    if (typeof value === 'string') {
+      requireStorable({ [name]: value }, 'upload');
+      fields.set(name, value);
+    } else if (name === 'file') files.push({ name: value.name, bytes: new Uint8Array(await value.arrayBuffer()) });
     else throw new Malformed(`a file was sent as part "${name}": name the part "file"`);
   }
   return { files, fields };

@@ -10,6 +10,7 @@ import type { Operation, TableShape } from './operation.ts';
 import { malformedFrom, problemResponse } from './problem.ts';
 import { readJson } from './read-body.ts';
 import { requireSameOrigin } from './same-origin.ts';
+import { isStorable, requireStorable } from './storable-text.ts';
 import { csvOf, csvResponse } from './table.ts';
 
 type Of<S> = S extends z.ZodRawShape ? z.infer<z.ZodObject<S>> : Record<never, never>;
@@ -115,11 +116,17 @@ function readParams(operation: Operation, pathname: string): Record<string, unkn
   const found = pathPattern(operation).exec(pathname)?.groups ?? {};
   const values = Object.fromEntries(Object.entries(found).map(([name, value]) => [name, decoded(value)]));
   const result = z.object(operation.params ?? {}).safeParse(values);
-  if (!result.success) throw new NotFound(`there is nothing at ${pathname}`);
+  const storable = Object.values(values).every(isStorable);
+  if (!result.success || !storable) throw new NotFound(`there is nothing at ${pathname}`);
   return result.data;
 }
 
 const patterns = new Map<Operation, RegExp>();
+
+/** Methods of an address of the API; none where there is nothing. */
+export function methodsAt(operations: readonly Operation[], pathname: string): string[] {
+  return operations.filter((operation) => pathPattern(operation).test(pathname)).map((operation) => operation.method);
+}
 
 /** The path as a pattern; `.csv` may follow where the answer is a table, and belongs to the last parameter where it is not. */
 function pathPattern(operation: Operation): RegExp {
@@ -143,6 +150,7 @@ function decoded(text: string): string {
 function readQuery(operation: Operation, given: URLSearchParams): Record<string, unknown> & { units: UnitSystem } {
   const twice = [...given.keys()].find((name) => given.getAll(name).length > 1);
   if (twice) throw new Malformed(`the parameter "${twice}" is given more than once`);
+  requireStorable(Object.fromEntries(given), 'query');
   const units = operation.units ? { units: unitSystem.default('metric') } : {};
   const result = z.strictObject({ ...operation.query, ...units }).safeParse(Object.fromEntries(given));
   if (!result.success) throw malformedFrom(result.error, 'query');

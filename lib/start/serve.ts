@@ -5,6 +5,7 @@ import next from 'next';
 import { closeDatabase } from '../access/database.ts';
 import { environment } from '../access/environment.ts';
 import { log } from '../access/log.ts';
+import { refuseEarly } from '../http/refuse-early.ts';
 import { closeStreams } from '../http/streams.ts';
 import { stopQueue } from '../jobs/queue.ts';
 import { sayReady, stopWithParent } from './children.ts';
@@ -50,9 +51,13 @@ function secured(request: IncomingMessage, response: ServerResponse): void {
   response.setHeader('cross-origin-opener-policy', 'same-origin');
 }
 
+async function serve(request: IncomingMessage, response: ServerResponse): Promise<void> {
+  if (!(await refuseEarly(request, response))) await handle(request, response);
+}
+
 const server = createServer((request, response) => {
   secured(request, response);
-  handle(request, response).catch((error) => {
+  serve(request, response).catch((error) => {
     log().error({ err: error, url: request.url }, 'request failed');
     if (!response.headersSent) response.writeHead(500).end();
   });

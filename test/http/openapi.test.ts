@@ -36,7 +36,10 @@ describe('openApiDocument', () => {
     const inDocument = Object.entries(document.paths).flatMap(([path, methods]) =>
       Object.keys(methods).map((method) => `${method.toUpperCase()} ${path}`),
     );
-    const inFiles = routeFiles('app/api/v1').flatMap(callsOf);
+    // the file that answers every other address with 404 is no call
+    const inFiles = routeFiles('app/api/v1')
+      .filter((file) => !file.includes('[[...rest]]'))
+      .flatMap(callsOf);
     expect(inFiles.length).toBeGreaterThan(50);
     expect(inDocument.sort()).toEqual(inFiles.sort());
   });

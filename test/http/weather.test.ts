@@ -21,6 +21,18 @@ const UCCLE = {
   precipitation_mm: 0,
 };
 
+/** 1.5 mm of rain on each of the 1096 days of 2018 to 2020. */
+function wetMonths(districtId: string, sourceId: number) {
+  return Array.from({ length: 36 }, (_, index) => {
+    const [year, month] = [2018 + Math.floor(index / 12), (index % 12) + 1];
+    const dayCount = new Date(Date.UTC(year, month, 0)).getUTCDate();
+    const values = new Uint8Array(new Float32Array(dayCount).fill(1.5).buffer);
+    const quality = new Uint8Array(dayCount).fill(1);
+    const first = `${year}-${String(month).padStart(2, '0')}-01`;
+    return { districtId, sourceId, variable: 'precipitation_mm', month: first, siteCount: 1, dayCount, values, quality };
+  });
+}
+
 beforeAll(async () => {
   fresh = await testDatabase();
   made = await makeFixture(fresh.db);
@@ -40,6 +52,9 @@ beforeAll(async () => {
       const month = { districtId, sourceId: 1, variable, month: '2015-07-01', siteCount: 1, dayCount: 31 };
       await tx.insert(weatherBlock).values({ ...month, values: new Uint8Array(values.buffer), quality });
     }
+    await tx.insert(weatherSource).values({ districtId, sourceId: 2, name: 'long record' });
+    await tx.insert(site).values({ ...place, sourceId: 2, ordinal: 0, code: 'LONG', name: 'Three years' });
+    await tx.insert(weatherBlock).values(wetMonths(districtId, 2));
   });
 });
 afterAll(() => fresh.close());
@@ -57,6 +72,9 @@ describe('weather sites', () => {
     });
     expect(items[0].coverage_days).toEqual(Object.fromEntries(Object.keys(UCCLE).map((variable) => [variable, 1])));
     expect(items[1]).toMatchObject({ code: 'NEW', first_day: null, day_count: 0 });
+    const us = (await (await sites(request('/api/v1/weather/sites?units=us', { token }))).json()).items;
+    expect(us[0].coverage_days).toEqual(items[0].coverage_days);
+    expect(us[0].elevation_ft).toBeCloseTo(328.084, 3);
   });
 
   it('computes the published day from what is stored', async () => {
@@ -90,7 +108,43 @@ describe('weather sites', () => {
     expect((await siteDays(request('/api/v1/weather/sites/UCC/daily?from=2010-01-01&to=2015-07-31', { token }))).status).toBe(413);
     expect((await siteDays(request('/api/v1/weather/sites/XYZ/daily', { token }))).status).toBe(404);
     expect((await siteDays(request('/api/v1/weather/sites/UCC/daily', { token: made.tokens.other }))).status).toBe(404);
-    expect(await (await siteDays(request('/api/v1/weather/sites/NEW/daily', { token }))).json()).toEqual({ items: [] });
+    expect((await siteDays(request('/api/v1/weather/sites/UCC/daily?from=2015-07-09&to=2015-07-01', { token }))).status).toBe(400);
+    expect(await (await siteDays(request('/api/v1/weather/sites/NEW/daily', { token }))).json()).toEqual({
+      items: [],
+      first_day: null,
+      last_day: null,
+      truncated: false,
+    });
+  });
+});
+
+describe('a record longer than one answer', () => {
+  const ask = (query: string) => siteDays(request(`/api/v1/weather/sites/LONG/daily${query}`, { token }));
+
+  it.each([
+    ['', '2019-11-28', '2020-12-31', 400, true],
+    ['?from=2018-06-01', '2018-06-01', '2019-07-05', 400, true],
+    ['?to=2019-12-31', '2018-11-27', '2019-12-31', 400, true],
+    ['?from=2020-12-01', '2020-12-01', '2020-12-31', 31, false],
+    ['?to=2018-01-31', '2018-01-01', '2018-01-31', 31, false],
+    ['?from=2019-02-01&to=2019-02-28', '2019-02-01', '2019-02-28', 28, false],
+  ])('%s gives %s to %s and says whether that is all', async (query, first, last, count, truncated) => {
+    const answer = await (await ask(query)).json();
+    expect(answer).toMatchObject({ first_day: '2018-01-01', last_day: '2020-12-31', truncated });
+    expect(answer.items).toHaveLength(count);
+    expect([answer.items[0].date, answer.items.at(-1).date]).toEqual([first, last]);
+  });
+
+  it('leaves whole as a table', async () => {
+    const response = await ask('.csv');
+    expect(response.headers.get('content-type')).toMatch(/^text\/csv/);
+    const lines = (await response.text()).trimEnd().split('\r\n');
+    expect(lines).toHaveLength(1 + 1096);
+    expect(lines[1]).toMatch(/^2018-01-01,/);
+    expect(lines[1096]).toMatch(/^2020-12-31,/);
+    expect(new Set(lines.slice(1).map((line) => line.slice(0, 10))).size).toBe(1096);
+    expect((await (await ask('.csv?from=2020-01-01')).text()).trimEnd().split('\r\n')).toHaveLength(1 + 366);
+    expect((await ask('.csv?from=2020-02-01&to=2020-01-01')).status).toBe(400);
   });
 });
 

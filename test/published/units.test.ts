@@ -92,6 +92,8 @@ describe('border units carry the factor of the published table', () => {
     ['m2', 0.000247105381, 12],
     ['m', 3.280839895, 9],
     ['m_s', 2.236936292, 9],
+    // reciprocal of the mile of SP 811 Appendix B.8, 1.609344 km exact
+    ['km', 1 / 1.609344, 12],
   ];
   test.each(rows)('%s', (suffix, us, digits) => {
     expect(Math.abs(units.BORDER_UNITS[suffix].us.fromMetric - us)).toBeLessThanOrEqual(0.5 * 10 ** -digits);

@@ -19,6 +19,7 @@ import { roundOrNull } from '../../base/missing.ts';
 import { buildTree } from '../../canal/tree.ts';
 import type { CanalAnswer, CropAnswer, MethodAnswer, ParcelAnswer, PlantingAnswer, SoilAnswer } from '../contract/rest.ts';
 import { readCursor, writeCursor } from '../paging.ts';
+import { isStorable } from '../storable-text.ts';
 
 export interface PageWanted {
   readonly limit: number;
@@ -64,7 +65,7 @@ function parcelMembers(row: ParcelRow): ParcelAnswer {
 
 /** @throws {NotFound} also for a parcel that the caller may not see. */
 export async function answerParcel(caller: Caller, code: string): Promise<ParcelAnswer> {
-  const visible = !caller.parcels || caller.parcels.includes(code);
+  const visible = isStorable(code) && (!caller.parcels || caller.parcels.includes(code));
   const row = visible ? await database().inDistrict(caller.districtId, (tx) => findParcel(tx, caller.districtId, code)) : null;
   if (!row) throw new NotFound(`no parcel "${code}" in this district`);
   return parcelMembers(row);

@@ -1,12 +1,13 @@
 /** People of the district and API tokens: what managers look after. */
 import type { Tx } from '../../../db/connect.ts';
 import { deleteToken, listTokens, type TokenRow } from '../../../db/queries/api-tokens.ts';
+import { listParcels } from '../../../db/queries/land-read.ts';
 import { deleteMembership, listMembers, lockManagers, saveMembership } from '../../../db/queries/memberships.ts';
 import type { Caller } from '../../access/caller.ts';
 import { database } from '../../access/database.ts';
 import { createPerson, findPersonByEmail } from '../../access/sessions.ts';
 import { createToken } from '../../access/tokens.ts';
-import { Conflict, NotFound, Refused } from '../../base/errors.ts';
+import { Conflict, type Finding, NotFound, Refused } from '../../base/errors.ts';
 import type { MemberAnswer, MemberRequest, TokenAnswer, TokenRequest } from '../contract/rest.ts';
 
 export async function answerMembers(caller: Caller): Promise<MemberAnswer[]> {
@@ -17,19 +18,40 @@ export async function answerMembers(caller: Caller): Promise<MemberAnswer[]> {
 /**
  * Adds a person, or changes the role and parcels of a member.
  *
- * @throws {Refused} when the person is new and no name or password is given. @throws {Conflict} when the last manager would step down.
+ * @throws {Refused} when the person is new and no name or password is given, or a parcel is not the district's. @throws {Conflict} when the last manager would step down.
  */
 export async function saveMember(caller: Caller, wanted: MemberRequest): Promise<MemberAnswer> {
+  const parcels = wanted.role === 'grower' ? [...new Set(wanted.parcels)] : [];
+  await database().inDistrict(caller.districtId, (tx) => requireParcels(tx, caller.districtId, parcels));
   const known = await findPersonByEmail(wanted.email);
   const userId = known?.userId ?? (await createMember(wanted));
   await database().inDistrict(caller.districtId, async (tx) => {
     if (wanted.role !== 'manager') await requireAnotherManager(tx, caller.districtId, userId);
-    await saveMembership(tx, caller.districtId, { userId, role: wanted.role, parcels: wanted.role === 'grower' ? wanted.parcels : [] });
+    await saveMembership(tx, caller.districtId, { userId, role: wanted.role, parcels });
   });
   const saved = (await answerMembers(caller)).find((member) => member.user_id === userId);
   if (!saved) throw new NotFound('this member was removed at the same moment');
   return saved;
 }
+
+async function requireParcels(tx: Tx, districtId: string, codes: readonly string[]): Promise<void> {
+  if (codes.length === 0) return;
+  const known = new Set((await listParcels(tx, { districtId, codes: [...codes] }, null, codes.length)).map((row) => row.code));
+  const findings = codes
+    .filter((code) => !known.has(code))
+    .map((code): Finding => ({ ...UNKNOWN_PARCEL, message: `no parcel "${code}" in this district`, value: code }));
+  if (findings.length === 0) return;
+  const named = findings.slice(0, 3).map(({ value }) => `"${value}"`);
+  const more = findings.length > 3 ? ` and ${findings.length - 3} more` : '';
+  throw new Refused(`no such parcel in this district: ${named.join(', ')}${more}`, findings);
+}
+
+const UNKNOWN_PARCEL = {
+  severity: 'error',
+  code: 'unknown-parcel',
+  column: 'parcels',
+  advice: 'give the code as the list of parcels has it',
+} as const;
 
 async function createMember({ email, name, password }: MemberRequest): Promise<string> {
   if (!name || !password) throw new Refused(`nobody signs in as ${email} yet: give a name and a password too`);

@@ -14,6 +14,7 @@ import { loadFrozenSeason } from '../../jobs/frozen-season.ts';
 import { DAILY_VARIABLES, type DailyVariable, type ParcelInput, type SeasonInput } from '../../season/types.ts';
 import { explainDay } from '../../season/working.ts';
 import type { ParcelDay, ParcelSeason, WorkingAnswer } from '../contract/run.ts';
+import { isStorable } from '../storable-text.ts';
 import { dayOffset, readFinishedRun } from './run.ts';
 import { DayReader } from './run-parcels.ts';
 
@@ -28,7 +29,7 @@ interface Found {
 async function readParcel(tx: Tx, caller: Caller, runId: string, code: string): Promise<Found> {
   const run = await readFinishedRun(tx, caller.districtId, runId);
   const filter = { districtId: caller.districtId, runId, codes: caller.parcels, parcel: code };
-  const [parcel] = await listRunParcelDays(tx, filter, 0, 1);
+  const [parcel] = isStorable(code) ? await listRunParcelDays(tx, filter, 0, 1) : [];
   if (!parcel) throw new NotFound(`no parcel "${code}" in run ${runId}`);
   const season = await loadFrozenSeason(tx, caller.districtId, runId, [parcel.position]);
   const [land] = await listParcels(tx, { districtId: caller.districtId, codes: [code] }, null, 1);

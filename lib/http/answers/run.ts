@@ -50,7 +50,7 @@ function runMembers(row: RunHead): RunAnswer {
     start_date: row.startDate,
     end_date: row.endDate,
     parcel_count: row.parcelCount,
-    settings: runSettings.parse(row.settings),
+    settings: runSettings.strip().parse(row.settings),
     manifest,
     balance: balance as RunAnswer['balance'],
     warnings: [warnings, manifest.warnings].flat().filter((warning): warning is string => typeof warning === 'string'),
@@ -66,8 +66,10 @@ export function isOver(run: { state: RunAnswer['state'] }): boolean {
   return run.state !== 'queued' && run.state !== 'running';
 }
 
+const UUID = /^[0-9a-f]{8}(-[0-9a-f]{4}){3}-[0-9a-f]{12}$/i;
+
 async function readRun(tx: Tx, districtId: string, runId: string): Promise<RunHead> {
-  const row = await findRun(tx, districtId, runId);
+  const row = UUID.test(runId) ? await findRun(tx, districtId, runId) : null;
   if (!row) throw new NotFound(`no run ${runId} in this district`);
   return row;
 }
@@ -100,7 +102,8 @@ export interface SpanWanted {
 export function periodsWanted(run: RunHead, caller: Caller, wanted: SpanWanted): Period[] {
   const { from = run.startDate, to = run.endDate } = wanted;
   for (const date of [from, to]) if (!isIsoDate(date)) throw new Malformed(`"${date}" is not a day of the calendar`);
-  if (from > to) throw new Malformed(`from ${from} is after to ${to}`);
+  if (from > to && wanted.from && wanted.to) throw new Malformed(`from ${from} is after to ${to}`);
+  if (from > to) throw new Malformed(`${outsideText(wanted)} the run, which goes from ${run.startDate} to ${run.endDate}`);
   const [, start] = [run.startDate, from].sort();
   const [end] = [run.endDate, to].sort();
   const offset = dayNumber(start) - dayNumber(run.startDate);
@@ -109,6 +112,11 @@ export function periodsWanted(run: RunHead, caller: Caller, wanted: SpanWanted):
     from: period.from + offset,
     to: period.to + offset,
   }));
+}
+
+/** One of the two is given. */
+function outsideText({ from, to }: SpanWanted): string {
+  return from ? `from ${from} is after the last day of` : `to ${to} is before the first day of`;
 }
 
 /** Place of a date within a run. @throws {Malformed} when it lies outside. */

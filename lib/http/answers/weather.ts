@@ -16,7 +16,7 @@ import { sunDay } from '../../energy/sun.ts';
 import { assembleObservations, floatsOf } from '../../jobs/observations.ts';
 import { fillTemperatureGaps } from '../../weather/gaps.ts';
 import { type CompletedWeather, fallbackNames, type SiteObservations } from '../../weather/variable.ts';
-import type { SiteAnswer, SiteDay } from '../contract/rest.ts';
+import type { SiteAnswer, SiteDay, SiteDaysAnswer } from '../contract/rest.ts';
 
 /** Most days of one answer. */
 const MOST_DAYS = 400;
@@ -75,28 +75,71 @@ function siteMembers(row: SiteRow, coverage: Coverage): SiteAnswer {
   };
 }
 
+interface DaysWanted {
+  readonly from?: string;
+  readonly to?: string;
+}
+
 /**
- * Days of a site. Gaps in temperature are filled from the whole record, as a run fills them.
+ * Days of a site with what else it has: the last days asked for when they are more than one answer holds.
  *
- * @throws {NotFound} for a site that is not the district's. @throws {TooLarge} for more than 400 days.
+ * @throws {NotFound} for a site that is not the district's. @throws {TooLarge} for more than 400 days with both ends given.
  */
-export function answerSiteDays(caller: Caller, code: string, wanted: { from?: string; to?: string }): Promise<SiteDay[]> {
+export async function answerSiteRecord(caller: Caller, code: string, wanted: DaysWanted): Promise<SiteDaysAnswer> {
+  requireSpan(wanted);
+  const record = await openRecord(caller, code);
+  if (!record) return { items: [], first_day: null, last_day: null, truncated: false };
+  const { first, last } = record;
+  const { from, to } = spanOf(wanted, last);
+  const truncated = (!wanted.from && from > first && to >= first) || (!wanted.to && to < last);
+  return { items: record.days(from, to), first_day: first, last_day: last, truncated };
+}
+
+/** The days of `answerSiteRecord` alone. */
+export async function answerSiteDays(caller: Caller, code: string, wanted: DaysWanted): Promise<SiteDay[]> {
+  return (await answerSiteRecord(caller, code, wanted)).items;
+}
+
+/** Every day asked for, in pieces of at most 400. @throws {NotFound} for a site that is not the district's. */
+export async function* eachSiteDays(caller: Caller, code: string, wanted: DaysWanted): AsyncGenerator<SiteDay[]> {
+  requireSpan(wanted);
+  const record = await openRecord(caller, code);
+  if (!record) return;
+  const { from = record.first, to = record.last } = wanted;
+  const end = minimum(to, record.last);
+  const [, begin] = [from, record.first].sort();
+  for (let start = begin; start <= end; start = addDays(start, MOST_DAYS)) {
+    yield record.days(start, minimum(end, addDays(start, MOST_DAYS - 1)));
+  }
+}
+
+interface SiteRecord {
+  readonly first: string;
+  readonly last: string;
+  /** days of the record between two dates, both included */
+  days(from: string, to: string): SiteDay[];
+}
+
+/** The whole record of a site, completed: gaps in temperature are filled from all of it, as a run fills them. Null when there is nothing. */
+function openRecord(caller: Caller, code: string): Promise<SiteRecord | null> {
   const { districtId } = caller;
   return database().inDistrict(districtId, async (tx) => {
     const row = (await listSites(tx, districtId)).find((site) => site.code === code);
     const district = await findWholeDistrict(tx, districtId);
     if (!row || !district) throw new NotFound(`no weather site "${code}" in this district`);
     const record = await readRecord(tx, districtId, row);
-    if (!record) return [];
+    if (!record) return null;
     const { first, last, observations } = record;
-    const span = spanOf(wanted, last);
     const { defaultElevation, radiationCoefficient } = district;
     const temperatures = fillTemperatureGaps(observations);
     const completed = completeWeather(observations, { defaultElevation, radiationCoefficient, temperatures });
     const place = { latitude: row.latitude, elevation: row.elevation ?? defaultElevation };
     const offset = dayNumber(observations.startDate);
-    const [from, to] = [Math.max(dayNumber(span.from), dayNumber(first)), Math.min(dayNumber(span.to), dayNumber(last))];
-    return Array.from({ length: Math.max(0, to - from + 1) }, (_, i) => siteDay(observations, completed, place, from + i - offset));
+    const days = (wantedFrom: string, wantedTo: string) => {
+      const [from, to] = [Math.max(dayNumber(wantedFrom), dayNumber(first)), Math.min(dayNumber(wantedTo), dayNumber(last))];
+      return Array.from({ length: Math.max(0, to - from + 1) }, (_, i) => siteDay(observations, completed, place, from + i - offset));
+    };
+    return { first, last, days };
   });
 }
 
@@ -112,8 +155,14 @@ async function readRecord(tx: Tx, districtId: string, row: SiteRow) {
   return first && last ? { first, last, observations: assembleObservations([row], blocks, span) } : null;
 }
 
-function spanOf(wanted: { from?: string; to?: string }, last: string): { from: string; to: string } {
-  for (const date of [wanted.from, wanted.to]) if (date && !isIsoDate(date)) throw new Malformed(`"${date}" is not a day of the calendar`);
+/** @throws {Malformed} when a date is none, or the last day is before the first. */
+function requireSpan({ from, to }: DaysWanted): void {
+  for (const date of [from, to]) if (date && !isIsoDate(date)) throw new Malformed(`"${date}" is not a day of the calendar`);
+  if (from && to && from > to) throw new Malformed(`from ${from} is after to ${to}`);
+}
+
+/** What one answer holds of the days asked for; an open end gives way. */
+function spanOf(wanted: DaysWanted, last: string): { from: string; to: string } {
   const to = wanted.to ?? (wanted.from ? minimum(addDays(wanted.from, MOST_DAYS - 1), last) : last);
   const from = wanted.from ?? addDays(to, 1 - MOST_DAYS);
   const days = dayNumber(to) - dayNumber(from) + 1;

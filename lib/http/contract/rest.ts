@@ -3,7 +3,7 @@ import { WEATHER_VARIABLES } from '../../weather/variable.ts';
 import { finding, isoDate, nullableNumber as n, role, scope, unitSystem } from './common.ts';
 
 export const districtRequest = z
-  .object({
+  .strictObject({
     code: z
       .string()
       .regex(/^[a-z0-9-]{2,40}$/)
@@ -16,7 +16,7 @@ export const districtRequest = z
     boundary: z.unknown().optional(),
     default_elevation_m: z.number().min(-430).max(6000).default(0),
     radiation_coefficient: z.number().min(0.1).max(0.25).default(0.16),
-    manager: z.object({ name: z.string().min(1), email: z.email(), password: z.string().min(10).max(200) }).optional(),
+    manager: z.strictObject({ name: z.string().min(1), email: z.email(), password: z.string().min(10).max(200) }).optional(),
   })
   .meta({ id: 'DistrictRequest' });
 export const districtAnswer = z
@@ -39,7 +39,7 @@ export const districtAnswer = z
   .meta({ id: 'District' });
 export type DistrictAnswer = z.infer<typeof districtAnswer>;
 export const seasonRequest = z
-  .object({ code: z.string().min(1).max(40), name: z.string().optional(), start_date: isoDate, end_date: isoDate })
+  .strictObject({ code: z.string().min(1).max(40), name: z.string().optional(), start_date: isoDate, end_date: isoDate })
   .meta({ id: 'SeasonRequest' });
 
 export const seasonAnswer = z.object({ code: z.string(), name: z.string(), start_date: isoDate, end_date: isoDate }).meta({ id: 'Season' });
@@ -135,6 +135,18 @@ export const siteDay = z
   })
   .meta({ id: 'SiteDay' });
 export type SiteDay = z.infer<typeof siteDay>;
+
+export const siteDaysAnswer = z
+  .object({
+    items: z.array(siteDay),
+    first_day: isoDate.nullable().meta({ description: 'first day the site has, in this answer or not; null when it has none' }),
+    last_day: isoDate.nullable().meta({ description: 'last day the site has, in this answer or not; null when it has none' }),
+    truncated: z
+      .boolean()
+      .meta({ description: 'true: the question reaches over more days than are here; ask in parts, with `from` and `to`' }),
+  })
+  .meta({ id: 'SiteDays' });
+export type SiteDaysAnswer = z.infer<typeof siteDaysAnswer>;
 
 const { observed: _observed, completed: completedShape, ...siteDayNumbers } = siteDay.shape;
 /** A site’s day as one flat row: what CSV holds. */
@@ -248,7 +260,7 @@ export const plantingAnswer = z
   .meta({ id: 'Planting' });
 
 export const tokenRequest = z
-  .object({ name: z.string().min(1).max(80), scope, expires_in_days: z.number().int().min(1).max(3650).default(365) })
+  .strictObject({ name: z.string().min(1).max(80), scope, expires_in_days: z.number().int().min(1).max(3650).default(365) })
   .meta({ id: 'TokenRequest' });
 export const tokenAnswer = z
   .object({
@@ -265,7 +277,7 @@ export const tokenAnswer = z
 export type TokenAnswer = z.infer<typeof tokenAnswer>;
 
 export const memberRequest = z
-  .object({
+  .strictObject({
     email: z.email(),
     role,
     parcels: z.array(z.string()).max(2000).default([]).meta({ description: 'codes of the parcels a grower may see' }),

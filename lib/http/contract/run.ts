@@ -107,7 +107,10 @@ export const parcelDay = z
     readily_available_water_mm: n,
     basal_crop_coefficient: n,
     stress_coefficient: n,
-    soil_water_depletion_mm: n.meta({ description: 'of the whole parcel, to the deepest root of the season; closes the day with effective rain, net requirement and adjusted crop ET' }),
+    soil_water_depletion_mm: n.meta({
+      description:
+        'of the whole parcel, to the deepest root of the season; closes the day with effective rain, net requirement and adjusted crop ET',
+    }),
     gross_volume_m3: n,
     fallbacks: z.array(z.string()),
   })

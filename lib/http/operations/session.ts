@@ -10,7 +10,7 @@ export const signInOperation = operation({
   summary: 'Sign in',
   description: 'Sets the session cookie. At most 10 tries in a minute for one e-mail address. Scripts use a token instead.',
   scope: 'open',
-  body: z.object({ email: z.string().min(3).max(254), password: z.string().min(1).max(200) }).meta({ id: 'SignIn' }),
+  body: z.strictObject({ email: z.string().min(3).max(254), password: z.string().min(1).max(200) }).meta({ id: 'SignIn' }),
   status: 204,
   refusals: [413, 415],
 });
@@ -33,7 +33,7 @@ export const preferencesOperation = operation({
   description: 'Sets cookies. `district` is the code of a district the reader belongs to.',
   scope: 'open',
   body: z
-    .object({
+    .strictObject({
       units: z.enum(['metric', 'us']).optional(),
       district: z.string().max(60).optional(),
       theme: z.enum(['light', 'dark', 'system']).optional(),

@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { isoDate } from '../contract/common.ts';
-import { type SiteDay, siteAnswer, siteDay, siteDayRow, siteDayRowOf } from '../contract/rest.ts';
+import { type SiteDaysAnswer, siteAnswer, siteDayRow, siteDayRowOf, siteDaysAnswer } from '../contract/rest.ts';
 import { operation } from '../operation.ts';
 
 const tag = 'Weather';
@@ -22,12 +22,13 @@ export const siteDaysOperation = operation({
   tag,
   summary: 'Days of a site: observed, completed, reference ET by each method, energy budget',
   description:
-    'At most 400 days; the last 400 that the site has unless `from` and `to` are given. In a CSV the observed and the completed values are columns `observed_…` and `completed_…`.',
+    'At most 400 days: the last of them unless `from` says where to begin; `truncated` says that more were asked for, `first_day` and `last_day` what the site has. ' +
+    'A CSV holds every day asked for; the observed and the completed values are columns `observed_…` and `completed_…`.',
   scope: 'read',
   params: { code: z.string().min(1).max(120) },
   query: { from: isoDate.optional(), to: isoDate.optional() },
   units: true,
-  answer: z.object({ items: z.array(siteDay) }),
-  table: { row: siteDayRow, rows: (answer: { items: SiteDay[] }) => answer.items.map(siteDayRowOf) },
+  answer: siteDaysAnswer,
+  table: { row: siteDayRow, rows: (answer: SiteDaysAnswer) => answer.items.map(siteDayRowOf) },
   refusals: [404, 413],
 });
