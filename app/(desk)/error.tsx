@@ -1,22 +1,12 @@
 'use client';
 
-/** A failure of ours: says so, gives the id that the log has, and offers to try again. */
-export default function Fault({ error, reset }: { error: Error & { digest?: string }; reset: () => void }) {
+import { Fault, type FaultProps } from '../_components/fault.tsx';
+
+/** A page of the desk failed; the desk around it stands. */
+export default function DeskFault(props: FaultProps) {
   return (
     <div className="page narrow">
-      <h1>This page could not be drawn</h1>
-      <p className="notice bad" role="alert">
-        The fault is on our side. Try again; if it stays, give the district’s manager this number: <code>{error.digest ?? 'none'}</code>
-      </p>
-      <p className="row">
-        <button type="button" className="button primary" onClick={reset}>
-          Try again
-        </button>
-        {/* a full load, because the fault may be in what the browser holds */}
-        <a className="button" href="/sign-in">
-          Sign in again
-        </a>
-      </p>
+      <Fault {...props} />
     </div>
   );
 }

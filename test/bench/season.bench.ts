@@ -115,4 +115,4 @@ for (const count of sizes.length > 0 ? sizes : [10_000, 100_000]) {
   lines.push([String(count), ...speeds, (two / one).toFixed(2), plain.toFixed(2), (single.clock / plain).toFixed(1), resident]);
 }
 console.log(`season kernel, stations case, ${DAYS} days, ${SITES} stations; million parcel-days per second`);
-for (const line of lines) console.log(line.map((cell) => cell.padStart(15)).join(''));
+for (const line of lines) console.log(line.map((cell) => cell.padStart(17)).join(''));
