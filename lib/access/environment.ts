@@ -42,6 +42,11 @@ export function readEnvironment(source: Record<string, string | undefined>): Env
 
 const held = globalThis as unknown as { tillwaterEnvironment?: Environment };
 
+/** Has the environment read again at its next use: for the launcher, which adds to it, and for tests. */
+export function rereadEnvironment(): void {
+  held.tillwaterEnvironment = undefined;
+}
+
 /** The process's environment, read at first use. */
 export function environment(): Environment {
   held.tillwaterEnvironment ??= readEnvironment(process.env);

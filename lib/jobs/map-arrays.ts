@@ -31,24 +31,23 @@ interface PeriodSet {
 }
 
 export class MapArrays {
-  private readonly arrays: { variable: string; set: PeriodSet; values: Float32Array }[];
+  private readonly arrays: { variable: string; aggregate: Aggregate; set: PeriodSet; values: Float32Array }[];
 
   constructor(
     private readonly parcelCount: number,
     private readonly dayCount: number,
     sets: readonly PeriodSet[],
   ) {
-    this.arrays = MAP_VARIABLES.flatMap(({ id }) =>
-      sets.map((set) => ({ variable: id, set, values: new Float32Array(set.periods.length * parcelCount).fill(Number.NaN) })),
+    this.arrays = MAP_VARIABLES.flatMap(({ id, aggregate }) =>
+      sets.map((set) => ({ variable: id, aggregate, set, values: new Float32Array(set.periods.length * parcelCount).fill(Number.NaN) })),
     );
   }
 
   /** Puts one parcel's season into every array. @param stored [variable × day] */
   add(position: number, stored: Uint16Array): void {
     const days = new Map(MAP_VARIABLES.map((variable) => [variable.id, this.daily(stored, variable.id)]));
-    for (const { variable, set, values } of this.arrays) {
+    for (const { variable, aggregate, set, values } of this.arrays) {
       const series = days.get(variable) as Float64Array;
-      const { aggregate } = MAP_VARIABLES.find((entry) => entry.id === variable) as { aggregate: Aggregate };
       set.periods.forEach((period, index) => {
         values[index * this.parcelCount + position] = aggregated(series, period, aggregate);
       });

@@ -1,8 +1,9 @@
 /** Asking for runs and calling them off. The work itself is in run-start, run-slice and run-finish. */
 
 import type { Tx } from '../../db/connect.ts';
+import { countDistrict } from '../../db/queries/district-read.ts';
 import { listSources } from '../../db/queries/import-context.ts';
-import { findDistrict, findSeason, listLibraries, listRunParcels } from '../../db/queries/run-inputs.ts';
+import { findDistrict, findSeason, listLibraries } from '../../db/queries/run-inputs.ts';
 import { cancelWaitingRuns, findRun, findStandingSettings, insertRun, notifyRun, updateGoingRun } from '../../db/queries/run-state.ts';
 import { database } from '../access/database.ts';
 import { dayNumber } from '../base/civil-date.ts';
@@ -56,8 +57,8 @@ export async function requestRun(who: { districtId: string; userId: string | nul
 }
 
 async function checkedParcelCount(tx: Tx, districtId: string, settings: RunSettings): Promise<number> {
-  const parcels = await listRunParcels(tx, districtId);
-  if (parcels.length === 0) throw new Refused('The district has no parcels yet: import parcels before asking for a run.');
+  const { parcels } = await countDistrict(tx, districtId);
+  if (parcels === 0) throw new Refused('The district has no parcels yet: import parcels before asking for a run.');
   const { soils, methods } = await listLibraries(tx, districtId);
   if (!soils.some((soil) => soil.code === settings.default_soil)) {
     throw new Refused(
@@ -72,7 +73,7 @@ async function checkedParcelCount(tx: Tx, districtId: string, settings: RunSetti
   if (settings.source !== null && !sources.includes(settings.source)) {
     throw new Refused(`source "${settings.source}" is not a weather source of this district; known: ${sources.join(', ') || 'none yet'}.`);
   }
-  return parcels.length;
+  return parcels;
 }
 
 /**

@@ -8,7 +8,7 @@ import { join } from 'node:path';
 import { startEmbedded } from '../../db/embedded.ts';
 import { migrateDatabase } from '../../db/migrate.ts';
 import { closeDatabase } from '../access/database.ts';
-import { environment } from '../access/environment.ts';
+import { environment, rereadEnvironment } from '../access/environment.ts';
 import { log } from '../access/log.ts';
 import { releaseOrphans, stopQueue } from '../jobs/queue.ts';
 import { buildIfChanged } from './build.ts';
@@ -46,7 +46,7 @@ async function openOwnDatabase(): Promise<string> {
     unlock();
   };
   process.env.DATABASE_URL = server.ownerUrl;
-  (globalThis as { tillwaterEnvironment?: unknown }).tillwaterEnvironment = undefined;
+  rereadEnvironment();
   return server.ownerUrl;
 }
 
@@ -96,7 +96,7 @@ try {
   const embedded = environment().DATABASE_URL === undefined;
   const ownerUrl = await openOwnDatabase();
   process.env.TILLWATER_SECRET = sharedSecret(ownerUrl);
-  (globalThis as { tillwaterEnvironment?: unknown }).tillwaterEnvironment = undefined;
+  rereadEnvironment();
   await migrateDatabase(ownerUrl, 'db/migrations');
   if (embedded) await releaseOrphans();
   const first = await prepareFirstData(ownerUrl);

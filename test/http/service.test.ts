@@ -1,10 +1,12 @@
 /** The service's own pages: alive, ready, measured, documented. */
+
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { GET as district } from '../../app/api/v1/district/route.ts';
 import { GET as openApi } from '../../app/api/v1/openapi.json/route.ts';
 import { GET as alive } from '../../app/healthz/route.ts';
 import { GET as metrics } from '../../app/metrics/route.ts';
 import { GET as ready } from '../../app/readyz/route.ts';
+import { rereadEnvironment } from '../../lib/access/environment.ts';
 import { type TestDatabase, testDatabase } from '../support/database.ts';
 import { type Fixture, makeFixture, request } from './district-fixture.ts';
 
@@ -18,7 +20,7 @@ afterAll(() => fresh.close());
 
 function listenOn(host: string): void {
   process.env.HOST = host;
-  (globalThis as { tillwaterEnvironment?: unknown }).tillwaterEnvironment = undefined;
+  rereadEnvironment();
 }
 
 describe('healthz, readyz', () => {

@@ -1,10 +1,12 @@
 /** A fresh, migrated database for a test file, and a process environment in which `database()` reaches it as the application's role. */
+
 import { randomBytes } from 'node:crypto';
 import postgres from 'postgres';
 import { inject } from 'vitest';
 import { type Database, openDatabase } from '../../db/connect.ts';
 import { appRoleUrl } from '../../db/roles.ts';
 import { closeDatabase } from '../../lib/access/database.ts';
+import { rereadEnvironment } from '../../lib/access/environment.ts';
 
 export interface TestDatabase {
   readonly ownerUrl: string;
@@ -22,7 +24,7 @@ export async function testDatabase(): Promise<TestDatabase> {
   process.env.DATABASE_URL = ownerUrl;
   process.env.LOG_LEVEL = 'silent';
   process.env.TILLWATER_SECRET = 'a secret of the tests, long enough for any use';
-  (globalThis as { tillwaterEnvironment?: unknown }).tillwaterEnvironment = undefined;
+  rereadEnvironment();
   const db = openDatabase(appRoleUrl(ownerUrl), 4);
   return {
     ownerUrl,

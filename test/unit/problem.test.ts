@@ -1,6 +1,8 @@
 /** Problem details: RFC 9457 sections 3 and 4; Retry-After: RFC 9110 section 10.2.3. */
+
 import { beforeAll, describe, expect, it } from 'vitest';
 import { z } from 'zod';
+import { rereadEnvironment } from '../../lib/access/environment.ts';
 import {
   Conflict,
   Forbidden,
@@ -18,7 +20,7 @@ import { problemResponse } from '../../lib/http/problem.ts';
 const request = new Request('http://localhost/api/v1/runs');
 beforeAll(() => {
   process.env.LOG_LEVEL = 'silent';
-  (globalThis as { tillwaterEnvironment?: unknown }).tillwaterEnvironment = undefined;
+  rereadEnvironment();
 });
 
 describe('problemResponse', () => {
