@@ -18,7 +18,10 @@ const TABLES = {
   soil: { key: { code: 'text' } },
   crop_mapping: { key: { foreign_code: 'text' } },
   planting: { key: { season_code: 'text', parcel_code: 'text' }, order: 'sequence' },
-} as const satisfies Record<string, { key: Record<string, 'int' | 'text'>; order?: string }>;
+  service_area: { key: { code: 'text' } },
+  soil_area: { key: { code: 'text' } },
+  parcel_history: { key: { history_id: 'uuid' } },
+} as const satisfies Record<string, { key: Record<string, 'int' | 'text' | 'uuid'>; order?: string }>;
 
 type ImportTable = keyof typeof TABLES;
 

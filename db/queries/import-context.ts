@@ -1,26 +1,55 @@
 /** What a district already knows, for a reader to check and join against. */
 import { and, asc, eq, isNotNull, sql } from 'drizzle-orm';
+import type { MultiPolygon, Polygon } from 'geojson';
 import type { ImportContext } from '../../lib/files/reading.ts';
+import type { GridShape } from '../../lib/weather/variable.ts';
 import type { Tx } from '../connect.ts';
 import { district } from '../schema/district.ts';
-import { applicationMethod, crop, cropCalendar, cropMapping, parcel, planting, reach, season, soil, turnout } from '../schema/land.ts';
+import {
+  applicationMethod,
+  crop,
+  cropCalendar,
+  cropMapping,
+  parcel,
+  planting,
+  reach,
+  season,
+  serviceArea,
+  soil,
+  turnout,
+} from '../schema/land.ts';
 import { site, weatherBlock, weatherSource } from '../schema/weather.ts';
 
 export async function findImportContext(tx: Tx, districtId: string): Promise<ImportContext> {
-  const [own] = await tx.select({ units: district.units }).from(district).where(eq(district.districtId, districtId));
+  const [own] = await tx
+    .select({ units: district.units, timeZone: district.timeZone, defaultElevation: district.defaultElevation })
+    .from(district)
+    .where(eq(district.districtId, districtId));
   const sites = await tx
-    .select({ code: site.code, name: site.name })
+    .select({
+      code: site.code,
+      name: site.name,
+      zone: site.zone,
+      longitude: site.longitude,
+      latitude: site.latitude,
+      elevation: site.elevation,
+    })
     .from(site)
-    .where(eq(site.districtId, districtId))
+    .innerJoin(weatherSource, and(eq(weatherSource.districtId, site.districtId), eq(weatherSource.sourceId, site.sourceId)))
+    .where(and(eq(site.districtId, districtId), eq(weatherSource.kind, 'stations')))
     .orderBy(asc(site.code));
   const parcels = await tx.select({ code: parcel.code }).from(parcel).where(eq(parcel.districtId, districtId)).orderBy(asc(parcel.code));
   const reaches = await tx.select({ code: reach.code, parentCode: reach.parentCode }).from(reach).where(eq(reach.districtId, districtId));
   const turnouts = await tx
-    .select({ code: turnout.code, reachCode: turnout.reachCode })
+    .select({ code: turnout.code, reachCode: turnout.reachCode, longitude: turnout.longitude, latitude: turnout.latitude })
     .from(turnout)
     .where(eq(turnout.districtId, districtId));
   return {
     districtUnits: own?.units ?? 'metric',
+    timeZone: own?.timeZone,
+    defaultElevation: own?.defaultElevation,
+    sources: await listContextSources(tx, districtId),
+    serviceAreas: await listContextAreas(tx, districtId),
     knownSites: sites.filter((one, i) => one.code !== sites[i - 1]?.code),
     knownParcels: parcels.map((row) => row.code),
     knownReaches: reaches,
@@ -31,6 +60,24 @@ export async function findImportContext(tx: Tx, districtId: string): Promise<Imp
     parcelCounts: await parcelCounts(tx, districtId),
     ...(await libraries(tx, districtId)),
   };
+}
+
+async function listContextSources(tx: Tx, districtId: string): Promise<ImportContext['sources']> {
+  const rows = await listSources(tx, districtId);
+  return rows.map(({ name, kind, grid }) => ({ name, kind, grid: grid as GridShape | null }));
+}
+
+async function listContextAreas(tx: Tx, districtId: string): Promise<ImportContext['serviceAreas']> {
+  const rows = await tx
+    .select({
+      code: serviceArea.code,
+      reachCode: serviceArea.reachCode,
+      turnoutCode: serviceArea.turnoutCode,
+      geometry: serviceArea.geometry,
+    })
+    .from(serviceArea)
+    .where(eq(serviceArea.districtId, districtId));
+  return rows.map((row) => ({ ...row, geometry: row.geometry as Polygon | MultiPolygon }));
 }
 
 async function libraries(tx: Tx, districtId: string) {
@@ -75,8 +122,24 @@ async function districtBox(tx: Tx, districtId: string): Promise<[number, number,
     })
     .from(parcel)
     .where(eq(parcel.districtId, districtId));
-  if (!box || box.west === null || box.south === null || box.east === null || box.north === null) return null;
+  if (!box || box.west === null || box.south === null || box.east === null || box.north === null) return boundaryBox(tx, districtId);
   return [box.west, box.south, box.east, box.north];
+}
+
+/** Box of the district's boundary, while it has no parcels. */
+async function boundaryBox(tx: Tx, districtId: string): Promise<[number, number, number, number] | null> {
+  const [own] = await tx.select({ boundary: district.boundary }).from(district).where(eq(district.districtId, districtId));
+  const boundary = own?.boundary as Polygon | MultiPolygon | null | undefined;
+  if (!boundary) return null;
+  const rings = boundary.type === 'Polygon' ? boundary.coordinates : boundary.coordinates.flat();
+  const box: [number, number, number, number] = [180, 90, -180, -90];
+  for (const [x, y] of rings.flat()) {
+    box[0] = Math.min(box[0], x);
+    box[1] = Math.min(box[1], y);
+    box[2] = Math.max(box[2], x);
+    box[3] = Math.max(box[3], y);
+  }
+  return box[0] <= box[2] ? box : null;
 }
 
 async function siteBox(tx: Tx, districtId: string): Promise<[number, number, number, number] | null> {
@@ -131,7 +194,7 @@ export async function listComputableSeasons(tx: Tx, districtId: string) {
 /** Sites with the name of their source. */
 export function listSourceSites(tx: Tx, districtId: string) {
   return tx
-    .select({ sourceId: site.sourceId, source: weatherSource.name, ordinal: site.ordinal, code: site.code })
+    .select({ sourceId: site.sourceId, source: weatherSource.name, kind: weatherSource.kind, ordinal: site.ordinal, code: site.code })
     .from(site)
     .innerJoin(weatherSource, and(eq(weatherSource.districtId, site.districtId), eq(weatherSource.sourceId, site.sourceId)))
     .where(eq(site.districtId, districtId))
@@ -140,7 +203,7 @@ export function listSourceSites(tx: Tx, districtId: string) {
 
 export function listSources(tx: Tx, districtId: string) {
   return tx
-    .select({ sourceId: weatherSource.sourceId, name: weatherSource.name })
+    .select({ sourceId: weatherSource.sourceId, name: weatherSource.name, kind: weatherSource.kind, grid: weatherSource.grid })
     .from(weatherSource)
     .where(eq(weatherSource.districtId, districtId))
     .orderBy(asc(weatherSource.sourceId));

@@ -26,7 +26,13 @@ export async function mapStoredParcels(tx: Tx, districtId: string) {
 
 export async function mapTurnouts(tx: Tx, districtId: string) {
   const rows = await tx
-    .select({ code: turnout.code, reachCode: turnout.reachCode, capacity: turnout.capacity })
+    .select({
+      code: turnout.code,
+      reachCode: turnout.reachCode,
+      capacity: turnout.capacity,
+      longitude: turnout.longitude,
+      latitude: turnout.latitude,
+    })
     .from(turnout)
     .where(eq(turnout.districtId, districtId));
   return new Map(rows.map((row) => [row.code, row]));
@@ -114,6 +120,9 @@ const REFERENCES = [
   { table: 'parcel', column: 'soil_code', to: 'soil', words: 'parcels on soils that do not exist' },
   { table: 'parcel', column: 'method_code', to: 'application_method', words: 'parcels with application methods that do not exist' },
   { table: 'turnout', column: 'reach_code', to: 'reach', words: 'turnouts on reaches that do not exist' },
+  { table: 'service_area', column: 'reach_code', to: 'reach', words: 'service areas of reaches that do not exist' },
+  { table: 'service_area', column: 'turnout_code', to: 'turnout', words: 'service areas of turnouts that do not exist' },
+  { table: 'soil_area', column: 'soil_code', to: 'soil', words: 'soil polygons of soils that do not exist' },
 ] as const;
 
 export interface Dangling {

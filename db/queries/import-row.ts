@@ -23,25 +23,50 @@ const isUuid = (text: string) => /^[0-9a-f]{8}(-[0-9a-f]{4}){3}-[0-9a-f]{12}$/i.
 const PIECES_OF_FILE = 1000;
 const PIECE_BYTES = 8 * 1024 * 1024;
 
+/** A file on its way into the store: whole, or as the pieces that arrive. */
+export interface StoredFile {
+  readonly name: string;
+  readonly sha256: string;
+  /** bytes in pieces of any size */
+  readonly content: AsyncIterable<Uint8Array> | Iterable<Uint8Array>;
+}
+
+async function insertFile(tx: Tx, key: { districtId: string; importId: string }, place: number, file: StoredFile): Promise<void> {
+  const fixed = { ...key, name: storableText(file.name), sha256: file.sha256 };
+  let piece = 0;
+  for await (const bytes of inPieces(file.content))
+    await tx.insert(importFile).values({ ...fixed, ordinal: place * PIECES_OF_FILE + piece++, bytes });
+  if (piece === 0) await tx.insert(importFile).values({ ...fixed, ordinal: place * PIECES_OF_FILE, bytes: new Uint8Array() });
+}
+
+async function* inPieces(content: StoredFile['content']): AsyncGenerator<Uint8Array> {
+  let held: Uint8Array[] = [];
+  let size = 0;
+  for await (const part of content) {
+    for (let at = 0; at < part.length; ) {
+      const take = part.subarray(at, at + PIECE_BYTES - size);
+      held.push(take);
+      size += take.length;
+      at += take.length;
+      if (size < PIECE_BYTES) continue;
+      yield Buffer.concat(held);
+      [held, size] = [[], 0];
+    }
+  }
+  if (size > 0) yield Buffer.concat(held);
+}
+
 export async function insertImport(
   tx: Tx,
   values: { districtId: string; kind: string; options: unknown; createdBy: string | null },
-  files: readonly { name: string; bytes: Uint8Array; sha256: string }[],
+  files: readonly StoredFile[],
 ): Promise<string> {
   const [row] = await tx
     .insert(importJob)
     .values({ ...values, options: storable(values.options) })
     .returning({ importId: importJob.importId });
   const key = { districtId: values.districtId, importId: row.importId };
-  for (const [place, { bytes, ...file }] of files.entries()) {
-    const pieces = Math.max(1, Math.ceil(bytes.length / PIECE_BYTES));
-    for (let piece = 0; piece < pieces; piece++) {
-      const part = bytes.subarray(piece * PIECE_BYTES, (piece + 1) * PIECE_BYTES);
-      await tx
-        .insert(importFile)
-        .values({ ...key, ...file, name: storableText(file.name), ordinal: place * PIECES_OF_FILE + piece, bytes: part });
-    }
-  }
+  for (const [place, file] of files.entries()) await insertFile(tx, key, place, file);
   return row.importId;
 }
 
@@ -84,23 +109,35 @@ export async function listFileLines(tx: Tx, districtId: string, importIds: reado
   return lines;
 }
 
-/** The files of an import, each put together from its pieces. */
-export async function listImportFiles(tx: Tx, districtId: string, importId: string): Promise<{ name: string; bytes: Uint8Array }[]> {
-  const [line] = (await listFileLines(tx, districtId, [importId])).values();
+/** The pieces of the files of an import in order, one in memory at a time. */
+export async function* eachFilePiece(
+  tx: Tx,
+  districtId: string,
+  importId: string,
+): AsyncGenerator<{ place: number; name: string; bytes: Uint8Array }> {
   const own = and(eq(importFile.districtId, districtId), eq(importFile.importId, importId));
-  const ordinals = await tx.select({ ordinal: importFile.ordinal }).from(importFile).where(own).orderBy(importFile.ordinal);
-  const files = line.map((file) => ({ name: file.name, bytes: new Uint8Array(file.sizeBytes) }));
-  const filled = files.map(() => 0);
-  for (const { ordinal } of ordinals) {
-    const place = Math.floor(ordinal / PIECES_OF_FILE);
+  const lines = await tx
+    .select({ ordinal: importFile.ordinal, name: importFile.name })
+    .from(importFile)
+    .where(own)
+    .orderBy(importFile.ordinal);
+  for (const { ordinal, name } of lines) {
     const [piece] = await tx
       .select({ bytes: importFile.bytes })
       .from(importFile)
       .where(and(own, eq(importFile.ordinal, ordinal)));
-    files[place].bytes.set(piece.bytes, filled[place]);
-    filled[place] += piece.bytes.length;
+    yield { place: Math.floor(ordinal / PIECES_OF_FILE), name, bytes: piece.bytes };
   }
-  return files;
+}
+
+/** The files of an import, each put together from its pieces. */
+export async function listImportFiles(tx: Tx, districtId: string, importId: string): Promise<{ name: string; bytes: Uint8Array }[]> {
+  const files: { name: string; pieces: Uint8Array[] }[] = [];
+  for await (const { place, name, bytes } of eachFilePiece(tx, districtId, importId)) {
+    files[place] ??= { name, pieces: [] };
+    files[place].pieces.push(bytes);
+  }
+  return files.map(({ name, pieces }) => ({ name, bytes: Buffer.concat(pieces) }));
 }
 
 /**
@@ -142,6 +179,15 @@ function storableChange(change: ImportChange): ImportChange {
 export async function saveStaged(tx: Tx, districtId: string, importId: string, pieces: readonly Uint8Array[]): Promise<void> {
   await dropStaged(tx, districtId, importId);
   for (const [ordinal, payload] of pieces.entries()) await tx.insert(importStaged).values({ districtId, importId, ordinal, payload });
+}
+
+/** Stores one staged piece of an import. */
+export async function saveStagedPiece(
+  tx: Tx,
+  key: { districtId: string; importId: string; ordinal: number },
+  payload: Uint8Array,
+): Promise<void> {
+  await tx.insert(importStaged).values({ ...key, payload });
 }
 
 export async function dropStaged(tx: Tx, districtId: string, importId: string): Promise<void> {

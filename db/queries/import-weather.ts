@@ -13,7 +13,9 @@ export interface BlockKey {
 export interface StoredBlock {
   readonly siteCount: number;
   readonly dayCount: number;
-  /** Float32 LE [site × day] */
+  /** values a day */
+  readonly steps: number;
+  /** Float32 LE [site × day × step] */
   readonly values: Uint8Array;
   /** one byte per value */
   readonly quality: Uint8Array;
@@ -33,6 +35,7 @@ export async function findBlock(tx: Tx, districtId: string, key: BlockKey): Prom
     .select({
       siteCount: weatherBlock.siteCount,
       dayCount: weatherBlock.dayCount,
+      steps: weatherBlock.steps,
       values: weatherBlock.values,
       quality: weatherBlock.quality,
       version: weatherBlock.version,
@@ -59,7 +62,7 @@ export async function deleteBlock(tx: Tx, districtId: string, key: BlockKey): Pr
 /** Quality bytes of the blocks of a source that reach past a site ordinal. */
 export function listBlocksBeyond(tx: Tx, districtId: string, sourceId: number, ordinal: number) {
   return tx
-    .select({ dayCount: weatherBlock.dayCount, quality: weatherBlock.quality })
+    .select({ dayCount: weatherBlock.dayCount, steps: weatherBlock.steps, quality: weatherBlock.quality })
     .from(weatherBlock)
     .where(and(eq(weatherBlock.districtId, districtId), eq(weatherBlock.sourceId, sourceId), gt(weatherBlock.siteCount, ordinal)));
 }

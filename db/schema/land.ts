@@ -1,4 +1,4 @@
-import { boolean, date, doublePrecision, index, integer, jsonb, pgTable, primaryKey, text, uuid } from 'drizzle-orm/pg-core';
+import { boolean, date, doublePrecision, index, integer, jsonb, pgTable, primaryKey, text, timestamp, uuid } from 'drizzle-orm/pg-core';
 import { district } from './district.ts';
 
 const owner = () =>
@@ -34,6 +34,9 @@ export const turnout = pgTable(
     code: text('code').notNull(),
     reachCode: text('reach_code').notNull(),
     capacity: doublePrecision('capacity_m3_s'),
+    /** place on the ground, where it is known */
+    longitude: doublePrecision('longitude'),
+    latitude: doublePrecision('latitude'),
   },
   (t) => [primaryKey({ columns: [t.districtId, t.code] }), index('turnout_reach').on(t.districtId, t.reachCode)],
 );
@@ -63,6 +66,8 @@ export const parcel = pgTable(
     geometry: jsonb('geometry').notNull(),
     /** columns of the file that we do not use, kept as they came */
     attributes: jsonb('attributes').notNull().default({}),
+    /** soil classes under the parcel by area, largest first, from the soil polygons; null where none lie under it */
+    soilShares: jsonb('soil_shares').$type<{ readonly soil: string; readonly share: number }[] | null>(),
   },
   (t) => [
     primaryKey({ columns: [t.districtId, t.code] }),
@@ -176,4 +181,65 @@ export const cropMapping = pgTable(
     cropCode: text('crop_code'),
   },
   (t) => [primaryKey({ columns: [t.districtId, t.foreignCode] })],
+);
+
+/** The land of a service area: what a turnout, a reach or a company serves. */
+export const serviceArea = pgTable(
+  'service_area',
+  {
+    districtId: owner(),
+    code: text('code').notNull(),
+    name: text('name').notNull(),
+    reachCode: text('reach_code'),
+    turnoutCode: text('turnout_code'),
+    /** m², on the WGS 84 ellipsoid */
+    area: doublePrecision('area_m2').notNull(),
+    west: doublePrecision('west').notNull(),
+    south: doublePrecision('south').notNull(),
+    east: doublePrecision('east').notNull(),
+    north: doublePrecision('north').notNull(),
+    geometry: jsonb('geometry').notNull(),
+    attributes: jsonb('attributes').notNull().default({}),
+  },
+  (t) => [primaryKey({ columns: [t.districtId, t.code] })],
+);
+
+/** A polygon of a soil map. */
+export const soilArea = pgTable(
+  'soil_area',
+  {
+    districtId: owner(),
+    /** code of the polygon in its map */
+    code: text('code').notNull(),
+    soilCode: text('soil_code').notNull(),
+    west: doublePrecision('west').notNull(),
+    south: doublePrecision('south').notNull(),
+    east: doublePrecision('east').notNull(),
+    north: doublePrecision('north').notNull(),
+    geometry: jsonb('geometry').notNull(),
+    attributes: jsonb('attributes').notNull().default({}),
+  },
+  (t) => [primaryKey({ columns: [t.districtId, t.code] }), index('soil_area_box').on(t.districtId, t.west, t.east, t.south, t.north)],
+);
+
+/** A parcel as it stood until an import reshaped, split, merged or ended it. */
+export const parcelHistory = pgTable(
+  'parcel_history',
+  {
+    districtId: owner(),
+    historyId: uuid('history_id').notNull().defaultRandom(),
+    parcelCode: text('parcel_code').notNull(),
+    change: text('change').notNull().$type<'reshaped' | 'split' | 'merged' | 'vanished'>(),
+    /** codes of the parcels that stand on its ground since, with the share of its area each has */
+    successors: jsonb('successors').notNull().$type<{ readonly code: string; readonly share: number }[]>().default([]),
+    /** last day on which it stood, as the import said; null when it did not say */
+    validTo: date('valid_to'),
+    /** geometry version up to which it was drawn */
+    geometryVersion: integer('geometry_version').notNull(),
+    /** the whole row as it was */
+    row: jsonb('row').notNull(),
+    importId: uuid('import_id'),
+    createdAt: timestamp('created_at', { withTimezone: true }).notNull().defaultNow(),
+  },
+  (t) => [primaryKey({ columns: [t.districtId, t.historyId] }), index('parcel_history_code').on(t.districtId, t.parcelCode)],
 );

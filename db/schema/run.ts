@@ -48,6 +48,9 @@ export const run = pgTable(
     /** the completed site weather and frozen tables the slices read: gzip JSON + arrays */
     frozen: bytea('frozen'),
     geometryVersion: integer('geometry_version').notNull().default(1),
+    /** since when an input has changed under it; null while it stands on what the district has */
+    staleSince: timestamp('stale_since', { withTimezone: true }),
+    staleReason: text('stale_reason'),
     error: text('error'),
     createdBy: text('created_by'),
     createdAt: timestamp('created_at', { withTimezone: true }).notNull().defaultNow(),
@@ -89,7 +92,7 @@ export const runParcel = pgTable(
     input: jsonb('input').notNull(),
     /** Uint16 LE [variable × day] in the order of DAILY_VARIABLES */
     daily: bytea('daily'),
-    /** Uint16 LE [day], FALLBACK bits */
+    /** FALLBACK bits by day: Uint32 LE, or Uint16 LE in runs of kernel version 1 */
     flags: bytea('flags'),
   },
   (t) => [

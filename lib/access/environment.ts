@@ -20,6 +20,8 @@ const schema = z.object({
   TILLWATER_WORKERS: z.coerce.number().int().min(0).max(64).default(1),
   TILLWATER_THREADS: z.coerce.number().int().min(1).max(64).optional(),
   TILLWATER_UPLOAD_LIMIT_MB: z.coerce.number().int().min(1).max(2000).default(200),
+  /** memory a reader of one import may take */
+  TILLWATER_READER_MEMORY_MB: z.coerce.number().int().min(128).max(65536).default(900),
   HOST: z.string().default('127.0.0.1'),
   PORT: z.coerce.number().int().min(0).max(65535).default(3000),
   LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'trace', 'silent']).default('info'),
@@ -51,4 +53,9 @@ export function rereadEnvironment(): void {
 export function environment(): Environment {
   held.tillwaterEnvironment ??= readEnvironment(process.env);
   return held.tillwaterEnvironment;
+}
+
+/** What a process that handles foreign files is told of the environment: where programs are, and nothing secret. */
+export function childEnvironment(more: Record<string, string>): NodeJS.ProcessEnv {
+  return { PATH: process.env.PATH ?? '', NODE_ENV: environment().NODE_ENV, ...more };
 }

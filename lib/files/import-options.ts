@@ -1,6 +1,7 @@
 /**
  * The options of an import as they came from outside → options that can be trusted. What is wrong becomes a finding and is left out.
  */
+import { isIsoDate } from '../base/civil-date.ts';
 import type { FindingList } from './finding-list.ts';
 import { shown } from './finding-list.ts';
 import type { ColumnPlan, ImportOptions } from './reading.ts';
@@ -37,7 +38,31 @@ const OPTIONS: Record<keyof ImportOptions, { readonly check: Check; readonly lim
     limit: 'foreign code → crop code or null',
   },
   windHeight: { check: within(0.5, 200), limit: '0.5 to 200 m' },
+  layer: { check: isText, limit: 'the name of a layer of the file' },
+  crs: { check: isText, limit: 'a coordinate system such as EPSG:28992' },
+  joinByPlace: {
+    check: oneOf('none', 'nearest-turnout', 'nearest-reach', 'service-area'),
+    limit: 'none, nearest-turnout, nearest-reach or service-area',
+  },
+  joinDistance: { check: within(0, 50_000), limit: '0 to 50,000 m' },
+  validFrom: { check: (value) => typeof value === 'string' && isIsoDate(value), limit: 'a day as YYYY-MM-DD' },
+  stamp: { check: oneOf('start', 'centre', 'end'), limit: 'start, centre or end' },
+  stampZone: { check: (value) => isText(value) && isStampZone(value as string), limit: 'an IANA zone such as Europe/Madrid, or UTC+01:00' },
+  minimumHours: { check: within(1, 24), limit: '1 to 24 h' },
+  margin: { check: within(0, 10), limit: '0 to 10 degrees' },
+  wholeGrid: { check: isFlag, limit: 'true or false' },
 };
+
+/** A name of the time-zone database, or a fixed offset from UTC. */
+function isStampZone(text: string): boolean {
+  if (/^(UTC|GMT)([+-](0?\d|1[0-4])(:?[0-5]\d)?)?$/i.test(text)) return true;
+  try {
+    new Intl.DateTimeFormat('en', { timeZone: text });
+    return true;
+  } catch {
+    return false;
+  }
+}
 
 const PLAN: Record<keyof ColumnPlan, { readonly check: Check; readonly limit: string }> = {
   columns: { check: (value) => isRecord(value) && Object.values(value).every(isColumn), limit: 'column → { role, unit }' },

@@ -1,12 +1,15 @@
 /**
  * The front door for files: bytes of a kind → what was understood, what was found, a preview, and rows ready to apply.
  */
+import { closeSync, openSync, readSync } from 'node:fs';
 import { readCanals } from './canals-geojson.ts';
+import { type ContentKind, contentKind, HEAD_BYTES } from './content-kind.ts';
 import { FINDING_LIMIT, FindingList } from './finding-list.ts';
 import { checkOptions } from './import-options.ts';
 import { readParcels } from './parcels-geojson.ts';
 import { readPlantings } from './plantings-csv.ts';
 import {
+  type BlockSink,
   type ImportContext,
   type ImportFile,
   type ImportKind,
@@ -19,16 +22,26 @@ import {
 import { readSoils } from './soils-csv.ts';
 import { readStations } from './stations-csv.ts';
 import { readWeather } from './weather-csv.ts';
+import { listZipMembers } from './zip.ts';
 
 export type { ImportOptions } from './reading.ts';
 
-type Reader = (files: readonly ImportFile[], options: ImportOptions, context: ImportContext, progress: Progress) => Promise<ImportReading>;
+type Reader = (
+  files: readonly ImportFile[],
+  options: ImportOptions,
+  context: ImportContext,
+  progress: Progress,
+  sink?: BlockSink,
+) => Promise<ImportReading>;
 
 const READERS: Record<ImportKind, Reader> = {
   stations: readStations,
-  weather: readWeather,
+  weather: readWeatherOfAnyKind,
   parcels: readParcels,
   canals: readCanals,
+  turnouts: async (...given) => (await import('./turnouts.ts')).readTurnouts(...given),
+  areas: async (...given) => (await import('./service-areas.ts')).readServiceAreas(...given),
+  'soil-areas': async (...given) => (await import('./soil-areas.ts')).readSoilAreas(...given),
   plantings: readPlantings,
   soils: readSoils,
 };
@@ -38,6 +51,9 @@ const EMPTY: Record<ImportKind, StagedImport> = {
   weather: { kind: 'weather', source: '', blocks: [], rows: 0, sites: 0 },
   parcels: { kind: 'parcels', parcels: [], turnouts: [], plantings: [], cropMappings: {} },
   canals: { kind: 'canals', reaches: [] },
+  turnouts: { kind: 'turnouts', turnouts: [] },
+  areas: { kind: 'areas', areas: [] },
+  'soil-areas': { kind: 'soil-areas', soilAreas: [] },
   plantings: { kind: 'plantings', plantings: [] },
   soils: { kind: 'soils', soils: [] },
 };
@@ -48,6 +64,7 @@ const EMPTY: Record<ImportKind, StagedImport> = {
  *
  * @param options as they came from outside; checked here
  * @param progress told the share done, 0–1; what it throws goes through (a cancel)
+ * @param sink takes blocks of weather as they are read; without one they are all in what is staged
  */
 export async function readImport(
   kind: ImportKind,
@@ -55,6 +72,7 @@ export async function readImport(
   options: ImportOptions,
   context: ImportContext,
   progress: Progress = () => undefined,
+  sink?: BlockSink,
 ): Promise<ImportReading> {
   const findings = new FindingList();
   const checked = checkOptions(options, findings);
@@ -68,7 +86,7 @@ export async function readImport(
       staged: EMPTY[kind],
     };
   }
-  const reading = await READERS[kind](files, checked, context, progress);
+  const reading = await READERS[kind](files, checked, context, progress, sink);
   const counts = findings.totals();
   return {
     ...reading,
@@ -79,4 +97,45 @@ export async function readImport(
       note: reading.findingCounts.note + counts.note,
     },
   };
+}
+
+const ARRAYS: readonly ContentKind[] = ['netcdf', 'hdf5', 'tiff'];
+
+/** Weather as arrays (NetCDF, Zarr, GeoTIFF, or an archive of them) or as tables. */
+async function readWeatherOfAnyKind(
+  files: readonly ImportFile[],
+  options: ImportOptions,
+  context: ImportContext,
+  progress: Progress,
+  sink?: BlockSink,
+): Promise<ImportReading> {
+  for (const file of files) {
+    const kind = contentKind(headOf(file), file.name);
+    if (ARRAYS.includes(kind) || (kind === 'zip' && (await holdsArrays(file)))) {
+      const { readGridWeather } = await import('./grid-weather.ts');
+      return readGridWeather(files, options, context, progress, sink);
+    }
+  }
+  return readWeather(files, options, context, progress);
+}
+
+/** True for an archive with an array store or array files in it. A damaged one is left to the reader of tables, which says what is wrong. */
+async function holdsArrays(file: ImportFile): Promise<boolean> {
+  try {
+    const members = await listZipMembers(file);
+    return members.some(({ name }) => /(^|\/)(\.z(group|array|metadata)|zarr\.json)$|\.(nc4?|cdf|h5|hdf5?|tiff?)$/i.test(name));
+  } catch {
+    return false;
+  }
+}
+
+function headOf(file: ImportFile): Uint8Array {
+  if (file.path === undefined) return file.bytes.subarray(0, HEAD_BYTES);
+  const head = Buffer.alloc(HEAD_BYTES);
+  const handle = openSync(file.path, 'r');
+  try {
+    return head.subarray(0, readSync(handle, head, 0, HEAD_BYTES, 0));
+  } finally {
+    closeSync(handle);
+  }
 }

@@ -7,14 +7,16 @@ import type { Geometry, LineString, MultiLineString, MultiPolygon, Polygon } fro
 import type { Finding } from '../base/errors.ts';
 import type { LossRule } from '../canal/loss-rule.ts';
 import type { Soil } from '../season/types.ts';
-import type { WeatherVariable } from '../weather/variable.ts';
+import type { BlockVariable, GridShape } from '../weather/variable.ts';
 
-export type ImportKind = 'stations' | 'weather' | 'parcels' | 'canals' | 'plantings' | 'soils';
+export type ImportKind = 'stations' | 'weather' | 'parcels' | 'canals' | 'turnouts' | 'areas' | 'plantings' | 'soils' | 'soil-areas';
 
-/** One uploaded file. */
+/** One uploaded file. Readers of large formats open `path` where it is given; `bytes` then reads the whole file, and is only for small ones. */
 export interface ImportFile {
   readonly name: string;
   readonly bytes: Uint8Array;
+  /** where it lies on disk while it is read, when it does */
+  readonly path?: string;
 }
 
 /** What the district already knows, so that codes can be checked and joined. */
@@ -23,7 +25,12 @@ export interface ImportContext {
   readonly knownSites: readonly { readonly code: string; readonly name: string }[];
   readonly knownParcels: readonly string[];
   readonly knownReaches: readonly { readonly code: string; readonly parentCode: string | null }[];
-  readonly knownTurnouts: readonly { readonly code: string; readonly reachCode: string }[];
+  readonly knownTurnouts: readonly {
+    readonly code: string;
+    readonly reachCode: string;
+    readonly longitude?: number | null;
+    readonly latitude?: number | null;
+  }[];
   readonly crops: readonly { readonly code: string; readonly name: string }[];
   /** `plantingDay` is MM-DD */
   readonly calendars: readonly { readonly code: string; readonly cropCode: string; readonly plantingDay: string | null }[];
@@ -38,6 +45,17 @@ export interface ImportContext {
   readonly siteBox?: readonly [number, number, number, number] | null;
   /** parcel → its plantings in all seasons; parcels without plantings are left out */
   readonly plantingCounts?: Readonly<Record<string, number>>;
+  /** IANA zone of the district: its day is the day of weather that names no other */
+  readonly timeZone?: string;
+  /** elevation taken where none is known [m] */
+  readonly defaultElevation?: number;
+  readonly sources?: readonly { readonly name: string; readonly kind: 'stations' | 'grid'; readonly grid: GridShape | null }[];
+  readonly serviceAreas?: readonly {
+    readonly code: string;
+    readonly reachCode: string | null;
+    readonly turnoutCode: string | null;
+    readonly geometry: Polygon | MultiPolygon;
+  }[];
   /** reach → parcels that name it; reaches without parcels are left out */
   readonly parcelCounts?: Readonly<Record<string, number>>;
 }
@@ -80,6 +98,26 @@ export interface ImportOptions {
   readonly cropMappings?: Readonly<Record<string, string | null>>;
   /** stations: anemometer height [m] of stations that bring none */
   readonly windHeight?: number;
+  /** vector and archive files: layer (or member file) to read; default the first that has features */
+  readonly layer?: string;
+  /** vector and raster files: coordinate system of the file, "EPSG:…"; goes before what the file says */
+  readonly crs?: string;
+  /** parcels without a code of a turnout or reach: how they are joined to one by place */
+  readonly joinByPlace?: 'none' | 'nearest-turnout' | 'nearest-reach' | 'service-area';
+  /** furthest a turnout or reach may lie from the edge of a parcel that is joined to it [m]; default 500 */
+  readonly joinDistance?: number;
+  /** parcels: first day on which the file's parcels stand (YYYY-MM-DD) */
+  readonly validFrom?: string;
+  /** hourly and shorter weather: what a time stamp names; default told from the file, else `end` for sums and `start` otherwise, with a warning */
+  readonly stamp?: 'start' | 'centre' | 'end';
+  /** hourly and shorter weather: zone of the stamps, an IANA name or a fixed offset such as "UTC-07:00" */
+  readonly stampZone?: string;
+  /** hourly and shorter weather: fewest hours of a day that make its sums and means; default 22 */
+  readonly minimumHours?: number;
+  /** grids: cells within this many degrees around the district are kept; default one cell */
+  readonly margin?: number;
+  /** grids: read the whole grid although the district has a place; only for small grids */
+  readonly wholeGrid?: boolean;
 }
 
 /** One column of a table, or one property of the features of a vector file. */
@@ -109,9 +147,53 @@ export interface CropCount {
   readonly proposed: string | null;
 }
 
+export type FileFormat =
+  | 'csv'
+  | 'geojson'
+  | 'shapefile'
+  | 'geopackage'
+  | 'flatgeobuf'
+  | 'geoparquet'
+  | 'kml'
+  | 'netcdf-3'
+  | 'netcdf-4'
+  | 'zarr'
+  | 'geotiff'
+  | 'zip'
+  | 'unknown';
+
+/** One layer of a vector file, or one member of an archive. */
+export interface UnderstoodLayer {
+  readonly name: string;
+  readonly featureCount: number | null;
+  readonly geometry: string | null;
+}
+
+/** The window of a grid that was read. */
+export interface UnderstoodGrid {
+  readonly shape: GridShape;
+  /** cells kept */
+  readonly cells: number;
+  /** [west, south, east, north] of the centres of the cells kept */
+  readonly box: readonly [number, number, number, number];
+  /** minutes from one field to the next; null for a single field */
+  readonly stepMinutes: number | null;
+  readonly calendar: string | null;
+}
+
 /** What the reader made of the file, for the user to check. */
 export interface Understood {
-  readonly format: 'csv' | 'geojson' | 'unknown';
+  readonly format: FileFormat;
+  /** vector files and archives with a choice */
+  readonly layers?: readonly UnderstoodLayer[];
+  readonly layer?: string | null;
+  /** how the coordinates were brought to WGS 84, with the accuracy that can be expected */
+  readonly transformation?: string | null;
+  readonly grid?: UnderstoodGrid | null;
+  /** hourly and shorter weather */
+  readonly stamp?: 'start' | 'centre' | 'end' | null;
+  readonly stampZone?: string | null;
+  readonly stepMinutes?: number | null;
   readonly encoding: string | null;
   readonly delimiter: string | null;
   readonly decimalComma: boolean | null;
@@ -171,14 +253,58 @@ export interface StagedSite {
   readonly zone: string | null;
 }
 
-/** One variable of one month: values [site][day of month] in the unit of `WEATHER_VARIABLES`, null where missing. */
+/** One variable of one month: values [site × day of month × step] in the unit of the variable, NaN where missing. */
 export interface StagedBlock {
-  readonly variable: WeatherVariable;
+  readonly variable: BlockVariable;
   /** YYYY-MM-01 */
   readonly month: string;
   /** sorted */
   readonly siteCodes: readonly string[];
-  readonly values: readonly (readonly (number | null)[])[];
+  /** values a day: 1, or 24 for hourly variables */
+  readonly steps: 1 | 24;
+  readonly values: Float32Array;
+}
+
+/** Takes a block as soon as it is read, so that a large grid is never whole in memory; wait for it before the next. */
+export type BlockSink = (block: StagedBlock) => Promise<void>;
+
+/** A cell of a grid, as a site that the import brings along. */
+export interface StagedCell {
+  readonly code: string;
+  readonly row: number;
+  readonly column: number;
+  readonly longitude: number;
+  readonly latitude: number;
+  /** m */
+  readonly elevation: number | null;
+  /** height the wind of the grid is at [m], where it says */
+  readonly windHeight?: number | null;
+}
+
+export interface StagedArea {
+  readonly code: string;
+  readonly name: string;
+  readonly reachCode: string | null;
+  readonly turnoutCode: string | null;
+  /** m², on the WGS 84 ellipsoid */
+  readonly area: number;
+  readonly west: number;
+  readonly south: number;
+  readonly east: number;
+  readonly north: number;
+  readonly geometry: Polygon | MultiPolygon;
+  readonly attributes: Readonly<Record<string, string | number | boolean | null>>;
+}
+
+export interface StagedSoilArea {
+  readonly code: string;
+  readonly soilCode: string;
+  readonly west: number;
+  readonly south: number;
+  readonly east: number;
+  readonly north: number;
+  readonly geometry: Polygon | MultiPolygon;
+  readonly attributes: Readonly<Record<string, string | number | boolean | null>>;
 }
 
 export interface StagedParcel {
@@ -209,6 +335,9 @@ export interface StagedTurnout {
   readonly reachCode: string;
   /** m³ s⁻¹ */
   readonly capacity: number | null;
+  /** degrees, where the file says */
+  readonly longitude?: number | null;
+  readonly latitude?: number | null;
 }
 
 export interface StagedPlanting {
@@ -250,8 +379,13 @@ export type StagedImport =
   | {
       readonly kind: 'weather';
       readonly source: string;
+      /** the blocks that were not handed to the sink */
       readonly blocks: readonly StagedBlock[];
-      /** rows kept */
+      /** cells of a grid, or stations that the file itself places; both are made when the import is applied */
+      readonly cells?: readonly StagedCell[];
+      readonly stations?: readonly StagedSite[];
+      readonly grid?: GridShape | null;
+      /** rows kept; for grids, site-days with a value */
       readonly rows: number;
       /** sites with at least one value */
       readonly sites: number;
@@ -265,6 +399,9 @@ export type StagedImport =
       readonly cropMappings: Readonly<Record<string, string | null>>;
     }
   | { readonly kind: 'canals'; readonly reaches: readonly StagedReach[] }
+  | { readonly kind: 'turnouts'; readonly turnouts: readonly StagedTurnout[] }
+  | { readonly kind: 'areas'; readonly areas: readonly StagedArea[] }
+  | { readonly kind: 'soil-areas'; readonly soilAreas: readonly StagedSoilArea[] }
   | { readonly kind: 'plantings'; readonly plantings: readonly StagedPlanting[] }
   | { readonly kind: 'soils'; readonly soils: readonly StagedSoil[] };
 

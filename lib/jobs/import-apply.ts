@@ -8,11 +8,14 @@ import { countGeometryUp, listDangling } from '../../db/queries/import-land.ts';
 import { changeImport, findImport, holdDistrict, type ImportRow, type ImportState, nextAppliedOrder } from '../../db/queries/import-row.ts';
 import { database } from '../access/database.ts';
 import { Refused, TillwaterError } from '../base/errors.ts';
+import type { GridShape } from '../weather/variable.ts';
 import { type ApplyCounts, countsChanged, type Touched } from './import-counts.ts';
 import {
+  applyAreas,
   applyCropMappings,
   applyPlantings,
   applyReaches,
+  applySoilAreas,
   applySoils,
   applyTurnouts,
   checkTree,
@@ -23,8 +26,9 @@ import { refuseDangling } from './import-references.ts';
 import { seasonsTouched, startImportRuns } from './import-runs.ts';
 import { findStagedHead, type StagedHead, type StagedPart, stagedParts } from './import-staged.ts';
 import { performUndo } from './import-undo.ts';
-import { applyBlocks, applySites } from './import-weather.ts';
+import { applyBlocks, applyCells, applySites } from './import-weather.ts';
 import type { JobData } from './queue.ts';
+import { markStale } from './stale-runs.ts';
 
 export interface ImportApplyData extends JobData {
   readonly importId: string;
@@ -73,6 +77,7 @@ async function applyInside(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void
   await refuseDangling(tx, own, { before: danglingBefore, doing: 'apply' });
   await onStep('checked');
   const touched = countsChanged(result.counts) ? await seasonsTouched(tx, own.districtId, result.touched) : [];
+  await markStale(tx, own.districtId, touched, `import of ${row.kind} applied`);
   const applied = { ...result.counts, seasons: touched, runs: null };
   const done = await changeImport(
     tx,
@@ -109,7 +114,7 @@ class Applier {
 
   async apply(): Promise<{ counts: ApplyCounts; touched: Touched }> {
     let done = 0;
-    for await (const part of stagedParts(this.tx, this.own.districtId, this.own.importId)) {
+    for await (const part of stagedParts(this.tx, this.own, this.head)) {
       await this.write(part);
       await this.onStep(`${part.part} ${++done}`);
       await this.tell(done / Math.max(1, this.head.pieces));
@@ -124,7 +129,9 @@ class Applier {
     const { tx, own } = this;
     switch (part.part) {
       case 'sites':
-        return this.count('sites', await applySites(tx, own, part.items, this.sourceOption()));
+        return this.count('sites', await applySites(tx, own, part.items, this.sourceOption() ?? this.head.source));
+      case 'cells':
+        return this.count('cells', await applyCells(tx, own, part.items, this.gridOfHead()));
       case 'blocks': {
         const { blocks, months } = await applyBlocks(tx, own, part.items, this.sourceOption() ?? this.head.source);
         this.counts.weather_blocks_changed = (this.counts.weather_blocks_changed ?? 0) + blocks;
@@ -142,9 +149,19 @@ class Applier {
       case 'reaches':
         for (const reach of part.items) this.reaches.add(reach.code);
         return this.count('reaches', await applyReaches(tx, own, part.items));
+      case 'areas':
+        return this.count('areas', await applyAreas(tx, own, part.items));
+      case 'soilAreas':
+        return this.count('soil_areas', await applySoilAreas(tx, own, part.items));
       case 'soils':
         return this.count('soils', await applySoils(tx, own, part.items));
     }
+  }
+
+  private gridOfHead(): { name: string; shape: GridShape } {
+    const { source, grid } = this.head;
+    if (!grid) throw new Refused('The cells of this grid came without their lattice: read the files again.');
+    return { name: this.sourceOption() ?? source ?? 'Grid', shape: grid };
   }
 
   private async finish(): Promise<void> {

@@ -1,41 +1,47 @@
 /** What an import may bring: how many files, how large, and of what kind, told by content rather than by name. */
 import { TooLarge, UnknownKind } from '../base/errors.ts';
-import type { ImportFile, ImportKind } from '../files/reading.ts';
-import { detectEncoding, looksBinary } from '../files/text-encoding.ts';
+import { type ContentKind, contentKind, contentWords } from '../files/content-kind.ts';
+import type { ImportKind } from '../files/reading.ts';
+
+const TABLES: readonly ContentKind[] = ['table', 'zip'];
+const SHAPES: readonly ContentKind[] = ['json', 'zip', 'sqlite', 'flatgeobuf', 'parquet', 'xml', 'shapefile-part'];
+const ARRAYS: readonly ContentKind[] = ['netcdf', 'hdf5', 'tiff'];
+
+const SHAPE_WORDS =
+  'GeoJSON, zipped shapefile, GeoPackage, FlatGeobuf, GeoParquet or KML. A file geodatabase must be exported to one of these first';
+const TABLE_WORDS = 'a table as text (CSV: comma, semicolon or tab between cells)';
 
 /** What each kind of import is read from. */
-const ACCEPTED: Record<ImportKind, 'csv' | 'geojson'> = {
-  stations: 'csv',
-  weather: 'csv',
-  parcels: 'geojson',
-  canals: 'geojson',
-  plantings: 'csv',
-  soils: 'csv',
+const ACCEPTED: Record<ImportKind, { readonly kinds: readonly ContentKind[]; readonly words: string }> = {
+  stations: { kinds: TABLES, words: TABLE_WORDS },
+  weather: {
+    kinds: [...TABLES, ...ARRAYS],
+    words: `${TABLE_WORDS}, NetCDF, GeoTIFF, zipped Zarr, or a ZIP archive of such files`,
+  },
+  parcels: { kinds: SHAPES, words: SHAPE_WORDS },
+  canals: { kinds: SHAPES, words: SHAPE_WORDS },
+  turnouts: { kinds: ['table', ...SHAPES], words: `${TABLE_WORDS}, or ${SHAPE_WORDS}` },
+  areas: { kinds: SHAPES, words: SHAPE_WORDS },
+  'soil-areas': { kinds: SHAPES, words: SHAPE_WORDS },
+  plantings: { kinds: TABLES, words: TABLE_WORDS },
+  soils: { kinds: TABLES, words: TABLE_WORDS },
 };
 
-const ACCEPTED_TEXT = { csv: 'a table as text (CSV: comma, semicolon or tab between cells)', geojson: 'GeoJSON (RFC 7946)' } as const;
-
-const MOST_FILES = 20;
+const MOST_FILES = 400;
 const MEGABYTE = 1024 * 1024;
 
-/** First bytes of files that people try. */
-const SIGNATURES: readonly (readonly [string, readonly number[]])[] = [
-  ['a ZIP archive or a spreadsheet', [0x50, 0x4b, 0x03, 0x04]],
-  ['an older spreadsheet', [0xd0, 0xcf, 0x11, 0xe0]],
-  ['a PDF document', [0x25, 0x50, 0x44, 0x46]],
-  ['a gzip archive', [0x1f, 0x8b]],
-  ['a PNG picture', [0x89, 0x50, 0x4e, 0x47]],
-  ['a JPEG picture', [0xff, 0xd8, 0xff]],
-  ['a shapefile', [0x00, 0x00, 0x27, 0x0a]],
-  ['a SQLite database or GeoPackage', [0x53, 0x51, 0x4c, 0x69, 0x74, 0x65]],
-  ['an HDF5 or NetCDF-4 file', [0x89, 0x48, 0x44, 0x46]],
-  ['a NetCDF file', [0x43, 0x44, 0x46]],
-];
+/** A file as far as it has to be known to be let in. */
+export interface FileHead {
+  readonly name: string;
+  readonly size: number;
+  /** first bytes */
+  readonly head: Uint8Array;
+}
 
 /** @throws TooLarge or UnknownKind, saying the limit or what is accepted */
-export function checkContent(kind: ImportKind, files: readonly ImportFile[], limitMegabytes: number): void {
+export function checkContent(kind: ImportKind, files: readonly FileHead[], limitMegabytes: number): void {
   if (files.length > MOST_FILES) throw new TooLarge(`${files.length} files were sent; an import takes at most ${MOST_FILES}. Split them.`);
-  const total = files.reduce((sum, file) => sum + file.bytes.length, 0);
+  const total = files.reduce((sum, file) => sum + file.size, 0);
   if (total > limitMegabytes * MEGABYTE) {
     throw new TooLarge(
       `The files have ${Math.ceil(total / MEGABYTE)} MB together; the limit is ${limitMegabytes} MB (TILLWATER_UPLOAD_LIMIT_MB). Split them.`,
@@ -44,26 +50,8 @@ export function checkContent(kind: ImportKind, files: readonly ImportFile[], lim
   for (const file of files) checkFile(kind, file);
 }
 
-function checkFile(kind: ImportKind, file: ImportFile): void {
-  const wanted = ACCEPTED[kind];
-  const seen = kindOfContent(file.bytes);
-  if (seen === wanted) return;
-  throw new UnknownKind(
-    `"${file.name}" is ${seen === 'csv' || seen === 'geojson' ? ACCEPTED_TEXT[seen] : seen}; ${kind} ${kind === 'weather' ? 'is' : 'are'} read from ${ACCEPTED_TEXT[wanted]}.`,
-  );
-}
-
-/** `csv`, `geojson`, or what else it looks like in words. */
-function kindOfContent(bytes: Uint8Array): 'csv' | 'geojson' | string {
-  if (bytes.length === 0) return 'an empty file';
-  const known = SIGNATURES.find(([, signature]) => signature.every((byte, i) => bytes[i] === byte));
-  if (known) return known[0];
-  const encoding = detectEncoding(bytes);
-  if (looksBinary(bytes, encoding)) return 'a binary file of unknown kind';
-  const start = Buffer.from(bytes.subarray(encoding.skip, encoding.skip + 400))
-    .toString(encoding.name.startsWith('utf-16') ? 'utf16le' : 'latin1')
-    .trimStart();
-  if (start.startsWith('{') || start.startsWith('[')) return 'geojson';
-  if (/^<(\?xml|!doctype|html|kml|gml)/i.test(start)) return 'a markup file (XML or HTML)';
-  return 'csv';
+function checkFile(kind: ImportKind, { name, head }: FileHead): void {
+  const { kinds, words } = ACCEPTED[kind];
+  if (kinds.includes(contentKind(head, name))) return;
+  throw new UnknownKind(`"${name}" is ${contentWords(head, name)}; ${kind} ${kind === 'weather' ? 'is' : 'are'} read from ${words}.`);
 }

@@ -1,13 +1,16 @@
 /** The job that reads an import's files: what was understood, what is at fault, a sample for the eye, and what is ready to apply. */
+import type { Tx } from '../../db/connect.ts';
 import { findImportContext } from '../../db/queries/import-context.ts';
-import { changeImport, findImport, type ImportRow, listImportFiles, saveStaged } from '../../db/queries/import-row.ts';
+import { changeImport, dropStaged, findImport, type ImportRow, listImportFiles, saveStagedPiece } from '../../db/queries/import-row.ts';
 import { database } from '../access/database.ts';
 import { log } from '../access/log.ts';
 import { TillwaterError } from '../base/errors.ts';
-import { readImport } from '../files/read-import.ts';
-import type { ImportKind, ImportOptions, ImportReading, Progress } from '../files/reading.ts';
-import { stagedPieces } from './import-staged.ts';
+import type { readImport } from '../files/read-import.ts';
+import type { ImportContext, ImportKind, ImportOptions, Progress } from '../files/reading.ts';
+import { PieceWriter } from './import-staged.ts';
 import type { JobData } from './queue.ts';
+import { type ReadHooks, type ReadOutcome, readInChild } from './reader-child.ts';
+import { layOutFiles } from './reading-folder.ts';
 
 export interface ImportReadData extends JobData {
   readonly importId: string;
@@ -22,28 +25,50 @@ const PROGRESS_MS = 250;
 /** The plan was changed or the import cancelled while it was read. */
 class Superseded extends Error {}
 
+/** What is to be read. */
+interface Given {
+  readonly row: ImportRow;
+  readonly context: ImportContext;
+}
+
 /**
  * Reads the files of an import and stores what came of it, unless the plan has changed meanwhile. A reader that fails leaves the import
  * "failed" with the reason; a database that fails throws, and the queue tries again.
+ *
+ * @param reader reads in this process instead of one of its own
  */
-export async function performRead(data: ImportReadData, reader: Reader = readImport): Promise<void> {
-  const given = await database().inDistrict(data.districtId, async (tx) => {
+export async function performRead(data: ImportReadData, reader?: Reader): Promise<void> {
+  const given = await database().inDistrict(data.districtId, async (tx): Promise<Given | null> => {
     const row = await findImport(tx, data.districtId, data.importId);
     if (row?.state !== 'reading' || row.revision !== data.revision) return null;
-    const context = await findImportContext(tx, data.districtId);
-    return { row, context, files: await listImportFiles(tx, data.districtId, data.importId) };
+    await dropStaged(tx, data.districtId, data.importId);
+    return { row, context: await findImportContext(tx, data.districtId) };
   });
   if (!given) return;
-  const { row, files, context } = given;
-  let reading: ImportReading;
+  const hooks = { progress: progressOf(data), piece: pieceTaker(data) };
+  let outcome: ReadOutcome;
   try {
-    reading = await reader(row.kind as ImportKind, files, readerOptions(row.options), context, progressOf(data));
+    outcome = reader ? await readHere(data, given, reader, hooks) : await readApart(data, given, hooks);
   } catch (error) {
     if (error instanceof Superseded) return;
     await markFailed(data, error);
     return;
   }
-  await saveReading(data, row, reading);
+  await saveReading(data, given.row, outcome);
+}
+
+/** Reads in a process of its own, which gets the files as files. */
+function readApart(data: ImportReadData, { row, context }: Given, hooks: ReadHooks): Promise<ReadOutcome> {
+  const layOut = (folder: string) => database().inDistrict(data.districtId, (tx) => layOutFiles(tx, data, folder));
+  return readInChild({ kind: row.kind as ImportKind, options: readerOptions(row.options), context, layOut }, hooks);
+}
+
+async function readHere(data: ImportReadData, { row, context }: Given, reader: Reader, hooks: ReadHooks): Promise<ReadOutcome> {
+  const files = await database().inDistrict(data.districtId, (tx) => listImportFiles(tx, data.districtId, data.importId));
+  const writer = new PieceWriter(hooks.piece);
+  const told = await reader(row.kind as ImportKind, files, readerOptions(row.options), context, hooks.progress, writer.block);
+  const { staged, ...reading } = told;
+  return { reading, head: await writer.finish(staged) };
 }
 
 /** The reader's options: without what only the pipeline knows. */
@@ -52,8 +77,24 @@ function readerOptions(options: unknown): ImportOptions {
   return rest;
 }
 
-async function saveReading(data: ImportReadData, row: ImportRow, reading: ImportReading): Promise<void> {
-  const pieces = await stagedPieces(reading.staged);
+/** Stores pieces in the order in which they come, while the reading is wanted. */
+function pieceTaker(data: ImportReadData): ReadHooks['piece'] {
+  let ordinal = 0;
+  return async (bytes) => {
+    ordinal++;
+    await database().inDistrict(data.districtId, async (tx) => {
+      await refuseSuperseded(tx, data);
+      await saveStagedPiece(tx, { districtId: data.districtId, importId: data.importId, ordinal }, bytes);
+    });
+  };
+}
+
+async function refuseSuperseded(tx: Tx, data: ImportReadData): Promise<void> {
+  const wanted = await changeImport(tx, { ...data, from: ['reading'], revision: data.revision }, { state: 'reading' });
+  if (!wanted) throw new Superseded();
+}
+
+async function saveReading(data: ImportReadData, row: ImportRow, { reading, head }: ReadOutcome): Promise<void> {
   await database().inDistrict(data.districtId, async (tx) => {
     const saved = await changeImport(
       tx,
@@ -68,7 +109,7 @@ async function saveReading(data: ImportReadData, row: ImportRow, reading: Import
         error: null,
       },
     );
-    if (saved) await saveStaged(tx, data.districtId, data.importId, pieces);
+    if (saved) await saveStagedPiece(tx, { districtId: data.districtId, importId: data.importId, ordinal: 0 }, head);
   });
 }
 
@@ -93,13 +134,14 @@ async function markFailed(data: ImportReadData, error: unknown): Promise<void> {
     ? error.message
     : `The reader failed on this file (${error instanceof Error ? error.message : String(error)}). Check that the file opens in another program and is of the kind chosen; then read it again or upload it anew.`;
   const findings = known && 'findings' in error && Array.isArray(error.findings) ? error.findings : [];
-  await database().inDistrict(data.districtId, (tx) =>
-    changeImport(
+  await database().inDistrict(data.districtId, async (tx) => {
+    const marked = await changeImport(
       tx,
       { ...data, from: ['reading'], revision: data.revision },
       { state: 'failed', error: reason, findings, findingCounts: countOf(findings) },
-    ),
-  );
+    );
+    if (marked) await dropStaged(tx, data.districtId, data.importId);
+  });
 }
 
 function countOf(findings: readonly { severity: string }[]) {

@@ -11,6 +11,7 @@ import { checkTree } from './import-land.ts';
 import { laterText, refuseDangling } from './import-references.ts';
 import { startImportRuns } from './import-runs.ts';
 import { refuseLostWeather, restoreBlocks } from './import-weather.ts';
+import { markStale } from './stale-runs.ts';
 
 /** @throws Conflict naming the import that must be undone first */
 export async function refuseLaterImport(tx: Tx, own: ImportKey): Promise<void> {
@@ -40,6 +41,7 @@ async function undoInside(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void>
   await restoreAll(tx, own, onStep);
   await dropBefore(tx, own.districtId, own.importId);
   const understood = row.understood as { applied?: { seasons?: string[] } };
+  await markStale(tx, own.districtId, understood.applied?.seasons ?? [], `import of ${row.kind} undone`);
   const done = await changeImport(
     tx,
     { ...own, from: ['undoing'] },

@@ -6,8 +6,9 @@ import { nextSiteOrdinal, nextSourceId } from '../../db/queries/import-land.ts';
 import { type BlockKey, deleteBlock, findBlock, listBlocksBeyond, listSiteKeys, saveBlock } from '../../db/queries/import-weather.ts';
 import { daysInMonth } from '../base/civil-date.ts';
 import { Conflict, type Finding, Refused } from '../base/errors.ts';
-import type { StagedBlock, StagedSite } from '../files/reading.ts';
-import { type BlockImage, mergeBlock, restoreBlock } from './import-block.ts';
+import type { StagedBlock, StagedCell, StagedSite } from '../files/reading.ts';
+import type { GridShape } from '../weather/variable.ts';
+import { type BlockImage, type BlockRow, mergeBlock, restoreBlock } from './import-block.ts';
 
 interface Place {
   readonly sourceId: number;
@@ -20,6 +21,7 @@ class SitePlaces {
 
   constructor(sites: Awaited<ReturnType<typeof listSourceSites>>, preferred: string | null) {
     for (const site of sites) {
+      if (site.kind === 'grid' && site.source !== preferred) continue;
       if (!this.known.has(site.code) || site.source === preferred)
         this.known.set(site.code, { sourceId: site.sourceId, ordinal: site.ordinal });
     }
@@ -60,14 +62,69 @@ export async function applySites(tx: Tx, own: ImportKey, sites: readonly StagedS
 }
 
 async function ensureSource(tx: Tx, own: ImportKey, name: string | null): Promise<number> {
-  const sources = await listSources(tx, own.districtId);
+  const all = await listSources(tx, own.districtId);
+  const sources = all.filter((source) => source.kind === 'stations');
   if (name === null && sources.length === 1) return sources[0].sourceId;
+  const grid = all.find((source) => source.name === name && source.kind === 'grid');
+  if (grid) throw new Conflict(`"${name}" is the name of a grid: give the stations a source of another name.`);
   const wanted = name ?? DEFAULT_SOURCE;
   const found = sources.find((source) => source.name === wanted);
   if (found) return found.sourceId;
   const sourceId = await nextSourceId(tx, own.districtId);
-  await replaceRows(tx, own, 'weather_source', [{ source_id: sourceId, name: wanted, kind: 'stations' }]);
+  await replaceRows(tx, own, 'weather_source', [{ source_id: sourceId, name: wanted, kind: 'stations', rank: all.length + 1 }]);
   return sourceId;
+}
+
+/**
+ * Makes the source of a grid and those of its cells that are not there yet. The lattice of a source never changes.
+ *
+ * @throws Conflict when the name is that of stations, or of a grid on another lattice
+ */
+export async function applyCells(tx: Tx, own: ImportKey, cells: readonly StagedCell[], grid: { name: string; shape: GridShape }) {
+  const sources = await listSources(tx, own.districtId);
+  const found = sources.find((source) => source.name === grid.name);
+  if (found && found.kind !== 'grid')
+    throw new Conflict(`"${grid.name}" is the name of a source of stations: give the grid another name in the options.`);
+  if (found && !sameLattice(found.grid as GridShape, grid.shape))
+    throw new Conflict(
+      `The cells of "${grid.name}" lie elsewhere than those stored under this name: give this grid another name in the options.`,
+    );
+  const sourceId = found?.sourceId ?? (await nextSourceId(tx, own.districtId));
+  if (!found) {
+    const row = { source_id: sourceId, name: grid.name, kind: 'grid', grid: grid.shape, rank: sources.length + 1 };
+    await replaceRows(tx, own, 'weather_source', [row]);
+  }
+  const known = new Map(
+    (await listSourceSites(tx, own.districtId)).filter((site) => site.sourceId === sourceId).map((site) => [site.code, site.ordinal]),
+  );
+  let next = await nextSiteOrdinal(tx, own.districtId, sourceId);
+  const rows = cells.map((cell) => ({
+    source_id: sourceId,
+    ordinal: known.get(cell.code) ?? next++,
+    code: cell.code,
+    name: '',
+    longitude: cell.longitude,
+    latitude: cell.latitude,
+    elevation_m: cell.elevation,
+    wind_height_m: cell.windHeight ?? null,
+    zone: null,
+    grid_row: cell.row,
+    grid_column: cell.column,
+  }));
+  return replaceRows(tx, own, 'site', rows);
+}
+
+/** Largest difference of two places that count as one, as a share of a cell. */
+const SAME_PLACE = 1e-3;
+
+function sameLattice(a: GridShape, b: GridShape): boolean {
+  if (a.kind !== b.kind || a.rows !== b.rows || a.columns !== b.columns) return false;
+  const near = (one: readonly number[] | null, other: readonly number[] | null) => {
+    if (!one || !other) return one === other;
+    const step = Math.abs((one[one.length - 1] - one[0]) / Math.max(1, one.length - 1)) || 1;
+    return one.every((value, i) => Math.abs(value - other[i]) <= SAME_PLACE * step);
+  };
+  return near(a.x, b.x) && near(a.y, b.y);
 }
 
 interface BlockChanges {
@@ -89,7 +146,7 @@ export async function applyBlocks(tx: Tx, own: ImportKey, blocks: readonly Stage
   for (const block of blocks) {
     for (const [sourceId, rows] of rowsBySource(block, places)) {
       const key = { sourceId, variable: block.variable, month: block.month };
-      const merged = mergeBlock(await findBlock(tx, own.districtId, key), daysOf(block.month), rows);
+      const merged = mergeBlock(await findBlock(tx, own.districtId, key), { dayCount: daysOf(block.month), steps: block.steps }, rows);
       if (!merged) continue;
       await saveBlock(tx, own.districtId, key, merged.block);
       await fileBlockImage(tx, own, { ...key }, merged.image);
@@ -101,11 +158,12 @@ export async function applyBlocks(tx: Tx, own: ImportKey, blocks: readonly Stage
 }
 
 function rowsBySource(block: StagedBlock, places: SitePlaces) {
-  const bySource = new Map<number, { ordinal: number; values: readonly (number | null)[] }[]>();
+  const bySource = new Map<number, BlockRow[]>();
+  const length = block.values.length / Math.max(1, block.siteCodes.length);
   block.siteCodes.forEach((code, i) => {
     const place = places.find(code) as Place;
     const rows = bySource.get(place.sourceId) ?? [];
-    rows.push({ ordinal: place.ordinal, values: block.values[i] });
+    rows.push({ ordinal: place.ordinal, values: block.values.subarray(i * length, (i + 1) * length) });
     bySource.set(place.sourceId, rows);
   });
   return bySource;
@@ -158,7 +216,9 @@ export async function refuseLostWeather(tx: Tx, districtId: string, before: Awai
     if (now.has(`${site.sourceId} ${site.ordinal}`)) continue;
     const blocks = await listBlocksBeyond(tx, districtId, site.sourceId, site.ordinal);
     const hasWeather = blocks.some((block) =>
-      block.quality.subarray(site.ordinal * block.dayCount, (site.ordinal + 1) * block.dayCount).some((q) => q !== 0),
+      block.quality
+        .subarray(site.ordinal * block.dayCount * block.steps, (site.ordinal + 1) * block.dayCount * block.steps)
+        .some((q) => q !== 0),
     );
     if (hasWeather) {
       throw new Conflict(`Station "${site.code}" has weather that was imported after it. Undo the weather import first, then this one.`);

@@ -5,6 +5,8 @@ import { database } from '../access/database.ts';
 import { type ImportApplyData, performAct } from './import-apply.ts';
 import { type ImportReadData, performRead } from './import-read.ts';
 import { addUpkeep, workOn } from './queue.ts';
+import { standBy } from './reader-child.ts';
+import { clearReadingFolders } from './reading-folder.ts';
 
 const GIVEN_UP: { from: ImportState; to: ImportState; error: string }[] = [
   {
@@ -24,6 +26,8 @@ const GIVEN_UP: { from: ImportState; to: ImportState; error: string }[] = [
 
 /** Works on imports until `stopQueue`. */
 export async function workOnImports(): Promise<void> {
+  clearReadingFolders();
+  standBy();
   await workOn<ImportReadData>('import-read', (data) => performRead(data));
   await workOn<ImportApplyData>('import-apply', (data) => performAct(data));
   addUpkeep(settleGivenUp);

@@ -5,6 +5,7 @@ import { changeImport, dropStaged, findImport, type ImportRow, type ImportState,
 import { database } from '../access/database.ts';
 import { environment } from '../access/environment.ts';
 import { Conflict, type Finding, Malformed, NotFound, Refused } from '../base/errors.ts';
+import { HEAD_BYTES } from '../files/content-kind.ts';
 import type { ImportFile, ImportKind, ImportOptions } from '../files/reading.ts';
 import { checkContent } from './import-content.ts';
 import { findStagedHead } from './import-staged.ts';
@@ -22,9 +23,26 @@ export type PipelineOptions = ImportOptions & {
   readonly recompute?: boolean;
 };
 
+/** A file as it came in: known by its head, size and hash, its bytes wherever they lie. */
+export interface UploadedFile {
+  readonly name: string;
+  readonly size: number;
+  readonly sha256: string;
+  /** first bytes, as many as tell what it is */
+  readonly head: Uint8Array;
+  readonly content: AsyncIterable<Uint8Array> | Iterable<Uint8Array>;
+}
+
+/** A file held in memory, as an upload. */
+export function uploadOf(file: Pick<ImportFile, 'name' | 'bytes'>): UploadedFile {
+  const { name, bytes } = file;
+  const sha256 = createHash('sha256').update(bytes).digest('hex');
+  return { name, size: bytes.length, sha256, head: bytes.subarray(0, HEAD_BYTES), content: [bytes] };
+}
+
 interface NewImport {
   readonly kind: ImportKind;
-  readonly files: readonly ImportFile[];
+  readonly files: readonly UploadedFile[];
   readonly options: PipelineOptions;
 }
 
@@ -39,11 +57,7 @@ const LONGEST_NAME = 200;
 export async function createImport(who: ImportActor, wanted: NewImport): Promise<string> {
   if (wanted.files.length === 0) throw new Malformed('No file was sent: send at least one part named "file".');
   checkContent(wanted.kind, wanted.files, environment().TILLWATER_UPLOAD_LIMIT_MB);
-  const files = wanted.files.map((file) => ({
-    name: shortName(file.name),
-    bytes: file.bytes,
-    sha256: createHash('sha256').update(file.bytes).digest('hex'),
-  }));
+  const files = wanted.files.map(({ sha256, content, name }) => ({ name: shortName(name), sha256, content }));
   return database().inDistrict(who.districtId, async (tx) => {
     const values = { districtId: who.districtId, kind: wanted.kind, options: wanted.options, createdBy: who.name };
     const importId = await insertImport(tx, values, files);

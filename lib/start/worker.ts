@@ -4,6 +4,7 @@ import { closeDatabase } from '../access/database.ts';
 import { environment } from '../access/environment.ts';
 import { log } from '../access/log.ts';
 import { stopQueue } from '../jobs/queue.ts';
+import { stopStandby } from '../jobs/reader-child.ts';
 import { seasonPool } from '../jobs/season-pool.ts';
 import { startWork } from '../jobs/work.ts';
 import { sayReady, stopWithParent } from './children.ts';
@@ -15,6 +16,7 @@ sayReady();
 
 stopWithParent(async () => {
   await stopQueue();
+  stopStandby();
   await seasonPool().close();
   await closeDatabase();
 });

@@ -8,8 +8,9 @@ import { database } from '../../lib/access/database.ts';
 import { type ImportReading, NOTHING_UNDERSTOOD } from '../../lib/files/reading.ts';
 import { performRead, type Reader } from '../../lib/jobs/import-read.ts';
 import { settleGivenUp } from '../../lib/jobs/import-work.ts';
-import { createImport, patchImport } from '../../lib/jobs/imports.ts';
+import { createImport, patchImport, uploadOf } from '../../lib/jobs/imports.ts';
 import { enqueue, queue, releaseOrphans, stopQueue, workOn } from '../../lib/jobs/queue.ts';
+import { stopStandby } from '../../lib/jobs/reader-child.ts';
 import { type TestDatabase, testDatabase } from '../support/database.ts';
 import { makeDistrict, rowsOf } from '../support/import-district.ts';
 
@@ -109,7 +110,7 @@ it('puts jobs in hand back when the process stops', async () => {
 const CSV = new TextEncoder().encode('site,latitude,longitude\n1,45,-120\n');
 const who = (districtId: string) => ({ districtId, name: 'test' });
 const newImport = (districtId: string) =>
-  createImport(who(districtId), { kind: 'stations', files: [{ name: 'C:\\field\\s.csv', bytes: CSV }], options: {} });
+  createImport(who(districtId), { kind: 'stations', files: [uploadOf({ name: 'C:\\field\\s.csv', bytes: CSV })], options: {} });
 const rowOf = (districtId: string, importId: string) => database().inDistrict(districtId, (tx) => findImport(tx, districtId, importId));
 const emptyReading: ImportReading = {
   understood: NOTHING_UNDERSTOOD,
@@ -143,7 +144,8 @@ it('drops a reading whose plan was changed meanwhile', async () => {
   let options: unknown;
   await performRead({ districtId, importId, revision: 2 }, async (_kind, files, given) => {
     options = given;
-    expect(files[0]).toMatchObject({ name: 's.csv', bytes: CSV });
+    expect(files[0].name).toBe('s.csv');
+    expect(Uint8Array.from(files[0].bytes)).toEqual(CSV);
     return emptyReading;
   });
   expect(options).toEqual({ windHeight: 3 });
@@ -163,8 +165,8 @@ it('stores files of any size whole', async () => {
   const districtId = await makeDistrict('sizes');
   const bytes = Uint8Array.from({ length: 20 * 1024 * 1024 + 13 }, (_, i) => (i * 31) % 251);
   const files = [
-    { name: 'same.csv', bytes, sha256: 'x' },
-    { name: 'same.csv', bytes: bytes.slice(0, 5), sha256: 'y' },
+    { name: 'same.csv', content: [bytes], sha256: 'x' },
+    { name: 'same.csv', content: [bytes.slice(0, 5)], sha256: 'y' },
   ];
   const importId = await database().inDistrict(districtId, (tx) =>
     insertImport(tx, { districtId, kind: 'stations', options: {}, createdBy: null }, files),
@@ -178,3 +180,12 @@ it('stores files of any size whole', async () => {
   expect(read.map((file) => file.bytes.length)).toEqual([bytes.length, 5]);
   expect(Buffer.compare(read[0].bytes, bytes)).toBe(0);
 });
+
+it('reads in a process of its own, and says so when that process falls', async () => {
+  const districtId = await makeDistrict('apart');
+  const importId = await newImport(districtId);
+  await performRead({ districtId, importId, revision: 1 });
+  expect(await rowOf(districtId, importId)).toMatchObject({ state: 'ready', understood: { usableRows: 1 } });
+  expect(await rowsOf(districtId, 'select ordinal from import_staged order by 1')).toEqual([{ ordinal: 0 }, { ordinal: 1 }]);
+  stopStandby();
+}, 30_000);

@@ -85,7 +85,7 @@ export async function stage(
 ): Promise<{ districtId: string; importId: string }> {
   const pieces = await stagedPieces(staged);
   const values = { districtId, kind: staged.kind as ImportKind, options: { recompute: false, ...options }, createdBy: 'test' };
-  const file = { name: `${staged.kind}.csv`, bytes: new TextEncoder().encode('invented'), sha256: '00' };
+  const file = { name: `${staged.kind}.csv`, content: [new TextEncoder().encode('invented')], sha256: '00' };
   return database().inDistrict(districtId, async (tx) => {
     const importId = await insertImport(tx, values, [file]);
     await changeImport(tx, { districtId, importId, from: ['reading'] }, { state: 'ready', understood: { format: 'csv' } });
@@ -116,7 +116,8 @@ export function block(
   variable: StagedBlock['variable'] = 'precipitation_mm',
 ): StagedBlock {
   const days = new Date(Date.UTC(Number(month.slice(0, 4)), Number(month.slice(5, 7)), 0)).getUTCDate();
-  return { variable, month, siteCodes, values: siteCodes.map((_, s) => Array.from({ length: days }, (_, d) => value(s, d))) };
+  const values = Float32Array.from({ length: siteCodes.length * days }, (_, i) => value(Math.floor(i / days), i % days) ?? Number.NaN);
+  return { variable, month, siteCodes, steps: 1, values };
 }
 
 export function reach(code: string, parentCode: string | null): StagedReach {

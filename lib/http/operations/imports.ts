@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { finding } from '../contract/common.ts';
+import { finding, isoDate } from '../contract/common.ts';
 import { importAnswer } from '../contract/rest.ts';
 import { operation } from '../operation.ts';
 
@@ -28,6 +28,52 @@ export const importOptions = z
       .nullable()
       .optional()
       .meta({ description: 'anemometer height in metres of stations that bring none' }),
+    layer: z.string().max(200).nullable().optional().meta({ description: 'layer of a vector file or member of an archive to read' }),
+    crs: z
+      .string()
+      .max(200)
+      .nullable()
+      .optional()
+      .meta({ description: 'coordinate system of the file, e.g. EPSG:28992; goes before what it says' }),
+    joinByPlace: z
+      .enum(['none', 'nearest-turnout', 'nearest-reach', 'service-area'])
+      .nullable()
+      .optional()
+      .meta({ description: 'parcels that name no turnout or reach: how they are joined to one by place' }),
+    joinDistance: z
+      .number()
+      .min(0)
+      .max(50_000)
+      .nullable()
+      .optional()
+      .meta({ description: 'furthest a turnout or reach may lie from the edge of a parcel joined to it, in metres; 500 unless said' }),
+    validFrom: isoDate.nullable().optional().meta({ description: 'parcels: first day on which the parcels of the file stand' }),
+    stamp: z
+      .enum(['start', 'centre', 'end'])
+      .nullable()
+      .optional()
+      .meta({ description: 'hourly and shorter weather: what a time stamp names of its interval' }),
+    stampZone: z
+      .string()
+      .max(60)
+      .nullable()
+      .optional()
+      .meta({ description: 'hourly and shorter weather: zone of the stamps, an IANA name or an offset such as UTC-07:00' }),
+    minimumHours: z
+      .number()
+      .min(1)
+      .max(24)
+      .nullable()
+      .optional()
+      .meta({ description: 'fewest hours of a day that make its sums and means; 22 unless said' }),
+    margin: z
+      .number()
+      .min(0)
+      .max(10)
+      .nullable()
+      .optional()
+      .meta({ description: 'grids: cells within this many degrees around the district are kept; one cell unless said' }),
+    wholeGrid: z.boolean().nullable().optional().meta({ description: 'grids: read every cell although the district has a place' }),
     replace: z.boolean().nullable().optional().meta({ description: 'parcels and canals: remove those that the file does not have' }),
     recompute: z.boolean().nullable().optional().meta({ description: 'false: applying starts no run; true unless said' }),
     cropMappings: z
@@ -44,11 +90,12 @@ export const createImportOperation = operation({
   tag,
   summary: 'Upload files to be read',
   description:
-    'multipart/form-data: `kind` (stations, weather, parcels, canals, plantings, soils), one or more `file`, and `options` (JSON). ' +
-    'Nothing of the district changes until the import is applied. stations, weather, plantings and soils are CSV; parcels and canals are GeoJSON.',
+    'multipart/form-data: `kind`, one or more `file`, and `options` (JSON). Nothing of the district changes until the import is applied. ' +
+    'stations, plantings and soils are tables (CSV); weather is tables or grids (NetCDF, zipped Zarr, GeoTIFF); parcels, canals, areas and soil-areas are ' +
+    'GeoJSON, zipped shapefile, GeoPackage, FlatGeobuf, GeoParquet or KML; turnouts are either.',
   scope: 'write',
   form: {
-    kind: 'stations, weather, parcels, canals, plantings or soils',
+    kind: 'stations, weather, parcels, canals, turnouts, areas, soils, soil-areas or plantings',
     file: 'one or more files',
     options: 'ImportOptions as JSON; may be left out',
   },

@@ -1,18 +1,23 @@
+import type { Caller } from '../../../../lib/access/caller.ts';
 import { environment } from '../../../../lib/access/environment.ts';
 import { Malformed } from '../../../../lib/base/errors.ts';
 import { answerImport, answerImports } from '../../../../lib/http/answers/import.ts';
 import { importKind } from '../../../../lib/http/contract/rest.ts';
 import { createImportOperation, importOptions, listImportsOperation } from '../../../../lib/http/operations/imports.ts';
 import { malformedFrom } from '../../../../lib/http/problem.ts';
-import { readUpload } from '../../../../lib/http/read-upload.ts';
+import { withUpload } from '../../../../lib/http/read-upload.ts';
 import { route } from '../../../../lib/http/route.ts';
 import { requireStorable } from '../../../../lib/http/storable-text.ts';
-import { createImport, type PipelineOptions } from '../../../../lib/jobs/imports.ts';
+import { createImport, type PipelineOptions, type UploadedFile } from '../../../../lib/jobs/imports.ts';
 
 export const GET = route(listImportsOperation, async ({ caller }) => ({ items: await answerImports(caller) }));
 
 export const POST = route(createImportOperation, async ({ request, caller }) => {
-  const { files, fields } = await readUpload(request, environment().TILLWATER_UPLOAD_LIMIT_MB);
+  const id = await withUpload(request, environment().TILLWATER_UPLOAD_LIMIT_MB, ({ files, fields }) => takeImport(caller, files, fields));
+  return answerImport(caller, id);
+});
+
+async function takeImport(caller: Caller, files: readonly UploadedFile[], fields: ReadonlyMap<string, string>): Promise<string> {
   const kind = importKind.safeParse(fields.get('kind'));
   if (!kind.success) {
     throw new Malformed(
@@ -23,9 +28,8 @@ export const POST = route(createImportOperation, async ({ request, caller }) => 
   requireStorable(wanted, 'part "options"');
   const options = importOptions.safeParse(wanted);
   if (!options.success) throw malformedFrom(options.error, 'part "options"');
-  const id = await createImport(caller, { kind: kind.data, files, options: options.data as PipelineOptions });
-  return answerImport(caller, id);
-});
+  return createImport(caller, { kind: kind.data, files, options: options.data as PipelineOptions });
+}
 
 function optionsOf(text: string | undefined): unknown {
   if (!text?.trim()) return {};
