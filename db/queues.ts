@@ -10,6 +10,8 @@ export const QUEUES = [
   { name: 'run-start', ...PIECE },
   { name: 'run-slice', ...PIECE },
   { name: 'run-finish', ...PIECE },
+  { name: 'feed-turn', ...PIECE },
+  { name: 'weather-check', ...PIECE },
 ] as const;
 
 export type QueueName = (typeof QUEUES)[number]['name'];

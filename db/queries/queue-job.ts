@@ -69,7 +69,7 @@ export async function releaseJobs(db: Executor, ids?: readonly string[]): Promis
 export async function listGivenUpJobs(
   db: Executor,
   names: readonly QueueName[],
-  subject: 'importId' | 'runId',
+  subject: 'importId' | 'runId' | 'feedId',
 ): Promise<Record<string, unknown>[]> {
   const list = sql.join(
     names.map((name) => sql`${name}`),

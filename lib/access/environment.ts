@@ -22,6 +22,18 @@ const schema = z.object({
   TILLWATER_UPLOAD_LIMIT_MB: z.coerce.number().int().min(1).max(2000).default(200),
   /** memory a reader of one import may take */
   TILLWATER_READER_MEMORY_MB: z.coerce.number().int().min(128).max(65536).default(900),
+  /** hosts and address ranges inside private networks that feeds may ask, with commas between */
+  TILLWATER_FEED_HOSTS: z
+    .string()
+    .default('')
+    .transform((text) =>
+      text
+        .split(',')
+        .map((entry) => entry.trim())
+        .filter((entry) => entry !== ''),
+    ),
+  /** folder whose subfolders, named by district code, feeds may watch */
+  TILLWATER_FEED_FOLDER: z.string().optional(),
   HOST: z.string().default('127.0.0.1'),
   PORT: z.coerce.number().int().min(0).max(65535).default(3000),
   LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'trace', 'silent']).default('info'),

@@ -8,6 +8,7 @@ import { TillwaterError } from '../base/errors.ts';
 import type { readImport } from '../files/read-import.ts';
 import type { ImportContext, ImportKind, ImportOptions, Progress } from '../files/reading.ts';
 import { PieceWriter } from './import-staged.ts';
+import { applyImport } from './imports.ts';
 import type { JobData } from './queue.ts';
 import { type ReadHooks, type ReadOutcome, readInChild } from './reader-child.ts';
 import { layOutFiles } from './reading-folder.ts';
@@ -54,7 +55,14 @@ export async function performRead(data: ImportReadData, reader?: Reader): Promis
     await markFailed(data, error);
     return;
   }
-  await saveReading(data, given.row, outcome);
+  if (await saveReading(data, given.row, outcome)) await applyWhenClean(data, given.row, outcome);
+}
+
+/** A feed's file without errors is applied at once; one with errors waits for a person. */
+async function applyWhenClean(data: ImportReadData, row: ImportRow, { reading }: ReadOutcome): Promise<void> {
+  if ((row.options as { apply?: unknown }).apply !== 'when-clean') return;
+  if (reading.findingCounts.error > 0 || reading.understood.usableRows === 0) return;
+  await applyImport({ districtId: data.districtId, name: row.createdBy ?? 'feed' }, data.importId);
 }
 
 /** Reads in a process of its own, which gets the files as files. */
@@ -73,7 +81,7 @@ async function readHere(data: ImportReadData, { row, context }: Given, reader: R
 
 /** The reader's options: without what only the pipeline knows. */
 function readerOptions(options: unknown): ImportOptions {
-  const { recompute: _recompute, ...rest } = options as ImportOptions & { recompute?: boolean };
+  const { recompute: _recompute, apply: _apply, ...rest } = options as ImportOptions & Record<string, unknown>;
   return rest;
 }
 
@@ -94,8 +102,9 @@ async function refuseSuperseded(tx: Tx, data: ImportReadData): Promise<void> {
   if (!wanted) throw new Superseded();
 }
 
-async function saveReading(data: ImportReadData, row: ImportRow, { reading, head }: ReadOutcome): Promise<void> {
-  await database().inDistrict(data.districtId, async (tx) => {
+/** True when it was saved: false when the plan had changed meanwhile. */
+async function saveReading(data: ImportReadData, row: ImportRow, { reading, head }: ReadOutcome): Promise<boolean> {
+  return database().inDistrict(data.districtId, async (tx) => {
     const saved = await changeImport(
       tx,
       { ...data, from: ['reading'], revision: row.revision },
@@ -110,6 +119,7 @@ async function saveReading(data: ImportReadData, row: ImportRow, { reading, head
       },
     );
     if (saved) await saveStagedPiece(tx, { districtId: data.districtId, importId: data.importId, ordinal: 0 }, head);
+    return saved;
   });
 }
 

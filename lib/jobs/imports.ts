@@ -21,6 +21,8 @@ interface ImportActor {
 export type PipelineOptions = ImportOptions & {
   /** false: no run is started when the import is applied */
   readonly recompute?: boolean;
+  /** applied without a hand when it was read without errors: what feeds ask for */
+  readonly apply?: 'when-clean';
 };
 
 /** A file as it came in: known by its head, size and hash, its bytes wherever they lie. */

@@ -83,19 +83,21 @@ async function startBoss(): Promise<PgBoss> {
 /**
  * Puts a job in. With `tx` it is part of that transaction: the job exists exactly when the transaction commits.
  *
- * @param options `singletonKey`: nothing is put in while a job of the same key still waits (one that is being worked on does not count)
+ * @param options `singletonKey`: nothing is put in while a job of the same key still waits (one that is being worked on does not count);
+ * `startAfter`: not before this time
  * @returns the job's id, or null when a waiting one stands for it
  */
 export async function enqueue(
   name: QueueName,
   data: JobData,
-  options: { readonly singletonKey?: string; readonly tx?: Tx } = {},
+  options: { readonly singletonKey?: string; readonly tx?: Tx; readonly startAfter?: Date } = {},
 ): Promise<string | null> {
   const boss = await queue();
   const executor = options.tx ?? database().outside;
   if (options.singletonKey && (await isJobWaiting(executor, name, options.singletonKey))) return null;
   const keyed = options.singletonKey ? { singletonKey: options.singletonKey } : {};
-  const id = await boss.send(name, data, { ...keyed, expireInSeconds: LEASE_SECONDS, db: queueExecutor(executor) });
+  const later = options.startAfter ? { startAfter: options.startAfter } : {};
+  const id = await boss.send(name, data, { ...keyed, ...later, expireInSeconds: LEASE_SECONDS, db: queueExecutor(executor) });
   await notifyJob(executor, name);
   return id;
 }

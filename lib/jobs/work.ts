@@ -1,6 +1,8 @@
 /** What a worker process does: every queue with its handler, and the upkeep that lets nothing hang. */
 import { listGivenUpJobs } from '../../db/queries/queue-job.ts';
 import { database } from '../access/database.ts';
+import { type FeedTurn, performFeedTurn } from './feeds/feed-turn.ts';
+import { settleFeed } from './feeds/feeds.ts';
 import { workOnImports } from './import-work.ts';
 import { addUpkeep, type JobData, workOn } from './queue.ts';
 import { endRun, type RunJob } from './run-failure.ts';
@@ -14,6 +16,8 @@ export async function startWork(threads: number): Promise<void> {
   await workOn<SliceJob & JobData>('run-slice', computeSlice, { concurrency: threads });
   await workOn<RunJob & JobData>('run-finish', finishRun);
   addUpkeep(settleGivenUpRuns);
+  await workOn<FeedTurn>('feed-turn', performFeedTurn);
+  addUpkeep(settleGivenUpFeeds);
   await workOnImports();
 }
 
@@ -21,5 +25,12 @@ export async function startWork(threads: number): Promise<void> {
 async function settleGivenUpRuns(): Promise<void> {
   for (const data of await listGivenUpJobs(database().outside, ['run-start', 'run-slice', 'run-finish'], 'runId')) {
     await endRun(data as RunJob, 'A part of this run failed several times; the log of the service has the cause. Start the run again.');
+  }
+}
+
+/** No feed falls silent: one whose turn failed for the last time gets its next turn. */
+async function settleGivenUpFeeds(): Promise<void> {
+  for (const data of await listGivenUpJobs(database().outside, ['feed-turn'], 'feedId')) {
+    await settleFeed(data as unknown as FeedTurn);
   }
 }
