@@ -3,7 +3,8 @@
 import { useRouter } from 'next/navigation';
 import { type DragEvent, useRef, useState } from 'react';
 import styles from './import.module.css';
-import { IMPORT_KINDS, type ImportKindText, templateHref } from './import-kinds.ts';
+import { JoinChoice } from './import-join.tsx';
+import { IMPORT_KINDS, type ImportKindText, SHAPE_FORMATS, templateHref } from './import-kinds.ts';
 import { sizeWords } from './import-words.ts';
 import { messageOf, problemText } from './problem-text.ts';
 
@@ -46,9 +47,9 @@ export function ImportForm(props: ImportFormProps) {
       <KindChoice kind={kind} onChange={setKind} />
       <p className="small">
         <strong>Columns of {kind.name.toLowerCase()}:</strong> {kind.columns}. Headers in any order and case; columns can be assigned by
-        hand afterwards.{' '}
+        hand afterwards. {kind.formats === 'shapes' ? `Read from ${SHAPE_FORMATS}, in any coordinate system. ` : ''}
         <a href={templateHref(kind)} download={kind.template.name}>
-          Download a template ({kind.format})
+          Download a template ({kind.template.name.endsWith('.csv') ? 'CSV' : 'GeoJSON'})
         </a>
       </p>
       <FileDrop kind={kind} files={files} onChange={setFiles} limitMegabytes={props.limitMegabytes} />
@@ -71,11 +72,13 @@ export function ImportForm(props: ImportFormProps) {
 function bodyOf(kind: ImportKindText, files: readonly File[], form: FormData): FormData {
   const body = new FormData();
   body.set('kind', kind.kind);
-  const season = String(form.get('season') ?? '');
-  const source = String(form.get('source') ?? '').trim();
+  const text = (name: string) => String(form.get(name) ?? '').trim();
+  const [season, source] = [text('season'), text('source')];
   const options = {
     ...(season ? { season } : {}),
     ...(source ? { source } : {}),
+    ...(text('joinByPlace') ? { joinByPlace: text('joinByPlace') } : {}),
+    ...(text('validFrom') ? { validFrom: text('validFrom') } : {}),
     ...(form.has('replace') ? { replace: true } : {}),
     ...(form.has('recompute') ? {} : { recompute: false }),
   };
@@ -93,7 +96,7 @@ function KindChoice({ kind, onChange }: { kind: ImportKindText; onChange: (kind:
           <label key={one.kind} className={styles.kind}>
             <input type="radio" name="kind" value={one.kind} checked={one.kind === kind.kind} onChange={() => onChange(one)} />
             <span>
-              <strong>{one.name}</strong> <span className="unit">{one.format}</span>
+              <strong>{one.name}</strong> <span className="unit">{one.formats}</span>
             </span>
             <p>{one.says}</p>
           </label>
@@ -133,14 +136,14 @@ function FileDrop({ kind, files, onChange, limitMegabytes }: FileDropProps) {
         onDragLeave={() => setOver(false)}
       >
         <label htmlFor="import-files">
-          Drop {kind.format} files here, or choose them <span className="hint">(up to 20 files, {limitMegabytes} MB together)</span>
+          Drop files here, or choose them <span className="hint">(up to 400 files, {limitMegabytes} MB together)</span>
         </label>
         <input
           ref={input}
           id="import-files"
           type="file"
           multiple
-          accept={kind.format === 'CSV' ? '.csv,.tsv,.txt,text/csv,text/plain' : '.geojson,.json,application/geo+json'}
+          accept={kind.accept}
           onChange={(event) => {
             take(event.target.files);
             event.target.value = '';
@@ -183,9 +186,11 @@ function KindOptions({ kind, seasons, sources }: ImportFormProps & { kind: Impor
           </select>
         </div>
       ) : null}
-      {kind.kind === 'stations' ? (
+      {kind.kind === 'stations' || kind.kind === 'weather' ? (
         <div className="field">
-          <label htmlFor="import-source">Weather source of new stations</label>
+          <label htmlFor="import-source">
+            {kind.kind === 'weather' ? 'Weather source (a grid’s name)' : 'Weather source of new stations'}
+          </label>
           <input id="import-source" name="source" list="import-sources" maxLength={120} placeholder={sources[0] ?? 'Stations'} />
           <datalist id="import-sources">
             {sources.map((source) => (
@@ -193,6 +198,15 @@ function KindOptions({ kind, seasons, sources }: ImportFormProps & { kind: Impor
             ))}
           </datalist>
         </div>
+      ) : null}
+      {kind.kind === 'parcels' ? (
+        <>
+          <JoinChoice value="" />
+          <div className="field">
+            <label htmlFor="import-valid-from">First day these parcels stand</label>
+            <input id="import-valid-from" name="validFrom" type="date" />
+          </div>
+        </>
       ) : null}
       {kind.kind === 'parcels' || kind.kind === 'canals' ? (
         <label className="check">

@@ -1,9 +1,22 @@
 /** What can be brought in, in the order a new district needs it: the columns each takes, and a file to start from. */
 
+import type { ImportAnswer } from '../../lib/http/contract/rest.ts';
+
+const TABLE = { formats: 'CSV', accept: '.csv,.tsv,.txt,.zip,text/csv,text/plain' } as const;
+const SHAPES = {
+  formats: 'shapes',
+  accept: '.geojson,.json,.zip,.gpkg,.fgb,.parquet,.geoparquet,.kml,.kmz,.shp,.dbf,.prj,.cpg,.shx,application/geo+json',
+} as const;
+/** What shapes are read from. */
+export const SHAPE_FORMATS = 'GeoJSON, zipped shapefile, GeoPackage, FlatGeobuf, GeoParquet, KML';
+
 export interface ImportKindText {
-  readonly kind: 'canals' | 'parcels' | 'stations' | 'weather' | 'plantings' | 'soils';
+  readonly kind: ImportAnswer['kind'];
   readonly name: string;
-  readonly format: 'CSV' | 'GeoJSON';
+  /** what it is read from, in a few words */
+  readonly formats: string;
+  /** endings offered by the file chooser; any file is told by its content */
+  readonly accept: string;
   readonly says: string;
   readonly columns: string;
   /** the template's file name and content; invented */
@@ -35,7 +48,7 @@ export const IMPORT_KINDS: readonly ImportKindText[] = [
   {
     kind: 'stations',
     name: 'Weather stations',
-    format: 'CSV',
+    ...TABLE,
     says: 'One row per station. Weather can be read only for stations the district has.',
     columns: 'site, name, latitude, longitude, elevation, wind_height, zone',
     template: {
@@ -45,11 +58,12 @@ export const IMPORT_KINDS: readonly ImportKindText[] = [
   },
   {
     kind: 'weather',
-    name: 'Daily weather',
-    format: 'CSV',
-    says: 'One row per station and day, in any order. Later imports replace earlier values of the same station and day.',
+    name: 'Weather',
+    formats: 'CSV or grids',
+    accept: '.csv,.tsv,.txt,.dat,.zip,.nc,.nc4,.cdf,.h5,.tif,.tiff',
+    says: 'Stations by day, hour or minute as tables; grids as NetCDF, zipped Zarr or a series of GeoTIFF. Later imports replace earlier values of the same place and day.',
     columns:
-      'site, date, and any of: air temperature max/min/mean, dew point, vapour pressure, relative humidity max/min/mean, specific humidity, wind speed, solar radiation, sunshine hours, net radiation, precipitation, pressure, reference ET. Units from the headers, or chosen afterwards',
+      'site, date (and hour), and any of: air temperature max/min/mean, dew point, vapour pressure, relative humidity max/min/mean, specific humidity, wind speed, solar radiation, sunshine hours, net radiation, precipitation, pressure, reference ET. Units from the headers, or chosen afterwards',
     template: {
       name: 'weather-template.csv',
       text: rows(
@@ -62,7 +76,7 @@ export const IMPORT_KINDS: readonly ImportKindText[] = [
   {
     kind: 'canals',
     name: 'Canals',
-    format: 'GeoJSON',
+    ...SHAPES,
     says: 'Lines drawn from head to tail, one feature per reach. The reach at the headworks has no parent.',
     columns:
       'reach, parent, name, kind, capacity_m3_s, loss_rule (none, fraction_per_km, efficiency, seepage_mm_d), loss_value, wetted_perimeter_m',
@@ -97,9 +111,35 @@ export const IMPORT_KINDS: readonly ImportKindText[] = [
     },
   },
   {
+    kind: 'turnouts',
+    name: 'Turnouts',
+    formats: 'CSV or points',
+    accept: `${TABLE.accept},${SHAPES.accept}`,
+    says: 'Where water leaves a reach. With their places, parcels that name none can be joined to the nearest.',
+    columns: 'turnout, reach, capacity_m3_s, longitude, latitude (points bring their own place)',
+    template: {
+      name: 'turnouts-template.csv',
+      text: rows('turnout,reach,capacity_m3_s,longitude,latitude', 'T1,L1,0.15,-120.1390,45.1405'),
+    },
+  },
+  {
+    kind: 'areas',
+    name: 'Service areas',
+    ...SHAPES,
+    says: 'Polygons of the land that a reach or turnout serves. Parcels inside that name none can be joined to it; areas are outlined on the map.',
+    columns: 'area, name, reach, turnout',
+    template: {
+      name: 'service-areas-template.geojson',
+      text: features({
+        properties: { area: 'A1', name: 'First lateral', reach: 'L1', turnout: 'T1' },
+        geometry: square(-120.141, 45.139, 0.012),
+      }),
+    },
+  },
+  {
     kind: 'parcels',
     name: 'Parcels',
-    format: 'GeoJSON',
+    ...SHAPES,
     says: 'Polygons, one feature per parcel. Area is measured on the ellipsoid; a crop column also makes plantings of the chosen season.',
     columns: 'parcel, name, turnout, reach, soil, method, crop, elevation_m',
     template: {
@@ -119,7 +159,7 @@ export const IMPORT_KINDS: readonly ImportKindText[] = [
   {
     kind: 'plantings',
     name: 'Plantings',
-    format: 'CSV',
+    ...TABLE,
     says: 'What stands on each parcel in a season. Plantings of a parcel and season are replaced as a whole.',
     columns: 'parcel, season, crop, calendar, planting_date, harvest_date, cut_dates (divided by ;), area_share',
     template: {
@@ -133,13 +173,24 @@ export const IMPORT_KINDS: readonly ImportKindText[] = [
   },
   {
     kind: 'soils',
-    name: 'Soils',
-    format: 'CSV',
-    says: 'One row per soil class; parcels name them by code.',
+    name: 'Soil classes',
+    ...TABLE,
+    says: 'One row per soil class; parcels and soil polygons name them by code.',
     columns: 'code, name, field_capacity, wilting_point, rew_mm, tew_mm, ze_m, curve_number, root_limit_m, source',
     template: {
       name: 'soils-template.csv',
       text: rows('code,name,field_capacity,wilting_point,rew_mm,curve_number', 'SL,Sandy loam,0.23,0.11,8,75'),
+    },
+  },
+  {
+    kind: 'soil-areas',
+    name: 'Soil polygons',
+    ...SHAPES,
+    says: 'A soil map. A parcel without a soil of its own takes the classes under it, weighted by area.',
+    columns: 'code, soil',
+    template: {
+      name: 'soil-polygons-template.geojson',
+      text: features({ properties: { code: 'S-1', soil: 'loam' }, geometry: square(-120.145, 45.135, 0.02) }),
     },
   },
 ];
@@ -149,6 +200,6 @@ export function kindName(kind: string): string {
 }
 
 export function templateHref(kind: ImportKindText): string {
-  const type = kind.format === 'CSV' ? 'text/csv' : 'application/geo+json';
+  const type = kind.template.name.endsWith('.csv') ? 'text/csv' : 'application/geo+json';
   return `data:${type};charset=utf-8,${encodeURIComponent(kind.template.text)}`;
 }

@@ -1,6 +1,7 @@
-import type { Understood } from '../../lib/files/reading.ts';
+import type { FileFormat, Understood, UnderstoodGrid } from '../../lib/files/reading.ts';
 import { FactList } from './data-table.tsx';
 import { dateRange } from './date-words.ts';
+import { plain } from './figures.ts';
 import { Section } from './page-head.tsx';
 
 const ORDERS = { ymd: 'year, month, day', dmy: 'day, month, year', mdy: 'month, day, year' } as const;
@@ -20,10 +21,13 @@ function factsOf(understood: Understood, options: Readonly<Record<string, unknow
   const facts: (readonly [string, string | null | undefined])[] = [
     ['Rows', `${usableRows} of ${rowCount} usable`],
     ['Days', days ? dateRange(days.start, days.end) : null],
-    ['Stations', siteCount === null ? null : String(siteCount)],
+    [understood.grid ? 'Grid' : 'Stations', understood.grid ? gridText(understood.grid) : siteCount === null ? null : String(siteCount)],
     ['Format', formatText(understood)],
     ['Dates written', understood.dateOrder ? ORDERS[understood.dateOrder] : null],
+    ['Layer', understood.layers && understood.layers.length > 1 ? (understood.layer ?? null) : null],
     ['Coordinates', understood.crs],
+    ['Brought to WGS 84', understood.transformation],
+    ['Time stamps', stampText(understood)],
     ['Extent', boundingBox ? `${boundingBox.map((degree) => degree.toFixed(3)).join(', ')} (west, south, east, north)` : null],
     ['Season', typeof options.season === 'string' ? options.season : null],
     ['Source', typeof options.source === 'string' ? options.source : null],
@@ -32,8 +36,48 @@ function factsOf(understood: Understood, options: Readonly<Record<string, unknow
   return facts.filter((fact): fact is readonly [string, string] => Boolean(fact[1]));
 }
 
+const FORMATS: Readonly<Record<FileFormat, string>> = {
+  csv: 'CSV',
+  geojson: 'GeoJSON',
+  shapefile: 'Shapefile',
+  geopackage: 'GeoPackage',
+  flatgeobuf: 'FlatGeobuf',
+  geoparquet: 'GeoParquet',
+  kml: 'KML',
+  'netcdf-3': 'NetCDF-3',
+  'netcdf-4': 'NetCDF-4',
+  zarr: 'Zarr',
+  geotiff: 'GeoTIFF',
+  zip: 'ZIP archive',
+  unknown: 'not recognised',
+};
+
+/** @example '1,250 cells of 585 × 1,386, one field each 60 min, 365_day calendar' */
+function gridText({ shape, cells, stepMinutes, calendar }: UnderstoodGrid): string {
+  const step =
+    stepMinutes === null
+      ? 'single fields'
+      : `one field each ${stepMinutes % 1440 === 0 ? `${stepMinutes / 1440} d` : `${stepMinutes} min`}`;
+  return [
+    `${plain(cells, 0)} cells of ${plain(shape.rows, 0)} × ${plain(shape.columns, 0)}`,
+    step,
+    calendar ? `${calendar} calendar` : null,
+  ]
+    .filter(Boolean)
+    .join(', ');
+}
+
+const STAMPS = { start: 'the start', centre: 'the middle', end: 'the end' } as const;
+
+function stampText({ stamp, stampZone, stepMinutes }: Understood): string | null {
+  if (!stamp) return null;
+  return [`name ${STAMPS[stamp]} of ${stepMinutes ? `each ${stepMinutes} min` : 'the interval'}`, stampZone ? `in ${stampZone}` : null]
+    .filter(Boolean)
+    .join(', ');
+}
+
 function formatText({ format, delimiter, decimalComma, encoding }: Understood): string {
-  if (format !== 'csv') return format === 'geojson' ? 'GeoJSON' : 'not recognised';
+  if (format !== 'csv') return [FORMATS[format], encoding].filter(Boolean).join(', ');
   const parts = [
     'CSV',
     delimiter ? `cells divided by ${DELIMITERS[delimiter] ?? delimiter}` : null,

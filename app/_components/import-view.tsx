@@ -5,6 +5,7 @@ import type { ImportAnswer } from '../../lib/http/contract/rest.ts';
 import { moment } from './date-words.ts';
 import { ImportActions } from './import-actions.tsx';
 import { ImportChanges } from './import-changes.tsx';
+import { ReadingChoices } from './import-choices.tsx';
 import { type CropChoice, CropTable } from './import-crops.tsx';
 import { FindingTable } from './import-findings.tsx';
 import { kindName } from './import-kinds.ts';
@@ -61,6 +62,7 @@ export function ImportView(props: ImportViewProps) {
       {shown ? (
         <>
           <UnderstoodFacts understood={understood} options={now.options} />
+          {mayChange ? <ReadingChoices key={`choices ${JSON.stringify(now.options)}`} now={now} patch={patch} busy={busy} /> : null}
           <Section title={`Findings: ${countWords(now.finding_counts)}`} id="findings">
             <FindingTable findings={now.findings} counts={now.finding_counts} id={now.id} />
           </Section>

@@ -35,10 +35,14 @@ export function countWords(counts: ImportAnswer['finding_counts']): string {
 
 const THINGS: Readonly<Record<string, string>> = {
   sites: 'Stations',
-  weather_blocks: 'Station-months of weather, by variable',
+  cells: 'Grid cells',
+  weather_blocks: 'Months of weather, by variable',
   reaches: 'Reaches',
   turnouts: 'Turnouts',
+  areas: 'Service areas',
+  soil_areas: 'Soil polygons',
   parcels: 'Parcels',
+  parcel_history: 'Earlier shapes kept',
   soils: 'Soils',
   plantings: 'Parcels with plantings',
   crop_mappings: 'Crop codes remembered',
