@@ -5,6 +5,7 @@ import { answerDistricts } from '../../lib/http/answers/district.ts';
 import { INVENTED_CAUTION } from '../../lib/report/cautions.ts';
 import { AccountMenu } from '../_components/account-menu.tsx';
 import { PreferenceChoice, PreferenceSelect } from '../_components/choice.tsx';
+import { moment } from '../_components/date-words.ts';
 import { ROLES } from '../_components/district-words.ts';
 import { callerInView, districtInView, runInView } from '../_components/in-view.ts';
 import { Mark } from '../_components/mark.tsx';
@@ -48,6 +49,18 @@ async function DistrictInView() {
     <span className="head-district">
       <PreferenceSelect cookie="tillwater_district" label="District in view" options={options} value={caller.district.code} />
     </span>
+  );
+}
+
+/** The figures on every page are of a run whose inputs have changed since. */
+async function StaleNote() {
+  const [caller, run] = await Promise.all([callerInView(), runInView()]);
+  if (!run?.stale_since) return null;
+  return (
+    <p className="head-note">
+      These figures are older than the district’s data: {run.stale_reason}, {moment(run.stale_since, caller.district.timeZone)}. They change
+      when the season has been computed anew. <Link href="/runs">Runs</Link>
+    </p>
   );
 }
 
@@ -97,6 +110,7 @@ export default async function DeskLayout({ children }: { children: ReactNode }) 
           <PlaceLine />
         </div>
         {caller.district.invented ? <p className="head-note">{INVENTED_CAUTION}</p> : null}
+        <StaleNote />
         <RunWarnings />
       </header>
       <main id="main" tabIndex={-1}>

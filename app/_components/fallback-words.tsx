@@ -1,4 +1,4 @@
-import { FALLBACK_TEXT, type Fallback } from '../../lib/weather/variable.ts';
+import { countsAsEstimated, FALLBACK_TEXT, type Fallback } from '../../lib/weather/variable.ts';
 import { percent } from './figures.ts';
 
 /** A fallback in words; a name this version does not know is shown as it came. */
@@ -43,8 +43,20 @@ export function fallbackSharesOf(days: readonly { readonly fallbacks: readonly s
   return shares;
 }
 
-/** Share of days on which anything but the dew point was estimated. */
+/** Share of days on which a value of the weather was filled or estimated; assumptions about a site do not count. */
 export function estimatedShare(days: readonly { readonly fallbacks: readonly string[] }[]): number {
   if (days.length === 0) return Number.NaN;
-  return days.filter((day) => day.fallbacks.some((name) => name !== 'humidityFromDewPoint')).length / days.length;
+  return days.filter((day) => day.fallbacks.some(countsAsEstimated)).length / days.length;
+}
+
+/** How much of a figure rests on weather that was not measured, in words. */
+export function EstimatedShare({ share, of }: { share: number | null | undefined; of: string }) {
+  if (share === null || share === undefined || !Number.isFinite(share)) return null;
+  if (share === 0) return <p className="small muted">No weather behind these figures was filled or estimated.</p>;
+  const said = share < 0.005 ? 'under 1\u00a0%' : percent(share);
+  return (
+    <p className="small">
+      {said} of {of} rest on weather that was filled or estimated.
+    </p>
+  );
 }

@@ -2,7 +2,7 @@
 
 import type { Understood } from '../../lib/files/reading.ts';
 import type { ImportAnswer } from '../../lib/http/contract/rest.ts';
-import { JoinChoice } from './import-join.tsx';
+import { JoinChoice, TurnoutJoinChoice } from './import-join.tsx';
 import { Section } from './page-head.tsx';
 import type { Patch } from './use-import.ts';
 
@@ -61,9 +61,10 @@ function fieldsOf(now: ImportAnswer, understood: Understood): React.ReactNode[] 
       <TextField key="crs" name="crs" label="Coordinate system, if the file’s is wrong" value={said('crs')} example="EPSG:28992" />,
     );
   }
-  if (now.kind === 'parcels') {
+  if (now.kind === 'parcels' || now.kind === 'turnouts') {
+    const Join = now.kind === 'parcels' ? JoinChoice : TurnoutJoinChoice;
     fields.push(
-      <JoinChoice key="join" value={said('joinByPlace')} />,
+      <Join key="join" value={said('joinByPlace')} />,
       <NumberField key="distance" name="joinDistance" label="Furthest (m)" value={said('joinDistance')} most={50000} assumed={500} />,
     );
   }

@@ -12,3 +12,16 @@ export function JoinChoice({ value }: { value: string }) {
     </div>
   );
 }
+
+/** How turnouts that name no reach are joined to one. */
+export function TurnoutJoinChoice({ value }: { value: string }) {
+  return (
+    <div className="field">
+      <label htmlFor="import-join">Turnouts that name no reach</label>
+      <select id="import-join" name="joinByPlace" defaultValue={value}>
+        <option value="">are left out</option>
+        <option value="nearest-reach">take the nearest reach</option>
+      </select>
+    </div>
+  );
+}

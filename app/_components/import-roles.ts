@@ -1,10 +1,13 @@
 /** The roles a column of each kind of file can have, with the units its numbers can be in. Made on the server: the readers are not sent to the browser. */
-import { CANAL_ROLES } from '../../lib/files/canals-geojson.ts';
-import { PARCEL_ROLES } from '../../lib/files/parcels-geojson.ts';
+
+import { AREA_ROLES, SOIL_AREA_ROLES } from '../../lib/files/area-roles.ts';
+import { CANAL_ROLES } from '../../lib/files/canal-roles.ts';
+import { PARCEL_ROLES } from '../../lib/files/parcel-roles.ts';
 import { PLANTING_ROLES } from '../../lib/files/plantings-csv.ts';
 import { SOIL_ROLES } from '../../lib/files/soils-csv.ts';
 import { STATION_ROLES } from '../../lib/files/stations-csv.ts';
 import type { TableRole } from '../../lib/files/table-columns.ts';
+import { TURNOUT_ROLES } from '../../lib/files/turnout-rules.ts';
 import { unitNames } from '../../lib/files/unit.ts';
 import { ROLE_KIND, WEATHER_EXTRA_ROLES, WEATHER_KEY_ROLES, type WeatherValueRole } from '../../lib/files/weather-column.ts';
 import { WEATHER_VARIABLES, type WeatherVariable } from '../../lib/weather/variable.ts';
@@ -16,11 +19,14 @@ export interface RoleChoice {
 }
 
 const TABLES: Readonly<Record<string, readonly TableRole[]>> = {
+  areas: AREA_ROLES,
   canals: CANAL_ROLES,
   parcels: PARCEL_ROLES,
   plantings: PLANTING_ROLES,
+  'soil-areas': SOIL_AREA_ROLES,
   soils: SOIL_ROLES,
   stations: STATION_ROLES,
+  turnouts: TURNOUT_ROLES,
 };
 
 const EXTRA_NAMES: Readonly<Record<string, string>> = {

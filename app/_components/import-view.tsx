@@ -9,10 +9,12 @@ import { ReadingChoices } from './import-choices.tsx';
 import { type CropChoice, CropTable } from './import-crops.tsx';
 import { FindingTable } from './import-findings.tsx';
 import { kindName } from './import-kinds.ts';
+import { ImportLineage } from './import-lineage.tsx';
 import { StateTag } from './import-list.tsx';
 import { ColumnPlanTable } from './import-plan.tsx';
 import { PreviewPart } from './import-preview.tsx';
 import type { RoleChoice } from './import-roles.ts';
+import { SoilTable } from './import-soils.tsx';
 import { UnderstoodFacts } from './import-understood.tsx';
 import { countWords, isWorking, sizeWords } from './import-words.ts';
 import { PageHead, Section } from './page-head.tsx';
@@ -66,6 +68,7 @@ export function ImportView(props: ImportViewProps) {
           <Section title={`Findings: ${countWords(now.finding_counts)}`} id="findings">
             <FindingTable findings={now.findings} counts={now.finding_counts} id={now.id} />
           </Section>
+          {understood.lineage ? <ImportLineage lineage={understood.lineage} /> : null}
           {understood.columns?.length ? (
             <ColumnPlanTable
               key={`plan ${now.options.plan ? JSON.stringify(now.options.plan) : ''}`}
@@ -81,6 +84,16 @@ export function ImportView(props: ImportViewProps) {
               key={`crops ${JSON.stringify(now.options.cropMappings ?? {})}`}
               now={now}
               crops={props.crops}
+              mayChange={mayChange}
+              patch={patch}
+              busy={busy}
+            />
+          ) : null}
+          {understood.soilClasses?.length ? (
+            <SoilTable
+              key={`soils ${JSON.stringify(now.options.soilMappings ?? {})}`}
+              now={now}
+              classes={understood.soilClasses}
               mayChange={mayChange}
               patch={patch}
               busy={busy}

@@ -7,6 +7,7 @@ export const LISTED_VARIABLES = [
   'effective_precipitation',
   'net_requirement',
   'gross_requirement',
+  'estimated_share',
 ] as const;
 export type ListedVariable = (typeof LISTED_VARIABLES)[number];
 
@@ -23,7 +24,7 @@ export interface ListedParcels {
 
 export interface ParcelListInput {
   readonly parcels: ListedParcels;
-  /** one depth per parcel [mm] */
+  /** one depth per parcel [mm]; of `estimated_share` the share of days, 0–1 */
   readonly values: Readonly<Record<ListedVariable, ArrayLike<number>>>;
   readonly search?: string;
   readonly reach?: string;

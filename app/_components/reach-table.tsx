@@ -73,6 +73,7 @@ function columnsOf(units: UnitSystem, long: boolean): Column<ReachPeriod>[] {
       numeric: true,
       cell: (row) => <CapacityBar share={row.capacity_share} />,
     },
+    { key: 'estimated', head: 'Estimated weather', numeric: true, cell: (row) => percent(row.estimated_share) },
   ];
 }
 

@@ -6,22 +6,50 @@ import { periodName } from './date-words.ts';
 import { figure, inUnits, sumOf, unitOf } from './figures.ts';
 import { SeriesChart } from './site-chart.tsx';
 
-export const METHODS: readonly { readonly key: MethodKey; readonly name: string; readonly mark: MarkName; readonly source: string }[] = [
+const METHODS: readonly { readonly key: MethodKey; readonly name: string; readonly mark: MarkName; readonly source: string }[] = [
   { key: 'reference_et_fao56_short_mm', name: 'FAO-56 Penman–Monteith, short surface', mark: 'first', source: 'FAO-56 Eq. 6' },
   { key: 'reference_et_asce2005_short_mm', name: 'ASCE 2005, short surface', mark: 'second', source: 'ASCE-EWRI (2005) Eq. 1' },
   { key: 'reference_et_asce2005_tall_mm', name: 'ASCE 2005, tall surface', mark: 'third', source: 'ASCE-EWRI (2005) Eq. 1' },
   { key: 'reference_et_hargreaves_mm', name: 'Hargreaves–Samani, from temperature alone', mark: 'fourth', source: 'FAO-56 Eq. 52' },
 ];
 
+/** What stands beside the daily equations where a site has hours, or a source gives its own. */
+const BESIDE: typeof METHODS = [
+  { key: 'reference_et_hourly_fao56_short_mm', name: 'Sum of hours, FAO-56, short surface', mark: 'taw', source: 'FAO-56 Eq. 53' },
+  {
+    key: 'reference_et_hourly_asce2005_short_mm',
+    name: 'Sum of hours, ASCE 2005, short surface',
+    mark: 'limit',
+    source: 'ASCE-EWRI (2005) Eq. 1, hourly',
+  },
+  {
+    key: 'reference_et_hourly_asce2005_tall_mm',
+    name: 'Sum of hours, ASCE 2005, tall surface',
+    mark: 'raw',
+    source: 'ASCE-EWRI (2005) Eq. 1, hourly',
+  },
+  { key: 'reference_et_given_mm', name: 'As given by the source', mark: 'quiet', source: 'the source of the weather' },
+];
+
 type MethodKey =
   | 'reference_et_fao56_short_mm'
   | 'reference_et_asce2005_short_mm'
   | 'reference_et_asce2005_tall_mm'
-  | 'reference_et_hargreaves_mm';
+  | 'reference_et_hargreaves_mm'
+  | 'reference_et_hourly_fao56_short_mm'
+  | 'reference_et_hourly_asce2005_short_mm'
+  | 'reference_et_hourly_asce2005_tall_mm'
+  | 'reference_et_given_mm';
+
+/** The methods that have a value on any of the days; the daily equations always. */
+export function methodsOf(days: readonly SiteDay[]): typeof METHODS {
+  return [...METHODS, ...BESIDE.filter(({ key }) => days.some((day) => day[key] !== null))];
+}
 
 /** Reference ET of a site by every method, day by day and month by month. */
 export function ReferenceEt({ days, units }: { days: readonly SiteDay[]; units: UnitSystem }) {
-  const lines = METHODS.map((method) => ({
+  const methods = methodsOf(days);
+  const lines = methods.map((method) => ({
     label: method.name,
     mark: method.mark,
     values: days.map((day) => inUnits(day[method.key], 'depth', units)),
@@ -32,7 +60,7 @@ export function ReferenceEt({ days, units }: { days: readonly SiteDay[]; units: 
       <MonthTotals days={days} units={units} />
       <p className="small muted">
         Crop coefficients of the library belong to the short (grass) surface and are never used with the tall one. Sources:{' '}
-        {METHODS.map((method) => `${method.name}: ${method.source}`).join('; ')}.
+        {methods.map((method) => `${method.name}: ${method.source}`).join('; ')}.
       </p>
     </>
   );
@@ -69,7 +97,7 @@ function MonthTotals({ days, units }: { days: readonly SiteDay[]; units: UnitSys
       columns={[
         { key: 'month', head: 'Month', rowHead: true, oneLine: true, cell: (month) => periodName('month', month), total: 'Together' },
         { key: 'days', head: 'Days', numeric: true, cell: (month) => month.days.length, total: days.length },
-        ...METHODS.map((method) => ({
+        ...methodsOf(days).map((method) => ({
           key: method.key,
           head: method.name,
           unit: unitOf('depth', units),

@@ -20,7 +20,9 @@ interface RunFormProps {
 /** The usual values, as the API documents them. */
 const USUAL: Readonly<Record<string, string>> = {
   method: 'fao56',
-  interpolation: 'inverse-distance',
+  interpolation: '',
+  elevation_trend: 'lapse-rate',
+  reference_et: 'automatic',
   power: '2',
   maximum_sites: '6',
   lapse_rate_c_per_m: '0.0065',
@@ -28,6 +30,9 @@ const USUAL: Readonly<Record<string, string>> = {
   default_soil: 'loam',
   default_method: 'furrow',
 };
+
+/** Settings that are on or off; on unless said. */
+const CHECKS: ReadonlySet<string> = new Set(['irrigate', 'runoff', 'fill_gaps']);
 
 /** Bounds and step of the number settings. */
 const NUMBERS: Readonly<Record<string, { min: number; max: number; step: number | 'any' }>> = {
@@ -100,7 +105,7 @@ function Field({ id, name, help, children }: { id: string; name: string; help: s
 
 function Control(props: RunFormProps & { name: string }) {
   const { name } = props;
-  if (name === 'irrigate' || name === 'runoff')
+  if (CHECKS.has(name))
     return <input id={`run-${name}`} type="checkbox" name={name} defaultChecked aria-describedby={`run-${name}-help`} />;
   if (NUMBERS[name])
     return (
@@ -117,10 +122,15 @@ function Control(props: RunFormProps & { name: string }) {
   return <Options name={name} options={optionsOf(props)} />;
 }
 
+/** Left out of the request: the service takes what suits the kind of the source. */
+const USUAL_WAY: Named = { code: '', name: 'the usual: inverse distance between stations, bilinear on a grid' };
+
 function optionsOf(props: RunFormProps & { name: string }): Named[] {
   const said = (codes: readonly string[]) => codes.map((code) => ({ code, name: settingText(code) }));
   if (props.name === 'method') return said(['fao56', 'asce2005']);
-  if (props.name === 'interpolation') return said(['inverse-distance', 'nearest']);
+  if (props.name === 'interpolation') return [USUAL_WAY, ...said(['automatic', 'inverse-distance', 'nearest', 'kriging', 'bilinear'])];
+  if (props.name === 'reference_et') return said(['automatic', 'at-parcels', 'at-sites', 'given', 'hourly-sum']);
+  if (props.name === 'elevation_trend') return said(['lapse-rate', 'fitted', 'none']);
   if (props.name === 'source') return [{ code: '', name: 'every source' }, ...said(props.sources)];
   return [...(props.name === 'default_soil' ? props.soils : props.methods)];
 }
@@ -139,10 +149,11 @@ function Options({ name, options }: { name: string; options: readonly Named[] })
 
 /** What the API is asked for. */
 export function requestOf(form: FormData): { season: string; settings: Record<string, unknown> } {
-  const settings: Record<string, unknown> = { irrigate: form.has('irrigate'), runoff: form.has('runoff') };
+  const settings: Record<string, unknown> = Object.fromEntries([...CHECKS].map((name) => [name, form.has(name)]));
   for (const { key } of SETTINGS) {
     if (key in settings) continue;
     const value = String(form.get(key) ?? '');
+    if (key === 'interpolation' && value === '') continue;
     settings[key] = key === 'source' ? value || null : key in NUMBERS ? Number(value) : value;
   }
   return { season: String(form.get('season')), settings };

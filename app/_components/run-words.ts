@@ -22,12 +22,27 @@ export const SETTINGS: readonly SettingWords[] = [
   {
     key: 'interpolation',
     name: 'Weather at a parcel',
-    help: 'Weighted by distance over several sites, or taken whole from the nearest one.',
+    help: 'How the sites around a parcel make its weather; automatic takes, for each variable, the way with the lowest error in the check under Weather, Interpolation.',
+  },
+  {
+    key: 'elevation_trend',
+    name: 'Change with elevation',
+    help: 'Moves a site’s value to the parcel’s elevation: temperature by the lapse rate, every variable but rain by the slope its own sites show, or not at all; automatic weather chooses this too.',
   },
   {
     key: 'power',
     name: 'Power of the distance',
     help: 'How fast a site’s weight falls with distance. 2 is usual; a greater power leans on the nearest site.',
+  },
+  {
+    key: 'reference_et',
+    name: 'Where reference ET is computed',
+    help: 'At the parcels from the weather brought there, or at the sites (or cells) and then carried to the parcels; or taken as the source gives it, or summed over hours. Automatic: at the parcels for stations, at the cells for a grid, as given for a source without temperature.',
+  },
+  {
+    key: 'fill_gaps',
+    name: 'Fill gaps',
+    help: 'Fills what a site did not measure from its neighbours, from other sources and from normals, each within its limits; see Weather, Gaps. Off leaves only the published estimates, and a site without temperature carries no weight that day.',
   },
   { key: 'maximum_sites', name: 'Sites per parcel, at most', help: 'The nearest so many sites share a parcel’s weather (1 to 8).' },
   {
@@ -58,5 +73,15 @@ export function settingText(value: unknown): string {
   if (value === 'asce2005') return 'ASCE 2005 standardized, short surface';
   if (value === 'inverse-distance') return 'weighted by inverse distance';
   if (value === 'nearest') return 'the nearest site';
+  if (value === 'automatic') return 'automatic';
+  if (value === 'bilinear') return 'between the four grid cells around it';
+  if (value === 'kriging') return 'ordinary kriging';
+  if (value === 'lapse-rate') return 'temperature by the lapse rate';
+  if (value === 'fitted') return 'slope fitted to the sites';
+  if (value === 'none') return 'none';
+  if (value === 'at-parcels') return 'at the parcels';
+  if (value === 'at-sites') return 'at the sites or cells';
+  if (value === 'given') return 'as the source gives it';
+  if (value === 'hourly-sum') return 'sum over the hours';
   return String(value);
 }

@@ -19,6 +19,7 @@ const PARTS: Readonly<Record<string, string>> = {
   'root-zone': 'Water in the root zone',
   irrigation: 'Irrigation requirement',
   balance: 'Water balance of the day',
+  'energy-budget': 'Energy budget',
 };
 
 export interface StepGroup {
@@ -45,11 +46,21 @@ export function partName(part: string): string {
 
 /** The whole derivation: what went in, every equation with its numbers, and what came out. */
 export function WorkingSteps({ working }: { working: WorkingAnswer }) {
-  const groups = groupSteps(working.steps);
-  const seen = new Set<string>();
   return (
     <>
       <WeatherIn working={working} />
+      <StepGroups steps={working.steps} />
+      <ResultTable working={working} />
+    </>
+  );
+}
+
+/** Steps under the name of their part, numbered. */
+export function StepGroups({ steps }: { steps: readonly Step[] }) {
+  const groups = groupSteps(steps);
+  const seen = new Set<string>();
+  return (
+    <>
       {groups.map((group, at) => {
         const id = seen.has(group.part) ? `${group.part}-${at + 1}` : group.part;
         seen.add(group.part);
@@ -63,7 +74,6 @@ export function WorkingSteps({ working }: { working: WorkingAnswer }) {
           </Section>
         );
       })}
-      <ResultTable working={working} />
     </>
   );
 }
@@ -105,12 +115,13 @@ function unitText(unit: string): string {
 
 function WeatherIn({ working }: { working: WorkingAnswer }) {
   const names = [...new Set(working.inputs.flatMap((input) => Object.keys(input.values)))];
+  const ownWeights = working.inputs.some((input) => Object.keys(input.series_weights ?? {}).length > 0);
   const fallbacks = [...new Set(working.inputs.flatMap((input) => input.fallbacks))];
   return (
     <Section
       id="sites"
       title="Weather of the day at its sites"
-      note="Completed values: where a source had none, what stands in its place is named below."
+      note={`Completed values: where a source had none, what stands in its place is named below.${ownWeights ? ' A share beside a value is its weight in a series that has weights of its own; the column Weight holds for the others.' : ''}`}
     >
       <DataTable
         caption="Weather values by site with their weights"
@@ -126,13 +137,20 @@ function WeatherIn({ working }: { working: WorkingAnswer }) {
             head: variableTerm(name),
             unit: variableUnit(name),
             numeric: true,
-            cell: (input: WorkingAnswer['inputs'][number]) => significant(input.values[name]),
+            cell: (input: WorkingAnswer['inputs'][number]) => valueWithWeight(input, name),
           })),
         ]}
       />
       <FallbackWords names={fallbacks} />
     </Section>
   );
+}
+
+/** The value at the site, with its weight where the series has weights of its own. */
+function valueWithWeight(input: WorkingAnswer['inputs'][number], name: string): string {
+  const weight = input.series_weights?.[name];
+  const value = significant(input.values[name]);
+  return weight === undefined ? value : `${value} × ${percent(weight, 1)}`;
 }
 
 const COMPLETED: Readonly<Record<string, readonly [string, string]>> = {
@@ -143,6 +161,7 @@ const COMPLETED: Readonly<Record<string, readonly [string, string]>> = {
   windSpeed2m: ['Wind speed at 2 m', 'm/s'],
   wind_speed_2m_m_s: ['Wind speed at 2 m', 'm/s'],
   precipitation: ['Rain', 'mm'],
+  reference_et_mm: ['Reference ET at the site', 'mm'],
   temperature_correction_c: ['Correction to the parcel’s elevation', '°C'],
 };
 

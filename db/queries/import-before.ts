@@ -106,8 +106,8 @@ async function listKnownKeys(tx: Tx, own: ImportKey, name: ImportTable, keys: re
   return found.map((row) => JSON.parse(row.key) as Row);
 }
 
-/** Files that there was nothing under some keys. */
-async function fileAbsent(tx: Tx, own: ImportKey, name: ImportTable, keys: readonly Row[]): Promise<void> {
+/** Files that there was nothing under some keys: for rows that are then written by other means than `replaceRows`. */
+export async function fileAbsent(tx: Tx, own: ImportKey, name: ImportTable, keys: readonly Row[]): Promise<void> {
   if (keys.length === 0) return;
   const shape = shapeOf(name);
   const from = await lastOrdinal(tx, own);

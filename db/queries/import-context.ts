@@ -1,6 +1,6 @@
 /** What a district already knows, for a reader to check and join against. */
 import { and, asc, eq, isNotNull, sql } from 'drizzle-orm';
-import type { MultiPolygon, Polygon } from 'geojson';
+import type { LineString, MultiLineString, MultiPolygon, Polygon } from 'geojson';
 import type { ImportContext } from '../../lib/files/reading.ts';
 import type { GridShape } from '../../lib/weather/variable.ts';
 import type { Tx } from '../connect.ts';
@@ -50,6 +50,7 @@ export async function findImportContext(tx: Tx, districtId: string): Promise<Imp
     defaultElevation: own?.defaultElevation,
     sources: await listContextSources(tx, districtId),
     serviceAreas: await listContextAreas(tx, districtId),
+    reachLines: await listContextLines(tx, districtId),
     knownSites: sites.filter((one, i) => one.code !== sites[i - 1]?.code),
     knownParcels: parcels.map((row) => row.code),
     knownReaches: reaches,
@@ -80,6 +81,11 @@ async function listContextAreas(tx: Tx, districtId: string): Promise<ImportConte
   return rows.map((row) => ({ ...row, geometry: row.geometry as Polygon | MultiPolygon }));
 }
 
+async function listContextLines(tx: Tx, districtId: string) {
+  const rows = await tx.select({ code: reach.code, geometry: reach.geometry }).from(reach).where(eq(reach.districtId, districtId));
+  return rows.map((row) => ({ code: row.code, geometry: row.geometry as LineString | MultiLineString }));
+}
+
 async function libraries(tx: Tx, districtId: string) {
   const crops = await tx
     .select({ code: crop.code, name: crop.name })
@@ -91,7 +97,11 @@ async function libraries(tx: Tx, districtId: string) {
     .from(cropCalendar)
     .where(eq(cropCalendar.districtId, districtId))
     .orderBy(asc(cropCalendar.code));
-  const soils = await tx.select({ code: soil.code }).from(soil).where(eq(soil.districtId, districtId)).orderBy(asc(soil.code));
+  const soils = await tx
+    .select({ code: soil.code, name: soil.name })
+    .from(soil)
+    .where(eq(soil.districtId, districtId))
+    .orderBy(asc(soil.code));
   const methods = await tx
     .select({ code: applicationMethod.code })
     .from(applicationMethod)
@@ -106,6 +116,7 @@ async function libraries(tx: Tx, districtId: string) {
     crops,
     calendars,
     soils: soils.map((row) => row.code),
+    soilNames: Object.fromEntries(soils.map((row) => [row.code, row.name])),
     methods: methods.map((row) => row.code),
     seasons,
     cropMappings: Object.fromEntries(mappings.map((row) => [row.foreignCode, row.cropCode])),

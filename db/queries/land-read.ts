@@ -16,6 +16,7 @@ export const PARCEL_JOINS_AND_PLACE = {
   turnoutCode: parcel.turnoutCode,
   reachCode: parcel.reachCode,
   soilCode: parcel.soilCode,
+  soilShares: parcel.soilShares,
   methodCode: parcel.methodCode,
   area: parcel.area,
   elevation: parcel.elevation,

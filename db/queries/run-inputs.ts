@@ -25,6 +25,7 @@ export function listRunParcels(tx: Tx, districtId: string) {
       code: parcel.code,
       ordinal: parcel.ordinal,
       ...PARCEL_JOINS_AND_PLACE,
+      soilShares: parcel.soilShares,
     })
     .from(parcel)
     .where(eq(parcel.districtId, districtId))

@@ -115,6 +115,15 @@ export function listReachAreas(tx: Tx, { districtId, runId }: RunKey) {
     .groupBy(runParcel.reachCode);
 }
 
+/** The variables a run keeps map arrays of; a run of an earlier version may lack some. */
+export async function listRunVariables(tx: Tx, { districtId, runId }: RunKey): Promise<string[]> {
+  const rows = await tx
+    .selectDistinct({ variable: runValue.variable })
+    .from(runValue)
+    .where(and(eq(runValue.districtId, districtId), eq(runValue.runId, runId)));
+  return rows.map(({ variable }) => variable);
+}
+
 /** A map array, whole or one period of it, cut in the database. Null when the run has no such array. */
 export async function findRunValues(
   tx: Tx,

@@ -1,5 +1,5 @@
 /** Sites and their stored weather, block by block. */
-import { and, asc, eq, gte, lte, sql } from 'drizzle-orm';
+import { and, asc, eq, gte, inArray, lte, type SQL, sql } from 'drizzle-orm';
 import type { Tx } from '../connect.ts';
 import { site, weatherBlock, weatherSource } from '../schema/weather.ts';
 
@@ -9,6 +9,7 @@ export function listSites(tx: Tx, districtId: string, source?: string | null) {
     .select({
       sourceId: site.sourceId,
       source: weatherSource.name,
+      kind: weatherSource.kind,
       ordinal: site.ordinal,
       code: site.code,
       name: site.name,
@@ -25,8 +26,48 @@ export function listSites(tx: Tx, districtId: string, source?: string | null) {
 
 export type SiteRow = Awaited<ReturnType<typeof listSites>>[number];
 
-/** Blocks of the months that touch `from … to`; of one source when it is given. */
-export function listBlocks(tx: Tx, districtId: string, span: { from: string; to: string; sourceId?: number }) {
+/** Sites of the sources, as `listSites`. */
+export async function listSitesOf(tx: Tx, districtId: string, sourceIds: readonly number[]): Promise<SiteRow[]> {
+  const wanted = new Set(sourceIds);
+  if (wanted.size === 0) return [];
+  return (await listSites(tx, districtId)).filter((row) => wanted.has(row.sourceId));
+}
+
+/** Sources in the order in which they stand in for one another, and whether any daily weather of them is stored. */
+export function listWeatherSources(tx: Tx, districtId: string) {
+  return tx
+    .select({
+      sourceId: weatherSource.sourceId,
+      name: weatherSource.name,
+      kind: weatherSource.kind,
+      rank: weatherSource.rank,
+      hasWeather: sql<boolean>`exists (select 1 from weather_block own where own.district_id = weather_source.district_id
+        and own.source_id = weather_source.source_id and own.steps = 1)`,
+    })
+    .from(weatherSource)
+    .where(eq(weatherSource.districtId, districtId))
+    .orderBy(asc(weatherSource.rank), asc(weatherSource.sourceId));
+}
+
+export type WeatherSourceRow = Awaited<ReturnType<typeof listWeatherSources>>[number];
+
+interface BlocksWanted {
+  readonly from: string;
+  readonly to: string;
+  readonly sourceId?: number;
+  readonly sourceIds?: readonly number[];
+  readonly variables?: readonly string[];
+  /** values in a day: 1 daily unless told, 24 hourly */
+  readonly steps?: number;
+}
+
+function ofSources({ sourceId, sourceIds }: { sourceId?: number; sourceIds?: readonly number[] }): SQL | undefined {
+  if (sourceIds) return sourceIds.length > 0 ? inArray(weatherBlock.sourceId, [...sourceIds]) : sql`false`;
+  return sourceId === undefined ? undefined : eq(weatherBlock.sourceId, sourceId);
+}
+
+/** Daily blocks of the months that touch `from … to`; of some sources and variables when they are given. */
+export function listBlocks(tx: Tx, districtId: string, wanted: BlocksWanted) {
   return tx
     .select({
       sourceId: weatherBlock.sourceId,
@@ -34,6 +75,7 @@ export function listBlocks(tx: Tx, districtId: string, span: { from: string; to:
       month: weatherBlock.month,
       siteCount: weatherBlock.siteCount,
       dayCount: weatherBlock.dayCount,
+      steps: weatherBlock.steps,
       values: weatherBlock.values,
       quality: weatherBlock.quality,
     })
@@ -41,9 +83,11 @@ export function listBlocks(tx: Tx, districtId: string, span: { from: string; to:
     .where(
       and(
         eq(weatherBlock.districtId, districtId),
-        span.sourceId === undefined ? undefined : eq(weatherBlock.sourceId, span.sourceId),
-        gte(weatherBlock.month, `${span.from.slice(0, 7)}-01`),
-        lte(weatherBlock.month, span.to),
+        eq(weatherBlock.steps, wanted.steps ?? 1),
+        ofSources(wanted),
+        wanted.variables ? inArray(weatherBlock.variable, [...wanted.variables]) : undefined,
+        gte(weatherBlock.month, `${wanted.from.slice(0, 7)}-01`),
+        lte(weatherBlock.month, wanted.to),
       ),
     )
     .orderBy(asc(weatherBlock.month));
@@ -51,11 +95,16 @@ export function listBlocks(tx: Tx, districtId: string, span: { from: string; to:
 
 export type BlockRow = Awaited<ReturnType<typeof listBlocks>>[number];
 
-/** First and last month of stored weather, as first days of months; null when there is none. */
-export async function findMonths(tx: Tx, districtId: string, sourceId?: number): Promise<{ first: string; last: string } | null> {
+/** First and last month of stored daily weather, as first days of months; null when there is none. */
+export async function findMonths(
+  tx: Tx,
+  districtId: string,
+  sources?: number | readonly number[],
+): Promise<{ first: string; last: string } | null> {
+  const of = typeof sources === 'number' ? { sourceId: sources } : { sourceIds: sources };
   const [row] = await tx
     .select({ first: sql<string | null>`min(${weatherBlock.month})::text`, last: sql<string | null>`max(${weatherBlock.month})::text` })
     .from(weatherBlock)
-    .where(and(eq(weatherBlock.districtId, districtId), sourceId === undefined ? undefined : eq(weatherBlock.sourceId, sourceId)));
+    .where(and(eq(weatherBlock.districtId, districtId), eq(weatherBlock.steps, 1), ofSources(of)));
   return row.first && row.last ? { first: row.first, last: row.last } : null;
 }

@@ -117,7 +117,10 @@ export const runValue = pgTable(
   (t) => [primaryKey({ columns: [t.districtId, t.runId, t.variable, t.period] })],
 );
 
-/** One reach of a run: Float64 LE [3 × day]: turnout demand on the reach, loss, head inflow, all m³ d⁻¹. */
+/**
+ * One reach of a run: Float64 LE [4 × day]: turnout demand on the reach, loss, head inflow, all m³ d⁻¹, and the area below whose weather was
+ * estimated [m²]; runs of kernel version 1 have the first three.
+ */
 export const runReach = pgTable(
   'run_reach',
   {

@@ -7,7 +7,7 @@
 import { dayNumber, dayOfYear } from '../base/civil-date.ts';
 import { RangeViolation, ShapeError } from '../base/errors.ts';
 import type { Trace } from '../base/working.ts';
-import type { FilledTemperatures } from '../weather/gaps.ts';
+import type { FilledObservations } from '../weather/gaps-fill.ts';
 import { type CompletedWeather, FALLBACK, type SiteObservations, type WeatherVariable } from '../weather/variable.ts';
 import { completePrecipitation, completeRadiation, completeVapourPressure, completeWind, type SiteDay } from './site-day.ts';
 import { solarGeometry } from './sun.ts';
@@ -22,12 +22,15 @@ interface CompletionOptions {
   readonly defaultElevation: number;
   /** kRs of the temperature-range estimate of radiation [°C⁻⁰·⁵]: 0.16 interior, 0.19 coastal */
   readonly radiationCoefficient: number;
-  /** temperatures with their gaps filled, from `fillTemperatureGaps`; without them the observed ones are taken as they are */
-  readonly temperatures?: FilledTemperatures;
 }
 
+/** The bits that speak of temperature alone: they fall away where the extremes could not be used. */
+const TEMPERATURE_BITS =
+  FALLBACK.temperatureFilledInTime | FALLBACK.temperatureFromNormal | FALLBACK.temperatureFromNeighbour | FALLBACK.temperatureFromSource;
+
 /**
- * Completes the weather of all sites and days of a source.
+ * Completes the weather of all sites and days of a source. Observations that went through `fillGaps` bring their bits along: a value that was filled
+ * stands before the published estimate and is flagged by its method.
  *
  * A site-day that has a mean temperature, radiation and humidity but no usable extremes takes the mean for both (flag
  * `temperatureExtremesFromMean`): saturation is then low by the spread of the day unless the vapour pressure came from a measured deficit.
@@ -39,7 +42,7 @@ interface CompletionOptions {
  * @throws {ShapeError} when an array is not sites × days long
  * @throws {RangeViolation} when the anemometer of a site stands below 0.5 m, or the default elevation or kRs is not a number
  */
-export function completeWeather(observations: SiteObservations, options: CompletionOptions): CompletedWeather {
+export function completeWeather(observations: SiteObservations | FilledObservations, options: CompletionOptions): CompletedWeather {
   checkInput(observations, options);
   const siteCount = observations.sites.length;
   const { dayCount } = observations;
@@ -63,7 +66,7 @@ export function completeWeather(observations: SiteObservations, options: Complet
  * @throws as `completeWeather`, and {RangeViolation} when site or day lie outside the observations
  */
 export function traceCompletion(
-  observations: SiteObservations,
+  observations: SiteObservations | FilledObservations,
   site: number,
   day: number,
   options: CompletionOptions,
@@ -109,6 +112,8 @@ function traceTemperatures(day: SiteDay, trace: Trace | null): void {
 
 function temperatureOrigin(flags: number): string {
   if (flags & FALLBACK.temperatureExtremesFromMean) return 'no extremes at the site: the daily mean stands for both';
+  if (flags & FALLBACK.temperatureFromNeighbour) return 'regression on a neighbouring site, FAO-56 Annex 4';
+  if (flags & FALLBACK.temperatureFromSource) return 'another weather source, its mean difference taken off';
   if (flags & FALLBACK.temperatureFromNormal) return 'mean of the same calendar day ± 7 days in other years of the site';
   if (flags & FALLBACK.temperatureFilledInTime) return 'straight line between neighbouring days (a gap of at most five days)';
   return 'observed at the site';
@@ -120,13 +125,13 @@ function daysOfYearOf(observations: SiteObservations): Uint16Array {
 }
 
 /** A reader over one site, standing on no day yet. */
-function siteReader(observations: SiteObservations, site: number, options: CompletionOptions): SiteDay {
+function siteReader(observations: SiteObservations | FilledObservations, site: number, options: CompletionOptions): SiteDay {
   const { elevation, windHeight, latitude } = observations.sites[site];
   const elevationKnown = !Number.isNaN(elevation);
   const height = Number.isNaN(windHeight) ? STANDARD_WIND_HEIGHT : windHeight;
   return {
     values: observations.values,
-    temperatures: options.temperatures ?? observedTemperatures(observations),
+    temperatures: temperaturesOf(observations),
     sun: solarGeometry(latitude),
     elevation: elevationKnown ? elevation : options.defaultElevation,
     siteFlags: elevationKnown ? 0 : FALLBACK.elevationAssumed,
@@ -143,12 +148,12 @@ function siteReader(observations: SiteObservations, site: number, options: Compl
   };
 }
 
-function observedTemperatures(observations: SiteObservations): FilledTemperatures {
+function temperaturesOf(observations: SiteObservations | FilledObservations): SiteDay['temperatures'] {
   const length = observations.sites.length * observations.dayCount;
   return {
+    flags: 'flags' in observations ? observations.flags : new Uint32Array(length),
     airTemperatureMax: observations.values.air_temperature_max_c ?? new Float64Array(length).fill(Number.NaN),
     airTemperatureMin: observations.values.air_temperature_min_c ?? new Float64Array(length).fill(Number.NaN),
-    flags: new Uint16Array(length),
   };
 }
 
@@ -163,7 +168,8 @@ function moveTo(day: SiteDay, index: number, dayOfYearThen: number): void {
   day.dayOfYear = dayOfYearThen;
   day.airTemperatureMax = usable ? max : mean;
   day.airTemperatureMin = usable ? min : mean;
-  day.flags = day.siteFlags | (usable ? day.temperatures.flags[index] : FALLBACK.temperatureExtremesFromMean);
+  const filled = day.temperatures.flags[index];
+  day.flags = day.siteFlags | (usable ? filled : (filled & ~TEMPERATURE_BITS) | FALLBACK.temperatureExtremesFromMean);
 }
 
 /** Variables that give radiation, and humidity, without the spread of temperature. */
@@ -194,7 +200,7 @@ function emptyCompleted(siteCount: number, dayCount: number): CompletedWeather {
     solarRadiation: new Float64Array(length),
     windSpeed2m: new Float64Array(length),
     precipitation: new Float64Array(length),
-    flags: new Uint16Array(length),
+    flags: new Uint32Array(length),
   };
 }
 

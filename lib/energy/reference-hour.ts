@@ -28,16 +28,20 @@ interface HourlyConstants {
   readonly lowestSun: number;
 }
 
-/** Source: FAO-56 Eq. 53, 45, 46. The low-sun limit is a small positive angle: with the sun down there is no Rs/Rso. */
+/**
+ * Source: FAO-56 Eq. 53, 45, 46. Rs/Rso lies between about 0.33 under dense cloud and 1 (FAO-56 chapter 3, relative short-wave radiation, recalled).
+ * For the night FAO-56 takes Rs/Rso of two to three hours before sunset; the sun then stands at about 0.3 rad or more in middle latitudes, the limit
+ * that ASCE 2005 gives, which is used here too. Lower, a ratio of two small numbers would rule the whole night.
+ */
 const FAO56_SHORT: HourlyConstants = {
   numerator: 37,
   denominatorDay: 0.34,
   denominatorNight: 0.34,
   stefanBoltzmann: STEFAN_BOLTZMANN_HOUR_FAO56,
   soilHeatShare: SOIL_HEAT_SHARE_SHORT,
-  lowestRelativeShortwave: 0,
+  lowestRelativeShortwave: 0.33,
   lowestWind: 0.5,
-  lowestSun: 0.1,
+  lowestSun: 0.3,
 };
 
 /** Source: ASCE 2005 Table 1 and Eq. 44–46 (recalled, not re-read; Cd confirmed by rs · u2 / ra). */
@@ -170,22 +174,38 @@ function hourRadiation(place: HourlyPlace, weather: HourWeather, constants: Hour
 }
 
 /**
- * Reference ET of the periods of one day in clock order. Rs/Rso is carried from the last period with the sun high enough, and into the
- * hours before the first such period from that first one; on a day without sun the caller's value holds.
+ * Reference ET of the periods of one day in clock order. Rs/Rso is carried from the last period with the sun high enough; into the hours
+ * before the first such period from the evening before, or from that first one where the evening is not known; on a day without sun the
+ * caller's value holds.
  *
  * @param hours [hour], in clock order; `carriedRelativeShortwave` is used only on days on which the sun never stands high enough
+ * @param evening Rs/Rso of the evening before, from `eveningRelativeShortwave`; NaN when it is not known
  * @returns one solved hour each
  * Source: as `referenceEtHour`; carrying of the cloud factor from ASCE 2005, hourly net radiation (recalled, not re-read).
  */
-export function referenceEtHours(place: HourlyPlace, hours: readonly HourWeather[]): ReferenceHour[] {
-  const constants = hourlyConstants(place.method, place.surface);
-  const sun = sunDay(place.latitude, place.dayOfYear);
-  const own = hours.map((hour) => ownRelativeShortwave(place, hour, constants, sun));
-  let carried = own.find((ratio) => !Number.isNaN(ratio)) ?? Number.NaN;
+export function referenceEtHours(place: HourlyPlace, hours: readonly HourWeather[], evening: number = Number.NaN): ReferenceHour[] {
+  const own = ownRelativeShortwaves(place, hours);
+  let carried = Number.isNaN(evening) ? (own.find((ratio) => !Number.isNaN(ratio)) ?? Number.NaN) : evening;
   return hours.map((hour, i) => {
     if (!Number.isNaN(own[i])) carried = own[i];
     return referenceEtHour(place, Number.isNaN(carried) ? hour : { ...hour, carriedRelativeShortwave: carried });
   });
+}
+
+/**
+ * Rs/Rso of the last period of a day with the sun high enough for one: what the night after it goes by.
+ *
+ * @returns [1]; NaN for a day on which the sun never stands high enough, or without radiation then
+ * Source: as `referenceEtHours`.
+ */
+export function eveningRelativeShortwave(place: HourlyPlace, hours: readonly HourWeather[]): number {
+  return ownRelativeShortwaves(place, hours).findLast((ratio) => !Number.isNaN(ratio)) ?? Number.NaN;
+}
+
+function ownRelativeShortwaves(place: HourlyPlace, hours: readonly HourWeather[]): number[] {
+  const constants = hourlyConstants(place.method, place.surface);
+  const sun = sunDay(place.latitude, place.dayOfYear);
+  return hours.map((hour) => ownRelativeShortwave(place, hour, constants, sun));
 }
 
 function ownRelativeShortwave(place: HourlyPlace, hour: HourWeather, constants: HourlyConstants, sun: SunDay): number {

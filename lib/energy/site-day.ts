@@ -3,7 +3,6 @@
  * one, is told the same numbers the result is made of.
  */
 import type { Trace, WorkingStep } from '../base/working.ts';
-import type { FilledTemperatures } from '../weather/gaps.ts';
 import { FALLBACK, type SiteObservations, WEATHER_VARIABLES, type WeatherVariable } from '../weather/variable.ts';
 import { atmosphericPressure } from './air.ts';
 import {
@@ -25,7 +24,12 @@ export const WIND_WITHOUT_RECORD = 2;
 /** A reader standing on one site and day; moved along in place. */
 export interface SiteDay {
   readonly values: SiteObservations['values'];
-  readonly temperatures: FilledTemperatures;
+  /** extremes of all sites and days, with the bits of what was filled, [site × day] */
+  readonly temperatures: {
+    readonly airTemperatureMax: Float64Array;
+    readonly airTemperatureMin: Float64Array;
+    readonly flags: Uint32Array;
+  };
   readonly sun: SolarGeometry;
   /** m, the default where the site has none */
   readonly elevation: number;
@@ -44,6 +48,26 @@ export interface SiteDay {
   value: number;
   /** bits of FALLBACK, growing as values are completed */
   flags: number;
+}
+
+/** How a variable that was filled came to be, by the bits that say so. */
+const FILLED_TEXT: readonly (readonly [number, string])[] = [
+  [
+    FALLBACK.humidityFromNeighbour | FALLBACK.radiationFromNeighbour | FALLBACK.windFromNeighbour | FALLBACK.precipitationFromNeighbour,
+    'filled by regression on a neighbouring site, FAO-56 Annex 4',
+  ],
+  [FALLBACK.humidityFromSource | FALLBACK.radiationFromSource | FALLBACK.windFromSource, 'filled from another weather source'],
+  [FALLBACK.windFromNormal, 'filled with the normal of the day'],
+];
+
+const HUMIDITY_FILLED = FALLBACK.humidityFromNeighbour | FALLBACK.humidityFromSource;
+const RADIATION_FILLED = FALLBACK.radiationFromNeighbour | FALLBACK.radiationFromSource;
+const WIND_FILLED = FALLBACK.windFromNeighbour | FALLBACK.windFromSource | FALLBACK.windFromNormal;
+
+/** The source of a step, with what was filled of the day's `bits`. */
+function sourceWith(source: string, day: SiteDay, bits: number): string {
+  const text = FILLED_TEXT.find(([group]) => (day.flags & bits & group) !== 0)?.[1];
+  return text ? `${source.replace('observed at the site', 'value of the site')}; ${text}` : source;
 }
 
 type Quantity = WorkingStep['inputs'][number];
@@ -169,7 +193,15 @@ export function completeVapourPressure(day: SiteDay, trace: Trace | null): numbe
     const { expression, source } = way;
     const held = capped ? '; held at saturation es = [e°(Tmax) + e°(Tmin)] / 2' : '';
     const inputs = capped ? [...way.inputs(day), { symbol: 'es', value: saturation, unit: 'kPa' }] : way.inputs(day);
-    tell(trace, { symbol: 'ea', name: 'Actual vapour pressure', expression: expression + held, inputs, result, unit: 'kPa', source });
+    tell(trace, {
+      symbol: 'ea',
+      name: 'Actual vapour pressure',
+      expression: expression + held,
+      inputs,
+      result,
+      unit: 'kPa',
+      source: sourceWith(source, day, HUMIDITY_FILLED),
+    });
   }
   return result;
 }
@@ -233,7 +265,15 @@ export function completeRadiation(day: SiteDay, trace: Trace | null): number {
     const { expression, source } = way;
     const held = capped ? '; held at Rso = (0.75 + 2 × 10⁻⁵ z) Ra' : '';
     const inputs = capped ? [...way.inputs(day), { symbol: 'Rso', value: clearSky, unit: 'MJ m⁻² d⁻¹' }] : way.inputs(day);
-    tell(trace, { symbol: 'Rs', name: 'Solar radiation', expression: expression + held, inputs, result, unit: 'MJ m⁻² d⁻¹', source });
+    tell(trace, {
+      symbol: 'Rs',
+      name: 'Solar radiation',
+      expression: expression + held,
+      inputs,
+      result,
+      unit: 'MJ m⁻² d⁻¹',
+      source: sourceWith(source, day, RADIATION_FILLED),
+    });
   }
   return result;
 }
@@ -257,7 +297,7 @@ export function completeWind(day: SiteDay, trace: Trace | null): number {
       inputs: missing ? [] : [given(day, 'uz', 'wind_speed_m_s'), { symbol: 'z', value: day.windHeight, unit: 'm' }],
       result,
       unit: 'm s⁻¹',
-      source: missing ? 'FAO-56 chapter 3, missing wind speed' : 'FAO-56 Eq. 47',
+      source: missing ? 'FAO-56 chapter 3, missing wind speed' : sourceWith('FAO-56 Eq. 47', day, WIND_FILLED),
     });
   }
   return result;
@@ -285,7 +325,7 @@ export function completePrecipitation(day: SiteDay, trace: Trace | null): number
       inputs: missing ? [] : [given(day, 'P', 'precipitation_mm')],
       result,
       unit: 'mm d⁻¹',
-      source: missing ? 'taken as zero and flagged' : 'observed at the site',
+      source: missing ? 'taken as zero and flagged' : sourceWith('observed at the site', day, FALLBACK.precipitationFromNeighbour),
     });
   }
   return result;

@@ -72,7 +72,7 @@ const starts = (head: Uint8Array, signature: readonly number[]) => signature.eve
 export function contentKind(head: Uint8Array, name: string): ContentKind {
   if (head.length === 0) return 'empty';
   const known = SIGNATURES.find(([, signature]) => starts(head, signature));
-  if (known) return known[0];
+  if (known) return known[0] === 'zip' && isOfficeDocument(head) ? 'other' : known[0];
   if (/\.(dbf|prj|cpg|shx)$/i.test(name)) return 'shapefile-part';
   const encoding = detectEncoding(head);
   if (looksBinary(head, encoding)) return 'other';
@@ -83,7 +83,15 @@ export function contentKind(head: Uint8Array, name: string): ContentKind {
   return text.startsWith('<') ? 'xml' : 'table';
 }
 
+/** True for a spreadsheet or text document: an archive whose first member says so. */
+function isOfficeDocument(head: Uint8Array): boolean {
+  const length = head[26] + 256 * head[27];
+  const first = Buffer.from(head.subarray(30, 30 + length)).toString('latin1');
+  return first === '[Content_Types].xml' || first === '_rels/.rels' || /^(xl|word|docProps)\//.test(first) || first === 'mimetype';
+}
+
 /** The kind in words, as precise as its first bytes allow. */
 export function contentWords(head: Uint8Array, name: string): string {
+  if (starts(head, [0x50, 0x4b]) && isOfficeDocument(head)) return 'a spreadsheet or office document';
   return STRANGERS.find(([, signature]) => starts(head, signature))?.[0] ?? CONTENT_WORDS[contentKind(head, name)];
 }

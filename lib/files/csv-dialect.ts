@@ -77,7 +77,7 @@ function looksLikeData(cells: readonly string[]): boolean {
 }
 
 /**
- * Index of the header among the first records: the one with most cells that `recognise` knows (at least two), else the first that is
+ * Index of the header among the first records: the one with most cells that `recognise` knows (at least two; of two alike the wider), else the first that is
  * neither blank nor a comment. −1 when there is none, or when that row is data.
  */
 export function findHeader(records: readonly (readonly string[])[], recognise: (header: string) => boolean): number {
@@ -88,7 +88,8 @@ export function findHeader(records: readonly (readonly string[])[], recognise: (
     if (first < 0) first = index;
     if (looksLikeData(cells)) continue;
     const score = cells.filter((cell) => cell.trim() !== '' && recognise(cell)).length;
-    if (score > best.score) best = { index, score };
+    const wider = score === best.score && best.index >= 0 && cells.length > records[best.index].length;
+    if (score > best.score || wider) best = { index, score };
   }
   if (best.index >= 0) return best.index;
   return first >= 0 && !looksLikeData(records[first]) ? first : -1;

@@ -1,23 +1,22 @@
 /**
  * Delimited text → header and rows. Rows come in batches, so that a million of them never stand in memory as text at once.
  */
-import { type CsvError, type Options, parse } from 'csv-parse';
+import type { CsvError, Options } from 'csv-parse';
 import { parse as parseAll } from 'csv-parse/sync';
 import { counted } from '../base/counted.ts';
-import { type Delimiter, findHeader, isBlankRecord, isCommentRecord, sniffDecimalComma, sniffDelimiter } from './csv-dialect.ts';
+import { type ByteRow, cellTexts } from './byte-row.ts';
+import { type Delimiter, findHeader, isCommentRecord, sniffDecimalComma, sniffDelimiter } from './csv-dialect.ts';
+import { csvOptions, LongRecord, linesOf, scanRecords } from './csv-scan.ts';
 import { type FindingList, shown } from './finding-list.ts';
 import { type ColumnPlan, type ImportFile, NOTHING_UNDERSTOOD, type Progress, type Understood } from './reading.ts';
-import { decodeText, detectEncoding, isKnownEncoding, looksBinary, type TextEncoding, utf8Pieces } from './text-encoding.ts';
+import { decodeText, detectEncoding, isKnownEncoding, looksBinary, type TextEncoding } from './text-encoding.ts';
 import { isUnitText } from './unit.ts';
 
 /** Most bytes of one table. */
 const TABLE_BYTE_LIMIT = 512 * 1024 * 1024;
 /** Most columns of one table. */
 const COLUMN_LIMIT = 2000;
-/** Longest record, bytes: an unclosed quote must not swallow the memory. */
-const RECORD_BYTE_LIMIT = 1024 * 1024;
 const HEAD_BYTES = 256 * 1024;
-const PIECE_BYTES = 256 * 1024;
 const HEADER_SEARCH = 60;
 const SAMPLE_ROWS = 1000;
 
@@ -34,6 +33,8 @@ export interface TableHead {
   /** records before the first row of data */
   readonly skip: number;
   readonly sample: readonly (readonly string[])[];
+  /** lines above the header, as written */
+  readonly preamble: readonly string[];
 }
 
 export interface TableRow {
@@ -55,6 +56,15 @@ export function openTable({ file, plan, recognise }: TableRequest, findings: Fin
   if (!encoding) return null;
   const text = decodeText(file.bytes.subarray(0, HEAD_BYTES), encoding);
   const delimiter = plan.delimiter ?? sniffDelimiter(text);
+  if (!delimiter && hasBlankColumns(text)) {
+    return refuse(
+      findings,
+      file,
+      'no-delimiter',
+      'The columns of the file are divided by blanks, in a layout that is not known, and nothing names them.',
+      'Write it as CSV with a row of column names on top.',
+    );
+  }
   if (!delimiter)
     return refuse(findings, file, 'no-delimiter', 'The file has no columns: no comma, semicolon, tab or bar divides its lines.');
   const records = headRecords(file, text, { encoding, delimiter }, findings);
@@ -76,7 +86,16 @@ export function openTable({ file, plan, recognise }: TableRequest, findings: Fin
   const skip = at + (units ? 2 : 1);
   const sample = records.slice(skip, skip + SAMPLE_ROWS).filter((cells) => cells.length === header.length && !isCommentRecord(cells));
   const decimalComma = plan.decimalComma ?? sniffDecimalComma(sample);
-  return { encoding, delimiter, decimalComma, header, headerRow: 1 + linesOf(records.slice(0, at)), units, skip, sample };
+  const headerRow = 1 + linesOf(records.slice(0, at));
+  const preamble = text.split(/\r\n|\n|\r/, headerRow - 1);
+  return { encoding, delimiter, decimalComma, header, headerRow, units, skip, sample, preamble };
+}
+
+/** True when most lines have as many words as the first and at least four. */
+function hasBlankColumns(text: string): boolean {
+  const words = text.split(/\r\n|\n|\r/, 21).map((line) => line.trim().split(/\s+/).length);
+  const alike = words.filter((count) => count === words[0]).length;
+  return words[0] >= 4 && alike * 2 > words.length;
 }
 
 function refuse(findings: FindingList, file: ImportFile, code: string, message: string, advice?: string): null {
@@ -105,16 +124,6 @@ function tableEncoding(file: ImportFile, plan: ColumnPlan, findings: FindingList
   return encoding;
 }
 
-function csvOptions(delimiter: Delimiter): Options {
-  return {
-    delimiter,
-    record_delimiter: ['\r\n', '\n', '\r'],
-    relax_column_count: true,
-    relax_quotes: true,
-    max_record_size: RECORD_BYTE_LIMIT,
-  };
-}
-
 /** Records of the first bytes; the last one is dropped when the text was cut. */
 function headRecords(
   file: ImportFile,
@@ -138,7 +147,10 @@ function headRecords(
   return collected;
 }
 
-function refuseBroken(file: ImportFile, error: CsvError, findings: FindingList): null {
+function refuseBroken(file: ImportFile, error: CsvError | LongRecord, findings: FindingList): null {
+  if (error instanceof LongRecord) {
+    return refuse(findings, file, 'unreadable-table', `The table cannot be read: ${error.message}.`, 'Check the line ends of the file.');
+  }
   const line = typeof error.lines === 'number' ? error.lines : undefined;
   const unclosed = error.code === 'CSV_QUOTE_NOT_CLOSED' || error.code === 'CSV_MAX_RECORD_SIZE';
   findings.refuse({
@@ -170,86 +182,135 @@ function unitsRow(cells: readonly string[] | undefined): string[] | null {
   return units >= 1 && units * 2 >= filled.length ? cells.map((cell) => cell.trim()) : null;
 }
 
-function linesOf(records: readonly (readonly string[])[]): number {
-  let lines = records.length;
-  for (const cells of records) for (const cell of cells) lines += newlines(cell);
-  return lines;
-}
-
-function newlines(cell: string): number {
-  return cell.match(/\r\n|\n|\r/g)?.length ?? 0;
+interface RowSink {
+  /** takes a row of data; the object is used again for the next */
+  each(row: ByteRow): void;
+  bad(row: TableRow, reason: string): void;
+  readonly progress: Progress;
 }
 
 /**
- * Calls `each` for every row of data. Rows with a wrong number of cells become findings and go to `bad`; blank rows and comment rows are passed over.
+ * Calls `each` for every row of data, as texts. Rows with a wrong number of cells become findings and go to `bad`; blank rows and comment
+ * rows are passed over, and so are lines of text that follow the table after a blank line.
  *
  * @returns number of rows of data, the bad ones included, or −1 after a file-level finding
  */
-export async function readRows(
+export function readRows(
   file: ImportFile,
   head: TableHead,
   sink: { each(row: TableRow): void; bad(row: TableRow, reason: string): void; progress: Progress },
   findings: FindingList,
 ): Promise<number> {
+  const each = (row: ByteRow) => sink.each({ row: row.row, cells: cellTexts(row) });
+  return readByteRows(file, head, { each, bad: sink.bad, progress: sink.progress }, findings);
+}
+
+/** As `readRows`, with each row as bytes: for tables of millions of rows. */
+export async function readByteRows(file: ImportFile, head: TableHead, sink: RowSink, findings: FindingList): Promise<number> {
   const counter = rowCounter(file, head, sink, findings);
+  const { bytes } = file;
   try {
-    await parsePieces(file, head, counter.take, sink.progress);
+    await scanRecords(
+      { bytes, encoding: head.encoding, delimiter: head.delimiter, width: head.header.length, progress: sink.progress },
+      counter.take,
+    );
   } catch (error) {
-    refuseBroken(file, error as CsvError, findings);
+    if (!(error instanceof LongRecord) && !(error as CsvError).code?.startsWith('CSV_')) throw error;
+    refuseBroken(file, error as CsvError | LongRecord, findings);
     return -1;
   }
+  counter.end();
   return counter.rows();
 }
 
-function rowCounter(
-  file: ImportFile,
-  head: TableHead,
-  sink: { each(row: TableRow): void; bad(row: TableRow, reason: string): void },
-  findings: FindingList,
-): { take(cells: string[]): void; rows(): number } {
-  const quoted = file.bytes.includes(0x22);
+/** Rows of a wrong width that are held back until it is known whether the table goes on after them. */
+const HELD_ROWS = 200;
+
+function rowCounter(file: ImportFile, head: TableHead, sink: RowSink, findings: FindingList) {
   const width = head.header.length;
-  let line = 1;
   let record = 0;
   let rows = 0;
-  const take = (cells: string[]) => {
-    const row = line;
-    line += quoted ? linesOf([cells]) : 1;
-    if (record++ < head.skip || isCommentRecord(cells) || isBlankRecord(cells)) return;
+  let blankBefore = false;
+  let held: { row: TableRow; afterBlank: boolean }[] = [];
+
+  const take = (row: ByteRow) => {
+    if (record++ < head.skip) return;
+    if (isBlankRow(row)) {
+      blankBefore = true;
+      return;
+    }
+    if (isCommentRow(row)) return;
+    while (row.count > width && row.count <= row.starts.length && isBlankCell(row, row.count - 1)) row.count--;
+    if (row.count !== width) return hold(row);
+    if (held.length > 0) release();
+    blankBefore = false;
     rows++;
-    while (cells.length > width && cells[cells.length - 1].trim() === '') cells.pop();
-    if (cells.length === width) return sink.each({ row, cells });
-    const message = `The row has ${counted(cells.length, 'cell', 'cells')}; the header has ${width}.`;
+    sink.each(row);
+  };
+
+  function hold(row: ByteRow): void {
+    held.push({ row: { row: row.row, cells: cellTexts(row) }, afterBlank: blankBefore || (held[0]?.afterBlank ?? false) });
+    counts.set(row.row, row.count);
+    if (held.length >= HELD_ROWS) release();
+  }
+
+  function release(): void {
+    for (const { row } of held) fault(row, counts.get(row.row) ?? row.cells.length);
+    rows += held.length;
+    counts.clear();
+    held = [];
+  }
+
+  function fault(row: TableRow, cells: number): void {
+    const message = `The row has ${counted(cells, 'cell', 'cells')}; the header has ${width}.`;
     findings.error({
       code: 'row-cell-count',
       message,
       file: file.name,
-      row,
-      value: String(cells.length),
+      row: row.row,
+      value: String(cells),
       limit: String(width),
       advice: 'Check for a missing or extra delimiter or quote.',
     });
-    sink.bad({ row, cells }, message);
-  };
-  return { take, rows: () => rows };
+    sink.bad(row, message);
+  }
+
+  /** What stands after the table behind a blank line is a legend, not rows at fault. */
+  function end(): void {
+    if (held.length === 0) return;
+    const legend = held.every(({ afterBlank, row }) => afterBlank && !/^\s*[-+]?\d/.test(row.cells[0] ?? ''));
+    if (rows === 0 || !legend) {
+      release();
+      return;
+    }
+    findings.note({
+      code: 'text-after-table',
+      message: `${counted(held.length, 'line', 'lines')} of text after the table ${held.length === 1 ? 'is' : 'are'} passed over: "${shown(held[0].row.cells.join(head.delimiter))}"${held.length > 1 ? ' …' : ''}.`,
+      file: file.name,
+      row: held[0].row.row,
+    });
+    held = [];
+  }
+
+  const counts = new Map<number, number>();
+  return { take, end, rows: () => rows };
 }
 
-async function parsePieces(file: ImportFile, head: TableHead, take: (cells: string[]) => void, progress: Progress): Promise<void> {
-  const parser = parse(csvOptions(head.delimiter));
-  const ended = new Promise<void>((resolve, reject) => {
-    parser.on('data', take);
-    parser.once('end', resolve);
-    parser.once('error', reject);
-  });
-  ended.catch(() => undefined);
-  let done = 0;
-  for (const piece of utf8Pieces(file.bytes, head.encoding, PIECE_BYTES)) {
-    await new Promise<void>((resolve, reject) => parser.write(piece, (error) => (error ? reject(error) : resolve())));
-    done += PIECE_BYTES;
-    await progress(Math.min(1, done / file.bytes.length));
-  }
-  parser.end();
-  await ended;
+function isBlankCell({ bytes, starts, ends }: ByteRow, cell: number): boolean {
+  for (let at = starts[cell]; at < ends[cell]; at++) if (bytes[at] > 0x20) return false;
+  return true;
+}
+
+function isBlankRow(row: ByteRow): boolean {
+  const kept = Math.min(row.count, row.starts.length);
+  for (let cell = 0; cell < kept; cell++) if (!isBlankCell(row, cell)) return false;
+  return row.count <= row.starts.length;
+}
+
+function isCommentRow({ bytes, starts, ends }: ByteRow): boolean {
+  let at = starts[0];
+  while (at < ends[0] && bytes[at] <= 0x20) at++;
+  return at < ends[0] && bytes[at] === 0x23;
 }
 
 /** What a table's start says, the rest still unknown. */

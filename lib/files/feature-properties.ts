@@ -2,7 +2,7 @@
  * Roles of the properties of a vector file, and typed access to them feature by feature.
  */
 import { FindingList, shown } from './finding-list.ts';
-import { propertyNames, propertyText, type RawFeature } from './geojson.ts';
+import { propertyNames, propertyText, type RawFeature } from './raw-feature.ts';
 import type { ImportOptions, UnderstoodColumn } from './reading.ts';
 import { type BindRequest, type BoundTable, bindColumns, type TableRole } from './table-columns.ts';
 

@@ -1,30 +1,14 @@
 /**
- * GeoJSON (RFC 7946) → features whose geometry has the right types and plausible coordinates. What a feature means is for others.
+ * GeoJSON (RFC 7946, and the coordinate system member of its forerunner of 2008) → a layer. The features are parsed one by one.
  */
-import type { Geometry, Position } from 'geojson';
-import { type FindingList, shown } from './finding-list.ts';
-import { parseJsonFile } from './json-text.ts';
-import { isMissingText } from './number-cell.ts';
+import { shown } from './finding-list.ts';
+import { featureSpans, JSON_DEPTH_LIMIT } from './json-features.ts';
+import type { FeatureFault } from './raw-feature.ts';
 import type { ImportFile } from './reading.ts';
+import { decodeText, detectEncoding, looksBinary } from './text-encoding.ts';
+import { FEATURE_LIMIT, refusal, type SourceFeature, type VectorSource, WGS84_NAME } from './vector-source.ts';
 
-/** Most features of one file. */
-const FEATURE_LIMIT = 1_000_000;
-
-/** One feature. `geometry` is null when it is missing or broken; then `problem` says why. */
-export interface RawFeature {
-  /** ordinal in the file, from 1 */
-  readonly row: number;
-  readonly file: string;
-  readonly properties: Readonly<Record<string, unknown>>;
-  readonly geometry: Geometry | null;
-  readonly problem: string | null;
-}
-
-interface FeatureFile {
-  readonly features: RawFeature[];
-  readonly encoding: string;
-  readonly crs: string;
-}
+const BYTE_LIMIT = 1024 * 1024 * 1024;
 
 /** Names of the legacy `crs` member that mean WGS 84 longitude and latitude. */
 const WGS84_NAMES = /(^|[:/])(CRS:?84|EPSG:+(4326|0:4326)|EPSG\/0\/4326)$|OGC:1\.3:CRS84$|EPSG::4326$/i;
@@ -35,33 +19,74 @@ function isObject(value: unknown): value is Json {
   return typeof value === 'object' && value !== null && !Array.isArray(value);
 }
 
-/** Reads the features of a file; null after a file-level finding. Broken features are findings of their row. */
-export function readFeatures(file: ImportFile, wanted: readonly Geometry['type'][], findings: FindingList): FeatureFile | null {
-  const json = parseJsonFile(file, findings);
-  if (!json) return null;
-  const refuse = (code: string, message: string, advice: string): null => {
-    findings.refuse({ code, message, file: file.name, advice });
-    return null;
-  };
-  const { value } = json;
-  if (!isObject(value))
-    return refuse('not-geojson', 'The file is JSON but not GeoJSON: its top level is not an object.', 'Export the layer as GeoJSON.');
-  const crs = crsOf(value, file, findings);
-  if (crs === null) return null;
-  const list = featuresOf(value);
-  if (typeof list === 'string') return refuse('not-geojson', list, 'Export the layer as a FeatureCollection.');
-  if (list.length === 0) return refuse('no-features', 'The file holds no features.', 'Export the layer with its features.');
-  if (list.length > FEATURE_LIMIT)
-    return refuse(
-      'too-many-features',
-      `The file holds ${list.length} features; the limit is ${FEATURE_LIMIT}.`,
-      'Cut it into several files.',
-    );
+/** Opens a GeoJSON file. @throws {Refused} when it is no GeoJSON or beyond a limit */
+export function openGeoJson(file: ImportFile): VectorSource {
+  const { text, encoding } = textOf(file);
+  const refuse = (code: string, message: string, advice: string, limit?: string) => refusal(file.name, { code, message, advice, limit });
+  const found = featureSpans(text, FEATURE_LIMIT);
+  if (found === 'too-deep')
+    throw refuse('json-too-deep', 'The JSON is nested too deeply.', 'Check that the file is GeoJSON.', `${JSON_DEPTH_LIMIT} levels`);
+  const tooMany = `The file holds more than ${FEATURE_LIMIT} features.`;
+  if (found === 'too-many') throw refuse('too-many-features', tooMany, 'Cut it into several files.');
+  const frame = parsed(found ? found.frame : text.toString('utf-8'), file);
+  if (!isObject(frame))
+    throw refuse('not-geojson', 'The file is JSON but not GeoJSON: its top level is not an object.', 'Export the layer as GeoJSON.');
+  const crs = crsOf(frame);
+  const kept = Array.isArray(frame.features) && frame.features.length === 0 && found ? found : null;
+  const list = featuresOf(frame);
+  if (typeof list === 'string') throw refuse('not-geojson', list, 'Export the layer as a FeatureCollection.');
+  const count = kept ? kept.count : list.length;
+  if (count === 0) throw refuse('no-features', 'The file holds no features.', 'Export the layer with its features.');
+  if (count > FEATURE_LIMIT)
+    throw refuse('too-many-features', `The file holds ${count} features; the limit is ${FEATURE_LIMIT}.`, 'Cut it into several files.');
+  const name = typeof frame.name === 'string' ? frame.name : stem(file.name);
   return {
-    features: list.map((feature, index) => rawFeature(feature, { row: index + 1, file: file.name, wanted }, findings)),
-    encoding: json.encoding,
+    format: 'geojson',
+    layers: [{ name, featureCount: count, geometry: null }],
+    layer: name,
     crs,
+    encoding,
+    featureCount: count,
+    features: kept ? eachSpan(text, kept.spans, file) : list.map(sourceFeature),
   };
+}
+
+function* eachSpan(text: Buffer, spans: Float64Array, file: ImportFile): Generator<SourceFeature> {
+  for (let k = 0; k < spans.length; k += 2) yield sourceFeature(parsed(text.toString('utf-8', spans[k], spans[k + 1]), file));
+}
+
+function parsed(text: string, file: ImportFile): unknown {
+  try {
+    return JSON.parse(text);
+  } catch (error) {
+    throw refusal(
+      file.name,
+      {
+        code: 'not-json',
+        message: `The file is not valid JSON: ${shown((error as Error).message)}`,
+        advice: 'Check that the file is complete.',
+      },
+      error,
+    );
+  }
+}
+
+/** The bytes of the file as UTF-8. */
+function textOf(file: ImportFile): { text: Buffer; encoding: string } {
+  const { bytes } = file;
+  const refuse = (code: string, message: string, advice: string, limit?: string) => refusal(file.name, { code, message, advice, limit });
+  if (bytes.length === 0) throw refuse('empty-file', 'The file is empty.', 'Choose a file with features.');
+  if (bytes.length > BYTE_LIMIT)
+    throw refuse('file-too-large', `The file has ${bytes.length} bytes.`, 'Cut it into several files.', `${BYTE_LIMIT} bytes`);
+  const encoding = detectEncoding(bytes);
+  if (looksBinary(bytes, encoding))
+    throw refuse('binary-file', 'The file is not text: it holds zero bytes.', 'Export the layer as GeoJSON.');
+  if (encoding.name === 'windows-1252') throw refuse('not-utf-8', 'The file is not valid UTF-8, as JSON must be.', 'Save it as UTF-8.');
+  const text =
+    encoding.name === 'utf-8'
+      ? Buffer.from(bytes.buffer, bytes.byteOffset + encoding.skip, bytes.byteLength - encoding.skip)
+      : Buffer.from(decodeText(bytes, encoding), 'utf-8');
+  return { text, encoding: encoding.name };
 }
 
 function featuresOf(value: Json): unknown[] | string {
@@ -75,117 +100,32 @@ function featuresOf(value: Json): unknown[] | string {
   return `The type "${shown(value.type)}" is not a GeoJSON FeatureCollection or Feature.`;
 }
 
-function crsOf(value: Json, file: ImportFile, findings: FindingList): string | null {
-  if (value.crs === undefined || value.crs === null) return 'OGC:CRS84';
+/** WGS 84, as RFC 7946 has it, unless the file has the `crs` member of the older GeoJSON. */
+function crsOf(value: Json): string {
+  if (value.crs === undefined || value.crs === null) return WGS84_NAME;
   const properties = isObject(value.crs) && isObject(value.crs.properties) ? value.crs.properties : {};
-  const name = String(properties.name ?? properties.href ?? properties.code ?? 'unnamed');
-  if (WGS84_NAMES.test(name.trim())) return name;
-  findings.refuse({
-    code: 'unsupported-crs',
-    message: `The file is in the coordinate system "${shown(name)}". GeoJSON must be in WGS 84 longitude and latitude.`,
-    file: file.name,
-    value: shown(name),
-    limit: 'OGC:CRS84 or EPSG:4326 (RFC 7946 section 4)',
-    advice: 'Reproject the layer to WGS 84 (EPSG:4326) and export it again.',
-  });
-  return null;
+  const name = String(properties.name ?? properties.href ?? properties.code ?? 'unnamed').trim();
+  return WGS84_NAMES.test(name) ? WGS84_NAME : name;
 }
 
-interface Where {
-  readonly row: number;
-  readonly file: string;
-  readonly wanted: readonly Geometry['type'][];
-}
-
-function rawFeature(feature: unknown, where: Where, findings: FindingList): RawFeature {
-  const { row, file, wanted } = where;
+function sourceFeature(feature: unknown): SourceFeature {
   const properties = isObject(feature) && isObject(feature.properties) ? feature.properties : {};
-  const fail = (code: string, message: string, advice: string, limit?: string): RawFeature => {
-    findings.error({ code, message, file, row, limit, advice });
-    return { row, file, properties, geometry: null, problem: message };
+  const fail = (code: string, message: string, advice: string): SourceFeature => {
+    const fault: FeatureFault = { code, message, advice };
+    return { geometry: null, properties, id: null, fault };
   };
   if (!isObject(feature) || feature.type !== 'Feature')
     return fail('not-a-feature', 'The entry is not a GeoJSON Feature.', 'Export the layer again.');
   if (feature.properties !== null && feature.properties !== undefined && !isObject(feature.properties))
     return fail('bad-properties', 'The properties of the feature are not an object.', 'Export the layer again.');
-  const { geometry } = feature;
-  if (geometry === null || geometry === undefined)
-    return fail('no-geometry', 'The feature has no geometry.', 'Draw it, or delete its row.');
-  if (!isObject(geometry) || typeof geometry.type !== 'string')
+  const { geometry, id } = feature;
+  if (geometry !== null && geometry !== undefined && !isObject(geometry))
     return fail('bad-geometry', 'The geometry of the feature has no type.', 'Export the layer again.');
-  if (!wanted.includes(geometry.type as Geometry['type']))
-    return fail('wrong-geometry', `The geometry is a ${shown(geometry.type)}.`, 'Choose the right layer.', wanted.join(' or '));
-  const fault = coordinateFault(geometry.coordinates, DEPTH[geometry.type]);
-  if (fault) return fail(fault.code, fault.message, fault.advice, fault.limit);
-  return { row, file, properties, geometry: geometry as unknown as Geometry, problem: null };
+  if (typeof id !== 'string' && typeof id !== 'number') return { geometry: geometry ?? null, properties, id: null };
+  return { geometry: geometry ?? null, properties: 'id' in properties ? properties : { id, ...properties }, id: String(id) };
 }
 
-/** Depth of the coordinates arrays around a position. */
-const DEPTH: Record<string, number> = { Point: 0, MultiPoint: 1, LineString: 1, MultiLineString: 2, Polygon: 2, MultiPolygon: 3 };
-
-interface CoordinateFault {
-  readonly code: string;
-  readonly message: string;
-  readonly advice: string;
-  readonly limit?: string;
-}
-
-function coordinateFault(coordinates: unknown, depth: number): CoordinateFault | null {
-  if (depth === 0) return positionFault(coordinates);
-  if (!Array.isArray(coordinates) || coordinates.length === 0) {
-    return {
-      code: 'bad-coordinates',
-      message: 'The coordinates are empty or not nested as the type of the geometry asks.',
-      advice: 'Export the layer again.',
-    };
-  }
-  for (const part of coordinates) {
-    const fault = coordinateFault(part, depth - 1);
-    if (fault) return fault;
-  }
-  return null;
-}
-
-function positionFault(position: unknown): CoordinateFault | null {
-  const [x, y] = Array.isArray(position) ? position : [];
-  if (typeof x !== 'number' || typeof y !== 'number' || !Number.isFinite(x) || !Number.isFinite(y)) {
-    return {
-      code: 'bad-coordinates',
-      message: `"${shown(JSON.stringify(position) ?? '')}" is not a position of two numbers.`,
-      advice: 'Export the layer again.',
-    };
-  }
-  if (Math.abs(x) <= 180 && Math.abs(y) <= 90) return null;
-  const projected = Math.abs(x) > 1000 || Math.abs(y) > 1000;
-  return {
-    code: 'coordinates-out-of-range',
-    message: `Position ${x}, ${y} is not a longitude and latitude.`,
-    limit: '−180 to 180, −90 to 90 degrees',
-    advice: projected
-      ? 'The coordinates look projected (metres or feet): reproject the layer to WGS 84 (EPSG:4326).'
-      : 'Correct the position; longitude stands before latitude.',
-  };
-}
-
-/** True when any position carries a height. */
-export function hasHeight(lines: readonly (readonly Position[])[]): boolean {
-  return lines.some((line) => line.some((position) => position.length > 2));
-}
-
-/** Property as trimmed text; blank, missing and all-asterisk values are null. */
-export function propertyText(value: unknown): string | null {
-  if (typeof value === 'number') return Number.isFinite(value) ? String(value) : null;
-  if (typeof value === 'boolean') return String(value);
-  if (typeof value !== 'string') return null;
-  const text = value.trim();
-  return isMissingText(text) || /^\*+$/.test(text) ? null : text;
-}
-
-/** Names of all properties of the features, in order of first appearance, at most `limit`. */
-export function propertyNames(features: readonly RawFeature[], limit: number): string[] {
-  const names = new Set<string>();
-  for (const { properties } of features) {
-    for (const name of Object.keys(properties)) if (names.size < limit) names.add(name);
-  }
-  return [...names];
+/** A file's name without folder and ending. */
+function stem(name: string): string {
+  return name.replace(/^.*[/\\]/, '').replace(/\.[^.]+$/, '');
 }

@@ -37,6 +37,10 @@ const OPTIONS: Record<keyof ImportOptions, { readonly check: Check; readonly lim
     check: (value) => isRecord(value) && Object.values(value).every((code) => code === null || typeof code === 'string'),
     limit: 'foreign code → crop code or null',
   },
+  soilMappings: {
+    check: (value) => isRecord(value) && Object.values(value).every((code) => code === null || typeof code === 'string'),
+    limit: 'soil class of the file → soil of the district or null',
+  },
   windHeight: { check: within(0.5, 200), limit: '0.5 to 200 m' },
   layer: { check: isText, limit: 'the name of a layer of the file' },
   crs: { check: isText, limit: 'a coordinate system such as EPSG:28992' },

@@ -4,7 +4,7 @@
 import type { LossRule } from '../canal/loss-rule.ts';
 import { textOf } from './feature-properties.ts';
 import { type FindingList, shown } from './finding-list.ts';
-import type { RawFeature } from './geojson.ts';
+import type { RawFeature } from './raw-feature.ts';
 import type { BoundTable } from './table-columns.ts';
 
 const RULES = ['none', 'fraction_per_km', 'efficiency', 'seepage_mm_d'];

@@ -1,12 +1,14 @@
 /**
  * The codes on a parcel that point elsewhere: turnout, reach, soil, application method.
  */
+import type { MultiPolygon, Polygon } from 'geojson';
 import { counted } from '../base/counted.ts';
 import { codeFault } from './code-text.ts';
 import { numberOf, textOf } from './feature-properties.ts';
 import { type FindingList, shown } from './finding-list.ts';
-import type { RawFeature } from './geojson.ts';
-import type { ImportContext, StagedParcel, StagedTurnout } from './reading.ts';
+import { placeJoins } from './place-joins.ts';
+import type { RawFeature } from './raw-feature.ts';
+import type { ImportContext, ImportOptions, StagedParcel, StagedTurnout } from './reading.ts';
 import type { BoundTable } from './table-columns.ts';
 
 const LISTED = 15;
@@ -15,8 +17,23 @@ const TURNOUT_CAPACITY_HIGH = 100;
 
 type Joined = Pick<StagedParcel, 'turnoutCode' | 'reachCode' | 'soilCode' | 'methodCode'>;
 
-/** Joins parcels to what the district knows, and gathers the turnouts that the file names. */
-export function parcelJoins(context: ImportContext, findings: FindingList) {
+/** The ground of a parcel, for joins by place. */
+export interface ParcelGround {
+  readonly code: string;
+  readonly geometry: Polygon | MultiPolygon;
+  /** m² */
+  readonly area: number;
+}
+
+interface JoinedParcel {
+  readonly codes: Joined;
+  /** how it was joined by place, as a sentence; null when by code, or not at all */
+  readonly how: string | null;
+}
+
+/** Joins parcels to what the district knows, by code first and then as the options ask by place, and gathers the turnouts that the file names. */
+export function parcelJoins(context: ImportContext, options: ImportOptions, findings: FindingList) {
+  const places = placeJoins(context, options, findings);
   const reaches = new Set(context.knownReaches.map((reach) => reach.code));
   const known = new Map(context.knownTurnouts.map((turnout) => [turnout.code, turnout.reachCode]));
   const made = new Map<string, StagedTurnout>();
@@ -32,16 +49,26 @@ export function parcelJoins(context: ImportContext, findings: FindingList) {
   let withoutSoil = 0;
   let withoutMethod = 0;
 
-  function join(feature: RawFeature, bound: BoundTable['bound']): Joined {
+  function join(feature: RawFeature, bound: BoundTable['bound'], ground: ParcelGround): JoinedParcel {
     const soilText = textOf(feature, bound, 'soil');
     const methodText = textOf(feature, bound, 'method');
     if (soilText === null) withoutSoil++;
     if (methodText === null) withoutMethod++;
     const reach = reachOf(textOf(feature, bound, 'reach'));
     const turnoutCode = textOf(feature, bound, 'turnout');
-    const joined = turnoutCode === null ? { turnoutCode: null, reachCode: reach } : turnoutOf(turnoutCode, reach, feature, bound);
-    if (joined.reachCode === null) withoutReach++;
-    return { ...joined, soilCode: look(soils, soilText, unknown.soil), methodCode: look(methods, methodText, unknown.method) };
+    const named = turnoutCode === null ? { turnoutCode: null, reachCode: reach } : turnoutOf(turnoutCode, reach, feature, bound);
+    const placed = named.reachCode === null ? (places?.join(ground.code, ground.geometry, ground.area) ?? null) : null;
+    const { turnoutCode: turnout, reachCode } = placed ?? named;
+    if (reachCode === null) withoutReach++;
+    return {
+      codes: {
+        turnoutCode: turnout,
+        reachCode,
+        soilCode: look(soils, soilText, unknown.soil),
+        methodCode: look(methods, methodText, unknown.method),
+      },
+      how: placed ? `Joined by place ${placed.how}.` : null,
+    };
   }
 
   /** A reach is taken on trust while the district has no canals; later it must exist. */
@@ -75,6 +102,7 @@ export function parcelJoins(context: ImportContext, findings: FindingList) {
   }
 
   function finish(parcelCount: number): void {
+    places?.finish();
     listUnknown(unknown.soil, 'soil', 'The run takes the soil of the district.', 'note', findings);
     listUnknown(unknown.method, 'method', 'The run takes the method of the district.', 'note', findings);
     listUnknown(unknown.reach, 'reach', 'Their parcels hang on no canal.', 'warning', findings);

@@ -1,15 +1,15 @@
 /**
- * What is said of a parcel's outline: why it cannot be used, or what was put right.
+ * What is said of the outline of a parcel or an area: why it cannot be used, or what was put right.
  */
 import { AREA_CHANGE_LIMIT, AREA_MINIMUM, type RepairedPolygon, type RepairFault, type RepairNote } from '../geo/polygon-repair.ts';
 import { type FindingList, shown } from './finding-list.ts';
-import type { RawFeature } from './geojson.ts';
+import type { RawFeature } from './raw-feature.ts';
 
 const FAULT_TEXT: Record<RepairFault, { message: string; advice: string; limit?: string }> = {
-  'too-few-vertices': { message: 'The polygon has fewer than three different corners.', advice: 'Draw the parcel again.' },
+  'too-few-vertices': { message: 'The polygon has fewer than three different corners.', advice: 'Draw it again.' },
   'zero-area': {
     message: 'The polygon has no area.',
-    advice: 'Draw the parcel again, or delete it.',
+    advice: 'Draw it again, or delete it.',
     limit: `at least ${AREA_MINIMUM} m²`,
   },
   'self-intersection': {
@@ -32,12 +32,18 @@ export const NOTE_TEXT: Record<RepairNote, string> = {
   'hole-dropped': 'had a hole of fewer than three corners, which is dropped',
 };
 
-/** Reports an outline that cannot be used, and says the same in words. */
-export function reportFault(feature: RawFeature, code: string, { fault, areaChange }: RepairedPolygon, findings: FindingList): string {
+/** Reports an outline that cannot be used, and says the same in words. @param thing what has the outline, with a capital */
+export function reportFault(
+  feature: RawFeature,
+  code: string,
+  { fault, areaChange }: RepairedPolygon,
+  findings: FindingList,
+  thing = 'Parcel',
+): string {
   const text = FAULT_TEXT[fault ?? 'zero-area'];
   const change =
     fault === 'self-intersection' && Number.isFinite(areaChange) ? ` A repair would change its area by ${percent(areaChange)}.` : '';
-  const message = `Parcel ${shown(code)}: ${text.message}${change}`;
+  const message = `${thing} ${shown(code)}: ${text.message}${change}`;
   findings.error({
     code: fault ?? 'zero-area',
     message,
@@ -56,9 +62,10 @@ export function reportCrossing(
   code: string,
   { crossingRepaired, areaChange }: RepairedPolygon,
   findings: FindingList,
+  thing = 'Parcel',
 ): string | null {
   if (!crossingRepaired) return null;
-  const message = `Parcel ${shown(code)}: the outline crossed itself and is repaired; its area changes by ${percent(areaChange)}.`;
+  const message = `${thing} ${shown(code)}: the outline crossed itself and is repaired; its area changes by ${percent(areaChange)}.`;
   findings.warn({
     code: 'self-intersection-repaired',
     message,

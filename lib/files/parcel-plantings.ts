@@ -5,8 +5,8 @@ import { counted } from '../base/counted.ts';
 import { proposeCrops } from './crop-mapping.ts';
 import { type BoundProperties, textOf } from './feature-properties.ts';
 import { type FindingList, shown } from './finding-list.ts';
-import type { RawFeature } from './geojson.ts';
 import { calendarOf, plantingDateIn } from './planting-defaults.ts';
+import type { RawFeature } from './raw-feature.ts';
 import type { CropCount, ImportContext, ImportOptions, StagedParcel, StagedPlanting } from './reading.ts';
 
 interface PlantingWork {

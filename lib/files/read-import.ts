@@ -2,11 +2,11 @@
  * The front door for files: bytes of a kind → what was understood, what was found, a preview, and rows ready to apply.
  */
 import { closeSync, openSync, readSync } from 'node:fs';
-import { readCanals } from './canals-geojson.ts';
+import { readCanals } from './canals.ts';
 import { type ContentKind, contentKind, HEAD_BYTES } from './content-kind.ts';
 import { FINDING_LIMIT, FindingList } from './finding-list.ts';
 import { checkOptions } from './import-options.ts';
-import { readParcels } from './parcels-geojson.ts';
+import { readParcels } from './parcels.ts';
 import { readPlantings } from './plantings-csv.ts';
 import {
   type BlockSink,
@@ -39,9 +39,11 @@ const READERS: Record<ImportKind, Reader> = {
   weather: readWeatherOfAnyKind,
   parcels: readParcels,
   canals: readCanals,
-  turnouts: async (...given) => (await import('./turnouts.ts')).readTurnouts(...given),
-  areas: async (...given) => (await import('./service-areas.ts')).readServiceAreas(...given),
-  'soil-areas': async (...given) => (await import('./soil-areas.ts')).readSoilAreas(...given),
+  turnouts: async (files, options, context, progress) => (await import('./turnouts.ts')).readTurnouts(files, options, context, progress),
+  areas: async (files, options, context, progress) =>
+    (await import('./service-areas.ts')).readServiceAreas(files, options, context, progress),
+  'soil-areas': async (files, options, context, progress) =>
+    (await import('./soil-areas.ts')).readSoilAreas(files, options, context, progress),
   plantings: readPlantings,
   soils: readSoils,
 };

@@ -8,6 +8,7 @@ import type { Finding } from '../base/errors.ts';
 import type { LossRule } from '../canal/loss-rule.ts';
 import type { Soil } from '../season/types.ts';
 import type { BlockVariable, GridShape } from '../weather/variable.ts';
+import type { LineageSummary } from './lineage-summary.ts';
 
 export type ImportKind = 'stations' | 'weather' | 'parcels' | 'canals' | 'turnouts' | 'areas' | 'plantings' | 'soils' | 'soil-areas';
 
@@ -22,7 +23,16 @@ export interface ImportFile {
 /** What the district already knows, so that codes can be checked and joined. */
 export interface ImportContext {
   readonly districtUnits: 'metric' | 'us';
-  readonly knownSites: readonly { readonly code: string; readonly name: string }[];
+  readonly knownSites: readonly {
+    readonly code: string;
+    readonly name: string;
+    /** IANA zone or fixed offset of its clock; left out or null: that of the district */
+    readonly zone?: string | null;
+    readonly longitude?: number;
+    readonly latitude?: number;
+    /** m */
+    readonly elevation?: number | null;
+  }[];
   readonly knownParcels: readonly string[];
   readonly knownReaches: readonly { readonly code: string; readonly parentCode: string | null }[];
   readonly knownTurnouts: readonly {
@@ -56,6 +66,10 @@ export interface ImportContext {
     readonly turnoutCode: string | null;
     readonly geometry: Polygon | MultiPolygon;
   }[];
+  /** lines of the reaches, head to tail */
+  readonly reachLines?: readonly { readonly code: string; readonly geometry: LineString | MultiLineString }[];
+  /** soil class → its name */
+  readonly soilNames?: Readonly<Record<string, string>>;
   /** reach → parcels that name it; reaches without parcels are left out */
   readonly parcelCounts?: Readonly<Record<string, number>>;
 }
@@ -96,6 +110,8 @@ export interface ImportOptions {
   readonly codeColumn?: string;
   /** foreign crop code → crop of the library, or null; goes before the stored mappings */
   readonly cropMappings?: Readonly<Record<string, string | null>>;
+  /** soil polygons: class of the file → soil of the district, or null to leave its polygons out */
+  readonly soilMappings?: Readonly<Record<string, string | null>>;
   /** stations: anemometer height [m] of stations that bring none */
   readonly windHeight?: number;
   /** vector and archive files: layer (or member file) to read; default the first that has features */
@@ -181,6 +197,14 @@ export interface UnderstoodGrid {
   readonly calendar: string | null;
 }
 
+/** A soil class of a soil map, and the soil of the district that it stands for. */
+export interface SoilClassCount {
+  readonly foreignCode: string;
+  readonly count: number;
+  readonly soilCode: string | null;
+  readonly by: 'option' | 'code' | 'name' | null;
+}
+
 /** What the reader made of the file, for the user to check. */
 export interface Understood {
   readonly format: FileFormat;
@@ -206,6 +230,10 @@ export interface Understood {
   readonly siteCount: number | null;
   readonly featureCount: number | null;
   readonly crops: readonly CropCount[];
+  /** parcels: what becomes of those that stand; added once the district's parcels were compared */
+  readonly lineage?: LineageSummary;
+  /** soil polygons: classes of the map */
+  readonly soilClasses?: readonly SoilClassCount[];
   /** [west, south, east, north] */
   readonly boundingBox: readonly [number, number, number, number] | null;
   readonly crs: string | null;

@@ -46,7 +46,13 @@ export function siteFinder(knownSites: ImportContext['knownSites']) {
     else if (unknown.size < UNKNOWN_LIMIT) unknown.set(text, { rows: 1, firstRow: row, file });
   }
 
-  return { find, codes: () => codes, unknown, joined };
+  /** Index of a site that the import itself brings; the same again for the same code. */
+  function add(code: string): number {
+    const known = codes.indexOf(code);
+    return known >= 0 ? known : codes.push(code) - 1;
+  }
+
+  return { find, seek: (text: string) => resolve(text.trim()), add, codes: () => codes, unknown, joined };
 }
 
 /** Lower-case codes and names, and codes without leading zeros; −1 where two sites share one. */

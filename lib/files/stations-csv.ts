@@ -2,6 +2,8 @@
  * Weather stations, one row each, in a delimited file. A table that repeats its stations row by row (weather with coordinates) gives each once.
  */
 import { counted } from '../base/counted.ts';
+import { isTimeZone } from '../base/time-zone.ts';
+import { STANDARD_WIND_HEIGHT } from '../energy/complete-weather.ts';
 import { geodesicDistance } from '../geo/geodesic.ts';
 import { codeFault } from './code-text.ts';
 import type { FindingList } from './finding-list.ts';
@@ -11,8 +13,6 @@ import type { TableRole } from './table-columns.ts';
 
 /** Distance from the district beyond which a station is suspect [m]. */
 const FAR = 500_000;
-/** Anemometer height that a run assumes where none is known [m]. */
-const ASSUMED_WIND_HEIGHT = 2;
 /** Coordinates of one station may differ this much between rows [degrees]. */
 const SAME_PLACE = 0.02;
 
@@ -140,8 +140,19 @@ function noteStations(sites: readonly StagedSite[], repeated: number, context: I
   if (noHeight.length > 0) {
     findings.warn({
       code: 'no-wind-height',
-      message: `${counted(noHeight.length, 'station has', 'stations have')} no wind height (${codes(noHeight)}); wind will be taken as measured at ${ASSUMED_WIND_HEIGHT} m.`,
-      advice: 'Add a column "wind_height", or set one height in the options. Many networks measure at 10 m.',
+      message: `${counted(noHeight.length, 'station has', 'stations have')} no wind height (${codes(noHeight)}); wind will be taken as measured at ${STANDARD_WIND_HEIGHT} m.`,
+      advice:
+        'Add a column "wind_height", or set one height in the options. Agricultural networks often measure at 2 or 3 m, weather services at 10 m.',
+    });
+  }
+  const noZone = sites.filter((site) => site.zone !== null && !isTimeZone(site.zone));
+  if (noZone.length > 0) {
+    findings.warn({
+      code: 'unknown-zone',
+      message: `${counted(noZone.length, 'station names', 'stations name')} a zone that is not known (${codes(noZone)}, first "${noZone[0].zone}"); the district's zone will be taken.`,
+      column: 'zone',
+      limit: 'a name such as America/Boise, or an offset such as UTC-07:00',
+      advice: 'Correct the zone: hourly weather is cut into days by it.',
     });
   }
   warnFar(sites, context, findings);

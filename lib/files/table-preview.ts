@@ -17,6 +17,11 @@ export class TablePreviewRows {
     if (this.bad.length < PREVIEW_ROWS) this.bad.push({ row, cells: cells.map(shown), status: 'bad', reason });
   }
 
+  /** false once there are enough good rows to show */
+  get wantsGood(): boolean {
+    return this.good.length < PREVIEW_ROWS;
+  }
+
   addGood(row: number, cells: readonly string[]): void {
     if (this.good.length < PREVIEW_ROWS) this.good.push({ row, cells: cells.map(shown), status: 'ok', reason: null });
   }

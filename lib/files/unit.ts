@@ -42,13 +42,13 @@ const UNITS: readonly UnitDefinition[] = [
   {
     kind: 'temperature',
     name: '°C',
-    spellings: ['c', 'degc', 'celsius', 'degreesc', 'degcelsius', 'degreescelsius', 'gradc'],
+    spellings: ['c', 'degc', 'celsius', 'degreesc', 'degcelsius', 'degreescelsius', 'degreecelsius', 'degreec', 'gradc'],
     convert: same,
   },
   {
     kind: 'temperature',
     name: '°F',
-    spellings: ['f', 'degf', 'fahrenheit', 'degreesf', 'degfahrenheit', 'degreesfahrenheit'],
+    spellings: ['f', 'degf', 'fahrenheit', 'degreesf', 'degfahrenheit', 'degreesfahrenheit', 'degreefahrenheit', 'degreef'],
     convert: celsiusFromFahrenheit,
   },
   { kind: 'temperature', name: 'K', spellings: ['k', 'kelvin', 'degk'], convert: celsiusFromKelvin },
@@ -119,7 +119,7 @@ for (const unit of UNITS) {
 }
 
 /** One key for the many ways a unit is typed: `W m⁻²`, `W/m^2`, `w_m2` … @example unitKey('°C') // 'degc' */
-function unitKey(text: string): string {
+export function unitKey(text: string): string {
   return text
     .trim()
     .toLowerCase()

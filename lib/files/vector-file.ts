@@ -3,14 +3,16 @@
  * KML) and the readers of parcels, canals, turnouts and areas, which know what the features mean.
  */
 import type { Geometry } from 'geojson';
+import type { FeatureFault } from './raw-feature.ts';
 import type { FileFormat, UnderstoodLayer } from './reading.ts';
 
-/** One feature in WGS 84, longitude first, 2-D. */
+/** One feature in WGS 84, longitude first; heights may remain. */
 export interface VectorFeature {
   /** number of the feature in its layer, from 1 */
   readonly row: number;
-  /** null where the file has none, or where it cannot be read (a finding says so) */
+  /** null where the file has none, or where it cannot be used: then `fault` says why */
   readonly geometry: Geometry | null;
+  readonly fault: FeatureFault | null;
   readonly properties: Readonly<Record<string, unknown>>;
   /** id the format gives the feature, outside its properties */
   readonly id: string | null;

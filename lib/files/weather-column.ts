@@ -7,7 +7,7 @@ import { columnName, unitSuffixes, wordsOf } from './column-name.ts';
 import { findUnit, type UnitKind } from './unit.ts';
 
 /** Roles beside the variables of `WEATHER_VARIABLES`. */
-export const WEATHER_KEY_ROLES = ['site', 'date', 'year', 'month', 'day', 'day_of_year', 'hour'] as const;
+export const WEATHER_KEY_ROLES = ['site', 'date', 'year', 'month', 'day', 'day_of_year', 'hour', 'minute'] as const;
 export const WEATHER_EXTRA_ROLES = [
   'vapour_pressure_deficit_kpa',
   'relative_humidity_at_hour_pct',
@@ -69,7 +69,7 @@ const QUANTITIES: Record<string, readonly string[]> = {
     'temp dew',
     'temp dew point',
   ],
-  humidity: ['rh', 'relative rh'],
+  humidity: ['rh', 'relative rh', 'r h'],
   specific_humidity_kg_kg: ['specific rh', 'huss', 'sh', 'q2m'],
   vapour_pressure_kpa: ['vp', 'ea', 'vapour pressure', 'actual vapour pressure', 'vap'],
   vapour_pressure_deficit_kpa: ['vpd', 'vp deficit', 'vapour pressure deficit'],
@@ -103,6 +103,9 @@ const QUANTITIES: Record<string, readonly string[]> = {
       'global radiation',
       'global solar radiation',
       'glorad',
+      'global irradiance',
+      'global horizontal irradiance',
+      'global irradiance on the horizontal plane',
     ],
   ],
   sunshine_duration_h: [
@@ -168,13 +171,18 @@ const KEYS: Record<string, readonly string[]> = {
     'local date',
     'obs date',
     'observation date',
-    'timestamp',
     'timestamp start',
+    'timestamp',
     'datetime',
     'date time',
     'yyyy mm dd',
     'yyyymmdd',
     'time',
+    'time utc',
+    'date utc',
+    'datetime utc',
+    'timestamp utc',
+    'timestamp end',
     'fecha',
     'datum',
   ],
@@ -182,6 +190,7 @@ const KEYS: Record<string, readonly string[]> = {
   month: ['month', 'mo'],
   day: ['day', 'dd', 'dom', 'day of month'],
   day_of_year: ['doy', 'do y', 'day of year', 'dayofyear', 'julian day', 'jday', 'yday'],
+  minute: ['minute', 'minutes'],
   hour: ['hour', 'hr', 'hh', 'hhmm', 'lst time', 'utc hour', 'hour of day', 'time hhmm'],
 };
 
@@ -308,4 +317,39 @@ function roleOfQuantity(quantity: Quantity, stat: 'max' | 'min' | 'mean' | null,
 export function windHeightOf(header: string): number | null {
   const match = /^(?:u|ws|wind speed )(\d{1,2})m?$/.exec(wordsOf(header).join(' '));
   return match ? Number(match[1]) : null;
+}
+
+/** Names under which open archives publish in one unit without saying so in the file. Common practice, no source. */
+const CUSTOMARY_UNITS: Record<string, string> = { wdsp: 'knots' };
+
+/** Unit that a header's name customarily has where nothing else tells; null for the others. @example customaryUnit('wdsp') // 'knots' */
+export function customaryUnit(header: string): string | null {
+  return CUSTOMARY_UNITS[wordsOf(header).join(' ')] ?? null;
+}
+
+const SEA_LEVEL = new Set(['msl', 'mslp', 'slp', 'sea level pressure', 'mean sea level pressure', 'pressure msl', 'psl', 'qff', 'qnh']);
+
+/** True for a header that names pressure reduced to sea level, which is not the pressure at the station. */
+export function isSeaLevelPressure(header: string): boolean {
+  return SEA_LEVEL.has(columnName(header).words.join(' '));
+}
+
+/**
+ * The column whose quality flags a header holds, as words: `qc_temp`, `temp_qc`, `temp_flag`.
+ *
+ * @example flaggedColumn('RH_QC') // 'rh'
+ */
+export function flaggedColumn(header: string): string | null {
+  const words = wordsOf(header);
+  const mark = (word: string) => word === 'qc' || word === 'flag' || word === 'qcflag';
+  if (words.length < 2) return null;
+  if (mark(words[words.length - 1])) return words.slice(0, -1).join(' ');
+  return mark(words[0]) ? words.slice(1).join(' ') : null;
+}
+
+/** The column whose origin a header tells by codes: `max_temp_source`. @example originColumn('vp_source') // 'vp' */
+export function originColumn(header: string): string | null {
+  const words = wordsOf(header);
+  const last = words[words.length - 1];
+  return words.length >= 2 && (last === 'source' || last === 'src') ? words.slice(0, -1).join(' ') : null;
 }

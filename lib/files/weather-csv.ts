@@ -1,12 +1,12 @@
 /**
- * Daily weather of stations, one row per site and day, in one or more delimited files → monthly blocks in the units of the product.
+ * Weather of stations in one or more delimited files, one row per site and day or per site and reading → monthly blocks in the units of the
+ * product.
  */
-import { type DayNumber, dayNumberOf, isLeapYear, isoDate } from '../base/civil-date.ts';
+import { isoDate } from '../base/civil-date.ts';
 import { counted } from '../base/counted.ts';
-import { openTable, readRows, type TableHead, type TableRow, understoodHead } from './csv.ts';
-import { type DateReading, dayFromParts, parseDate, YEAR_LIMITS } from './date-cell.ts';
-import { FindingList, shown } from './finding-list.ts';
-import { numberReader } from './number-cell.ts';
+import { Refused } from '../base/errors.ts';
+import { openTable, readByteRows, type TableHead, understoodHead } from './csv.ts';
+import { FindingList } from './finding-list.ts';
 import {
   type ImportContext,
   type ImportFile,
@@ -14,25 +14,34 @@ import {
   type ImportReading,
   NOTHING_UNDERSTOOD,
   type Progress,
+  type StagedSite,
   type Understood,
 } from './reading.ts';
 import { siteFinder } from './site-finder.ts';
 import { TablePreviewRows } from './table-preview.ts';
 import { bindWeatherColumns, isWeatherHeader, type WeatherColumns } from './weather-columns.ts';
-import { noteColumns, noteDays, noteMissing, noteUnknownSites } from './weather-notes.ts';
-import { weatherRowReader } from './weather-row.ts';
-import { WeatherStore } from './weather-store.ts';
+import { addReadings, type ReadingBatch } from './weather-days.ts';
+import { legendOf, placeOfPreamble, type WeatherTable, weatherTables } from './weather-file.ts';
+import { noteColumns, noteDays, noteMissing, noteRowCounts, noteUnknownSites } from './weather-notes.ts';
+import { dailySink, readingSink, type WeatherSink } from './weather-sinks.ts';
+import { clockOfTable, stampOfTable } from './weather-stamp-meaning.ts';
+import { HourStore, WeatherStore } from './weather-store.ts';
+import { contextOf, type SiteChoice, siteOfTable } from './weather-table-site.ts';
 
-const DATE_CACHE_LIMIT = 200_000;
-
-interface Reading {
+/** What the files of one import share while they are read. */
+export interface WeatherReading {
   readonly options: ImportOptions;
   readonly context: ImportContext;
   readonly findings: FindingList;
   readonly store: WeatherStore;
+  readonly hours: HourStore;
   readonly sites: ReturnType<typeof siteFinder>;
   readonly preview: TablePreviewRows;
+  /** stations that files place themselves */
+  readonly stations: StagedSite[];
+  readonly batches: Map<string, ReadingBatch>;
   rows: number;
+  usableReadings: number;
   /** line → file, where several files share the store */
   readonly lineFile: { readonly from: number; readonly file: string }[];
   outOfOrder: number;
@@ -46,34 +55,53 @@ export async function readWeather(
   progress: Progress,
 ): Promise<ImportReading> {
   const findings = new FindingList();
-  const sites = siteFinder(context.knownSites);
-  const reading: Reading = {
+  const reading: WeatherReading = {
     options,
     context,
     findings,
     store: new WeatherStore(),
-    sites,
+    hours: new HourStore(),
+    sites: siteFinder(context.knownSites),
     preview: new TablePreviewRows(),
+    stations: [],
+    batches: new Map(),
     rows: 0,
+    usableReadings: 0,
     lineFile: [],
     outOfOrder: 0,
   };
+  const tables = await tablesOf(files, findings);
   let understood: Understood = NOTHING_UNDERSTOOD;
   let header: readonly string[] = [];
-  for (const [index, file] of files.entries()) {
-    const part = await readFile(file, reading, (fraction) => progress((index + fraction) / files.length));
+  for (const [index, table] of tables.entries()) {
+    const part = await readTable(table, reading, (fraction) => progress((index + fraction) / tables.length));
     if (part && header.length === 0) [understood, header] = [part.understood, part.header];
   }
+  for (const batch of reading.batches.values()) addReadings(batch, reading.sites.codes(), { ...reading, context: contextOf(reading) });
   if (reading.rows === 0 && !findings.fatal)
     findings.refuse({ code: 'no-rows', message: 'The file has a header and no rows of data.', file: files[0]?.name });
   finishNotes(reading);
   return result(files, reading, understood, header);
 }
 
-function result(files: readonly ImportFile[], reading: Reading, understood: Understood, header: readonly string[]): ImportReading {
-  const { store, sites, findings, options } = reading;
+async function tablesOf(files: readonly ImportFile[], findings: FindingList): Promise<WeatherTable[]> {
+  const tables: WeatherTable[] = [];
+  for (const { name, bytes } of files) {
+    try {
+      tables.push(...(await weatherTables({ name, bytes }, findings)));
+    } catch (error) {
+      if (!(error instanceof Refused)) throw error;
+      const [first] = error.findings;
+      findings.refuse({ ...(first ?? { code: 'archive-unreadable', message: error.message }), file: name });
+    }
+  }
+  return tables;
+}
+
+function result(files: readonly ImportFile[], reading: WeatherReading, understood: Understood, header: readonly string[]): ImportReading {
+  const { store, hours, sites, findings, options, stations } = reading;
   const codes = sites.codes();
-  const extents = codes.map((_, site) => store.extent(site)).filter((extent) => extent !== null);
+  const extents = codes.map((_, site) => store.extent(site) ?? hours.extent(site)).filter((extent) => extent !== null);
   const first = Math.min(...extents.map((extent) => extent.first));
   const last = Math.max(...extents.map((extent) => extent.last));
   const source = options.source?.trim() || (files[0]?.name ?? 'weather').replace(/\.[^.]*$/, '');
@@ -82,7 +110,7 @@ function result(files: readonly ImportFile[], reading: Reading, understood: Unde
     understood: {
       ...understood,
       rowCount: reading.rows,
-      usableRows: store.rows,
+      usableRows: reading.batches.size > 0 ? reading.usableReadings : store.rows,
       siteCount: extents.length,
       dateRange: extents.length > 0 ? { start: isoDate(first), end: isoDate(last) } : null,
     },
@@ -92,14 +120,15 @@ function result(files: readonly ImportFile[], reading: Reading, understood: Unde
     staged: {
       kind: 'weather',
       source,
-      blocks: keep ? store.blocks(codes) : [],
+      blocks: keep ? [...store.blocks(codes), ...hours.blocks(codes)] : [],
+      ...(keep && stations.length > 0 ? { stations } : {}),
       rows: keep ? store.rows : 0,
       sites: keep ? extents.length : 0,
     },
   };
 }
 
-function finishNotes(reading: Reading): void {
+function finishNotes(reading: WeatherReading): void {
   const { findings, sites, context, store } = reading;
   noteUnknownSites(sites, context.knownSites.length, findings);
   if (reading.outOfOrder > 0) {
@@ -111,162 +140,51 @@ function finishNotes(reading: Reading): void {
   noteDays(store, sites.codes(), findings);
 }
 
-async function readFile(
-  file: ImportFile,
-  reading: Reading,
+async function readTable(
+  table: WeatherTable,
+  reading: WeatherReading,
   progress: Progress,
 ): Promise<{ understood: Understood; header: readonly string[] } | null> {
   const { findings, options, context } = reading;
+  const { file } = table;
   const head = openTable({ file, plan: options.plan ?? {}, recognise: isWeatherHeader }, findings);
   if (!head) return null;
-  const columns = bindWeatherColumns({ head, options, context, file: file.name }, findings);
+  const legend = legendOf(file, head.preamble);
+  const columns = bindWeatherColumns({ head, options, context, file: file.name, legend }, findings);
   const understood = { ...understoodHead(head), columns: columns.columns, dateOrder: columns.dateOrder };
-  if (columns.date === null || !checkSite(columns, file, reading)) return { understood, header: head.header };
+  if (columns.date === null) return { understood, header: head.header };
+  const site = siteOfTable({ columns, file, headers: head.header, place: table.place ?? placeOfPreamble(head.preamble) }, reading);
+  if (!site) return { understood, header: head.header };
   noteColumns(columns, file.name, findings);
-  const rows = rowSink(file, head, columns, reading);
-  const count = await readRows(
-    file,
-    head,
-    { each: rows.each, bad: (row, reason) => reading.preview.addBad(row.row, row.cells, reason), progress },
-    findings,
-  );
-  noteMissing(rows.counts, columns.values, file.name, findings);
+  const time = await readRowsOf({ table, head, columns, site }, reading, progress);
+  return { understood: { ...understood, ...time }, header: head.header };
+}
+
+interface OpenedTable {
+  readonly table: WeatherTable;
+  readonly head: TableHead;
+  readonly columns: WeatherColumns;
+  readonly site: SiteChoice;
+}
+
+async function readRowsOf(opened: OpenedTable, reading: WeatherReading, progress: Progress): Promise<Partial<Understood>> {
+  const { table, head, columns, site } = opened;
+  const { findings } = reading;
+  const { file } = table;
+  const sink: WeatherSink = (columns.time ? readingSink : dailySink)({ file, head, columns, site }, reading);
+  const bad = (row: { row: number; cells: readonly string[] }, reason: string) => reading.preview.addBad(row.row, row.cells, reason);
+  const count = await readByteRows(file, head, { each: sink.each, bad, progress }, findings);
+  noteMissing(sink.counts, columns.values, file.name, findings);
+  noteRowCounts(sink.counts, columns.values, file.name, findings);
   reading.rows += Math.max(0, count);
-  return { understood, header: head.header };
-}
-
-function checkSite(columns: WeatherColumns, file: ImportFile, { options, context, findings }: Reading): boolean {
-  if (columns.site >= 0 || options.site) return true;
-  if (context.knownSites.length === 1) {
-    findings.note({
-      code: 'site-assumed',
-      message: `The file has no site column; its rows go to the only known site, ${context.knownSites[0].code}.`,
-      file: file.name,
-    });
-    return true;
-  }
-  findings.refuse({
-    code: 'missing-column',
-    message: `The file has no site column, and ${counted(context.knownSites.length, 'site is', 'sites are')} known.`,
-    file: file.name,
-    column: 'site',
-    advice: context.knownSites.length === 0 ? 'Import stations first.' : 'Add a site column, or name the site in the options.',
-  });
-  return false;
-}
-
-function rowSink(file: ImportFile, head: TableHead, columns: WeatherColumns, reading: Reading) {
-  const { findings, store, sites, options, context, preview } = reading;
-  const rowReader = weatherRowReader(columns.values, numberReader(head.decimalComma, options.missingCodes), file.name, findings);
-  const dateOf = dateReader(columns);
-  const fixedSite = columns.site < 0 ? (options.site ?? context.knownSites[0]?.code ?? '') : null;
-  const offset = reading.lineFile.length * LINE_STRIDE;
-  reading.lineFile.push({ from: offset, file: file.name });
-  const lastDay: DayNumber[] = [];
-
-  function each({ row, cells }: TableRow) {
-    const site = sites.find(fixedSite ?? cells[columns.site], row, file.name);
-    if (site < 0) return preview.addBad(row, cells, 'The site is not known.');
-    const date = dateOf(cells);
-    if (!date) return badDate(row, cells);
-    const { values, problem, count } = rowReader.read(row, cells);
-    if (problem) preview.addBad(row, cells, problem);
-    else preview.addGood(row, cells);
-    if (lastDay[site] > date.day) reading.outOfOrder++;
-    lastDay[site] = date.day;
-    const earlier = store.find(site, date.day);
-    if (earlier >= 0) return duplicate(earlier, { row, cells }, site, date.day, values);
-    if (count > 0 || !problem) store.add(site, date.day, offset + row, values);
-  }
-
-  function badDate(row: number, cells: readonly string[]): void {
-    const text = dateText(columns, cells);
-    const message = `"${shown(text)}" is not a date.`;
-    const limit = `a day of the calendar, years ${YEAR_LIMITS.low} to ${YEAR_LIMITS.high}`;
-    findings.error({
-      code: 'not-a-date',
-      message,
-      file: file.name,
-      row,
-      value: shown(text),
-      limit,
-      advice: 'Write dates as YYYY-MM-DD, or choose the date order in the column plan.',
-    });
-    preview.addBad(row, cells, message);
-  }
-
-  function duplicate(earlier: number, { row, cells }: TableRow, site: number, day: DayNumber, values: Float64Array): void {
-    const where = lineOf(reading, store.line(earlier), file.name);
-    if (store.equals(earlier, values)) {
-      findings.note({
-        code: 'duplicate-row',
-        message: `Row ${row} repeats ${where} (site ${sites.codes()[site]}, ${isoDate(day)}) with the same values.`,
-        file: file.name,
-        row,
-      });
-      return;
-    }
-    const message = `Row ${row} and ${where} give different values for site ${sites.codes()[site]} on ${isoDate(day)}; the first is kept.`;
-    findings.error({
-      code: 'duplicate-differs',
-      message,
-      file: file.name,
-      row,
-      value: isoDate(day),
-      limit: 'one row per site and day',
-      advice: 'Delete the wrong row.',
-    });
-    preview.addBad(row, cells, message);
-  }
-
-  return { each, counts: rowReader.counts };
-}
-
-/** Lines of different files are kept apart in the store by this stride. */
-const LINE_STRIDE = 100_000_000;
-
-function lineOf({ lineFile }: Reading, line: number, current: string): string {
-  const index = Math.floor(line / LINE_STRIDE);
-  const row = line - index * LINE_STRIDE;
-  const name = lineFile[index]?.file ?? current;
-  return name === current ? `row ${row}` : `row ${row} of ${name}`;
-}
-
-function dateText({ date }: WeatherColumns, cells: readonly string[]): string {
-  if (date.kind === 'date') return cells[date.index];
-  if (date.kind === 'parts') return `${cells[date.year]}-${cells[date.month]}-${cells[date.day]}`;
-  return `${cells[date.year]} day ${cells[date.dayOfYear]}`;
-}
-
-/** Reader of the date of a row; texts are remembered, since every site repeats the same days. */
-function dateReader(columns: WeatherColumns): (cells: readonly string[]) => DateReading | null {
-  const known = new Map<string, DateReading | null>();
-  return (cells) => {
-    const text = dateText(columns, cells);
-    const found = known.get(text);
-    if (found !== undefined) return found;
-    const date = readDate(columns, cells);
-    if (known.size < DATE_CACHE_LIMIT) known.set(text, date);
-    return date;
-  };
-}
-
-function readDate({ date, dateOrder }: WeatherColumns, cells: readonly string[]): DateReading | null {
-  if (date.kind === 'date') return parseDate(cells[date.index], dateOrder);
-  const number = (index: number) => (cells[index].trim() === '' ? Number.NaN : Number(cells[index]));
-  if (date.kind === 'parts') return timeless(dayFromParts(number(date.year), number(date.month), number(date.day)));
-  const [year, dayOfYear] = [number(date.year), number(date.dayOfYear)];
-  const length = isLeapYear(year) ? 366 : 365;
-  const valid =
-    Number.isInteger(year) &&
-    Number.isInteger(dayOfYear) &&
-    year >= YEAR_LIMITS.low &&
-    year <= YEAR_LIMITS.high &&
-    dayOfYear >= 1 &&
-    dayOfYear <= length;
-  return timeless(valid ? dayNumberOf(year, 1, 1) + dayOfYear - 1 : null);
-}
-
-function timeless(day: DayNumber | null): DateReading | null {
-  return day === null ? null : { day, minute: -1 };
+  if (!columns.time || !sink.readings) return {};
+  const { readings } = sink;
+  reading.usableReadings += readings.count;
+  const clock = clockOfTable({ head, columns, offset: table.offset }, reading.options);
+  const stamp = stampOfTable({ head, columns, readings, file: file.name, clock }, reading);
+  const key = JSON.stringify([columns.time.step, stamp, clock]);
+  const batch = reading.batches.get(key);
+  reading.batches.set(key, { step: columns.time.step, stamp, clock, stores: [...(batch?.stores ?? []), readings] });
+  const zone = clock.kind === 'fixed' ? clock.name : clock.kind === 'wall' ? clock.zone : null;
+  return { stamp, stampZone: zone, stepMinutes: columns.time.step };
 }

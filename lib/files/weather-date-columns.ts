@@ -6,6 +6,7 @@ import { parseDate, sniffDateOrder } from './date-cell.ts';
 import type { FindingList } from './finding-list.ts';
 import type { DateOrder, ImportOptions } from './reading.ts';
 import type { WeatherRole } from './weather-column.ts';
+import { type SampledTime, type StampColumns, sampleTime } from './weather-stamp.ts';
 
 export type DateColumns =
   | { readonly kind: 'date'; readonly index: number }
@@ -35,28 +36,22 @@ export function dateColumns(find: (role: WeatherRole) => number, { file, head }:
   return null;
 }
 
-export function refusedAsHourly(hour: number, date: DateColumns, { file, head }: DateRequest, findings: FindingList): boolean {
-  const minutes = new Set<number>();
-  if (date.kind === 'date') for (const cells of head.sample) minutes.add(parseDate(cells[date.index] ?? '', 'dmy')?.minute ?? -1);
-  minutes.delete(-1);
-  if (hour < 0 && minutes.size < 2) {
-    if (minutes.size === 1)
-      findings.note({
-        code: 'time-of-day-dropped',
-        message: 'The dates carry a time of day; only the date is used, as the day of the station.',
-        file,
-      });
-    return false;
+/** The time of a table with several readings a day; null for a daily one. */
+export function timeOf(stamps: StampColumns, site: number, { file, head }: DateRequest, findings: FindingList): SampledTime | null {
+  const time = sampleTime(stamps, site, head);
+  if (time.severalADay) return time;
+  const withTime =
+    stamps.hour >= 0 ||
+    (stamps.date.kind === 'date' &&
+      head.sample.some((cells) => (parseDate(cells[(stamps.date as { index: number }).index] ?? '', 'dmy')?.minute ?? -1) > 0));
+  if (withTime) {
+    findings.note({
+      code: 'time-of-day-dropped',
+      message: 'The dates carry a time of day, one reading a day; only the date is used, as the day of the station.',
+      file,
+    });
   }
-  findings.refuse({
-    code: 'hourly-data',
-    message: 'The file holds several readings a day (a column of hours, or dates with different times). Only daily values can be imported.',
-    file,
-    column: hour >= 0 ? head.header[hour] : undefined,
-    limit: 'one row per site and day',
-    advice: 'Make daily values first: maximum and minimum temperature, mean humidity and wind, sums of radiation and rain.',
-  });
-  return true;
+  return null;
 }
 
 export function dateOrderOf(date: DateColumns, { head, options, file }: DateRequest, findings: FindingList): DateOrder {

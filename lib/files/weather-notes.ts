@@ -37,6 +37,36 @@ export function noteMissing(counts: RowCounts, columns: readonly ValueColumn[], 
     });
 }
 
+/** Quality flags, codes of origin and night radiation: one note each. */
+export function noteRowCounts(counts: RowCounts, columns: readonly ValueColumn[], file: string, findings: FindingList): void {
+  const header = (index: number) => columns.find((column) => column.index === index)?.header ?? '';
+  for (const [index, cells] of counts.flagged) {
+    findings.note({
+      code: 'flagged-value',
+      message: `${counted(cells, 'value', 'values')} of column "${shown(header(index))}" left out: the quality flag beside it is not 0.`,
+      file,
+      column: header(index),
+    });
+  }
+  if (counts.negativeRadiation > 0) {
+    findings.note({
+      code: 'negative-radiation',
+      message: `${counted(counts.negativeRadiation, 'small negative reading', 'small negative readings')} of solar radiation taken as 0: a pyranometer loses heat to the night sky.`,
+      file,
+    });
+  }
+  const origins = [...counts.origins].map(
+    ([index, codes]) => `${shown(header(index))} ${[...codes].map(([code, cells]) => `${shown(code) || '(empty)'} (${cells})`).join(', ')}`,
+  );
+  if (origins.length === 0) return;
+  findings.note({
+    code: 'origin-codes',
+    message: `The file says by codes where its values come from; all are taken, measured or not. Codes with their rows: ${origins.join('; ')}.`,
+    file,
+    advice: 'Look up the codes of the source: a value that was interpolated or computed is no measurement.',
+  });
+}
+
 /** Sites that are not known: one error with the codes and the rows left out. */
 export function noteUnknownSites(sites: ReturnType<typeof siteFinder>, knownCount: number, findings: FindingList): void {
   for (const [code, text] of sites.joined) {

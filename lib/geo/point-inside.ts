@@ -48,6 +48,21 @@ export function crossingsAt(ring: readonly Position[], y: number): number[] {
 
 /** Bounding box [west, south, east, north] of a geometry. */
 export function boxOf(geometry: Geometry): [number, number, number, number] {
-  const [west, south, east, north] = bbox(geometry);
-  return [west, south, east, north];
+  if (geometry.type === 'GeometryCollection') {
+    const [west, south, east, north] = bbox(geometry);
+    return [west, south, east, north];
+  }
+  const box: [number, number, number, number] = [Infinity, Infinity, -Infinity, -Infinity];
+  widen(box, geometry.coordinates);
+  return box;
+}
+
+function widen(box: [number, number, number, number], coordinates: Position | Position[] | Position[][] | Position[][][]): void {
+  const [x, y] = coordinates;
+  if (typeof x === 'number' && typeof y === 'number') {
+    if (x < box[0]) box[0] = x;
+    if (y < box[1]) box[1] = y;
+    if (x > box[2]) box[2] = x;
+    if (y > box[3]) box[3] = y;
+  } else for (const part of coordinates) widen(box, part as Position[]);
 }

@@ -75,9 +75,13 @@ function cleanPolygon(rings: readonly (readonly Position[])[], notes: Set<Repair
 function spansAntimeridian(polygons: readonly Position[][][]): boolean {
   let west = Number.POSITIVE_INFINITY;
   let east = Number.NEGATIVE_INFINITY;
-  for (const [x] of polygons.flat(2)) {
-    west = Math.min(west, x);
-    east = Math.max(east, x);
+  for (const rings of polygons) {
+    for (const ring of rings) {
+      for (const [x] of ring) {
+        if (x < west) west = x;
+        if (x > east) east = x;
+      }
+    }
   }
   return east - west > 180;
 }

@@ -49,60 +49,88 @@ export function samePosition(a: Position, b: Position): boolean {
   return a[0] === b[0] && a[1] === b[1];
 }
 
-interface Edge {
-  readonly a: Position;
-  readonly b: Position;
-}
+/** Edges as x and y of both ends, four numbers each. */
+type Edges = Float64Array;
 
 /**
  * Number of pairs of edges that cross or run along each other, counted up to `limit`: with any, the rings do not bound an area as they
  * stand. Rings that touch in a single point do not count.
  */
 export function crossingCount(rings: readonly (readonly Position[])[], limit: number): number {
-  const edges = rings.flatMap((ring) => ring.slice(1).map((b, index): Edge => ({ a: ring[index], b })));
-  return edges.length < INDEX_FROM ? countAllPairs(edges, limit) : countNearPairs(edges, limit);
+  const edges = edgesOf(rings);
+  return edges.length < INDEX_FROM * 4 ? countAllPairs(edges, limit) : countNearPairs(edges, limit);
 }
 
-function countAllPairs(edges: readonly Edge[], limit: number): number {
+function edgesOf(rings: readonly (readonly Position[])[]): Edges {
+  const edges = new Float64Array(4 * rings.reduce((sum, ring) => sum + Math.max(0, ring.length - 1), 0));
+  let at = 0;
+  for (const ring of rings) {
+    for (let k = 1; k < ring.length; k++, at += 4) {
+      edges[at] = ring[k - 1][0];
+      edges[at + 1] = ring[k - 1][1];
+      edges[at + 2] = ring[k][0];
+      edges[at + 3] = ring[k][1];
+    }
+  }
+  return edges;
+}
+
+function countAllPairs(edges: Edges, limit: number): number {
   let count = 0;
-  for (let i = 0; i < edges.length && count < limit; i++) {
-    for (let j = i + 1; j < edges.length; j++) if (edgesConflict(edges[i], edges[j])) count++;
+  for (let i = 0; i < edges.length && count < limit; i += 4) {
+    for (let j = i + 4; j < edges.length; j += 4) if (boxesMeet(edges, i, j) && edgesConflict(edges, i, j)) count++;
   }
   return Math.min(count, limit);
 }
 
-function countNearPairs(edges: readonly Edge[], limit: number): number {
-  const index = new Flatbush(edges.length);
-  for (const { a, b } of edges) index.add(Math.min(a[0], b[0]), Math.min(a[1], b[1]), Math.max(a[0], b[0]), Math.max(a[1], b[1]));
+function countNearPairs(edges: Edges, limit: number): number {
+  const index = new Flatbush(edges.length / 4);
+  const box = (i: number) =>
+    [
+      Math.min(edges[i], edges[i + 2]),
+      Math.min(edges[i + 1], edges[i + 3]),
+      Math.max(edges[i], edges[i + 2]),
+      Math.max(edges[i + 1], edges[i + 3]),
+    ] as const;
+  for (let i = 0; i < edges.length; i += 4) index.add(...box(i));
   index.finish();
   let count = 0;
-  for (let i = 0; i < edges.length && count < limit; i++) {
-    const { a, b } = edges[i];
-    index.search(Math.min(a[0], b[0]), Math.min(a[1], b[1]), Math.max(a[0], b[0]), Math.max(a[1], b[1]), (j) => {
-      if (j > i && count < limit && edgesConflict(edges[i], edges[j])) count++;
+  for (let i = 0; i < edges.length && count < limit; i += 4) {
+    index.search(...box(i), (other) => {
+      const j = other * 4;
+      if (j > i && count < limit && edgesConflict(edges, i, j)) count++;
       return false;
     });
   }
   return count;
 }
 
-function edgesConflict(p: Edge, q: Edge): boolean {
-  const d1 = side(q.a, q.b, p.a);
-  const d2 = side(q.a, q.b, p.b);
-  const d3 = side(p.a, p.b, q.a);
-  const d4 = side(p.a, p.b, q.b);
-  if (d1 === 0 && d2 === 0) return runAlong(p, q);
-  return d1 * d2 < 0 && d3 * d4 < 0;
+function boxesMeet(edges: Edges, i: number, j: number): boolean {
+  return (
+    Math.min(edges[i], edges[i + 2]) <= Math.max(edges[j], edges[j + 2]) &&
+    Math.min(edges[j], edges[j + 2]) <= Math.max(edges[i], edges[i + 2]) &&
+    Math.min(edges[i + 1], edges[i + 3]) <= Math.max(edges[j + 1], edges[j + 3]) &&
+    Math.min(edges[j + 1], edges[j + 3]) <= Math.max(edges[i + 1], edges[i + 3])
+  );
 }
 
-function side(a: Position, b: Position, c: Position): number {
-  return Math.sign((b[0] - a[0]) * (c[1] - a[1]) - (b[1] - a[1]) * (c[0] - a[0]));
+function edgesConflict(edges: Edges, i: number, j: number): boolean {
+  const d1 = side(edges, j, edges[i], edges[i + 1]);
+  const d2 = side(edges, j, edges[i + 2], edges[i + 3]);
+  if (d1 === 0 && d2 === 0) return runAlong(edges, i, j);
+  if (d1 * d2 >= 0) return false;
+  return side(edges, i, edges[j], edges[j + 1]) * side(edges, i, edges[j + 2], edges[j + 3]) < 0;
+}
+
+/** Side of edge `j` on which a point lies: 1 left, −1 right, 0 on its line. */
+function side(edges: Edges, j: number, x: number, y: number): number {
+  const [ax, ay] = [edges[j], edges[j + 1]];
+  return Math.sign((edges[j + 2] - ax) * (y - ay) - (edges[j + 3] - ay) * (x - ax));
 }
 
 /** Collinear edges that share more than a point: a spike, or one ring along another. */
-function runAlong(p: Edge, q: Edge): boolean {
-  const axis = Math.abs(p.b[0] - p.a[0]) >= Math.abs(p.b[1] - p.a[1]) ? 0 : 1;
-  const low = Math.max(Math.min(p.a[axis], p.b[axis]), Math.min(q.a[axis], q.b[axis]));
-  const high = Math.min(Math.max(p.a[axis], p.b[axis]), Math.max(q.a[axis], q.b[axis]));
-  return high > low;
+function runAlong(edges: Edges, i: number, j: number): boolean {
+  const axis = Math.abs(edges[i + 2] - edges[i]) >= Math.abs(edges[i + 3] - edges[i + 1]) ? 0 : 1;
+  const [a, b, c, d] = [edges[i + axis], edges[i + 2 + axis], edges[j + axis], edges[j + 2 + axis]];
+  return Math.min(Math.max(a, b), Math.max(c, d)) > Math.max(Math.min(a, b), Math.min(c, d));
 }

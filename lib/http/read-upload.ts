@@ -76,7 +76,7 @@ async function takeParts(request: Request, taking: Taking): Promise<Upload> {
     taken.catch(() => undefined);
     files.push(taken);
   });
-  parser.on('filesLimit', () => refuse(new TooLarge(`more than ${MOST_FILES} files were sent: split them`)));
+  parser.on('filesLimit', () => refuse(new TooLarge(`more files were sent than an import takes (at most ${MOST_FILES}): split them`)));
   parser.on('partsLimit', () => refuse(new TooLarge('the upload has too many parts: split it')));
   let size = 0;
   const counter = new Transform({

@@ -1,14 +1,16 @@
 /**
  * The frozen inputs of a run: what its slices, its working and any later check read, whatever has changed in the district since.
- * Layout: gzip of [uint32 header length][JSON header][Float64 arrays of the weather in COMPLETED_SERIES order][Uint16 flags].
+ * Layout: gzip of [uint32 header length][JSON header, padded so that the arrays begin on 8 bytes][Float64 arrays of the weather in the order of
+ * the header's `series`][Uint32 flags]. Runs of the first kernel version have no `series`: the six of COMPLETED_SERIES, and Uint16 flags.
  */
-import { gunzipSync, gzipSync } from 'node:zlib';
+import { once } from 'node:events';
+import { createGzip, gunzipSync } from 'node:zlib';
 import type { Tx } from '../../db/connect.ts';
 import { findFrozen, listParcelInputs, listSliceParcels } from '../../db/queries/run-state.ts';
 import { NotFound } from '../base/errors.ts';
 import { nanFromNull, nullFromNaN } from '../base/missing.ts';
 import type { SeasonInput, Soil } from '../season/types.ts';
-import { COMPLETED_SERIES, type CompletedWeather, type Site } from '../weather/variable.ts';
+import { type CarriedSeries, COMPLETED_SERIES, type CompletedWeather, type Site } from '../weather/variable.ts';
 import { cropFromJson, type FrozenParcel, type Libraries, seasonInput } from './run-plan.ts';
 import type { RunSettings } from './run-settings.ts';
 
@@ -21,35 +23,59 @@ interface FrozenSeason {
   readonly libraries: Libraries;
 }
 
-export function packFrozenSeason(frozen: FrozenSeason): Uint8Array {
-  const header = Buffer.from(
-    JSON.stringify({
-      startDate: frozen.startDate,
-      settings: frozen.settings,
-      sites: frozen.sites.map((site) => ({ ...site, elevation: nullFromNaN(site.elevation), windHeight: nullFromNaN(site.windHeight) })),
-      siteCount: frozen.weather.siteCount,
-      dayCount: frozen.weather.dayCount,
-      libraries: frozen.libraries,
-    }),
-  );
+/** Packs piece by piece, so that the arrays of a large grid are never held twice. */
+export async function packFrozenSeason(frozen: FrozenSeason): Promise<Uint8Array> {
+  const { weather } = frozen;
+  const series: CarriedSeries[] = weather.referenceEt ? [...COMPLETED_SERIES, 'referenceEt'] : [...COMPLETED_SERIES];
+  const json = JSON.stringify({
+    startDate: frozen.startDate,
+    settings: frozen.settings,
+    sites: frozen.sites.map((site) => ({ ...site, elevation: nullFromNaN(site.elevation), windHeight: nullFromNaN(site.windHeight) })),
+    siteCount: weather.siteCount,
+    dayCount: weather.dayCount,
+    series,
+    libraries: frozen.libraries,
+  });
+  const header = Buffer.from(json.padEnd(json.length + padding(Buffer.byteLength(json)), ' '));
   const length = Buffer.alloc(4);
   length.writeUInt32LE(header.length);
-  const arrays = COMPLETED_SERIES.map((name) => bytesOf(frozen.weather[name]));
-  return gzipSync(Buffer.concat([length, header, ...arrays, bytesOf(frozen.weather.flags)]), { level: 3 });
+  return gzipped([length, header, ...series.map((name) => bytesOf(weather[name] as Float64Array)), bytesOf(weather.flags)]);
 }
 
-function bytesOf(array: Float64Array | Uint16Array): Buffer {
+/** Spaces after a header of so many bytes that bring what follows it and its length to a multiple of 8. */
+function padding(length: number): number {
+  return (8 - ((4 + length) % 8)) % 8;
+}
+
+async function gzipped(parts: readonly Uint8Array[]): Promise<Uint8Array> {
+  const gzip = createGzip({ level: 3 });
+  const packed: Buffer[] = [];
+  gzip.on('data', (piece: Buffer) => packed.push(piece));
+  const ended = once(gzip, 'end');
+  for (const part of parts) if (!gzip.write(part)) await once(gzip, 'drain');
+  gzip.end();
+  await ended;
+  return Buffer.concat(packed);
+}
+
+function bytesOf(array: Float64Array | Uint32Array): Buffer {
   return Buffer.from(array.buffer, array.byteOffset, array.byteLength);
 }
 
-function unpackFrozenSeason(packed: Uint8Array): FrozenSeason {
+export function unpackFrozenSeason(packed: Uint8Array): FrozenSeason {
   const bytes = gunzipSync(packed);
   const headerLength = bytes.readUInt32LE(0);
   const header = JSON.parse(bytes.subarray(4, 4 + headerLength).toString('utf8'));
   const count: number = header.siteCount * header.dayCount;
-  const body = Uint8Array.from(bytes.subarray(4 + headerLength)).buffer;
-  const array = (index: number) => new Float64Array(body, index * count * 8, count);
-  const weather = Object.fromEntries(COMPLETED_SERIES.map((name, index) => [name, array(index)]));
+  const start = 4 + headerLength;
+  const body = (bytes.byteOffset + start) % 8 === 0 ? bytes.subarray(start) : Uint8Array.from(bytes.subarray(start));
+  const series: CarriedSeries[] = header.series ?? COMPLETED_SERIES;
+  const array = (index: number) => new Float64Array(body.buffer, body.byteOffset + index * count * 8, count);
+  const weather = Object.fromEntries(series.map((name, index) => [name, array(index)]));
+  const flagsAt = body.byteOffset + series.length * count * 8;
+  const flags = header.series
+    ? new Uint32Array(body.buffer, flagsAt, count)
+    : Uint32Array.from(new Uint16Array(body.buffer, flagsAt, count));
   return {
     startDate: header.startDate,
     settings: header.settings,
@@ -58,12 +84,7 @@ function unpackFrozenSeason(packed: Uint8Array): FrozenSeason {
       elevation: nanFromNull(site.elevation),
       windHeight: nanFromNull(site.windHeight),
     })),
-    weather: {
-      siteCount: header.siteCount,
-      dayCount: header.dayCount,
-      ...weather,
-      flags: new Uint16Array(body, COMPLETED_SERIES.length * count * 8, count),
-    } as CompletedWeather,
+    weather: { siteCount: header.siteCount, dayCount: header.dayCount, ...weather, flags } as CompletedWeather,
     libraries: librariesFromJson(header.libraries),
   };
 }

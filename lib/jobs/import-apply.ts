@@ -20,15 +20,19 @@ import {
   applyTurnouts,
   checkTree,
   ParcelWriter,
+  removeAbsentAreas,
   removeAbsentReaches,
 } from './import-land.ts';
+import { keepHistory } from './import-lineage.ts';
 import { refuseDangling } from './import-references.ts';
 import { seasonsTouched, startImportRuns } from './import-runs.ts';
 import { findStagedHead, type StagedHead, type StagedPart, stagedParts } from './import-staged.ts';
 import { performUndo } from './import-undo.ts';
 import { applyBlocks, applyCells, applySites } from './import-weather.ts';
 import type { JobData } from './queue.ts';
+import { updateSoilShares } from './soil-shares.ts';
 import { markStale } from './stale-runs.ts';
+import { requestWeatherCheck } from './weather-check.ts';
 
 export interface ImportApplyData extends JobData {
   readonly importId: string;
@@ -78,6 +82,7 @@ async function applyInside(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void
   await onStep('checked');
   const touched = countsChanged(result.counts) ? await seasonsTouched(tx, own.districtId, result.touched) : [];
   await markStale(tx, own.districtId, touched, `import of ${row.kind} applied`);
+  if (row.kind === 'weather' || row.kind === 'stations') await requestWeatherCheck(own.districtId, undefined, tx);
   const applied = { ...result.counts, seasons: touched, runs: null };
   const done = await changeImport(
     tx,
@@ -101,6 +106,8 @@ class Applier {
   private readonly months = new Set<string>();
   private readonly seasons = new Set<string>();
   private readonly reaches = new Set<string>();
+  /** of service areas or soil polygons */
+  private readonly areas = new Set<string>();
   private parcels: ParcelWriter | null = null;
   private lastProgress = 0;
 
@@ -121,7 +128,7 @@ class Applier {
     }
     this.count('crop_mappings', await applyCropMappings(this.tx, this.own, this.head.cropMappings));
     await this.finish();
-    const everything = this.head.kind !== 'weather' && this.head.kind !== 'plantings';
+    const everything = !['weather', 'plantings', 'areas'].includes(this.head.kind);
     return { counts: this.counts, touched: { everything, months: [...this.months], seasons: [...this.seasons] } };
   }
 
@@ -141,7 +148,7 @@ class Applier {
       case 'turnouts':
         return this.count('turnouts', await applyTurnouts(tx, own, part.items));
       case 'parcels':
-        this.parcels ??= await ParcelWriter.open(tx, own.districtId);
+        this.parcels ??= await this.openParcels();
         return this.count('parcels', await this.parcels.write(tx, own, part.items));
       case 'plantings':
         for (const planting of part.items) this.seasons.add(planting.seasonCode);
@@ -150,12 +157,19 @@ class Applier {
         for (const reach of part.items) this.reaches.add(reach.code);
         return this.count('reaches', await applyReaches(tx, own, part.items));
       case 'areas':
+        for (const area of part.items) this.areas.add(area.code);
         return this.count('areas', await applyAreas(tx, own, part.items));
       case 'soilAreas':
+        for (const area of part.items) this.areas.add(area.code);
         return this.count('soil_areas', await applySoilAreas(tx, own, part.items));
       case 'soils':
         return this.count('soils', await applySoils(tx, own, part.items));
     }
+  }
+
+  private async openParcels(): Promise<ParcelWriter> {
+    this.counts.parcel_history_added = await keepHistory(this.tx, this.own, this.head, this.row.options);
+    return ParcelWriter.open(this.tx, this.own.districtId);
   }
 
   private gridOfHead(): { name: string; shape: GridShape } {
@@ -169,8 +183,14 @@ class Applier {
     const replace = (this.row.options as { replace?: unknown }).replace === true;
     if (replace && this.parcels) this.counts.parcels_removed = await this.parcels.removeAbsent(tx, own);
     if (replace && this.reaches.size > 0) this.counts.reaches_removed = await removeAbsentReaches(tx, own, this.reaches);
-    if (this.head.kind === 'canals') await checkTree(tx, own.districtId);
-    const land = this.head.kind === 'parcels' || this.head.kind === 'canals';
+    const { kind } = this.head;
+    if (replace && this.areas.size > 0) {
+      const table = kind === 'areas' ? 'service_area' : 'soil_area';
+      this.counts[kind === 'areas' ? 'areas_removed' : 'soil_areas_removed'] = await removeAbsentAreas(tx, own, table, this.areas);
+    }
+    if (kind === 'soil-areas') this.counts.parcels_changed = await updateSoilShares(tx, own);
+    if (kind === 'canals') await checkTree(tx, own.districtId);
+    const land = kind === 'parcels' || kind === 'canals' || kind === 'areas';
     if (land && countsChanged(this.counts)) await countGeometryUp(tx, own.districtId);
     await this.onStep('finished');
   }

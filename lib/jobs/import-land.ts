@@ -9,11 +9,13 @@ import {
   mapTurnouts,
   nextParcelOrdinal,
 } from '../../db/queries/import-land.ts';
+import { listAreaCodes } from '../../db/queries/land-maps.ts';
 import { counted } from '../base/counted.ts';
 import { Refused } from '../base/errors.ts';
 import { checkLossRule } from '../canal/loss-rule.ts';
 import { buildTree } from '../canal/tree.ts';
-import type { StagedParcel, StagedPlanting, StagedReach, StagedSoil, StagedTurnout } from '../files/reading.ts';
+import type { StagedArea, StagedParcel, StagedPlanting, StagedReach, StagedSoil, StagedSoilArea, StagedTurnout } from '../files/reading.ts';
+import { SoilMap } from './soil-shares.ts';
 
 type StoredParcels = Awaited<ReturnType<typeof mapStoredParcels>>;
 type StoredTurnouts = Awaited<ReturnType<typeof mapTurnouts>>;
@@ -25,6 +27,7 @@ export class ParcelWriter {
   private constructor(
     private readonly stored: StoredParcels,
     private readonly turnouts: StoredTurnouts,
+    private readonly soilMap: SoilMap,
     private next: number,
   ) {}
 
@@ -32,6 +35,7 @@ export class ParcelWriter {
     return new ParcelWriter(
       await mapStoredParcels(tx, districtId),
       await mapTurnouts(tx, districtId),
+      await SoilMap.open(tx, districtId),
       await nextParcelOrdinal(tx, districtId),
     );
   }
@@ -67,6 +71,7 @@ export class ParcelWriter {
       north: parcel.north,
       geometry: parcel.geometry,
       attributes: parcel.attributes,
+      soil_shares: this.soilMap.sharesOf(parcel.geometry, parcel.area),
     };
   }
 
@@ -94,15 +99,59 @@ export class ParcelWriter {
   }
 }
 
-/** Adds turnouts and moves known ones; a capacity the file does not say stays. */
+/** Adds turnouts and moves known ones; a capacity or place the file does not say stays. */
 export async function applyTurnouts(tx: Tx, own: ImportKey, turnouts: readonly StagedTurnout[]): Promise<RowChanges> {
   const stored = await mapTurnouts(tx, own.districtId);
   const rows = turnouts.map((turnout) => ({
     code: turnout.code,
     reach_code: turnout.reachCode,
     capacity_m3_s: turnout.capacity ?? stored.get(turnout.code)?.capacity ?? null,
+    longitude: turnout.longitude ?? stored.get(turnout.code)?.longitude ?? null,
+    latitude: turnout.latitude ?? stored.get(turnout.code)?.latitude ?? null,
   }));
   return replaceRows(tx, own, 'turnout', rows);
+}
+
+/** Adds service areas and replaces known ones. */
+export function applyAreas(tx: Tx, own: ImportKey, areas: readonly StagedArea[]): Promise<RowChanges> {
+  const rows = areas.map((area) => ({
+    code: area.code,
+    name: area.name,
+    reach_code: area.reachCode,
+    turnout_code: area.turnoutCode,
+    area_m2: area.area,
+    ...boxAndShape(area),
+  }));
+  return replaceRows(tx, own, 'service_area', rows);
+}
+
+/** Adds soil polygons and replaces known ones. The shares of the parcels follow by `updateSoilShares` once all are in. */
+export function applySoilAreas(tx: Tx, own: ImportKey, areas: readonly StagedSoilArea[]): Promise<RowChanges> {
+  const rows = areas.map((area) => ({ code: area.code, soil_code: area.soilCode, ...boxAndShape(area) }));
+  return replaceRows(tx, own, 'soil_area', rows);
+}
+
+function boxAndShape({ west, south, east, north, geometry, attributes }: StagedArea | StagedSoilArea) {
+  return { west, south, east, north, geometry, attributes };
+}
+
+/** Removes the areas that the file did not have. */
+export async function removeAbsentAreas(
+  tx: Tx,
+  own: ImportKey,
+  table: 'service_area' | 'soil_area',
+  kept: ReadonlySet<string>,
+): Promise<number> {
+  const absent = (await listAreaCodes(tx, own.districtId, table)).filter((code) => !kept.has(code));
+  for (let from = 0; from < absent.length; from += 1000) {
+    await removeRows(
+      tx,
+      own,
+      table,
+      absent.slice(from, from + 1000).map((code) => ({ code })),
+    );
+  }
+  return absent.length;
 }
 
 /** Replaces the plantings of each parcel and season named, as a whole. */

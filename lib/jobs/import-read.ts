@@ -7,6 +7,7 @@ import { log } from '../access/log.ts';
 import { TillwaterError } from '../base/errors.ts';
 import type { readImport } from '../files/read-import.ts';
 import type { ImportContext, ImportKind, ImportOptions, Progress } from '../files/reading.ts';
+import { tellLineage } from './import-lineage.ts';
 import { PieceWriter } from './import-staged.ts';
 import { applyImport } from './imports.ts';
 import type { JobData } from './queue.ts';
@@ -118,8 +119,10 @@ async function saveReading(data: ImportReadData, row: ImportRow, { reading, head
         error: null,
       },
     );
-    if (saved) await saveStagedPiece(tx, { districtId: data.districtId, importId: data.importId, ordinal: 0 }, head);
-    return saved;
+    if (!saved) return false;
+    await saveStagedPiece(tx, { districtId: data.districtId, importId: data.importId, ordinal: 0 }, head);
+    await tellLineage(tx, data, row, reading);
+    return true;
   });
 }
 

@@ -66,8 +66,8 @@ const FIRST: readonly StagedPart['part'][] = ['sites', 'cells', 'turnouts'];
 
 /** Packs what a reading stages, piece by piece, in the order in which it is to be applied. */
 export class PieceWriter {
-  private readonly counts: Partial<Record<StagedPart['part'], number>> = {};
-  private readonly first: number[] = [];
+  private counts: Partial<Record<StagedPart['part'], number>> = {};
+  private first: number[] = [];
   private pieces = 0;
 
   /** @param put takes a packed piece; waited for before the next is made */
@@ -78,6 +78,7 @@ export class PieceWriter {
 
   /** Packs what is left and answers the packed head, which is stored first and written last. */
   async finish(staged: StagedImport): Promise<Uint8Array> {
+    if (staged.kind === 'weather' && staged.sites === 0) this.forget();
     for (const part of partsOf(staged)
       .filter((each) => each.items.length > 0)
       .flatMap(cutPart))
@@ -92,6 +93,13 @@ export class PieceWriter {
       first: this.first,
     };
     return packJson(head);
+  }
+
+  /** A reading that came to nothing leaves nothing to apply, whatever was handed over on the way. */
+  private forget(): void {
+    this.counts = {};
+    this.first = [];
+    this.pieces = 0;
   }
 
   private async write(part: StagedPart): Promise<void> {

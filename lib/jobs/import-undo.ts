@@ -12,6 +12,7 @@ import { laterText, refuseDangling } from './import-references.ts';
 import { startImportRuns } from './import-runs.ts';
 import { refuseLostWeather, restoreBlocks } from './import-weather.ts';
 import { markStale } from './stale-runs.ts';
+import { requestWeatherCheck } from './weather-check.ts';
 
 /** @throws Conflict naming the import that must be undone first */
 export async function refuseLaterImport(tx: Tx, own: ImportKey): Promise<void> {
@@ -41,6 +42,7 @@ async function undoInside(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void>
   await restoreAll(tx, own, onStep);
   await dropBefore(tx, own.districtId, own.importId);
   const understood = row.understood as { applied?: { seasons?: string[] } };
+  if (row.kind === 'weather' || row.kind === 'stations') await requestWeatherCheck(own.districtId, undefined, tx);
   await markStale(tx, own.districtId, understood.applied?.seasons ?? [], `import of ${row.kind} undone`);
   const done = await changeImport(
     tx,
@@ -67,7 +69,7 @@ async function restoreAll(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void>
   await refuseDangling(tx, own, { before: danglingBefore, doing: 'undo' });
   if (tables.includes('site')) await refuseLostWeather(tx, own.districtId, sites);
   if (tables.includes('reach')) await checkTreeLeft(tx, own.districtId);
-  if (tables.includes('reach') || tables.includes('parcel')) await countGeometryUp(tx, own.districtId);
+  if (tables.some((table) => ['reach', 'parcel', 'service_area'].includes(table))) await countGeometryUp(tx, own.districtId);
   await onStep('checked');
 }
 

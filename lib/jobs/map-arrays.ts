@@ -2,11 +2,12 @@
 import type { Period } from '../base/civil-date.ts';
 import { dailyValues } from '../season/daily-store.ts';
 import type { DailyVariable } from '../season/types.ts';
+import { ESTIMATED_BITS } from '../weather/variable.ts';
 
 /** How a day's value becomes a period's: a sum of depths, the state at the period's end, or the mean. */
 type Aggregate = 'sum' | 'end' | 'mean';
 
-/** The variables a map can show. `depletion_share` is depletion over total available water. */
+/** The variables a map can show. `depletion_share` is depletion over total available water; `estimated_share` the share of days with filled or estimated weather. */
 export const MAP_VARIABLES: readonly {
   readonly id: string;
   readonly term: string;
@@ -23,6 +24,7 @@ export const MAP_VARIABLES: readonly {
   { id: 'root_zone_depletion', term: 'Root-zone depletion', unit: 'mm', aggregate: 'end' },
   { id: 'depletion_share', term: 'Depletion, share of total available water', unit: '1', aggregate: 'end' },
   { id: 'stress_coefficient', term: 'Stress coefficient Ks', unit: '1', aggregate: 'mean' },
+  { id: 'estimated_share', term: 'Days with estimated weather, share', unit: '1', aggregate: 'mean' },
 ];
 
 interface PeriodSet {
@@ -43,9 +45,9 @@ export class MapArrays {
     );
   }
 
-  /** Puts one parcel's season into every array. @param stored [variable × day] */
-  add(position: number, stored: Uint16Array): void {
-    const days = new Map(MAP_VARIABLES.map((variable) => [variable.id, this.daily(stored, variable.id)]));
+  /** Puts one parcel's season into every array. @param stored [variable × day] @param flags bits of FALLBACK [day] */
+  add(position: number, stored: Uint16Array, flags: Uint32Array): void {
+    const days = new Map(MAP_VARIABLES.map((variable) => [variable.id, this.daily(stored, flags, variable.id)]));
     for (const { variable, aggregate, set, values } of this.arrays) {
       const series = days.get(variable) as Float64Array;
       set.periods.forEach((period, index) => {
@@ -54,7 +56,8 @@ export class MapArrays {
     }
   }
 
-  private daily(stored: Uint16Array, id: string): Float64Array {
+  private daily(stored: Uint16Array, flags: Uint32Array, id: string): Float64Array {
+    if (id === 'estimated_share') return Float64Array.from(flags, (bits) => ((bits & ESTIMATED_BITS) === 0 ? 0 : 1));
     if (id !== 'depletion_share') return dailyValues(stored, this.dayCount, id as DailyVariable);
     const depletion = dailyValues(stored, this.dayCount, 'root_zone_depletion');
     const available = dailyValues(stored, this.dayCount, 'total_available_water');

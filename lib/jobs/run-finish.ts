@@ -11,8 +11,8 @@ import { depthToVolume } from '../base/units.ts';
 import type { LossRule } from '../canal/loss-rule.ts';
 import { rollUp, rollUpImbalance } from '../canal/roll-up.ts';
 import { buildTree } from '../canal/tree.ts';
-import { dailyValues, storedArray } from '../season/daily-store.ts';
-import { FALLBACK, FALLBACK_TEXT, type Fallback } from '../weather/variable.ts';
+import { dailyValues, storedArray, storedFlags } from '../season/daily-store.ts';
+import { ESTIMATED_BITS, FALLBACK, FALLBACK_TEXT, type Fallback } from '../weather/variable.ts';
 import { MapArrays } from './map-arrays.ts';
 import { failRun, type RunJob } from './run-failure.ts';
 
@@ -34,11 +34,13 @@ async function closeRun(tx: Tx, job: RunJob): Promise<void> {
   const arrays = new MapArrays(run.parcelCount, run.dayCount, periods);
   const demand = new ReachDemand(await canalsOf(tx, job.districtId), run.dayCount);
   const fallbackDays = new Map<Fallback, number>();
+  let estimatedDays = 0;
   await eachParcel(tx, job, (parcel) => {
     const stored = storedArray(parcel.daily);
-    arrays.add(parcel.position, stored);
-    demand.add(parcel.reachCode, dailyValues(stored, run.dayCount, 'gross_requirement'), parcel.area);
-    countFallbacks(fallbackDays, parcel.flags);
+    const flags = storedFlags(parcel.flags, run.dayCount);
+    arrays.add(parcel.position, stored, flags);
+    demand.add(parcel.reachCode, dailyValues(stored, run.dayCount, 'gross_requirement'), flags, parcel.area);
+    estimatedDays += countFallbacks(fallbackDays, flags);
   });
   await saveRunValues(tx, arrays.rows(job));
   const canal = demand.rolledUp(job);
@@ -54,6 +56,7 @@ async function closeRun(tx: Tx, job: RunJob): Promise<void> {
       parcel_days: parcelDays,
       max_residual_mm: slices.maxResidual,
       roll_up_relative: canal.relativeError,
+      estimated_share: estimatedDays / parcelDays,
       fallback_shares: Object.fromEntries([...fallbackDays].map(([name, days]) => [name, days / parcelDays])),
       seconds: run.startedAt ? (Date.now() - run.startedAt.getTime()) / 1000 : undefined,
       parcels_without_canal: demand.withoutCanal,
@@ -67,6 +70,7 @@ const WORTH_A_WARNING: Partial<Record<Fallback, number>> = {
   temperatureFromNormal: 0.05,
   precipitationAssumedZero: 0.05,
   temperatureExtremesFromMean: 0.05,
+  referenceEtFromDailyWeather: 0.05,
 };
 
 function runWarnings(days: ReadonlyMap<Fallback, number>, parcelDays: number, withoutCanal: number): string[] {
@@ -103,13 +107,14 @@ async function eachParcel(
   }
 }
 
-function countFallbacks(days: Map<Fallback, number>, bytes: Uint8Array): void {
-  const flags = storedArray(bytes);
+/** Adds up the days of each fallback; answers on how many days any value was filled or estimated. */
+function countFallbacks(days: Map<Fallback, number>, flags: Uint32Array): number {
   for (const [name, bit] of Object.entries(FALLBACK) as [Fallback, number][]) {
     let count = 0;
     for (const flag of flags) if ((flag & bit) !== 0) count++;
     if (count > 0) days.set(name, (days.get(name) ?? 0) + count);
   }
+  return flags.reduce((count, flag) => count + ((flag & ESTIMATED_BITS) === 0 ? 0 : 1), 0);
 }
 
 async function canalsOf(tx: Tx, districtId: string) {
@@ -121,6 +126,8 @@ async function canalsOf(tx: Tx, districtId: string) {
 class ReachDemand {
   withoutCanal = 0;
   private readonly demand: Float64Array;
+  /** area with filled or estimated weather, of the parcels on each reach [m²] */
+  private readonly estimated: Float64Array;
   private readonly index: Map<string, number>;
 
   constructor(
@@ -129,15 +136,19 @@ class ReachDemand {
   ) {
     this.index = new Map(canals.reaches.map((reach, ordinal) => [reach.code, ordinal]));
     this.demand = new Float64Array(canals.reaches.length * dayCount);
+    this.estimated = new Float64Array(canals.reaches.length * dayCount);
   }
 
-  add(reachCode: string | null, gross: Float64Array, area: number): void {
+  add(reachCode: string | null, gross: Float64Array, flags: Uint32Array, area: number): void {
     const ordinal = reachCode === null ? undefined : this.index.get(reachCode);
     if (ordinal === undefined) {
       this.withoutCanal++;
       return;
     }
-    for (let day = 0; day < this.dayCount; day++) this.demand[ordinal * this.dayCount + day] += depthToVolume(gross[day], area);
+    for (let day = 0; day < this.dayCount; day++) {
+      this.demand[ordinal * this.dayCount + day] += depthToVolume(gross[day], area);
+      if ((flags[day] & ESTIMATED_BITS) !== 0) this.estimated[ordinal * this.dayCount + day] += area;
+    }
   }
 
   rolledUp(job: RunJob) {
@@ -164,12 +175,14 @@ class ReachDemand {
     return { rows, relativeError: rollUpImbalance(tree, this.demand, flows) };
   }
 
+  /** [4 × day]: turnout demand, loss, head inflow [m³ d⁻¹], area with estimated weather [m²]. */
   private dailyBytes(ordinal: number, flows: { reachLoss: Float64Array; headInflow: Float64Array }): Uint8Array {
-    const days = new Float64Array(3 * this.dayCount);
+    const days = new Float64Array(4 * this.dayCount);
     const span = [ordinal * this.dayCount, (ordinal + 1) * this.dayCount] as const;
     days.set(this.demand.subarray(...span), 0);
     days.set(flows.reachLoss.subarray(...span), this.dayCount);
     days.set(flows.headInflow.subarray(...span), 2 * this.dayCount);
+    days.set(this.estimated.subarray(...span), 3 * this.dayCount);
     return new Uint8Array(days.buffer);
   }
 }

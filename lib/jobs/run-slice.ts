@@ -46,7 +46,7 @@ export async function computeSlice(job: SliceJob): Promise<void> {
   await reportSlice(key);
 }
 
-function flagBytes(flags: Uint16Array, parcel: number, dayCount: number): Uint8Array {
+function flagBytes(flags: Uint32Array, parcel: number, dayCount: number): Uint8Array {
   const part = flags.subarray(parcel * dayCount, (parcel + 1) * dayCount);
   return new Uint8Array(part.buffer, part.byteOffset, part.byteLength);
 }

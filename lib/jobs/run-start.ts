@@ -11,20 +11,20 @@ import {
 } from '../../db/queries/run-inputs.ts';
 import { findRun, insertRunParcels, replaceSlices, updateGoingRun } from '../../db/queries/run-state.ts';
 import { database } from '../access/database.ts';
-import { addDays } from '../base/civil-date.ts';
 import { Refused } from '../base/errors.ts';
+import { soilsOfParcels } from '../season/mixed-soil.ts';
 import { packFrozenSeason } from './frozen-season.ts';
-import { loadObservations } from './observations.ts';
 import { enqueue } from './queue.ts';
 import { failRun, type RunJob } from './run-failure.ts';
-import { type FrozenParcel, frozenParcels, librariesOf, seasonInput, seasonWeather } from './run-plan.ts';
-import type { RunSettings } from './run-settings.ts';
+import { type FrozenParcel, frozenParcels, librariesOf, seasonInput } from './run-plan.ts';
+import { DEFAULT_RUN_SETTINGS, type RunSettings } from './run-settings.ts';
+import { type PlannedWeather, planWeather } from './run-weather.ts';
 
 /** Parcels in a slice: about a second of work, far below the half minute a piece may take. */
 const SLICE_PARCELS = 2000;
 
 /** Version of the computation; part of every manifest. Count up when a change can move a result. */
-const KERNEL_VERSION = '1';
+const KERNEL_VERSION = '2';
 
 /** The job: idempotent; a second go replaces the slices of the first. */
 export async function startRun(job: RunJob): Promise<void> {
@@ -42,7 +42,7 @@ async function planRun(tx: Tx, { districtId, runId }: RunJob): Promise<number> {
   if (!run || (run.state !== 'queued' && run.state !== 'running')) return 0;
   const district = await findDistrict(tx, districtId);
   if (!district) return 0;
-  const settings = run.settings as RunSettings;
+  const asked = { ...DEFAULT_RUN_SETTINGS, ...(run.settings as Partial<RunSettings>) };
   const parcels = await listRunParcels(tx, districtId);
   const plantings = await listSeasonPlantings(tx, districtId, run.seasonCode);
   if (plantings.length === 0) {
@@ -50,17 +50,13 @@ async function planRun(tx: Tx, { districtId, runId }: RunJob): Promise<number> {
       `No parcel has a planting in season "${run.seasonCode}": import plantings, or parcels with a crop column and this season.`,
     );
   }
-  const libraries = librariesOf(await listLibraries(tx, districtId));
-  const stored = await loadObservations(tx, districtId, { source: settings.source });
-  if (stored.sites.length === 0 || stored.dayCount === 0) {
-    throw new Refused('The district has no weather yet: import stations, then their weather.');
-  }
-  const weather = seasonWeather(stored, run, {
-    defaultElevation: district.defaultElevation,
-    radiationCoefficient: district.radiationCoefficient,
-  });
-  const { sites } = stored;
-  const frozen = frozenParcels({ parcels, plantings, sites, weather, settings, defaultElevation: district.defaultElevation });
+  const library = librariesOf(await listLibraries(tx, districtId));
+  const { codes: soils, soils: mixedSoils } = soilsOfParcels(parcels, library.soils, asked.default_soil);
+  const libraries = { ...library, soils: mixedSoils };
+  const planned = await planWeather(tx, { districtId, run, parcels, district, settings: asked });
+  const { sites, weather, weights } = planned;
+  const settings: RunSettings = { ...asked, reference_et: planned.referenceEt };
+  const frozen = frozenParcels({ parcels, plantings, sites, soils, weights, settings, defaultElevation: district.defaultElevation });
   seasonInput({
     startDate: run.startDate,
     settings,
@@ -69,7 +65,7 @@ async function planRun(tx: Tx, { districtId, runId }: RunJob): Promise<number> {
     libraries,
     parcels: parcels.map((p, i) => ({ code: p.code, input: frozen[i] })),
   });
-  const packed = packFrozenSeason({ startDate: run.startDate, settings, sites, weather, libraries });
+  const packed = await packFrozenSeason({ startDate: run.startDate, settings, sites, weather, libraries });
   const sliceCount = Math.ceil(parcels.length / SLICE_PARCELS);
   await replaceSlices(tx, districtId, runId, sliceCount);
   await insertRunParcels(tx, runParcelRows({ districtId, runId }, parcels, frozen));
@@ -87,9 +83,9 @@ async function planRun(tx: Tx, { districtId, runId }: RunJob): Promise<number> {
       packed,
       frozen,
       canal,
-      settings,
+      settings: asked,
       weekStart: district.weekStart,
-      observations: { from: stored.startDate, days: stored.dayCount },
+      weather: planned,
     }),
   });
   return sliceCount;
@@ -121,13 +117,17 @@ function manifestOf(parts: {
   canal: unknown;
   settings: RunSettings;
   weekStart: number;
-  observations: { from: string; days: number };
+  weather: PlannedWeather;
 }) {
   return {
     kernel_version: KERNEL_VERSION,
     week_start: parts.weekStart,
-    weather_from: parts.observations.from,
-    weather_to: addDays(parts.observations.from, parts.observations.days - 1),
+    weather_source: parts.weather.source,
+    weather_from: parts.weather.from,
+    weather_to: parts.weather.to,
+    weather_sites: parts.weather.sites.length,
+    reference_et: parts.weather.referenceEt,
+    interpolation: parts.weather.record,
     weather_and_library_sha256: sha256(parts.packed),
     parcels_sha256: sha256(JSON.stringify(parts.frozen)),
     canals_sha256: sha256(JSON.stringify(parts.canal)),

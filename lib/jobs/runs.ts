@@ -2,14 +2,15 @@
 
 import type { Tx } from '../../db/connect.ts';
 import { countDistrict } from '../../db/queries/district-read.ts';
-import { listSources } from '../../db/queries/import-context.ts';
 import { findDistrict, findSeason, listLibraries } from '../../db/queries/run-inputs.ts';
+import { listRunSources, type RunSource } from '../../db/queries/run-sources.ts';
 import { cancelWaitingRuns, findRun, findStandingSettings, insertRun, notifyRun, updateGoingRun } from '../../db/queries/run-state.ts';
 import { database } from '../access/database.ts';
 import { dayNumber } from '../base/civil-date.ts';
 import { Conflict, NotFound, Refused } from '../base/errors.ts';
 import { enqueue } from './queue.ts';
 import { DEFAULT_RUN_SETTINGS, type RunSettings } from './run-settings.ts';
+import { requireSuited, suits } from './run-weights.ts';
 
 interface RunWanted {
   readonly season: string;
@@ -29,8 +30,12 @@ const LONGEST_SEASON = 400;
  */
 export async function requestRun(who: { districtId: string; userId: string | null }, wanted: RunWanted): Promise<string> {
   return database().inDistrict(who.districtId, async (tx) => {
-    const standing = wanted.likeStanding ? await findStandingSettings(tx, who.districtId, wanted.season) : null;
-    const settings = { ...DEFAULT_RUN_SETTINGS, ...(standing as Partial<RunSettings> | null), ...wanted.settings };
+    const standing = (
+      wanted.likeStanding ? await findStandingSettings(tx, who.districtId, wanted.season) : null
+    ) as Partial<RunSettings> | null;
+    const kept = { ...DEFAULT_RUN_SETTINGS, ...standing, ...wanted.settings };
+    const kind = kindOf(await listRunSources(tx, who.districtId), kept.source);
+    const settings = { ...kept, interpolation: interpolationOf(wanted.settings?.interpolation, standing?.interpolation, kind) };
     const season = await findSeason(tx, who.districtId, wanted.season);
     if (!season) throw new NotFound(`There is no season "${wanted.season}" in this district. List them at /api/v1/seasons.`);
     const dayCount = dayNumber(season.endDate) - dayNumber(season.startDate) + 1;
@@ -56,6 +61,31 @@ export async function requestRun(who: { districtId: string; userId: string | nul
   });
 }
 
+/** Kind of the source a run takes: the one named; else stations where any has weather, else a grid. */
+function kindOf(sources: readonly RunSource[], name: string | null): 'stations' | 'grid' {
+  if (name !== null) return sources.find((source) => source.name === name)?.kind ?? 'stations';
+  const having = sources.filter(({ hasWeather }) => hasWeather);
+  return having.length === 0 || having.some((source) => source.kind === 'stations') ? 'stations' : 'grid';
+}
+
+/**
+ * How weather is carried: as asked; else as in the standing run, where that suits the source; else bilinear on a grid and the default between stations.
+ *
+ * @throws Refused when what is asked for does not suit the source
+ */
+function interpolationOf(
+  asked: RunSettings['interpolation'] | undefined,
+  standing: RunSettings['interpolation'] | undefined,
+  kind: 'stations' | 'grid',
+): RunSettings['interpolation'] {
+  if (asked) {
+    requireSuited(asked, kind);
+    return asked;
+  }
+  if (standing && suits(standing, kind)) return standing;
+  return kind === 'grid' ? 'bilinear' : DEFAULT_RUN_SETTINGS.interpolation;
+}
+
 async function checkedParcelCount(tx: Tx, districtId: string, settings: RunSettings): Promise<number> {
   const { parcels } = await countDistrict(tx, districtId);
   if (parcels === 0) throw new Refused('The district has no parcels yet: import parcels before asking for a run.');
@@ -69,7 +99,7 @@ async function checkedParcelCount(tx: Tx, districtId: string, settings: RunSetti
     const known = methods.map((m) => m.code).join(', ');
     throw new Refused(`default_method "${settings.default_method}" is not an application method of this district; known: ${known}.`);
   }
-  const sources = (await listSources(tx, districtId)).map((source) => source.name);
+  const sources = (await listRunSources(tx, districtId)).map((source) => source.name);
   if (settings.source !== null && !sources.includes(settings.source)) {
     throw new Refused(`source "${settings.source}" is not a weather source of this district; known: ${sources.join(', ') || 'none yet'}.`);
   }

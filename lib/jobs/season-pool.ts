@@ -73,7 +73,7 @@ function joined(input: SeasonInput, parts: [number, number][], outputs: SeasonOu
   if (outputs.length === 1) return outputs[0];
   const size = DAILY_VARIABLE_COUNT * input.dayCount;
   const daily = new Uint16Array(input.parcels.length * size);
-  const flags = new Uint16Array(input.parcels.length * input.dayCount);
+  const flags = new Uint32Array(input.parcels.length * input.dayCount);
   for (const [k, output] of outputs.entries()) {
     daily.set(output.daily, parts[k][0] * size);
     flags.set(output.flags, parts[k][0] * input.dayCount);
@@ -93,7 +93,7 @@ function sharedWeather(weather: CompletedWeather): CompletedWeather {
     into.set(from);
     return into;
   };
-  const flags = new Uint16Array(new SharedArrayBuffer(weather.flags.byteLength));
+  const flags = new Uint32Array(new SharedArrayBuffer(weather.flags.byteLength));
   flags.set(weather.flags);
   const copy: CompletedWeather = {
     siteCount: weather.siteCount,
@@ -104,6 +104,7 @@ function sharedWeather(weather: CompletedWeather): CompletedWeather {
     solarRadiation: onShared(weather.solarRadiation),
     windSpeed2m: onShared(weather.windSpeed2m),
     precipitation: onShared(weather.precipitation),
+    referenceEt: weather.referenceEt ? onShared(weather.referenceEt) : null,
     flags,
   };
   sharedCopies.set(weather, copy);

@@ -9,6 +9,7 @@ import { endRun, type RunJob } from './run-failure.ts';
 import { finishRun } from './run-finish.ts';
 import { computeSlice, type SliceJob } from './run-slice.ts';
 import { startRun } from './run-start.ts';
+import { workOnWeatherChecks } from './weather-check.ts';
 
 /** Starts working on every queue. @param threads slices of runs in hand at once */
 export async function startWork(threads: number): Promise<void> {
@@ -19,6 +20,7 @@ export async function startWork(threads: number): Promise<void> {
   await workOn<FeedTurn>('feed-turn', performFeedTurn);
   addUpkeep(settleGivenUpFeeds);
   await workOnImports();
+  await workOnWeatherChecks();
 }
 
 /** No run stays "running" for ever: one whose piece failed for the last time is marked as failed. */

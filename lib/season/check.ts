@@ -3,7 +3,7 @@
  */
 import { type IsoDate, isIsoDate } from '../base/civil-date.ts';
 import { RangeViolation, Refused, ShapeError } from '../base/errors.ts';
-import { COMPLETED_SERIES } from '../weather/variable.ts';
+import { COMPLETED_SERIES, type SeriesWeights } from '../weather/variable.ts';
 import type { ApplicationMethod, Crop, CropCalendar, ParcelInput, SeasonInput, Soil } from './types.ts';
 
 /** The surface of the reference ET that drives a run; crops on another surface are refused. */
@@ -29,6 +29,10 @@ export function checkSeason(input: SeasonInput): void {
       throw new ShapeError(`weather.${name} has ${length} values: ${weather.siteCount} sites × ${dayCount} days are needed`);
     }
   }
+  const carried = weather.referenceEt?.length ?? weather.siteCount * dayCount;
+  if (carried !== weather.siteCount * dayCount) {
+    throw new ShapeError(`weather.referenceEt has ${carried} values: ${weather.siteCount} sites × ${dayCount} days are needed`);
+  }
   within('initial depletion', settings.initialDepletion, 0, 1, 'the settings');
   within('lapse rate', settings.lapseRate, -0.02, 0.02, 'the settings');
 }
@@ -49,6 +53,7 @@ export function checkParcel(parcel: ParcelInput, siteCount: number, checked: Che
   once(parcel.soil, checked, (soil) => checkSoil(soil, where));
   once(parcel.method, checked, (method) => checkMethod(method, where));
   checkWeights(parcel, siteCount, where);
+  for (const [name, series] of Object.entries(parcel.series ?? {})) checkSeries(series, siteCount, `${name} of ${where}`);
   for (const planting of parcel.plantings) {
     const at = `${where}, ${planting.crop.name} of ${planting.plantingDate}`;
     once(planting.crop, checked, (crop) => checkCrop(crop, at));
@@ -103,6 +108,23 @@ function checkWeights(parcel: ParcelInput, siteCount: number, where: string): vo
     sum += weight;
   }
   if (!(sum > 0)) throw new RangeViolation(`no weather site has a weight above 0 (${where}): give it at least one`);
+}
+
+/** Most sites one series of a parcel listens to. */
+const MOST_SITES = 8;
+
+/** Weights of one series may be negative (kriging), but they sum to 1. */
+function checkSeries({ weights, gradient }: SeriesWeights, siteCount: number, where: string): void {
+  if (weights.length < 1 || weights.length > MOST_SITES)
+    throw new RangeViolation(`${weights.length} sites, not 1 to ${MOST_SITES} (${where})`);
+  let sum = 0;
+  for (const { site, weight } of weights) {
+    if (!(site >= 0 && site < siteCount)) throw new RangeViolation(`site index ${site} is not within 0 … ${siteCount - 1} (${where})`);
+    sum += weight;
+  }
+  if (!(Math.abs(sum - 1) < 1e-6)) throw new RangeViolation(`weights sum to ${sum}, not to 1 (${where})`);
+  if (!Number.isFinite(gradient))
+    throw new RangeViolation(`gradient ${gradient} with elevation is not a number (${where}): give 0 for none`);
 }
 
 function checkCrop(crop: Crop, where: string): void {

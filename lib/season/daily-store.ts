@@ -22,6 +22,15 @@ export function storedArray(bytes: Uint8Array): Uint16Array {
 }
 
 /**
+ * FALLBACK bits of one parcel by day from their bytes: 32 bits a day, or 16 in runs of the first kernel version, told apart by their length.
+ */
+export function storedFlags(bytes: Uint8Array, dayCount: number): Uint32Array {
+  if (bytes.byteLength === 2 * dayCount) return Uint32Array.from(storedArray(bytes));
+  const aligned = bytes.byteOffset % 4 === 0 ? bytes : Uint8Array.from(bytes);
+  return new Uint32Array(aligned.buffer, aligned.byteOffset, aligned.byteLength >> 2);
+}
+
+/**
  * One variable of one parcel over the season, in its own unit; missing is NaN.
  *
  * @param stored [variable × day]

@@ -45,7 +45,7 @@ export function runSeason(input: SeasonInput, options: { readonly keep?: 'stored
   const days = input.dayCount;
   const size = DAILY_VARIABLE_COUNT * days;
   const daily = new Uint16Array(input.parcels.length * size);
-  const flags = new Uint16Array(input.parcels.length * days);
+  const flags = new Uint32Array(input.parcels.length * days);
   const exact = options.keep === 'double' ? new Float64Array(input.parcels.length * size) : undefined;
   let worst = 0;
   for (let p = 0; p < input.parcels.length; p++) {

@@ -84,7 +84,7 @@ export interface PackedSeason {
   readonly reference: ReferenceDay;
   readonly mix: Mix;
   readonly weather: ParcelWeather;
-  readonly flags: Uint16Array;
+  readonly flags: Uint32Array;
   readonly curve: StripCurve;
   readonly state: StripState;
   readonly day: StripDay;
@@ -115,7 +115,7 @@ export function packSeason(input: SeasonInput): PackedSeason {
     reference: emptyReferenceDay(),
     mix: emptyMix(input, present),
     weather: emptyParcelWeather(days),
-    flags: new Uint16Array(days),
+    flags: new Uint32Array(days),
     curve: emptyCurve(days),
     state: emptyStripState(),
     day: emptyStripDay(),

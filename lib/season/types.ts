@@ -4,10 +4,13 @@
  */
 import type { IsoDate } from '../base/civil-date.ts';
 import type { WorkingStep } from '../base/working.ts';
-import type { CompletedWeather, Site, SiteWeight } from '../weather/variable.ts';
+import type { CarriedSeries, CompletedWeather, SeriesWeights, Site, SiteWeight } from '../weather/variable.ts';
 
 /** Which published combination equation gives the reference ET that drives the crops. Both for the short surface here: the crop library is on grass. */
 type ReferenceMethod = 'fao56' | 'asce2005';
+
+/** How the reference ET of a site-day was got: given by the source, summed over its hours, or computed from its daily weather. */
+export type SiteReferenceEt = 'given' | 'hourly-sum' | 'at-sites';
 
 /** Soil class. Water contents [m³ m⁻³], depths [m], water depths [mm]. */
 export interface Soil {
@@ -100,6 +103,8 @@ export interface ParcelInput {
   readonly method: ApplicationMethod;
   readonly plantings: readonly Planting[];
   readonly weights: readonly SiteWeight[];
+  /** series that are carried with weights of their own; every other one goes by `weights` and the lapse rate of the settings */
+  readonly series?: Partial<Record<CarriedSeries, SeriesWeights>>;
 }
 
 export interface SeasonSettings {
@@ -112,6 +117,8 @@ export interface SeasonSettings {
   readonly irrigate: boolean;
   /** true: curve-number runoff where the soil has one */
   readonly runoff: boolean;
+  /** where the reference ET at the sites comes from, when the weather carries one; left out when it is computed at the parcels */
+  readonly referenceEt?: SiteReferenceEt;
 }
 
 export interface SeasonInput {
@@ -161,7 +168,7 @@ export interface SeasonOutput {
   /** largest absolute water-balance residual over every strip and day [mm], in double precision before storage */
   readonly maxBalanceResidual: number;
   /** OR of FALLBACK bits per parcel and day, [parcel × day] */
-  readonly flags: Uint16Array;
+  readonly flags: Uint32Array;
   /** `daily` before rounding, where it was asked for (`keep: 'double'`) */
   readonly dailyExact?: Float64Array;
 }
@@ -174,7 +181,10 @@ export interface Working {
   readonly inputs: readonly {
     readonly site: string;
     readonly siteName: string;
+    /** share of the site in every series without weights of its own */
     readonly weight: number;
+    /** shares in the series that have weights of their own */
+    readonly seriesWeights: Readonly<Record<string, number>>;
     readonly elevation: number;
     readonly values: Readonly<Record<string, number>>;
     readonly flags: readonly string[];

@@ -6,12 +6,13 @@ import { RangeViolation } from '../base/errors.ts';
 import { quantity } from '../base/working.ts';
 import { type Cycle, developmentProgress, stageOf } from '../crop/curve.ts';
 import { referenceEtDay } from '../energy/reference-day.ts';
-import { fallbackNames } from '../weather/variable.ts';
+import { type CarriedSeries, fallbackNames, type SiteWeight } from '../weather/variable.ts';
 import { RUN_SURFACE } from './check.ts';
 import { recordCoefficients } from './coefficient-working.ts';
 import { walkParcel } from './kernel.ts';
+import { lapseCorrection } from './mix.ts';
 import { type PackedSeason, packSeason } from './pack.ts';
-import { lapseCorrection } from './parcel-weather.ts';
+import { seriesParts } from './series-weather.ts';
 import { type PlantedCycles, type StripPlan, stageClimates } from './strip-curve.ts';
 import {
   DAILY_VARIABLES,
@@ -53,7 +54,7 @@ export function explainDay(input: SeasonInput, parcelIndex: number, dayOffset: n
     },
   });
   for (const step of weatherSteps(season, parcel, dayOffset)) weather.push(step);
-  referenceEtDay(referenceInput(season, parcel, dayOffset), { step: (step) => weather.push(step) });
+  if (!input.weather.referenceEt) referenceEtDay(referenceInput(season, parcel, dayOffset), { step: (step) => weather.push(step) });
   const results = resultsOf(season, dayOffset);
   return {
     parcel: parcel.code,
@@ -125,27 +126,64 @@ function resultsOf(season: PackedSeason, day: number): Record<DailyVariable, num
 /** The sites that made the parcel's weather that day, with the weight each had after absent ones dropped out. */
 function siteInputs(season: PackedSeason, parcel: ParcelInput, day: number): Working['inputs'] {
   const { input } = season;
-  const present = parcel.weights.filter(({ site, weight }) => weight > 0 && season.present[site * input.dayCount + day] === 1);
-  return present.map(({ site, weight }) => {
+  const shared = new Map(sharedShares(season, parcel, day));
+  const own = ownShares(season, parcel, day);
+  return [...new Set([...shared.keys(), ...own.keys()])].map((site) => {
     const at = site * input.dayCount + day;
     const { code, name, elevation } = input.sites[site];
     return {
       site: code,
       siteName: name,
-      weight: weight / season.weather.weightSum[day],
+      weight: shared.get(site) ?? 0,
+      seriesWeights: own.get(site) ?? {},
       elevation: Number.isFinite(elevation) ? elevation : parcel.elevation,
-      values: {
-        air_temperature_max_c: input.weather.airTemperatureMax[at],
-        air_temperature_min_c: input.weather.airTemperatureMin[at],
-        temperature_correction_c: lapseCorrection(input.sites[site], parcel, input.settings.lapseRate),
-        vapour_pressure_kpa: input.weather.actualVapourPressure[at],
-        solar_radiation_mj_m2_d: input.weather.solarRadiation[at],
-        wind_speed_2m_m_s: input.weather.windSpeed2m[at],
-        precipitation_mm: input.weather.precipitation[at],
-      },
+      values: siteValues(season, parcel, site, at),
       flags: fallbackNames(input.weather.flags[at]),
     };
   });
+}
+
+function sharedShares(season: PackedSeason, parcel: ParcelInput, day: number): [number, number][] {
+  const { dayCount } = season.input;
+  const total = season.weather.weightSum[day];
+  // without one whole site-day only rain and reference ET are carried, by what reports them
+  if (total === 0) return seriesParts(season, parcel, 'precipitation', day).map(({ site, weight }) => [site, weight]);
+  const counts = ({ site, weight }: SiteWeight) => weight > 0 && season.present[site * dayCount + day] === 1;
+  return parcel.weights.filter(counts).map(({ site, weight }) => [site, weight / total]);
+}
+
+/** Weights of the series that have their own that day, by site and name of the series as it leaves the process. */
+function ownShares(season: PackedSeason, parcel: ParcelInput, day: number): Map<number, Record<string, number>> {
+  const shares = new Map<number, Record<string, number>>();
+  for (const name of Object.keys(parcel.series ?? {}) as CarriedSeries[]) {
+    if (name === 'referenceEt' && !season.input.weather.referenceEt) continue;
+    for (const { site, weight } of seriesParts(season, parcel, name, day)) {
+      shares.set(site, { ...shares.get(site), [SERIES_NAMES[name]]: weight });
+    }
+  }
+  return shares;
+}
+
+/** Names of the carried series as they leave the process. */
+const SERIES_NAMES: Readonly<Record<CarriedSeries, string>> = {
+  airTemperatureMax: 'air_temperature_max_c',
+  airTemperatureMin: 'air_temperature_min_c',
+  actualVapourPressure: 'vapour_pressure_kpa',
+  solarRadiation: 'solar_radiation_mj_m2_d',
+  windSpeed2m: 'wind_speed_2m_m_s',
+  precipitation: 'precipitation_mm',
+  referenceEt: 'reference_et_mm',
+};
+
+/** What the site has of the day; values it does not have are left out. */
+function siteValues(season: PackedSeason, parcel: ParcelInput, site: number, at: number): Record<string, number> {
+  const { sites, weather, settings } = season.input;
+  const named = (Object.entries(SERIES_NAMES) as [CarriedSeries, string][]).map(([series, name]): [string, number] => [
+    name,
+    weather[series]?.[at] ?? Number.NaN,
+  ]);
+  named.splice(2, 0, ['temperature_correction_c', lapseCorrection(sites[site], parcel, settings.lapseRate)]);
+  return Object.fromEntries(named.filter(([, value]) => Number.isFinite(value)));
 }
 
 function parcelSteps(parcel: ParcelInput, results: Record<DailyVariable, number>): WorkingStep[] {

@@ -305,7 +305,7 @@ describe('progress', () => {
   it('lists runs as a table too', async () => {
     const text = await (await runs(request('/api/v1/runs.csv', { token }))).text();
     expect(text.split('\r\n')[0]).toBe(
-      'id,season,state,stage,progress,standing,start_date,end_date,parcel_count,error,created_at,started_at,finished_at',
+      'id,season,state,stage,progress,standing,stale_since,stale_reason,start_date,end_date,parcel_count,error,created_at,started_at,finished_at',
     );
   });
 });

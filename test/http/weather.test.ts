@@ -1,7 +1,9 @@
 /** Sites and their days against FAO-56 Example 18 (Uccle, 6 July): ETo 3.88 mm/d, and the numbers printed on the way. */
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { GET as siteDays } from '../../app/api/v1/weather/sites/[code]/daily/route.ts';
+import { GET as siteHours } from '../../app/api/v1/weather/sites/[code]/hours/route.ts';
 import { GET as sites } from '../../app/api/v1/weather/sites/route.ts';
+import { GET as sources } from '../../app/api/v1/weather/sources/route.ts';
 import { site, weatherBlock, weatherSource } from '../../db/schema/weather.ts';
 import { loadObservations } from '../../lib/jobs/observations.ts';
 import { type TestDatabase, testDatabase } from '../support/database.ts';
@@ -33,6 +35,31 @@ function wetMonths(districtId: string, sourceId: number) {
   });
 }
 
+/**
+ * FAO-56 Example 19, N’Diaye, 1 October: the hours 2 to 3 and 14 to 15 as printed, spread over the night and the day around them; daily values
+ * beside. The site is the second of its block, so that its own part must be found.
+ */
+function senegalBlocks(districtId: string, sourceId: number) {
+  const night = { hour_air_temperature_c: 28, hour_relative_humidity_pct: 90, hour_wind_speed_m_s: 1.9, hour_solar_radiation_mj_m2: 0 };
+  const noon = { hour_air_temperature_c: 38, hour_relative_humidity_pct: 52, hour_wind_speed_m_s: 3.3, hour_solar_radiation_mj_m2: 2.45 };
+  const key = { districtId, sourceId, month: '2015-10-01', siteCount: 2, dayCount: 31 };
+  const hourly = Object.keys(night).map((variable) => {
+    const values = new Float32Array(2 * 31 * 24).fill(Number.NaN);
+    for (let hour = 0; hour < 24; hour++) values[31 * 24 + hour] = (hour >= 9 && hour < 17 ? noon : night)[variable as keyof typeof night];
+    return { ...key, variable, steps: 24, values: new Uint8Array(values.buffer), quality: new Uint8Array(values.length).fill(1) };
+  });
+  const daily = Object.entries({ air_temperature_max_c: 38, air_temperature_min_c: 28, reference_et_given_mm: 6.5 }).map(
+    ([variable, value]) => {
+      const values = new Float32Array(2 * 31).fill(Number.NaN);
+      values[31] = value;
+      const quality = new Uint8Array(2 * 31);
+      quality[31] = variable === 'air_temperature_max_c' ? 2 : 1;
+      return { ...key, variable, values: new Uint8Array(values.buffer), quality };
+    },
+  );
+  return [...hourly, ...daily];
+}
+
 beforeAll(async () => {
   fresh = await testDatabase();
   made = await makeFixture(fresh.db);
@@ -55,6 +82,18 @@ beforeAll(async () => {
     await tx.insert(weatherSource).values({ districtId, sourceId: 2, name: 'long record' });
     await tx.insert(site).values({ ...place, sourceId: 2, ordinal: 0, code: 'LONG', name: 'Three years' });
     await tx.insert(weatherBlock).values(wetMonths(districtId, 2));
+    await tx.insert(weatherSource).values({ districtId, sourceId: 3, name: 'hours' });
+    const senegal = { longitude: -16.25, latitude: 16 + 13 / 60, elevation: 8, windHeight: 2, zone: 'UTC-01:00' };
+    await tx.insert(site).values([
+      { ...senegal, districtId, sourceId: 3, ordinal: 0, code: 'FIRST', name: 'Without hours' },
+      { ...senegal, districtId, sourceId: 3, ordinal: 1, code: 'NDI', name: 'N’Diaye' },
+    ]);
+    await tx.insert(weatherBlock).values(senegalBlocks(districtId, 3));
+    await tx.insert(weatherSource).values({ districtId, sourceId: 4, name: 'grid', kind: 'grid' });
+    const cells = Array.from({ length: 5 }, (_, ordinal) => ({ ordinal, code: `r0c${ordinal}`, name: `cell ${ordinal}` }));
+    await tx.insert(site).values(cells.map((cell) => ({ ...place, sourceId: 4, ...cell })));
+    const cell = { districtId, sourceId: 4, variable: 'precipitation_mm', month: '2021-02-01', siteCount: 5, dayCount: 28 };
+    await tx.insert(weatherBlock).values({ ...cell, values: new Uint8Array(5 * 28 * 4), quality: new Uint8Array(5 * 28) });
   });
 });
 afterAll(() => fresh.close());
@@ -115,6 +154,92 @@ describe('weather sites', () => {
       last_day: null,
       truncated: false,
     });
+  });
+});
+
+describe('hours', () => {
+  const ask = (path: string, as = token) => siteHours(request(`/api/v1/weather/sites/${path}`, { token: as }));
+
+  it('are solved one by one: FAO-56 Example 19 gives 0.63 mm/h by day and 0.0 by night', async () => {
+    const answer = await (await ask('NDI/hours?date=2015-10-01')).json();
+    expect(answer).toMatchObject({ site: 'NDI', source: 'hours', zone: 'UTC-01:00', utc_offset_h: -1, estimated: [] });
+    expect(answer.items).toHaveLength(24);
+    const [night, afternoon] = [answer.items[2], answer.items[14]];
+    // printed: Ra 3.543 MJ m⁻² h⁻¹, Rn 1.749, G 0.175; night Rn −0.100, G −0.050
+    expect(afternoon.extraterrestrial_radiation_mj_m2_h).toBeCloseTo(3.543, 2);
+    expect((afternoon.net_radiation_w_m2 * 3600) / 1e6).toBeCloseTo(1.749, 2);
+    expect((afternoon.soil_heat_w_m2 * 3600) / 1e6).toBeCloseTo(0.175, 2);
+    expect(Math.abs(afternoon.reference_et_fao56_short_mm - 0.63)).toBeLessThan(0.005);
+    expect(Math.abs(night.reference_et_fao56_short_mm)).toBeLessThan(0.05);
+    const { net_radiation_w_m2, soil_heat_w_m2, latent_heat_w_m2, sensible_heat_w_m2 } = afternoon;
+    expect(soil_heat_w_m2 + latent_heat_w_m2 + sensible_heat_w_m2).toBeCloseTo(net_radiation_w_m2, 1);
+  });
+
+  it('sum up to the day, beside the given ET; quality that is not as measured is told', async () => {
+    const { items } = await (await siteDays(request('/api/v1/weather/sites/NDI/daily', { token }))).json();
+    expect(items).toHaveLength(1);
+    const hours = (await (await ask('NDI/hours?date=2015-10-01')).json()).items;
+    const sum = hours.reduce(
+      (total: number, hour: { reference_et_asce2005_tall_mm: number }) => total + hour.reference_et_asce2005_tall_mm,
+      0,
+    );
+    expect(items[0].reference_et_hourly_asce2005_tall_mm).toBeCloseTo(sum, 2);
+    expect(items[0]).toMatchObject({
+      reference_et_given_mm: 6.5,
+      soil_heat_flux_mj_m2_d: 0,
+      quality: { air_temperature_max_c: 'corrected' },
+    });
+    const [uccle] = (await (await siteDays(request('/api/v1/weather/sites/UCC/daily', { token }))).json()).items;
+    expect(uccle).toMatchObject({ reference_et_hourly_fao56_short_mm: null, reference_et_given_mm: null, quality: {} });
+  });
+
+  it('are none where there are none, and nobody else’s', async () => {
+    expect((await (await ask('NDI/hours?date=2015-10-02')).json()).items).toEqual([]);
+    expect((await (await ask('UCC/hours?date=2015-07-06')).json()).items).toEqual([]);
+    expect((await ask('NDI/hours?date=2015-02-30')).status).toBe(400);
+    expect((await ask('NDI/hours')).status).toBe(400);
+    expect((await ask('NDI/hours?date=2015-10-01', made.tokens.other)).status).toBe(404);
+    const csv = (await (await ask('NDI/hours.csv?date=2015-10-01')).text()).trimEnd().split('\r\n');
+    expect(csv).toHaveLength(25);
+  });
+});
+
+describe('sources', () => {
+  it('are summed up without their values', async () => {
+    const { items } = await (await sources(request('/api/v1/weather/sources', { token }))).json();
+    expect(items.map((item: { name: string }) => item.name)).toEqual(['stations', 'long record', 'hours', 'grid']);
+    expect(items[1]).toEqual({
+      name: 'long record',
+      kind: 'stations',
+      sites: 1,
+      first_month: '2018-01-01',
+      last_month: '2020-12-01',
+      variables: ['precipitation_mm'],
+    });
+    expect(items[2].variables).toContain('hour_air_temperature_c');
+    expect(items[3]).toMatchObject({ kind: 'grid', sites: 5, first_month: '2021-02-01' });
+    expect((await (await sources(request('/api/v1/weather/sources', { token: made.tokens.other }))).json()).items).toEqual([]);
+  });
+
+  it('give their sites in pages; cells of a grid only when asked for', async () => {
+    const list = async (query: string) => (await sites(request(`/api/v1/weather/sites${query}`, { token }))).json();
+    const all = await list('');
+    expect(all.items.map((item: { code: string }) => item.code)).toEqual(['UCC', 'NEW', 'LONG', 'FIRST', 'NDI']);
+    const first = await list('?source=grid&limit=3');
+    expect(first).toMatchObject({ total: 5 });
+    expect(first.items[0]).toMatchObject({
+      code: 'r0c0',
+      first_day: '2021-02-01',
+      last_day: '2021-02-28',
+      day_count: 28,
+      coverage_days: {},
+    });
+    const second = await list(`?source=grid&limit=3&cursor=${first.next_cursor}`);
+    expect(second.items.map((item: { code: string }) => item.code)).toEqual(['r0c3', 'r0c4']);
+    expect(second.next_cursor).toBeNull();
+    const stations = await list('?limit=2');
+    expect((await list(`?limit=9&cursor=${stations.next_cursor}`)).items).toHaveLength(3);
+    expect((await sites(request('/api/v1/weather/sites?source=none', { token }))).status).toBe(404);
   });
 });
 

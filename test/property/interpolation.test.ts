@@ -3,9 +3,10 @@
  */
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { lapseCorrection } from '../../lib/season/parcel-weather.ts';
+import { mulberry32 } from '../../lib/base/random.ts';
+import { lapseCorrection } from '../../lib/season/mix.ts';
 import type { ParcelInput } from '../../lib/season/types.ts';
-import { inverseDistanceWeights, nearestWeights, placeSites } from '../../lib/weather/interpolation.ts';
+import { inverseDistanceWeights, nearestWeights, nearSites, placeSites } from '../../lib/weather/interpolation.ts';
 import type { Site, SiteWeight } from '../../lib/weather/variable.ts';
 import { between } from '../support/between.ts';
 
@@ -145,6 +146,42 @@ describe('nearest site', () => {
       }),
       SEEDED,
     );
+  });
+});
+
+describe('the index over many sites', () => {
+  const many = (seed: number) => {
+    const random = mulberry32(seed);
+    return Array.from({ length: 400 }, (_, i) => siteAt(`M${i}`, -120 + 2 * random(), 35 + 2 * random()));
+  };
+  test('finds the same nearest sites as looking at every one', () => {
+    fc.assert(
+      fc.property(
+        fc.integer({ min: 1, max: 8 }),
+        between(-120.5, -117.5),
+        between(34.5, 37.5),
+        fc.nat(50),
+        (count, longitude, latitude, seed) => {
+          const sites = many(seed);
+          const byDistance = sites
+            .map((site) => [site.code, haversine([longitude, latitude], [site.longitude, site.latitude])] as const)
+            .sort((a, b) => a[1] - b[1])
+            .slice(0, count);
+          const found = nearSites([longitude, latitude], placeSites(sites), count);
+          expect(found.map(({ site }) => sites[site].code)).toEqual(byDistance.map(([code]) => code));
+          found.forEach(({ distance }, i) => {
+            expect(Math.abs(distance - byDistance[i][1])).toBeLessThan(1e-3);
+          });
+        },
+      ),
+      { ...SEEDED, numRuns: 100 },
+    );
+  });
+  test('across the 180th meridian and near a pole every site is looked at', () => {
+    const around = Array.from({ length: 360 }, (_, i) => siteAt(`R${String(i).padStart(3, '0')}`, i - 180, 60));
+    expect(nearSites([179.9, 60], placeSites(around), 2).map(({ site }) => around[site].longitude)).toEqual([-180, 179]);
+    const north = around.map((site) => ({ ...site, latitude: 88 }));
+    expect(nearSites([10.2, 88.5], placeSites(north), 1).map(({ site }) => north[site].longitude)).toEqual([10]);
   });
 });
 

@@ -23,6 +23,9 @@ export const TOUCHED_TABLES = [
   'crop',
   'crop_calendar',
   'application_method',
+  'service_area',
+  'soil_area',
+  'parcel_history',
 ] as const;
 
 /** Makes a district with one season, one crop with its calendar, a soil and a method. */

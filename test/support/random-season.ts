@@ -38,7 +38,7 @@ export function makeWeather(random: Random, siteCount: number, dayCount: number)
     solarRadiation: row(),
     windSpeed2m: row(),
     precipitation: row(),
-    flags: new Uint16Array(size),
+    flags: new Uint32Array(size),
   };
   for (let i = 0; i < size; i++) {
     const season = Math.sin((2 * Math.PI * ((i % dayCount) - 100)) / 366);
@@ -48,7 +48,7 @@ export function makeWeather(random: Random, siteCount: number, dayCount: number)
     weather.solarRadiation[i] = Math.max(1, 17 + 9 * season + 4 * normalDeviate(random));
     weather.windSpeed2m[i] = between(random, 0.2, 7);
     weather.precipitation[i] = random() < 0.15 ? between(random, 0, 1) ** 3 * 90 : 0;
-    weather.flags[i] = random() < 0.1 ? 1 << Math.floor(random() * 12) : 0;
+    weather.flags[i] = random() < 0.1 ? 1 << Math.floor(random() * 24) : 0;
   }
   return weather;
 }

@@ -5,7 +5,7 @@
 import { describe, expect, test } from 'vitest';
 import type { WorkingStep } from '../../lib/base/working.ts';
 import { completeWeather, traceCompletion } from '../../lib/energy/complete-weather.ts';
-import { fillTemperatureGaps } from '../../lib/weather/gaps.ts';
+import { fillGaps } from '../../lib/weather/gaps-fill.ts';
 import { FALLBACK, fallbackNames, type Site, type SiteObservations, type WeatherVariable } from '../../lib/weather/variable.ts';
 
 const NONE = Number.NaN;
@@ -172,7 +172,7 @@ describe('several sites and days', () => {
     },
   };
   test('keeps site-major order, and filled temperatures bring their flag', () => {
-    const completed = completeWeather(observations, { ...OPTIONS, temperatures: fillTemperatureGaps(observations) });
+    const completed = completeWeather(fillGaps(observations), OPTIONS);
     expect([...completed.airTemperatureMax]).toEqual([21, 22, 23, 26, 27, 28]);
     expect([...completed.precipitation]).toEqual([1, 2, 3, 4, 5, 6]);
     expect([...completed.flags].map((bits) => (bits & FALLBACK.temperatureFilledInTime) !== 0)).toEqual([
@@ -186,12 +186,12 @@ describe('several sites and days', () => {
     expect(completed.solarRadiation[0]).not.toBe(completed.solarRadiation[3]);
   });
   test('the trace of each site-day ends on the same bits as the batch', () => {
-    const options = { ...OPTIONS, temperatures: fillTemperatureGaps(observations) };
-    const completed = completeWeather(observations, options);
+    const filled = fillGaps(observations);
+    const completed = completeWeather(filled, OPTIONS);
     for (let site = 0; site < 2; site++) {
       for (let day = 0; day < 3; day++) {
         const steps: WorkingStep[] = [];
-        const one = traceCompletion(observations, site, day, options, { step: (step) => steps.push(step) });
+        const one = traceCompletion(filled, site, day, OPTIONS, { step: (step) => steps.push(step) });
         const at = site * 3 + day;
         const told = (symbol: string) => steps.find((step) => step.symbol === symbol)?.result;
         expect(steps.map(({ symbol }) => symbol)).toEqual(['Tmax', 'Tmin', 'ea', 'Rs', 'u2', 'P']);
@@ -205,13 +205,7 @@ describe('several sites and days', () => {
   });
   test('the trace says how a filled temperature and an estimate were got', () => {
     const steps: WorkingStep[] = [];
-    traceCompletion(
-      observations,
-      0,
-      1,
-      { ...OPTIONS, temperatures: fillTemperatureGaps(observations) },
-      { step: (step) => steps.push(step) },
-    );
+    traceCompletion(fillGaps(observations), 0, 1, OPTIONS, { step: (step) => steps.push(step) });
     const sources = Object.fromEntries(steps.map(({ symbol, source }) => [symbol, source]));
     expect(sources.Tmax).toContain('straight line');
     expect(sources.ea).toBe('FAO-56 Eq. 48');

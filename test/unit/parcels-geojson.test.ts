@@ -262,10 +262,17 @@ describe('files that are refused', () => {
     expect((await parcels(textFile('{"features":[]}', 'x.geojson'))).findings[0].message).toContain('The file has no type member');
   });
 
-  test('another coordinate system is refused by its name; CRS84 is not', async () => {
+  test('another coordinate system is brought to WGS 84, one that is not known is refused by its name; CRS84 stays', async () => {
     const crs = (name: string) => ({ crs: { type: 'name', properties: { name } } });
-    const refused = await parcels(featureFile([polygon({}, square(0, 0))], crs('urn:ogc:def:crs:EPSG::32610')));
-    expect(refused.findings[0]).toMatchObject({ code: 'unsupported-crs', value: 'urn:ogc:def:crs:EPSG::32610' });
+    const refused = await parcels(featureFile([polygon({}, square(0, 0))], crs('urn:ogc:def:crs:EPSG::999999')));
+    expect(refused.findings[0]).toMatchObject({
+      code: 'unsupported-crs',
+      message: expect.stringContaining('urn:ogc:def:crs:EPSG::999999'),
+    });
+    // UTM zone 10 north has its central meridian at 123° W, where the easting is 500 000 m
+    const moved = await parcels(featureFile([polygon({}, square(500_000, 4_180_000, 100))], crs('urn:ogc:def:crs:EPSG::32610')));
+    expect(moved.parcels[0].west).toBeCloseTo(-123, 9);
+    expect(moved.understood.crs).toBe('EPSG:32610 WGS 84 / UTM zone 10N');
     for (const name of ['urn:ogc:def:crs:OGC:1.3:CRS84', 'EPSG:4326', 'urn:ogc:def:crs:EPSG::4326']) {
       expect((await parcels(featureFile([polygon({}, square(0, 0))], crs(name)))).parcels).toHaveLength(1);
     }

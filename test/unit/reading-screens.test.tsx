@@ -105,6 +105,7 @@ describe('the list of parcels', () => {
       effective_precipitation: zero,
       net_requirement: zero,
       gross_requirement: [1, 2, Number.NaN, 4],
+      estimated_share: [0, 0.5, 1, Number.NaN],
     },
     own: null,
     sort: 'parcel',

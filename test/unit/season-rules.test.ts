@@ -91,7 +91,7 @@ function season(parcels: ParcelInput[], change: Partial<SeasonInput> = {}): Seas
       solarRadiation: row(26),
       windSpeed2m: row(2),
       precipitation: row(0),
-      flags: new Uint16Array(DAYS),
+      flags: new Uint32Array(DAYS),
     },
     parcels,
     ...change,

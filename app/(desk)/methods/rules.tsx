@@ -8,6 +8,7 @@ import { FALLBACK, FALLBACK_TEXT, type Fallback } from '../../../lib/weather/var
 import { DataTable } from '../../_components/data-table.tsx';
 import { Cautions } from '../../_components/empty-state.tsx';
 import { percent } from '../../_components/figures.ts';
+import { Go } from '../../_components/go.tsx';
 import { Section } from '../../_components/page-head.tsx';
 import { SETTINGS, settingText } from '../../_components/run-words.ts';
 
@@ -49,6 +50,12 @@ function Interpolation({ run }: { run: RunAnswer | null }) {
       <p className="source">
         Shepard (1968), Proceedings of the 23rd ACM National Conference, 517–524 (recalled, not re-read); Γ of the international standard
         atmosphere, ISO 2533.
+      </p>
+      <p className="formula">[γᵢⱼ 1; 1ᵀ 0] [wᵢ; μ] = [γᵢ; 1], σ² = Σ wᵢ γᵢ + μ over at most eight sites; γ(h) fitted with weights N/h²</p>
+      <p className="source">
+        Ordinary kriging: Isaaks &amp; Srivastava (1989), An Introduction to Applied Geostatistics, chapter 12 (recalled). The semivariogram
+        is pooled over the days; <Go href="/weather/desk/interpolation">how far off each way is</Go> is told by leaving one station out at a
+        time.
       </p>
       {run ? (
         <DataTable

@@ -1,4 +1,5 @@
 import type { Caller } from '../../../lib/access/caller.ts';
+import { NotFound } from '../../../lib/base/errors.ts';
 import { answerMapDescription, mapValues } from '../../../lib/http/answers/map.ts';
 import type { RunAnswer } from '../../../lib/http/contract/run.ts';
 import {
@@ -14,6 +15,12 @@ import { one, oneOf, type Query } from '../../_components/query.ts';
 
 export const PAGE_SIZE = 100;
 
+/** A run of an earlier version did not keep every variable: its column is blank. */
+function nothingKept(error: unknown): Uint8Array {
+  if (error instanceof NotFound) return new Uint8Array();
+  throw error;
+}
+
 /** The page of the list that the address asks for. */
 export async function loadParcelPage(ask: {
   caller: Caller;
@@ -23,7 +30,7 @@ export async function loadParcelPage(ask: {
 }): Promise<ParcelListResult> {
   const { caller, run, choice, query } = ask;
   const valuesOf = async (variable: ListedVariable) =>
-    floatsOf(await mapValues(caller, run.id, { variable, period: choice.kind, index: choice.index }));
+    floatsOf(await mapValues(caller, run.id, { variable, period: choice.kind, index: choice.index }).catch(nothingKept));
   const [map, ...arrays] = await Promise.all([answerMapDescription(caller, run.id), ...LISTED_VARIABLES.map(valuesOf)]);
   return parcelPage({
     parcels: map.parcels,

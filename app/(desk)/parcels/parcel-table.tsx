@@ -104,6 +104,14 @@ function columnsOf(list: ParcelListResult, units: UnitSystem, detail: Readonly<R
       cell: (row) => percent(row.stress, 1),
       total: percent(unmetShare(list.total.depths.crop_et, list.total.depths.adjusted_crop_et), 1),
     },
+    {
+      key: 'estimated_share',
+      head: 'Estimated',
+      unit: 'days of weather',
+      numeric: true,
+      cell: (row) => percent(row.values.estimated_share),
+      total: percent(list.total.depths.estimated_share),
+    },
   ];
 }
 

@@ -57,6 +57,7 @@ export function RunState({ run }: { run: RunAnswer }) {
   return (
     <>
       <span className={`tag ${tone}`}>{STATES[run.state]}</span> {run.standing ? <strong>in use</strong> : null}
+      {run.stale_since ? <span className="tag caution">older than the data</span> : null}
     </>
   );
 }

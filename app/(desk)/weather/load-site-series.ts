@@ -30,9 +30,10 @@ export async function loadSiteSeries(
 ): Promise<Map<string, readonly SiteDay[]>> {
   const series = new Map<string, readonly SiteDay[]>();
   if (sites.length > SITES_WITH_SERIES) return series;
+  const shared = new Map();
   for (const site of sites) {
     const range = usualRange(site, run);
-    if (range) series.set(site.code, await answerSiteDays(caller, site.code, range));
+    if (range) series.set(site.code, await answerSiteDays(caller, site.code, { ...range, source: site.source, shared }));
   }
   return series;
 }

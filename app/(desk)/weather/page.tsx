@@ -2,6 +2,7 @@ import type { Metadata } from 'next';
 import { answerSites } from '../../../lib/http/answers/weather.ts';
 import { callerInView, runInView } from '../../_components/in-view.ts';
 import { PageHead } from '../../_components/page-head.tsx';
+import { WeatherNav } from '../../_components/weather-nav.tsx';
 import { loadSiteSeries } from './load-site-series.ts';
 import { SiteTable } from './site-table.tsx';
 
@@ -17,6 +18,7 @@ export default async function WeatherPage() {
         title="Weather"
         lead="Every site the district’s weather comes from, how complete its record is, and the reference ET that follows from it."
       />
+      <WeatherNav here="/weather" />
       <SiteTable sites={sites} series={series} season={run?.season ?? null} units={caller.units} />
     </div>
   );

@@ -29,7 +29,7 @@ export interface DemandMapProps {
 }
 
 const START_CLASSES: ClassChoice = { method: 'quantile', count: 6, own: [], hold: true };
-const START_LAYERS: Layers = { parcels: true, canals: true, stations: true, boundary: true };
+const START_LAYERS: Layers = { parcels: true, canals: true, areas: false, stations: true, boundary: true };
 
 /** Everything the map shows for one variable and one range of weeks. */
 function useChoropleth(given: {
@@ -128,7 +128,13 @@ export function DemandMap({ description, units }: DemandMapProps) {
           />
           <ClassControls choice={choice} breaks={breaks ?? []} variable={variable} units={units} onChoice={setChoice} />
           <CanalLegend most={reaches?.most ?? 0} units={units} theme={theme} />
-          <LayerSwitches layers={layers} patterns={patterns} onLayers={setLayers} onPatterns={setPatterns} />
+          <LayerSwitches
+            layers={layers}
+            hasAreas={description.tiles.areas !== null}
+            patterns={patterns}
+            onLayers={setLayers}
+            onPatterns={setPatterns}
+          />
           <Ways stage={stage} onPaper={setPaper} span={span} whole={range.from === 0 && range.to === weeks.length - 1} />
         </div>
         <MapStage

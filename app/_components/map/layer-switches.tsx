@@ -12,12 +12,15 @@ export type Layers = Readonly<Record<LayerName, boolean>>;
 const NAMES: readonly { id: LayerName; name: string }[] = [
   { id: 'parcels', name: 'Parcels' },
   { id: 'canals', name: 'Canals' },
+  { id: 'areas', name: 'Service areas' },
   { id: 'stations', name: 'Weather stations' },
   { id: 'boundary', name: 'District boundary' },
 ];
 
 export function LayerSwitches(props: {
   layers: Layers;
+  /** false in a district without service areas, which are then not offered */
+  hasAreas: boolean;
   patterns: boolean;
   onLayers: (layers: Layers) => void;
   onPatterns: (on: boolean) => void;
@@ -26,7 +29,7 @@ export function LayerSwitches(props: {
     <fieldset className={`${styles.block} no-print`}>
       <legend className={styles.blockName}>Layers</legend>
       <div className={styles.switches}>
-        {NAMES.map((layer) => (
+        {NAMES.filter(({ id }) => id !== 'areas' || props.hasAreas).map((layer) => (
           <label key={layer.id} className="check small">
             <input
               type="checkbox"

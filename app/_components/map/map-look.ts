@@ -2,15 +2,15 @@
 
 import { schemeBlues, schemeOrRd, schemePurples, schemeYlOrBr } from 'd3-scale-chromatic';
 import type { Feature, FeatureCollection } from 'geojson';
-import type { ExpressionSpecification, LayerSpecification, StyleSpecification } from 'maplibre-gl';
+import type { ExpressionSpecification, LayerSpecification, SourceSpecification, StyleSpecification } from 'maplibre-gl';
 import { classColours, MISSING_COLOUR, type Theme } from '../../../lib/report/colour-scale.ts';
 import { mapStyle } from '../../../lib/report/map-style.ts';
 import type { ScaleName } from './map-variables.ts';
 
-/** What lies under the map: land of the district, dashes over canals, and fills of parcels whose value is nought. */
-const GROUND: Record<Theme, { readonly land: string; readonly dash: string; readonly nought: string }> = {
-  light: { land: '#fbfaf6', dash: '#ffffff', nought: '#efede4' },
-  dark: { land: '#1b2023', dash: '#15181c', nought: '#262c30' },
+/** What the map has beside its classes: land of the district, dashes over canals, fills of parcels whose value is nought, service areas. */
+const GROUND: Record<Theme, { readonly land: string; readonly dash: string; readonly nought: string; readonly area: string }> = {
+  light: { land: '#fbfaf6', dash: '#ffffff', nought: '#efede4', area: '#4a3f6b' },
+  dark: { land: '#1b2023', dash: '#15181c', nought: '#262c30', area: '#c9bfe6' },
 };
 
 export const NO_VALUE = 255;
@@ -68,6 +68,7 @@ function fillColour({ colours, faint, theme }: FillLook): ExpressionSpecificatio
 export const LAYER_GROUPS = {
   parcels: ['parcels', 'parcel-edges'],
   canals: ['canal-casing', 'canals', 'canal-over'],
+  areas: ['area-casing', 'areas'],
   boundary: ['land', 'district-outline'],
 } as const;
 
@@ -75,6 +76,8 @@ export interface StyleSources {
   /** absolute URL templates with {z}/{x}/{y} */
   readonly parcels: string;
   readonly canals: string;
+  /** null where the district has no service areas */
+  readonly areas: string | null;
   readonly bounds: [number, number, number, number];
   readonly boundary: unknown;
 }
@@ -99,11 +102,36 @@ export function demandStyle(sources: StyleSources, look: FillLook): StyleSpecifi
     colours: look.colours,
     theme: look.theme,
   });
+  const areas: Record<string, SourceSpecification> =
+    sources.areas === null ? {} : { areas: { ...style.sources.canals, tiles: [sources.areas] } as SourceSpecification };
   return {
     ...style,
-    sources: { ...style.sources, [OUTLINES]: style.sources.parcels },
-    layers: style.layers.flatMap((layer) => forScreen(layer, look)),
+    sources: { ...style.sources, [OUTLINES]: style.sources.parcels, ...areas },
+    layers: style.layers.flatMap((layer) => [
+      ...forScreen(layer, look),
+      ...(layer.id === 'parcel-edges' && sources.areas !== null ? areaLayers(look.theme) : []),
+    ]),
   };
+}
+
+/** Service areas as outlines, above the parcels and below the canals; the long dash tells them from the boundary without colour. */
+function areaLayers(theme: Theme): LayerSpecification[] {
+  const source = { source: 'areas', 'source-layer': 'areas', layout: { 'line-join': 'round' } } as const;
+  const width = (more: number): ExpressionSpecification => ['interpolate', ['linear'], ['zoom'], 9, 0.8 + more, 14, 2 + more];
+  return [
+    {
+      id: 'area-casing',
+      type: 'line',
+      ...source,
+      paint: { 'line-color': GROUND[theme].dash, 'line-width': width(1.6), 'line-opacity': 0.7 },
+    },
+    {
+      id: 'areas',
+      type: 'line',
+      ...source,
+      paint: { 'line-color': GROUND[theme].area, 'line-width': width(0), 'line-dasharray': [8, 2, 1.5, 2] },
+    },
+  ];
 }
 
 /** The district keeps its boundary as a geometry or as a feature. */

@@ -95,6 +95,15 @@ const VARIABLES: readonly MapVariable[] = [
     scale: 'stress',
     zeroApart: false,
   },
+  {
+    id: 'estimated_share',
+    source: 'estimated_share',
+    name: 'Estimated weather, share of days',
+    quantity: 'fraction',
+    over: 'mean',
+    scale: 'soil',
+    zeroApart: true,
+  },
 ];
 
 /** The variables whose stored array this run offers. */

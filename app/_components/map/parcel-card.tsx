@@ -4,6 +4,7 @@ import { useEffect, useRef } from 'react';
 import type { UnitSystem } from '../../../lib/base/units.ts';
 import type { ParcelDay, ParcelPeriod, ParcelSeason } from '../../../lib/http/contract/run.ts';
 import { dayMonth } from '../date-words.ts';
+import { EstimatedShare, estimatedShare } from '../fallback-words.tsx';
 import { figure, figureWithUnit, type Maybe, percent, type Quantity, sumOf, unitOf } from '../figures.ts';
 import { SoilGauge } from '../soil-gauge.tsx';
 import styles from './demand-map.module.css';
@@ -156,6 +157,7 @@ function Chain({ season, rows, run, code, span, words, units }: CardProps & { se
           note={`${figureWithUnit(gross, 'depth', units)} on ${figureWithUnit(season.area_ha, 'area', units)}`}
         />
       </ol>
+      <EstimatedShare share={estimatedShare(days)} of="the days" />
     </section>
   );
 }

@@ -73,7 +73,13 @@ export class ParcelMap {
 
   private sources() {
     const { tiles, bounds, boundary } = this.description;
-    return { parcels: location.origin + tiles.parcels, canals: location.origin + tiles.canals, bounds, boundary };
+    return {
+      parcels: location.origin + tiles.parcels,
+      canals: location.origin + tiles.canals,
+      areas: tiles.areas && location.origin + tiles.areas,
+      bounds,
+      boundary,
+    };
   }
 
   private listen(): void {
@@ -176,7 +182,7 @@ export class ParcelMap {
   setLayers(shown: Readonly<Record<LayerName, boolean>>): void {
     for (const [group, layers] of Object.entries(LAYER_GROUPS)) {
       const visibility = shown[group as LayerName] ? 'visible' : 'none';
-      for (const layer of layers) this.map.setLayoutProperty(layer, 'visibility', visibility);
+      for (const layer of layers) if (this.map.getLayer(layer)) this.map.setLayoutProperty(layer, 'visibility', visibility);
     }
     for (const marker of this.stations) marker.getElement().hidden = !shown.stations;
   }

@@ -130,7 +130,13 @@ function reachRow(row: ReachPeriod): ReachRow {
 
 function methodParagraphs({ settings, balance }: RunAnswer): string[] {
   const equation = settings.method === 'fao56' ? 'FAO-56 Eq. 6' : 'ASCE-EWRI 2005 Eq. 1';
-  const weather = settings.interpolation === 'nearest' ? 'the nearest site' : `up to ${settings.maximum_sites} sites by inverse distance`;
+  const weather = {
+    nearest: 'the nearest site',
+    bilinear: 'the four grid cells around it',
+    kriging: 'up to eight sites by ordinary kriging',
+    automatic: 'the sites around it, each variable by the method with the lowest leave-one-out error',
+    'inverse-distance': `up to ${settings.maximum_sites} sites by inverse distance`,
+  }[settings.interpolation ?? 'inverse-distance'];
   const residual =
     balance.max_residual_mm === undefined ? '' : ` The largest daily balance residual is ${balance.max_residual_mm.toExponential(1)} mm.`;
   return [

@@ -54,6 +54,7 @@ function parcelMembers(row: ParcelRow): ParcelAnswer {
     turnout: row.turnoutCode,
     reach: row.reachCode,
     soil: row.soilCode,
+    soil_shares: row.soilShares?.map(({ soil, share }) => ({ soil, share })) ?? null,
     method: row.methodCode,
     area_ha: roundOrNull(row.area / 1e4, 6) ?? 0,
     elevation_m: row.elevation,

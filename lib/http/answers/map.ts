@@ -2,8 +2,10 @@
 
 import type { Tx } from '../../../db/connect.ts';
 import { findBounds, findWholeDistrict } from '../../../db/queries/district-read.ts';
+import { listAreaCodes } from '../../../db/queries/land-maps.ts';
 import { cropNames } from '../../../db/queries/land-read.ts';
-import { findRunValues, listRunParcelHeads, listRunReaches } from '../../../db/queries/run-read.ts';
+import { hasHistorySince, mapOrdinalsAt } from '../../../db/queries/parcel-history.ts';
+import { findRunValues, listRunParcelHeads, listRunReaches, listRunVariables } from '../../../db/queries/run-read.ts';
 import { listReachShapes } from '../../../db/queries/tiles.ts';
 import { listSites } from '../../../db/queries/weather-observations.ts';
 import type { Caller } from '../../access/caller.ts';
@@ -21,16 +23,19 @@ export function answerMapDescription(caller: Caller, runId: string): Promise<Map
     const district = await findWholeDistrict(tx, districtId);
     if (!district) throw new NotFound('this district is gone');
     const spans = (period: 'week' | 'month') => periodsWanted(run, caller, { period }).map(({ start, end }) => ({ start, end }));
-    const tiles = (layer: string) => `/api/v1/tiles/${layer}/${district.geometryVersion}/{z}/{x}/{y}.mvt`;
+    const kept = new Set(await listRunVariables(tx, { districtId, runId }));
+    const version = await versionDrawn(tx, districtId, run.geometryVersion, district.geometryVersion);
+    const tiles = (layer: string, drawn = district.geometryVersion) => `/api/v1/tiles/${layer}/${drawn}/{z}/{x}/{y}.mvt`;
+    const hasAreas = (await listAreaCodes(tx, districtId, 'service_area')).length > 0;
     return {
       run: runId,
       season: run.seasonCode,
       geometry_version: district.geometryVersion,
-      tiles: { parcels: tiles('parcels'), canals: tiles('canals') },
+      tiles: { parcels: tiles('parcels', version), canals: tiles('canals'), areas: hasAreas ? tiles('areas') : null },
       bounds: (await findBounds(tx, districtId, caller.parcels)) ?? boundsOf(district.boundary),
-      variables: MAP_VARIABLES.map((variable) => ({ ...variable })),
+      variables: MAP_VARIABLES.filter(({ id }) => kept.has(id)).map((variable) => ({ ...variable })),
       periods: { week: spans('week'), month: spans('month') },
-      parcels: await mapParcels(tx, caller, runId),
+      parcels: await mapParcels(tx, caller, runId, version),
       reaches: await mapReaches(tx, districtId, runId),
       sites: (await listSites(tx, districtId)).map(({ code, name, longitude, latitude, elevation }) => ({
         code,
@@ -44,14 +49,20 @@ export function answerMapDescription(caller: Caller, runId: string): Promise<Map
   });
 }
 
+/** The version of the map at which parcels are drawn: the run's own while the history tells of parcels that have changed since, else the one in use. */
+async function versionDrawn(tx: Tx, districtId: string, ofRun: number, inUse: number): Promise<number> {
+  return ofRun < inUse && (await hasHistorySince(tx, districtId, ofRun)) ? ofRun : inUse;
+}
+
 /** Parallel lists in position order. What a grower may not see is blank: ordinal −1, no code, no area. */
-async function mapParcels(tx: Tx, caller: Caller, runId: string): Promise<MapDescription['parcels']> {
+async function mapParcels(tx: Tx, caller: Caller, runId: string, version: number): Promise<MapDescription['parcels']> {
   const rows = await listRunParcelHeads(tx, { districtId: caller.districtId, runId });
   const names = await cropNames(tx, caller.districtId);
+  const before = await mapOrdinalsAt(tx, caller.districtId, version);
   const own = caller.parcels && new Set(caller.parcels);
   const shown = rows.map((row) => (!own || own.has(row.code) ? row : null));
   return {
-    ordinal: shown.map((row) => row?.ordinal ?? -1),
+    ordinal: shown.map((row) => (row ? (before.get(row.code) ?? row.ordinal ?? -1) : -1)),
     code: shown.map((row) => row?.code ?? ''),
     area_m2: shown.map((row) => row?.area ?? 0),
     crops: shown.map((row) => row?.cropCodes.map((code) => names.get(code) ?? code).join(' + ') ?? ''),

@@ -13,8 +13,9 @@ import { database } from '../../access/database.ts';
 import type { Period } from '../../base/civil-date.ts';
 import { nullFromNaN, roundOrNull } from '../../base/missing.ts';
 import { depthToVolume } from '../../base/units.ts';
-import { storedArray, variableIndex } from '../../season/daily-store.ts';
+import { storedArray, storedFlags, variableIndex } from '../../season/daily-store.ts';
 import { DAILY_VARIABLES, type DailyVariable, MISSING_STORED } from '../../season/types.ts';
+import { estimatedShare } from '../../weather/estimated-share.ts';
 import { FALLBACK, fallbackNames } from '../../weather/variable.ts';
 import type { ParcelPeriod } from '../contract/run.ts';
 import { readCursor, writeCursor } from '../paging.ts';
@@ -118,6 +119,7 @@ function parcelPeriods(
       stress_coefficient: roundOrNull(reader.mean('stress_coefficient', period), 4),
       net_volume_m3: roundOrNull(depthToVolume(net, parcel.area), 3),
       gross_volume_m3: roundOrNull(depthToVolume(gross, parcel.area), 3),
+      estimated_share: roundOrNull(reader.estimatedShare(period), 4),
       fallbacks: reader.fallbacks(period),
     };
   });
@@ -126,14 +128,14 @@ function parcelPeriods(
 /** Sums, means and single days out of a parcel's stored season. Sums are of whole numbers and so exact. */
 export class DayReader {
   private readonly stored: Uint16Array;
-  private readonly flags: Uint16Array;
+  private readonly flags: Uint32Array;
 
   constructor(
     parcel: { daily: Uint8Array | null; flags: Uint8Array | null },
     private readonly dayCount: number,
   ) {
     this.stored = parcel.daily ? storedArray(parcel.daily) : new Uint16Array(DAILY_VARIABLES.length * dayCount).fill(MISSING_STORED);
-    this.flags = parcel.flags ? storedArray(parcel.flags) : new Uint16Array(dayCount);
+    this.flags = parcel.flags ? storedFlags(parcel.flags, dayCount) : new Uint32Array(dayCount);
   }
 
   at(variable: DailyVariable, day: number): number {
@@ -171,5 +173,10 @@ export class DayReader {
     let bits = 0;
     for (let day = from; day <= to; day++) bits |= this.flags[day];
     return fallbackNames(bits & ~FALLBACK.humidityFromDewPoint);
+  }
+
+  /** Share of the days on which a value of the weather was filled or estimated. */
+  estimatedShare(period: Pick<Period, 'from' | 'to'>): number {
+    return estimatedShare(this.flags, period);
   }
 }

@@ -19,6 +19,8 @@ export interface CanalSeason {
   readonly tree: ConveyanceTree;
   /** of each reach and period, reaches outer */
   periods(periods: readonly Period[]): CanalPeriod[];
+  /** sum over the days of a period of the area with estimated weather, of the parcels on a reach [m² d]; NaN for runs that did not keep it */
+  estimatedArea(reach: number, period: Period): number;
 }
 
 /** Null where the run has no canals, and for growers: flow in a small reach would tell a neighbour's use. */
@@ -31,15 +33,19 @@ export async function readCanalSeason(tx: Tx, caller: Caller, run: RunHead): Pro
   const capacity = rows.map((row) => nanFromNull(row.capacity));
   const periods = (wanted: readonly Period[]) =>
     reachPeriods({ tree, turnoutDemand, flows: { reachLoss, headInflow, dayCount }, capacity, periods: wanted });
-  return { rows, tree, periods };
+  const estimated = partOf(rows, 3, dayCount);
+  const estimatedArea = (reach: number, { from, to }: Period) =>
+    estimated.subarray(reach * dayCount + from, reach * dayCount + to + 1).reduce((sum, area) => sum + area, 0);
+  return { rows, tree, periods, estimatedArea };
 }
 
-/** One of the three stored parts of every reach, [reach × day]. */
+/** One of the stored parts of every reach, [reach × day]; NaN where a run did not keep it. */
 function partOf(rows: readonly ReachRow[], part: number, dayCount: number): Float64Array {
   const all = new Float64Array(rows.length * dayCount);
   rows.forEach((row, reach) => {
     const bytes = Uint8Array.from(row.daily);
-    all.set(new Float64Array(bytes.buffer, part * dayCount * 8, dayCount), reach * dayCount);
+    if (bytes.byteLength < (part + 1) * dayCount * 8) all.fill(Number.NaN, reach * dayCount, (reach + 1) * dayCount);
+    else all.set(new Float64Array(bytes.buffer, part * dayCount * 8, dayCount), reach * dayCount);
   });
   return all;
 }
@@ -64,6 +70,7 @@ export function answerReaches(caller: Caller, runId: string, wanted: SpanWanted)
           ...flowMembers(flow, lossBelow),
           parcel_count: count,
           area_ha: round(area / 1e4) ?? 0,
+          estimated_share: roundOrNull(estimatedBelow(canal, areas, reach, period), 4),
         });
       }
     }
@@ -89,6 +96,16 @@ function lossBelowOf(tree: ConveyanceTree, flows: readonly CanalPeriod[], period
   let loss = 0;
   for (const reach of reachesBelow(tree, at.reach)) loss += flows[reach * periodCount + at.period].loss;
   return loss;
+}
+
+/** Area-weighted over the parcels on the reach and below it; NaN where there are none. */
+function estimatedBelow(canal: CanalSeason, areas: ReadonlyMap<string | null, { area: number }>, reach: number, period: Period): number {
+  let [estimated, area] = [0, 0];
+  for (const below of reachesBelow(canal.tree, reach)) {
+    estimated += canal.estimatedArea(below, period);
+    area += areas.get(canal.rows[below].reachCode)?.area ?? 0;
+  }
+  return area > 0 ? estimated / (area * (period.to - period.from + 1)) : Number.NaN;
 }
 
 function flowMembers(flow: CanalPeriod, lossBelow: number) {

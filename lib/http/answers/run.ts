@@ -47,6 +47,8 @@ function runMembers(row: RunHead): RunAnswer {
     stage: row.stage,
     progress: row.progress,
     standing: row.standing,
+    stale_since: row.staleSince?.toISOString() ?? null,
+    stale_reason: row.staleReason,
     start_date: row.startDate,
     end_date: row.endDate,
     parcel_count: row.parcelCount,

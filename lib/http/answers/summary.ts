@@ -1,6 +1,7 @@
 /** Totals of a season by district, canal, crop and method, from the map arrays of the run. */
 
 import type { Tx } from '../../../db/connect.ts';
+import { listServiceAreas } from '../../../db/queries/land-maps.ts';
 import { cropNames, listMethods } from '../../../db/queries/land-read.ts';
 import { findRunValues, listRunParcelHeads, type RunHead } from '../../../db/queries/run-read.ts';
 import type { Caller } from '../../access/caller.ts';
@@ -10,6 +11,7 @@ import { nullFromNaN, roundOrNull } from '../../base/missing.ts';
 import { depthToVolume, volumeToDepth } from '../../base/units.ts';
 import { floatsOf } from '../../jobs/observations.ts';
 import type { SummaryAnswer, SummaryTotal } from '../contract/run.ts';
+import { areasOfParcels } from './areas.ts';
 import { periodsWanted, readFinishedRun } from './run.ts';
 import { type CanalSeason, readCanalSeason } from './run-reaches.ts';
 
@@ -21,6 +23,7 @@ const SUMMED = [
   'effective_precipitation',
   'net_requirement',
   'gross_requirement',
+  'estimated_share',
 ] as const;
 type Summed = (typeof SUMMED)[number];
 type Parcel = Awaited<ReturnType<typeof listRunParcelHeads>>[number];
@@ -59,9 +62,24 @@ export function answerSummary(caller: Caller, runId: string): Promise<SummaryAns
         (p) => p.methodCode,
         (code) => methods.get(code) ?? code,
       ),
+      areas: await areaTotals(tx, caller, parcels, season),
       weeks: await weekTotals(tx, { caller, run, parcels, canal, parcelCount: all.length }),
     };
   });
+}
+
+/** Totals by service area; a parcel counts to the area that its inner point lies in now. */
+async function areaTotals(tx: Tx, caller: Caller, parcels: readonly Parcel[], season: Depths): Promise<SummaryTotal[]> {
+  const areas = await listServiceAreas(tx, caller.districtId);
+  if (areas.length === 0) return [];
+  const homes = await areasOfParcels(tx, caller, areas);
+  const names = new Map(areas.map(({ code, name }) => [code, name]));
+  return totalsBy(
+    parcels.filter(({ code }) => homes.has(code)),
+    season,
+    ({ code }) => homes.get(code) ?? '',
+    (code) => names.get(code) ?? code,
+  );
 }
 
 async function readDepths(tx: Tx, key: { districtId: string; runId: string }, period: 'week' | 'season'): Promise<Depths> {
@@ -79,6 +97,13 @@ function volumeOf(parcels: readonly Parcel[], depths: Float32Array, offset = 0):
   let volume = 0;
   for (const parcel of parcels) volume += depthToVolume(depths[offset + parcel.position] ?? Number.NaN, parcel.area);
   return volume;
+}
+
+/** Mean over the parcels, by area. */
+function shareOf(parcels: readonly Parcel[], shares: Float32Array, offset = 0): number {
+  let sum = 0;
+  for (const parcel of parcels) sum += (shares[offset + parcel.position] ?? Number.NaN) * parcel.area;
+  return sum / areaOf(parcels);
 }
 
 function areaOf(parcels: readonly Parcel[]): number {
@@ -101,6 +126,7 @@ function totalOf(code: string, name: string, parcels: readonly Parcel[], depths:
     gross_requirement_mm: depth('gross_requirement'),
     net_volume_m3: roundOrNull(volumeOf(parcels, depths.net_requirement), 1),
     gross_volume_m3: roundOrNull(volumeOf(parcels, depths.gross_requirement), 1),
+    estimated_share: roundOrNull(shareOf(parcels, depths.estimated_share), 4),
   };
 }
 
@@ -160,6 +186,7 @@ async function weekTotals(tx: Tx, { caller, run, parcels, canal, parcelCount }: 
       gross_volume_m3: roundOrNull(volume('gross_requirement'), 1),
       headworks_inflow_m3: head ? roundOrNull(head.headInflow, 1) : null,
       headworks_mean_m3_s: head ? nullFromNaN(head.meanFlow) : null,
+      estimated_share: roundOrNull(shareOf(parcels, depths.estimated_share, index * parcelCount), 4),
     };
   });
 }

@@ -1,16 +1,18 @@
-/** Vector tiles of parcels and canals, encoded once for a version of the land. */
+/** Vector tiles of parcels, canals and service areas, encoded once for a version of the land. */
 import { fromGeojsonVt } from '@maplibre/vt-pbf';
 import type { Feature, Geometry } from 'geojson';
 import GeoJSONVT from 'geojson-vt';
 import type { Tx } from '../../../db/connect.ts';
 import { findWholeDistrict } from '../../../db/queries/district-read.ts';
+import { listServiceAreas } from '../../../db/queries/land-maps.ts';
+import { listParcelShapesAt } from '../../../db/queries/parcel-history.ts';
 import { type Box, findTile, listParcelShapes, listReachShapes, saveTile } from '../../../db/queries/tiles.ts';
 import type { Caller } from '../../access/caller.ts';
 import { database } from '../../access/database.ts';
 import { NotFound } from '../../base/errors.ts';
 
 interface TileWanted {
-  readonly layer: 'parcels' | 'canals';
+  readonly layer: 'parcels' | 'canals' | 'areas';
   readonly version: number;
   readonly z: number;
   readonly x: number;
@@ -26,7 +28,9 @@ const DRAWN_AS_BOX = 24;
 /**
  * The bytes of a tile; empty where there is nothing.
  *
- * @throws {NotFound} for a version that is not in use, or a tile outside the world.
+ * Parcels of an earlier version are drawn as they stood then; canals and service areas have no history and are drawn as they stand.
+ *
+ * @throws {NotFound} for a version that is not there yet, or a tile outside the world.
  */
 export function answerTile(caller: Caller, wanted: TileWanted): Promise<Uint8Array> {
   const side = 2 ** wanted.z;
@@ -37,10 +41,11 @@ export function answerTile(caller: Caller, wanted: TileWanted): Promise<Uint8Arr
     const kept = own ? null : await findTile(tx, { districtId, ...wanted });
     if (kept) return kept;
     const district = await findWholeDistrict(tx, districtId);
-    if (district?.geometryVersion !== wanted.version) {
+    if (!district || district.geometryVersion < wanted.version) {
       throw new NotFound(`version ${wanted.version} of the map is not in use; now it is ${district?.geometryVersion}`);
     }
-    const features = wanted.layer === 'parcels' ? await parcelFeatures(tx, districtId, wanted, own) : await canalFeatures(tx, districtId);
+    const now = district.geometryVersion === wanted.version;
+    const features = await featuresOf(tx, districtId, wanted, { own, now });
     const bytes = encodeTile(wanted, features);
     if (!own) await saveTile(tx, { districtId, ...wanted }, bytes);
     return bytes;
@@ -62,10 +67,25 @@ function encodeTile(wanted: Pick<TileWanted, 'layer' | 'z' | 'x' | 'y'>, feature
   return fromGeojsonVt({ [layer]: tile as unknown as Encodable }, { version: 2, extent: EXTENT });
 }
 
-async function parcelFeatures(tx: Tx, districtId: string, wanted: TileWanted, codes: readonly string[] | null): Promise<Feature[]> {
+interface View {
+  /** codes of the parcels that the caller may see; null for all */
+  readonly own: readonly string[] | null;
+  /** true for the version of the map in use */
+  readonly now: boolean;
+}
+
+function featuresOf(tx: Tx, districtId: string, wanted: TileWanted, view: View): Promise<Feature[]> {
+  if (wanted.layer === 'parcels') return parcelFeatures(tx, districtId, wanted, view);
+  return wanted.layer === 'canals' ? canalFeatures(tx, districtId) : areaFeatures(tx, districtId);
+}
+
+async function parcelFeatures(tx: Tx, districtId: string, wanted: TileWanted, { own, now }: View): Promise<Feature[]> {
   const box = tileBox(wanted);
   const smallest = ((box.east - box.west) / EXTENT) * DRAWN_AS_BOX;
-  const rows = await listParcelShapes(tx, districtId, { box: grown(box), smallest, codes });
+  const asked = { box: grown(box), smallest, codes: own };
+  const rows = now
+    ? await listParcelShapes(tx, districtId, asked)
+    : await listParcelShapesAt(tx, districtId, { ...asked, version: wanted.version });
   return rows.map((row) => ({
     type: 'Feature',
     properties: { o: row.ordinal, code: row.code },
@@ -79,6 +99,15 @@ async function canalFeatures(tx: Tx, districtId: string): Promise<Feature[]> {
     type: 'Feature',
     properties: { o: ordinal, code: row.code, kind: row.kind },
     geometry: row.geometry as Geometry,
+  }));
+}
+
+async function areaFeatures(tx: Tx, districtId: string): Promise<Feature[]> {
+  const rows = await listServiceAreas(tx, districtId);
+  return rows.map((row, ordinal) => ({
+    type: 'Feature',
+    properties: { o: ordinal, code: row.code, name: row.name },
+    geometry: row.geometry,
   }));
 }
 

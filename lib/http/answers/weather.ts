@@ -1,35 +1,142 @@
-/** Weather sites with what they cover, and the days of one site with reference ET and energy budget. */
+/** Weather sources and sites with what they cover, and the days of one site with reference ET and energy budget. */
 
-import type { Tx } from '../../../db/connect.ts';
-import { findWholeDistrict } from '../../../db/queries/district-read.ts';
+import { z } from 'zod';
 import { type BlockRow, findMonths, listBlocks, listSites, type SiteRow } from '../../../db/queries/weather-observations.ts';
+import { findSite, listBlockSpans, listSitePage, listSourcesWithSites } from '../../../db/queries/weather-sources.ts';
 import type { Caller } from '../../access/caller.ts';
 import { database } from '../../access/database.ts';
-import { addDays, dayNumber, dayOfYear, isIsoDate, isoDate } from '../../base/civil-date.ts';
+import { addDays, civilFromDayNumber, dayNumber, daysInMonth, isIsoDate, isoDate } from '../../base/civil-date.ts';
 import { Malformed, NotFound, TooLarge } from '../../base/errors.ts';
-import { roundOrNull } from '../../base/missing.ts';
-import { completeWeather } from '../../energy/complete-weather.ts';
-import { hargreavesReferenceEt } from '../../energy/hargreaves.ts';
-import { clearSkyRadiation } from '../../energy/radiation.ts';
-import { energyBudgetDay, type ReferenceDayInput, referenceEtDay } from '../../energy/reference-day.ts';
-import { sunDay } from '../../energy/sun.ts';
-import { assembleObservations, floatsOf } from '../../jobs/observations.ts';
-import { fillTemperatureGaps } from '../../weather/gaps.ts';
-import { type CompletedWeather, fallbackNames, type SiteObservations } from '../../weather/variable.ts';
+import { floatsOf, loadObservations } from '../../jobs/observations.ts';
 import type { SiteAnswer, SiteDay, SiteDaysAnswer } from '../contract/rest.ts';
+import type { WeatherSourceAnswer } from '../contract/weather.ts';
+import { readCursor, writeCursor } from '../paging.ts';
+import { hourlySums, siteDay, sumsOn } from './weather-day.ts';
+import { loadHours, openRecord, type SharedFills, type SiteRecord } from './weather-record.ts';
 
+/** Place of the last site of a page. */
+const CURSOR = z.tuple([z.number().int().min(-1)]);
 /** Most days of one answer. */
 const MOST_DAYS = 400;
 
+/** Stations with what they cover, from their values. Cells of grids are not among them. */
 export function answerSites(caller: Caller): Promise<SiteAnswer[]> {
   const { districtId } = caller;
   return database().inDistrict(districtId, async (tx) => {
-    const rows = await listSites(tx, districtId);
-    const months = await findMonths(tx, districtId);
-    const blocks = months ? await listBlocks(tx, districtId, { from: months.first, to: addDays(months.last, 27) }) : [];
+    const rows = (await listSites(tx, districtId)).filter(({ kind }) => kind === 'stations');
+    const sourceIds = [...new Set(rows.map(({ sourceId }) => sourceId))];
+    const months = sourceIds.length > 0 ? await findMonths(tx, districtId, sourceIds) : null;
+    const blocks = months ? await listBlocks(tx, districtId, { from: months.first, to: addDays(months.last, 27), sourceIds }) : [];
     const coverage = new Map(rows.map((row) => [keyOf(row), new Coverage()]));
     for (const block of blocks) addCoverage(coverage, block);
     return rows.map((row) => siteMembers(row, coverage.get(keyOf(row)) as Coverage));
+  });
+}
+
+/** One site with what it covers: of the source named, else of the first that has it; null when there is none. */
+export function answerSite(caller: Caller, code: string, source?: string): Promise<SiteAnswer | null> {
+  const { districtId } = caller;
+  return database().inDistrict(districtId, async (tx) => {
+    const row = await findSite(tx, districtId, code, source);
+    if (!row) return null;
+    const months = await findMonths(tx, districtId, row.sourceId);
+    const coverage = new Coverage();
+    if (months) {
+      const { values, startDate, dayCount } = await loadObservations(tx, districtId, { sites: [row], raw: true });
+      const first = dayNumber(startDate);
+      for (const [name, series] of Object.entries(values)) {
+        for (let day = 0; day < dayCount; day++) if (!Number.isNaN(series[day])) coverage.count(name, first + day);
+      }
+    }
+    return siteMembers(row, coverage);
+  });
+}
+
+interface SitesWanted {
+  readonly source?: string;
+  readonly limit: number;
+  readonly cursor?: string;
+}
+
+interface SitePage {
+  readonly items: SiteAnswer[];
+  readonly total: number;
+  readonly next_cursor: string | null;
+}
+
+/**
+ * A page of sites: of the stations of all sources, or of the source named. Cells of a grid tell the months of the grid; their values are not
+ * looked at, so `coverage_days` is empty.
+ *
+ * @throws {NotFound} for a source that is not the district's
+ */
+export async function answerSitePage(caller: Caller, wanted: SitesWanted): Promise<SitePage> {
+  const source = wanted.source === undefined ? null : await findSource(caller, wanted.source);
+  const [after] = readCursor(wanted.cursor, CURSOR) ?? [-1];
+  if (source?.kind === 'grid') return gridPage(caller, source, { after, limit: wanted.limit });
+  const all = (await answerSites(caller)).filter((site) => source === null || site.source === source.name);
+  const items = all.slice(after + 1, after + 1 + wanted.limit);
+  const end = after + items.length;
+  return { items, total: all.length, next_cursor: end + 1 < all.length ? writeCursor(end) : null };
+}
+
+type SourceRow = Awaited<ReturnType<typeof listSourcesWithSites>>[number];
+
+async function findSource(caller: Caller, name: string): Promise<SourceRow> {
+  const sources = await database().inDistrict(caller.districtId, (tx) => listSourcesWithSites(tx, caller.districtId));
+  const found = sources.find((source) => source.name === name);
+  if (!found) throw new NotFound(`no weather source "${name}" in this district`);
+  return found;
+}
+
+function gridPage(caller: Caller, source: SourceRow, { after, limit }: { after: number; limit: number }): Promise<SitePage> {
+  const { districtId } = caller;
+  return database().inDistrict(districtId, async (tx) => {
+    const rows = await listSitePage(tx, districtId, { sourceId: source.sourceId, after, limit });
+    const months = await findMonths(tx, districtId, source.sourceId);
+    const span = months ? { first: months.first, last: endOfMonth(months.last) } : null;
+    const items = rows.map((row) => ({
+      code: row.code,
+      name: row.name,
+      source: source.name,
+      longitude: row.longitude,
+      latitude: row.latitude,
+      elevation_m: row.elevation,
+      wind_height_m: row.windHeight,
+      first_day: span?.first ?? null,
+      last_day: span?.last ?? null,
+      day_count: span ? dayNumber(span.last) - dayNumber(span.first) + 1 : 0,
+      coverage_days: {},
+    }));
+    const last = rows[rows.length - 1]?.ordinal ?? after;
+    return { items, total: source.sites, next_cursor: last + 1 < source.sites && rows.length > 0 ? writeCursor(last) : null };
+  });
+}
+
+function endOfMonth(month: string): string {
+  const { year, month: number } = civilFromDayNumber(dayNumber(month));
+  return addDays(month, daysInMonth(year, number) - 1);
+}
+
+/** Every source with its sites, months and variables, told from the keys of what is stored. */
+export function answerSources(caller: Caller): Promise<WeatherSourceAnswer[]> {
+  const { districtId } = caller;
+  return database().inDistrict(districtId, async (tx) => {
+    const spans = await listBlockSpans(tx, districtId);
+    const sources = await listSourcesWithSites(tx, districtId);
+    return sources.map(({ sourceId, name, kind, sites }) => {
+      const own = spans.filter((span) => span.sourceId === sourceId);
+      const firsts = own.map(({ first }) => first as string).sort();
+      const lasts = own.map(({ last }) => last as string).sort();
+      return {
+        name,
+        kind,
+        sites,
+        first_month: firsts[0] ?? null,
+        last_month: lasts[lasts.length - 1] ?? null,
+        variables: own.map(({ variable }) => variable),
+      };
+    });
   });
 }
 
@@ -41,6 +148,11 @@ function keyOf(row: { sourceId: number; ordinal: number }): string {
 class Coverage {
   readonly days = new Set<number>();
   readonly variables: Record<string, number> = {};
+
+  count(variable: string, day: number): void {
+    this.days.add(day);
+    this.variables[variable] = (this.variables[variable] ?? 0) + 1;
+  }
 }
 
 function addCoverage(coverage: Map<string, Coverage>, block: BlockRow): void {
@@ -50,8 +162,7 @@ function addCoverage(coverage: Map<string, Coverage>, block: BlockRow): void {
     const site = coverage.get(keyOf({ sourceId: block.sourceId, ordinal }));
     for (let day = 0; site && day < block.dayCount; day++) {
       if (Number.isNaN(values[ordinal * block.dayCount + day])) continue;
-      site.days.add(first + day);
-      site.variables[block.variable] = (site.variables[block.variable] ?? 0) + 1;
+      site.count(block.variable, first + day);
     }
   }
 }
@@ -78,6 +189,10 @@ function siteMembers(row: SiteRow, coverage: Coverage): SiteAnswer {
 interface DaysWanted {
   readonly from?: string;
   readonly to?: string;
+  /** source of the site; left out: the first that has a site of this code */
+  readonly source?: string;
+  /** kept by a caller that asks for several stations of a source */
+  readonly shared?: SharedFills;
 }
 
 /**
@@ -87,12 +202,12 @@ interface DaysWanted {
  */
 export async function answerSiteRecord(caller: Caller, code: string, wanted: DaysWanted): Promise<SiteDaysAnswer> {
   requireSpan(wanted);
-  const record = await openRecord(caller, code);
+  const record = await openRecord(caller, code, wanted.source, wanted.shared);
   if (!record) return { items: [], first_day: null, last_day: null, truncated: false };
   const { first, last } = record;
   const { from, to } = spanOf(wanted, last);
   const truncated = (!wanted.from && from > first && to >= first) || (!wanted.to && to < last);
-  return { items: record.days(from, to), first_day: first, last_day: last, truncated };
+  return { items: await daysOf(caller, record, from, to), first_day: first, last_day: last, truncated };
 }
 
 /** The days of `answerSiteRecord` alone. */
@@ -103,56 +218,25 @@ export async function answerSiteDays(caller: Caller, code: string, wanted: DaysW
 /** Every day asked for, in pieces of at most 400. @throws {NotFound} for a site that is not the district's. */
 export async function* eachSiteDays(caller: Caller, code: string, wanted: DaysWanted): AsyncGenerator<SiteDay[]> {
   requireSpan(wanted);
-  const record = await openRecord(caller, code);
+  const record = await openRecord(caller, code, wanted.source, wanted.shared);
   if (!record) return;
   const { from = record.first, to = record.last } = wanted;
   const end = minimum(to, record.last);
   const [, begin] = [from, record.first].sort();
   for (let start = begin; start <= end; start = addDays(start, MOST_DAYS)) {
-    yield record.days(start, minimum(end, addDays(start, MOST_DAYS - 1)));
+    yield await daysOf(caller, record, start, minimum(end, addDays(start, MOST_DAYS - 1)));
   }
 }
 
-interface SiteRecord {
-  readonly first: string;
-  readonly last: string;
-  /** days of the record between two dates, both included */
-  days(from: string, to: string): SiteDay[];
-}
-
-/** The whole record of a site, completed: gaps in temperature are filled from all of it, as a run fills them. Null when there is nothing. */
-function openRecord(caller: Caller, code: string): Promise<SiteRecord | null> {
-  const { districtId } = caller;
-  return database().inDistrict(districtId, async (tx) => {
-    const row = (await listSites(tx, districtId)).find((site) => site.code === code);
-    const district = await findWholeDistrict(tx, districtId);
-    if (!row || !district) throw new NotFound(`no weather site "${code}" in this district`);
-    const record = await readRecord(tx, districtId, row);
-    if (!record) return null;
-    const { first, last, observations } = record;
-    const { defaultElevation, radiationCoefficient } = district;
-    const temperatures = fillTemperatureGaps(observations);
-    const completed = completeWeather(observations, { defaultElevation, radiationCoefficient, temperatures });
-    const place = { latitude: row.latitude, elevation: row.elevation ?? defaultElevation };
-    const offset = dayNumber(observations.startDate);
-    const days = (wantedFrom: string, wantedTo: string) => {
-      const [from, to] = [Math.max(dayNumber(wantedFrom), dayNumber(first)), Math.min(dayNumber(wantedTo), dayNumber(last))];
-      return Array.from({ length: Math.max(0, to - from + 1) }, (_, i) => siteDay(observations, completed, place, from + i - offset));
-    };
-    return { first, last, days };
-  });
-}
-
-/** Everything stored of a site, and its first and last day with a value; null when there is nothing. */
-async function readRecord(tx: Tx, districtId: string, row: SiteRow) {
-  const months = await findMonths(tx, districtId, row.sourceId);
-  if (!months) return null;
-  const span = { from: months.first, to: addDays(months.last, 30) };
-  const blocks = await listBlocks(tx, districtId, { ...span, sourceId: row.sourceId });
-  const coverage = new Map([[keyOf(row), new Coverage()]]);
-  for (const block of blocks) addCoverage(coverage, block);
-  const { first_day: first, last_day: last } = siteMembers(row, coverage.get(keyOf(row)) as Coverage);
-  return first && last ? { first, last, observations: assembleObservations([row], blocks, span) } : null;
+/** Days of the record between two dates, both included. */
+async function daysOf(caller: Caller, record: SiteRecord, wantedFrom: string, wantedTo: string): Promise<SiteDay[]> {
+  const from = [wantedFrom, record.first].sort()[1];
+  const to = minimum(wantedTo, record.last);
+  if (from > to) return [];
+  const hours = await loadHours(caller, record, from, to);
+  const sums = hours && hourlySums(hours);
+  const offset = dayNumber(from) - dayNumber(record.start);
+  return Array.from({ length: dayNumber(to) - dayNumber(from) + 1 }, (_, day) => siteDay(record, offset + day, sumsOn(sums, day)));
 }
 
 /** @throws {Malformed} when a date is none, or the last day is before the first. */
@@ -172,64 +256,4 @@ function spanOf(wanted: DaysWanted, last: string): { from: string; to: string } 
 
 function minimum(a: string, b: string): string {
   return a < b ? a : b;
-}
-
-function siteDay(
-  observations: SiteObservations,
-  completed: CompletedWeather,
-  place: { latitude: number; elevation: number },
-  day: number,
-): SiteDay {
-  const date = addDays(observations.startDate, day);
-  const input: Omit<ReferenceDayInput, 'method' | 'surface'> = {
-    ...place,
-    dayOfYear: dayOfYear(dayNumber(date)),
-    airTemperatureMax: completed.airTemperatureMax[day],
-    airTemperatureMin: completed.airTemperatureMin[day],
-    actualVapourPressure: completed.actualVapourPressure[day],
-    solarRadiation: completed.solarRadiation[day],
-    windSpeed2m: completed.windSpeed2m[day],
-  };
-  return { date, observed: observedOn(observations, day), completed: completedOn(completed, day), ...derived(input, completed.flags[day]) };
-}
-
-function observedOn({ values }: SiteObservations, day: number): SiteDay['observed'] {
-  return Object.fromEntries(Object.entries(values).map(([name, row]) => [name, rounded(row?.[day] ?? Number.NaN)]));
-}
-
-/** Stored observations are single precision: six significant figures are what they hold for certain. */
-function rounded(value: number): number | null {
-  return Number.isFinite(value) ? Number(value.toPrecision(6)) : null;
-}
-
-function completedOn(completed: CompletedWeather, day: number): SiteDay['completed'] {
-  return {
-    air_temperature_max_c: rounded(completed.airTemperatureMax[day]),
-    air_temperature_min_c: rounded(completed.airTemperatureMin[day]),
-    vapour_pressure_kpa: rounded(completed.actualVapourPressure[day]),
-    solar_radiation_mj_m2_d: rounded(completed.solarRadiation[day]),
-    wind_speed_2m_m_s: rounded(completed.windSpeed2m[day]),
-    precipitation_mm: rounded(completed.precipitation[day]),
-  };
-}
-
-function derived(input: Omit<ReferenceDayInput, 'method' | 'surface'>, flags: number): Omit<SiteDay, 'date' | 'observed' | 'completed'> {
-  const short = { ...input, method: 'fao56', surface: 'short' } as const;
-  const budget = energyBudgetDay(short);
-  const extraterrestrial = sunDay(input.latitude, input.dayOfYear).extraterrestrialRadiation;
-  const depth = (value: number) => roundOrNull(value, 4);
-  return {
-    fallbacks: fallbackNames(flags),
-    reference_et_fao56_short_mm: depth(budget.referenceEt),
-    reference_et_asce2005_short_mm: depth(referenceEtDay({ ...input, method: 'asce2005', surface: 'short' }, null)),
-    reference_et_asce2005_tall_mm: depth(referenceEtDay({ ...input, method: 'asce2005', surface: 'tall' }, null)),
-    reference_et_hargreaves_mm: depth(hargreavesReferenceEt(input.airTemperatureMax, input.airTemperatureMin, extraterrestrial)),
-    clear_sky_radiation_mj_m2_d: depth(clearSkyRadiation(extraterrestrial, input.elevation)),
-    extraterrestrial_radiation_mj_m2_d: depth(extraterrestrial),
-    net_shortwave_mj_m2_d: depth(budget.netShortwave),
-    net_longwave_mj_m2_d: depth(budget.netLongwave),
-    net_radiation_mj_m2_d: depth(budget.netRadiation),
-    latent_heat_mj_m2_d: depth(budget.latentHeatFlux),
-    sensible_heat_mj_m2_d: depth(budget.sensibleHeatFlux),
-  };
 }

@@ -65,7 +65,7 @@ export const districtSummary = z
   .meta({ id: 'DistrictSummary' });
 export type DistrictSummary = z.infer<typeof districtSummary>;
 
-export const importKind = z.enum(['weather', 'stations', 'parcels', 'canals', 'soils', 'plantings']);
+export const importKind = z.enum(['weather', 'stations', 'parcels', 'canals', 'turnouts', 'areas', 'soils', 'soil-areas', 'plantings']);
 export const importAnswer = z
   .object({
     id: z.string(),
@@ -120,16 +120,23 @@ export const siteDay = z
       wind_speed_2m_m_s: n,
       precipitation_mm: n,
     }),
+    /** variable → quality of an observed value that is not as measured: corrected, suspect, filled … */
+    quality: z.record(z.string(), z.string()).meta({ description: 'observed values that are not as measured, and what they are' }),
     fallbacks: z.array(z.string()),
     reference_et_fao56_short_mm: n,
     reference_et_asce2005_short_mm: n,
     reference_et_asce2005_tall_mm: n,
     reference_et_hargreaves_mm: n,
+    reference_et_hourly_fao56_short_mm: n.meta({ description: 'sum of the hours; null without hours' }),
+    reference_et_hourly_asce2005_short_mm: n.meta({ description: 'sum of the hours; null without hours' }),
+    reference_et_hourly_asce2005_tall_mm: n.meta({ description: 'sum of the hours; null without hours' }),
+    reference_et_given_mm: n.meta({ description: 'as the source gives it; null when it gives none' }),
     clear_sky_radiation_mj_m2_d: n,
     extraterrestrial_radiation_mj_m2_d: n,
     net_shortwave_mj_m2_d: n,
     net_longwave_mj_m2_d: n,
     net_radiation_mj_m2_d: n,
+    soil_heat_flux_mj_m2_d: n,
     latent_heat_mj_m2_d: n,
     sensible_heat_mj_m2_d: n,
   })
@@ -148,18 +155,24 @@ export const siteDaysAnswer = z
   .meta({ id: 'SiteDays' });
 export type SiteDaysAnswer = z.infer<typeof siteDaysAnswer>;
 
-const { observed: _observed, completed: completedShape, ...siteDayNumbers } = siteDay.shape;
+const { observed: _observed, completed: completedShape, quality: _quality, ...siteDayNumbers } = siteDay.shape;
 /** A site’s day as one flat row: what CSV holds. */
 export const siteDayRow = z.object({
   ...siteDayNumbers,
+  quality: z.string(),
   ...Object.fromEntries(Object.keys(WEATHER_VARIABLES).map((name) => [`observed_${name}`, n])),
   ...Object.fromEntries(Object.keys(completedShape.shape).map((name) => [`completed_${name}`, n])),
 });
 
 /** A day as one flat row, for tables. */
-export function siteDayRowOf({ observed, completed, ...rest }: SiteDay): Record<string, unknown> {
+export function siteDayRowOf({ observed, completed, quality, ...rest }: SiteDay): Record<string, unknown> {
   const prefixed = (prefix: string, values: object) => Object.entries(values).map(([name, value]) => [`${prefix}_${name}`, value]);
-  return { ...rest, ...Object.fromEntries([...prefixed('observed', observed), ...prefixed('completed', completed)]) };
+  const told = Object.entries(quality).map(([name, what]) => `${name} ${what}`);
+  return {
+    ...rest,
+    quality: told.join('; '),
+    ...Object.fromEntries([...prefixed('observed', observed), ...prefixed('completed', completed)]),
+  };
 }
 
 export const cropAnswer = z
@@ -236,6 +249,10 @@ export const parcelAnswer = z
     turnout: z.string().nullable(),
     reach: z.string().nullable(),
     soil: z.string().nullable(),
+    soil_shares: z
+      .array(z.object({ soil: z.string(), share: z.number() }))
+      .nullable()
+      .meta({ description: 'soil classes under the parcel by area, from the soil polygons; a code in `soil` goes before them' }),
     method: z.string().nullable(),
     area_ha: z.number(),
     elevation_m: n,

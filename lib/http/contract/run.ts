@@ -5,9 +5,24 @@ import { isoDate, nullableNumber as n } from './common.ts';
 export const runSettings = z
   .strictObject({
     method: z.enum(['fao56', 'asce2005']).default(usual.method).meta({ description: 'combination equation, short surface' }),
-    interpolation: z.enum(['inverse-distance', 'nearest']).default(usual.interpolation),
+    interpolation: z.enum(['automatic', 'nearest', 'inverse-distance', 'bilinear', 'kriging']).default(usual.interpolation).meta({
+      description:
+        'how weather is carried from sites to parcels; automatic takes per variable the method and trend with the lowest leave-one-out error of the stations, and bilinear on a grid; bilinear is for grids; left out for a grid source: bilinear',
+    }),
+    elevation_trend: z.enum(['lapse-rate', 'fitted', 'none']).default(usual.elevation_trend).meta({
+      description:
+        'how a value is moved to the elevation of the parcel: temperature by the lapse rate, every variable but rain by the slope its sites show, or not at all; automatic interpolation chooses it too',
+    }),
     power: z.number().min(0.5).max(6).default(usual.power),
     maximum_sites: z.number().int().min(1).max(8).default(usual.maximum_sites),
+    reference_et: z.enum(['automatic', 'at-parcels', 'at-sites', 'given', 'hourly-sum']).default(usual.reference_et).meta({
+      description:
+        'where the reference ET comes from: computed at the parcels or at the sites, as given by the source, or the sum over the hours; automatic is at the parcels for stations, at the cells of a grid, and as given for a source without air temperature',
+    }),
+    fill_gaps: z.boolean().default(usual.fill_gaps).meta({
+      description:
+        'gaps of a site are filled from neighbouring sites by regression, from other sources and from normals, before what is left is estimated',
+    }),
     lapse_rate_c_per_m: z.number().min(0).max(0.012).default(usual.lapse_rate_c_per_m),
     initial_depletion: z
       .number()
@@ -27,7 +42,9 @@ export const runSettings = z
   })
   .meta({ id: 'RunSettings' });
 
-export const runRequest = z.strictObject({ season: z.string(), settings: runSettings.partial().optional() }).meta({ id: 'RunRequest' });
+/** Left out, the method follows from the kind of the source, so it has no default here. */
+const requestedSettings = runSettings.partial().extend({ interpolation: runSettings.shape.interpolation.unwrap().optional() });
+export const runRequest = z.strictObject({ season: z.string(), settings: requestedSettings.optional() }).meta({ id: 'RunRequest' });
 
 export const runAnswer = z
   .object({
@@ -37,6 +54,11 @@ export const runAnswer = z
     stage: z.string(),
     progress: z.number(),
     standing: z.boolean(),
+    stale_since: z
+      .string()
+      .nullable()
+      .meta({ description: 'since when an input has changed under this run; null while it stands on what the district has' }),
+    stale_reason: z.string().nullable(),
     start_date: isoDate,
     end_date: isoDate,
     parcel_count: z.number().int(),
@@ -46,6 +68,8 @@ export const runAnswer = z
       parcel_days: z.number().optional(),
       max_residual_mm: z.number().optional(),
       roll_up_relative: z.number().optional(),
+      /** share of parcel-days on which any value of the weather was filled or estimated, 0–1 */
+      estimated_share: z.number().optional(),
       /** share of parcel-days that rest on each fallback, 0–1 */
       fallback_shares: z.record(z.string(), z.number()).optional(),
       seconds: z.number().optional(),
@@ -84,6 +108,7 @@ export const parcelPeriod = z
     stress_coefficient: n.meta({ description: 'mean over the period' }),
     net_volume_m3: n,
     gross_volume_m3: n,
+    estimated_share: n.meta({ description: 'share of the days whose weather was filled or estimated, 0–1' }),
     fallbacks: z.array(z.string()).meta({ description: 'what was estimated in the weather behind this row' }),
   })
   .meta({ id: 'ParcelPeriod' });
@@ -142,6 +167,10 @@ export const parcelSeason = z
         area_share: z.number(),
       }),
     ),
+    estimated_share: n.meta({ description: 'share of the days of the season whose weather was filled or estimated, 0–1' }),
+    reference_et: z
+      .enum(['at-parcels', 'given', 'hourly-sum', 'at-sites'])
+      .meta({ description: 'where the reference ET was computed, or taken from' }),
     weights: z.array(z.object({ site: z.string(), name: z.string(), weight: z.number(), distance_km: z.number(), elevation_m: n })),
     days: z.array(parcelDay),
   })
@@ -158,6 +187,9 @@ export const workingAnswer = z
         site: z.string(),
         site_name: z.string(),
         weight: z.number(),
+        series_weights: z
+          .record(z.string(), z.number())
+          .meta({ description: 'weights of the series that have their own, by the name of their value; the others go by `weight`' }),
         elevation_m: n,
         values: z.record(z.string(), n),
         fallbacks: z.array(z.string()),
@@ -206,6 +238,9 @@ export const reachPeriod = z
     capacity_share: n.meta({ description: 'busiest-week inflow over capacity: turns within a week level out single days' }),
     parcel_count: z.number().int(),
     area_ha: z.number(),
+    estimated_share: n.meta({
+      description: 'share of the days of the parcels on this reach and below whose weather was estimated, by area',
+    }),
   })
   .meta({ id: 'ReachPeriod' });
 export type ReachPeriod = z.infer<typeof reachPeriod>;
@@ -223,6 +258,7 @@ const total = z.object({
   gross_requirement_mm: n,
   net_volume_m3: n,
   gross_volume_m3: n,
+  estimated_share: n.meta({ description: 'share of the parcel-days whose weather was filled or estimated, by area, 0–1' }),
 });
 export const summaryAnswer = z
   .object({
@@ -234,6 +270,7 @@ export const summaryAnswer = z
     by_canal: z.array(total),
     by_crop: z.array(total),
     by_method: z.array(total),
+    areas: z.array(total).meta({ description: 'by service area; parcels in none are left out' }),
     weeks: z.array(
       z.object({
         start: isoDate,
@@ -244,6 +281,7 @@ export const summaryAnswer = z
         gross_volume_m3: n,
         headworks_inflow_m3: n,
         headworks_mean_m3_s: n,
+        estimated_share: n,
       }),
     ),
   })
@@ -252,7 +290,7 @@ export type SummaryAnswer = z.infer<typeof summaryAnswer>;
 
 /** One total of the summary as a flat row: what CSV holds. */
 export const summaryRow = z.object({
-  total_of: z.enum(['district', 'canal', 'crop', 'method']),
+  total_of: z.enum(['district', 'canal', 'crop', 'method', 'area']),
   ...total.shape,
   reference_et_mm: n,
   headworks_inflow_m3: n,
@@ -262,9 +300,15 @@ export type SummaryTotal = z.infer<typeof total>;
 
 /** The totals as flat rows, for tables. */
 export function summaryRowsOf(summary: SummaryAnswer): Record<string, unknown>[] {
-  const { district, by_canal, by_crop, by_method } = summary;
+  const { district, by_canal, by_crop, by_method, areas } = summary;
   const rows = (of: string, totals: readonly object[]) => totals.map((total) => ({ total_of: of, ...total }));
-  return [...rows('district', [district]), ...rows('canal', by_canal), ...rows('crop', by_crop), ...rows('method', by_method)];
+  return [
+    ...rows('district', [district]),
+    ...rows('canal', by_canal),
+    ...rows('crop', by_crop),
+    ...rows('method', by_method),
+    ...rows('area', areas),
+  ];
 }
 
 /** Canal numbers for the map, [period][reach]. */
@@ -284,7 +328,9 @@ export const mapDescription = z
     run: z.string(),
     season: z.string(),
     geometry_version: z.number().int(),
-    tiles: z.object({ parcels: z.string(), canals: z.string() }).meta({ description: 'URL templates with {z}/{x}/{y}' }),
+    tiles: z.object({ parcels: z.string(), canals: z.string(), areas: z.string().nullable() }).meta({
+      description: 'URL templates with {z}/{x}/{y}; parcels as they stood when the run was made; areas null where there are none',
+    }),
     bounds: z.tuple([z.number(), z.number(), z.number(), z.number()]),
     variables: z.array(z.object({ id: z.string(), term: z.string(), unit: z.string(), aggregate: z.enum(['sum', 'end', 'mean']) })),
     periods: z.object({

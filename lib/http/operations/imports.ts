@@ -74,8 +74,17 @@ export const importOptions = z
       .optional()
       .meta({ description: 'grids: cells within this many degrees around the district are kept; one cell unless said' }),
     wholeGrid: z.boolean().nullable().optional().meta({ description: 'grids: read every cell although the district has a place' }),
-    replace: z.boolean().nullable().optional().meta({ description: 'parcels and canals: remove those that the file does not have' }),
+    replace: z
+      .boolean()
+      .nullable()
+      .optional()
+      .meta({ description: 'parcels, canals, service areas and soil polygons: remove those that the file does not have' }),
     recompute: z.boolean().nullable().optional().meta({ description: 'false: applying starts no run; true unless said' }),
+    soilMappings: z
+      .record(z.string(), z.string().nullable())
+      .nullable()
+      .optional()
+      .meta({ description: 'soil polygons: class of the file → soil of the district, or null to leave its polygons out' }),
     cropMappings: z
       .record(z.string(), z.string().nullable())
       .nullable()

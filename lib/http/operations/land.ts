@@ -18,7 +18,7 @@ export const listParcelsOperation = operation({
   query: { search, ...pageQuery(100, 5000) },
   units: true,
   answer: pageOf(parcelAnswer).meta({ id: 'ParcelPage' }),
-  table: { row: parcelAnswer },
+  table: { row: parcelAnswer, leaveOut: ['soil_shares'] },
 });
 
 export const readParcelOperation = operation({

@@ -5,13 +5,13 @@ export const tileOperation = operation({
   method: 'GET',
   path: '/api/v1/tiles/{layer}/{version}/{z}/{x}/{y}.mvt',
   tag: 'Map',
-  summary: 'Vector tile of parcels or canals',
+  summary: 'Vector tile of parcels, canals or service areas',
   description:
-    'Mapbox Vector Tile 2. Feature id and property `o`: ordinal; property `code`; canals also `kind`. 204 where there is nothing. ' +
-    'Immutable for a version; the version in use is `geometry_version` of the district. Growers get the shapes of their own parcels.',
+    'Mapbox Vector Tile 2. Feature id and property `o`: ordinal; property `code`; canals also `kind`, areas `name`. 204 where there is nothing. ' +
+    'Immutable for a version; the version in use is `geometry_version` of the district. In an earlier version parcels are drawn as they stood then. Growers get the shapes of their own parcels.',
   scope: 'read',
   params: {
-    layer: z.enum(['parcels', 'canals']),
+    layer: z.enum(['parcels', 'canals', 'areas']),
     version: z.coerce.number().int().min(1),
     z: z.coerce.number().int().min(0).max(16),
     x: z.coerce.number().int().min(0),

@@ -1,6 +1,10 @@
 import type { Metadata } from 'next';
+import type { Caller } from '../../../../lib/access/caller.ts';
+import { NotFound } from '../../../../lib/base/errors.ts';
 import { answerCrops } from '../../../../lib/http/answers/land.ts';
+import { answerParcelHistory } from '../../../../lib/http/answers/parcel-history.ts';
 import { answerParcelSeason } from '../../../../lib/http/answers/parcel-season.ts';
+import type { ParcelHistoryAnswer } from '../../../../lib/http/contract/land-places.ts';
 import { NoRunPage } from '../../../_components/empty-state.tsx';
 import { callerInView } from '../../../_components/in-view.ts';
 import { orNotFound } from '../../../_components/or-not-found.ts';
@@ -17,8 +21,30 @@ export default async function ParcelPage({ params, searchParams }: PageProps<'co
   const [caller, { code }, query] = await Promise.all([callerInView(), params, searchParams]);
   const run = await runAsked(caller, query);
   if (!run) return <NoRunPage />;
-  const [season, crops] = await Promise.all([orNotFound(answerParcelSeason(caller, run.id, decoded(code))), answerCrops(caller)]);
+  const [season, crops, history] = await Promise.all([
+    orNotFound(answerParcelSeason(caller, run.id, decoded(code))),
+    answerCrops(caller),
+    historyOf(caller, decoded(code)),
+  ]);
   return (
-    <ParcelView run={run} season={season} crops={crops} query={query} weekStart={weekStartOf(run, caller.district)} units={caller.units} />
+    <ParcelView
+      run={run}
+      season={season}
+      crops={crops}
+      history={history}
+      query={query}
+      weekStart={weekStartOf(run, caller.district)}
+      units={caller.units}
+    />
   );
+}
+
+/** A parcel that an old run knows may be gone without a trace. */
+async function historyOf(caller: Caller, code: string): Promise<ParcelHistoryAnswer> {
+  try {
+    return await answerParcelHistory(caller, code);
+  } catch (error) {
+    if (error instanceof NotFound) return { parcel: code, stands: false, items: [] };
+    throw error;
+  }
 }

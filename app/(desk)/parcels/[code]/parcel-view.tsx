@@ -1,12 +1,13 @@
 import type { IsoDate } from '../../../../lib/base/civil-date.ts';
 import type { UnitSystem } from '../../../../lib/base/units.ts';
+import type { ParcelHistoryAnswer } from '../../../../lib/http/contract/land-places.ts';
 import type { CropAnswer } from '../../../../lib/http/contract/rest.ts';
 import type { ParcelDay, ParcelSeason, RunAnswer } from '../../../../lib/http/contract/run.ts';
 import { CalendarStrip } from '../../../_components/calendar-strip.tsx';
 import { DailyChart } from '../../../_components/daily-chart.tsx';
 import { dateRange, longDate } from '../../../_components/date-words.ts';
 import { Cautions, EmptyState } from '../../../_components/empty-state.tsx';
-import { FallbackShares, FallbackWords, fallbackSharesOf } from '../../../_components/fallback-words.tsx';
+import { EstimatedShare, FallbackShares, FallbackWords, fallbackSharesOf } from '../../../_components/fallback-words.tsx';
 import { Section } from '../../../_components/page-head.tsx';
 import { choosePeriod } from '../../../_components/period-choice.ts';
 import { PeriodPicker } from '../../../_components/period-picker.tsx';
@@ -15,6 +16,7 @@ import { SiteWeights } from '../../../_components/site-weights.tsx';
 import { SoilGauge } from '../../../_components/soil-gauge.tsx';
 import { WaterChain } from '../../../_components/water-chain.tsx';
 import { DayTable } from './day-table.tsx';
+import { GroundHistory } from './ground-history.tsx';
 import { ParcelHead } from './parcel-head.tsx';
 import { PlantingTable } from './planting-table.tsx';
 
@@ -22,13 +24,14 @@ interface ParcelViewProps {
   readonly run: RunAnswer;
   readonly season: ParcelSeason;
   readonly crops: readonly CropAnswer[];
+  readonly history: ParcelHistoryAnswer;
   readonly query: Query;
   readonly weekStart: number;
   readonly units: UnitSystem;
 }
 
 /** Everything about one parcel in one season. */
-export function ParcelView({ run, season, crops, query, weekStart, units }: ParcelViewProps) {
+export function ParcelView({ run, season, crops, history, query, weekStart, units }: ParcelViewProps) {
   if (season.days.length === 0)
     return <EmptyState title={`Parcel ${season.parcel} has no days in this run`}>Run the season again.</EmptyState>;
   const path = `/parcels/${encodeURIComponent(season.parcel)}`;
@@ -72,8 +75,10 @@ export function ParcelView({ run, season, crops, query, weekStart, units }: Parc
         note="Each site counts by its weight; temperatures are corrected for the difference in elevation."
       >
         <SiteWeights weights={season.weights} elevation={season.elevation_m} units={units} />
+        <EstimatedShare share={season.estimated_share} of="the days" />
         <FallbackShares shares={fallbackSharesOf(season.days)} of="days" />
       </Section>
+      <GroundHistory history={history} units={units} />
       <Cautions which={['decisions', 'estimates']} />
     </div>
   );

@@ -2,7 +2,7 @@ import type { UnitSystem } from '../../../../lib/base/units.ts';
 import type { RunAnswer } from '../../../../lib/http/contract/run.ts';
 import { DataTable, FactList } from '../../../_components/data-table.tsx';
 import { dateRange, moment } from '../../../_components/date-words.ts';
-import { FallbackShares } from '../../../_components/fallback-words.tsx';
+import { EstimatedShare, FallbackShares } from '../../../_components/fallback-words.tsx';
 import { plain, significant } from '../../../_components/figures.ts';
 import { Go } from '../../../_components/go.tsx';
 import { PageHead, Section } from '../../../_components/page-head.tsx';
@@ -29,6 +29,12 @@ export function RunView({ run, timeZone, units, mayCancel }: RunViewProps) {
         ) : null}
       </PageHead>
       {run.error ? <p className="notice bad">{run.error}</p> : null}
+      {run.stale_since ? (
+        <p className="notice caution">
+          An input has changed since this run was made ({run.stale_reason}, {moment(run.stale_since, timeZone)}): start a run to bring it
+          in.
+        </p>
+      ) : null}
       {isOver(run.state) ? null : (
         <RunProgress id={run.id} season={run.season} state={run.state} stage={run.stage} progress={run.progress} mayCancel={mayCancel} />
       )}
@@ -75,6 +81,7 @@ function Checks({ run }: { run: RunAnswer }) {
         ]}
       />
       <h3>What was estimated in the weather</h3>
+      <EstimatedShare share={balance.estimated_share} of="the parcel-days" />
       <FallbackShares shares={balance.fallback_shares ?? {}} of="parcel-days" />
     </Section>
   );

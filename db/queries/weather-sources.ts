@@ -1,0 +1,90 @@
+/** Weather sources by what their blocks are named, and the stored hours of one site; no values of other sites are read. */
+import { and, asc, count, eq, gt, gte, lte, max, min, sql } from 'drizzle-orm';
+import type { Tx } from '../connect.ts';
+import { site, weatherBlock, weatherSource } from '../schema/weather.ts';
+
+/** Sources in the order in which they stand in for one another, with their number of sites. */
+export function listSourcesWithSites(tx: Tx, districtId: string) {
+  return tx
+    .select({ sourceId: weatherSource.sourceId, name: weatherSource.name, kind: weatherSource.kind, sites: count(site.ordinal) })
+    .from(weatherSource)
+    .leftJoin(site, and(eq(site.districtId, weatherSource.districtId), eq(site.sourceId, weatherSource.sourceId)))
+    .where(eq(weatherSource.districtId, districtId))
+    .groupBy(weatherSource.sourceId, weatherSource.name, weatherSource.kind, weatherSource.rank)
+    .orderBy(asc(weatherSource.rank), asc(weatherSource.sourceId));
+}
+
+/** First and last month of every variable of every source, from the keys of the blocks. */
+export function listBlockSpans(tx: Tx, districtId: string) {
+  return tx
+    .select({
+      sourceId: weatherBlock.sourceId,
+      variable: weatherBlock.variable,
+      steps: weatherBlock.steps,
+      first: min(weatherBlock.month),
+      last: max(weatherBlock.month),
+    })
+    .from(weatherBlock)
+    .where(eq(weatherBlock.districtId, districtId))
+    .groupBy(weatherBlock.sourceId, weatherBlock.variable, weatherBlock.steps)
+    .orderBy(asc(weatherBlock.sourceId), asc(weatherBlock.variable));
+}
+
+/** A page of the sites of one source, in the order of their rows. */
+export function listSitePage(tx: Tx, districtId: string, wanted: { sourceId: number; after: number; limit: number }) {
+  return tx
+    .select()
+    .from(site)
+    .where(and(eq(site.districtId, districtId), eq(site.sourceId, wanted.sourceId), gt(site.ordinal, wanted.after)))
+    .orderBy(asc(site.ordinal))
+    .limit(wanted.limit);
+}
+
+/** One site by its code, of a source by name or of the first that has it; null when there is none. */
+export async function findSite(tx: Tx, districtId: string, code: string, source?: string) {
+  const [row] = await tx
+    .select({
+      sourceId: site.sourceId,
+      source: weatherSource.name,
+      kind: weatherSource.kind,
+      ordinal: site.ordinal,
+      code: site.code,
+      name: site.name,
+      longitude: site.longitude,
+      latitude: site.latitude,
+      elevation: site.elevation,
+      windHeight: site.windHeight,
+      zone: site.zone,
+    })
+    .from(site)
+    .innerJoin(weatherSource, and(eq(weatherSource.districtId, site.districtId), eq(weatherSource.sourceId, site.sourceId)))
+    .where(and(eq(site.districtId, districtId), eq(site.code, code), source === undefined ? undefined : eq(weatherSource.name, source)))
+    .orderBy(asc(site.sourceId))
+    .limit(1);
+  return row ?? null;
+}
+
+export type SiteOfCode = NonNullable<Awaited<ReturnType<typeof findSite>>>;
+
+/** Stored hours of one site in the months that touch `from … to`: its own part of each block, Float32 [day of month × 24]. */
+export function listSiteHours(tx: Tx, districtId: string, wanted: { sourceId: number; ordinal: number; from: string; to: string }) {
+  const length = sql`(${weatherBlock.dayCount} * 24 * 4)`;
+  return tx
+    .select({
+      variable: weatherBlock.variable,
+      month: weatherBlock.month,
+      dayCount: weatherBlock.dayCount,
+      values: sql<Uint8Array>`substring(${weatherBlock.values} from ${wanted.ordinal} * ${length} + 1 for ${length})`,
+    })
+    .from(weatherBlock)
+    .where(
+      and(
+        eq(weatherBlock.districtId, districtId),
+        eq(weatherBlock.sourceId, wanted.sourceId),
+        eq(weatherBlock.steps, 24),
+        gt(weatherBlock.siteCount, wanted.ordinal),
+        gte(weatherBlock.month, `${wanted.from.slice(0, 7)}-01`),
+        lte(weatherBlock.month, wanted.to),
+      ),
+    );
+}
