@@ -34,7 +34,7 @@ export function EnergyBars({ budget }: { budget: SiteBudget }) {
   if (incoming.length === 0) return <p>No energy budget on {longDate(budget.date)}: the site has no temperature that day.</p>;
   const total = Math.max(sumOf(incoming), sumOf(outgoing));
   const x = scaleLinear().domain([0, total]).nice().range([LEFT, RIGHT]);
-  const bottom = 2 * BAR + GAP + 14;
+  const bottom = 2 * BAR + GAP + 30;
   return (
     <ChartFrame
       id="energy"

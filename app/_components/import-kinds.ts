@@ -49,7 +49,7 @@ export const IMPORT_KINDS: readonly ImportKindText[] = [
     kind: 'stations',
     name: 'Weather stations',
     ...TABLE,
-    says: 'One row per station. Weather can be read only for stations the district has.',
+    says: 'One row per station. Weather tables name them, unless the file places its own station.',
     columns: 'site, name, latitude, longitude, elevation, wind_height, zone',
     template: {
       name: 'stations-template.csv',

@@ -13,7 +13,7 @@ export type WeatherPlace = (typeof PLACES)[number]['href'];
 /** The parts of the weather desk, on one line under the title. */
 export function WeatherNav({ here }: { here: WeatherPlace }) {
   return (
-    <nav className="row no-print" aria-label="Weather desk">
+    <nav className="parts no-print" aria-label="Weather desk">
       {PLACES.map((place) => (
         <Go key={place.href} href={place.href} aria-current={place.href === here ? 'page' : undefined}>
           {place.name}

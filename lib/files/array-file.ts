@@ -35,5 +35,10 @@ export interface ArrayFile {
   read(variable: string, start: readonly number[], count: readonly number[]): Promise<Float64Array>;
   /** Texts of a hyperslab of a text variable (char arrays joined along their last dimension). */
   readText(variable: string, start: readonly number[], count: readonly number[]): Promise<string[]>;
+  /**
+   * The one value that all of a hyperslab has because nothing of it is stored, told without reading; null when something is stored.
+   * Left out by formats that cannot tell.
+   */
+  filledWith?(variable: string, start: readonly number[], count: readonly number[]): Promise<number | null>;
   close(): Promise<void>;
 }

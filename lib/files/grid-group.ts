@@ -11,9 +11,10 @@ import type { Field } from './grid-fields.ts';
 import { dayOutputs, HOURLY_CELL_LIMIT, hourOutput } from './grid-outputs.ts';
 import { type PlannedSeries, planSeries } from './grid-plan.ts';
 import { reportInputs, reportShortDays, reportStore } from './grid-report.ts';
-import { isTiled, planReading, type ReadingPlan, readSeries, type Series, type Sinks } from './grid-series.ts';
+import { readSeries, type Series, type Sinks } from './grid-series.ts';
 import { type CellsOfFile, stepArea } from './grid-slab.ts';
 import { CellRows, type Emit, MonthBuffer, type ValueStore } from './grid-store.ts';
+import { isTiled, planReading, type ReadingPlan } from './grid-tiles.ts';
 import type { ZoneOffset } from './grid-zone.ts';
 import type { ImportOptions } from './reading.ts';
 

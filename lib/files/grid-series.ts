@@ -4,21 +4,14 @@
  * A slab holds a few million numbers at most. Where the stored blocks are long in time the cells are read part by part instead, so that no
  * block is unpacked twice.
  */
-import type { ArrayVariable } from './array-file.ts';
 import type { Bins } from './grid-bins.ts';
 import type { Field } from './grid-fields.ts';
-import { type CellsOfFile, chunkSteps, slabOf, tileSegments } from './grid-slab.ts';
+import { type CellsOfFile, type Slab, slabOf, tileSegments } from './grid-slab.ts';
 import type { Steps } from './grid-steps.ts';
 import type { ValueStore } from './grid-store.ts';
+import { type ReadingPlan, SLAB_NUMBERS, type StepSlab, slabsOf, tilesOf } from './grid-tiles.ts';
 import { type Tally, type Unpacking, unpackStep } from './grid-unpack.ts';
 import type { Segment } from './grid-window.ts';
-
-/** Numbers of a slab. */
-export const SLAB_NUMBERS = 4_000_000;
-/** Numbers of a slab that is one stored block long. */
-const BLOCK_SLAB_NUMBERS = 12_000_000;
-/** Values that are held where cells are read part by part. */
-const HELD_VALUES = 40_000_000;
 
 /** One field of a quantity, over all its files. */
 export interface SeriesInput {
@@ -47,41 +40,6 @@ export interface Sinks {
   readonly bins: (first: number, count: number) => readonly Bins[];
 }
 
-/** How a series is cut for reading. */
-export interface ReadingPlan {
-  /** cells of a part; all of them, where days are read in order */
-  readonly tileCells: number;
-  /** steps of a slab */
-  readonly slabSteps: number;
-}
-
-/**
- * Chooses slabs for a variable.
- *
- * @param area numbers of one step of the window in the file
- */
-export function planReading(
-  variable: ArrayVariable,
-  timeDimension: number,
-  counts: { area: number; cells: number; steps: number; dayCount: number },
-): ReadingPlan {
-  const { area, cells, steps, dayCount } = counts;
-  const chunk = Math.min(Math.max(1, steps), chunkSteps(variable, timeDimension));
-  const whole = Math.floor(SLAB_NUMBERS / Math.max(1, area * chunk));
-  if (whole >= 1) return { tileCells: cells, slabSteps: whole * chunk };
-  if (area * chunk <= BLOCK_SLAB_NUMBERS) return { tileCells: cells, slabSteps: chunk };
-  if (cells * dayCount <= HELD_VALUES && cells > 1) {
-    const share = SLAB_NUMBERS / (area * Math.min(steps, chunk));
-    return { tileCells: Math.max(1, Math.floor(cells * share)), slabSteps: Math.max(chunk, Math.floor(SLAB_NUMBERS / area)) };
-  }
-  return { tileCells: cells, slabSteps: Math.max(1, Math.floor(SLAB_NUMBERS / area)) };
-}
-
-/** True when a plan reads the cells part by part, so that stores must hold their whole record. */
-export function isTiled(plan: ReadingPlan, cells: number): boolean {
-  return plan.tileCells < cells;
-}
-
 /**
  * Reads a series into its sinks.
  *
@@ -97,23 +55,50 @@ export async function readSeries(
   progress: (share: number) => Promise<void>,
 ): Promise<void> {
   const total = series.steps.runs.reduce((sum, run) => sum + run.count, 0);
-  for (let first = 0; first < cellCount; first += plan.tileCells) {
-    const count = Math.min(plan.tileCells, cellCount - first);
+  const slabs = slabsOf(series, plan.slabSteps);
+  for (const { first, count, isStored } of await tilesOf(series, cellsOf, cellCount, plan.tileCells)) {
     const tile = new Tile(series, first, count, sinks);
-    let done = 0;
-    for (const run of series.steps.runs) {
-      for (let at = run.first; at < run.first + run.count; ) {
-        const aligned = (Math.floor(at / plan.slabSteps) + 1) * plan.slabSteps;
-        const until = Math.min(aligned, run.first + run.count);
-        await tile.readSlab(run.piece, at, until - at, cellsOf);
-        done += until - at;
-        at = until;
-        await progress((first + (count * done) / total) / cellCount);
-      }
+    if (isStored) await readTile(tile, slabs, cellsOf, (done) => progress((first + (count * done) / total) / cellCount));
+    else {
+      tile.passOver(cellsOf);
+      await progress((first + count) / cellCount);
     }
     await tile.finish();
   }
 }
+
+/** Reads the slabs of a part in the order of time; while one is worked on the next is read, unless they are large. */
+async function readTile(
+  tile: Tile,
+  slabs: readonly StepSlab[],
+  cellsOf: (field: Field) => CellsOfFile,
+  progress: (stepsDone: number) => Promise<void>,
+): Promise<void> {
+  let ahead: Promise<FetchedSlabs> | null = null;
+  let done = 0;
+  try {
+    for (const [k, slab] of slabs.entries()) {
+      const fetched = await (ahead ?? tile.fetch(slab, cellsOf));
+      const isSmall = fetched.flat().reduce((sum, { raw }) => sum + raw.length, 0) <= SLAB_NUMBERS;
+      ahead = isSmall && k + 1 < slabs.length ? tile.fetch(slabs[k + 1], cellsOf) : null;
+      // a failure is met when its turn comes
+      ahead?.catch(() => undefined);
+      await tile.use(slab, fetched);
+      done += slab.count;
+      await progress(done);
+    }
+  } finally {
+    await ahead?.catch(() => undefined);
+  }
+}
+
+interface FetchedSlab {
+  readonly slab: Slab;
+  readonly raw: Float64Array;
+}
+
+/** By input: the parts of a slab. */
+type FetchedSlabs = readonly (readonly FetchedSlab[])[];
 
 /** The cells of one part while their steps pass. */
 class Tile {
@@ -134,36 +119,52 @@ class Tile {
     this.bins = sinks.daily ? [] : sinks.bins(first, count);
   }
 
-  async readSlab(piece: number, start: number, count: number, cellsOf: (field: Field) => CellsOfFile): Promise<void> {
-    const slabs = [];
-    for (const input of this.series.inputs) {
-      input.tally.base = this.first;
-      input.tally.piece = piece;
-      const field = input.fields[piece];
-      const segments = this.segmentsOf(field, cellsOf);
-      const parts = [];
-      for (const segment of segments) {
+  /** The stored numbers of all inputs over some steps. */
+  async fetch({ piece, start, count }: StepSlab, cellsOf: (field: Field) => CellsOfFile): Promise<FetchedSlabs> {
+    const fetched: FetchedSlab[][] = [];
+    for (const { fields } of this.series.inputs) {
+      const field = fields[piece];
+      const parts: FetchedSlab[] = [];
+      for (const segment of this.segmentsOf(field, cellsOf)) {
         const slab = slabOf(field.variable, field.dimensions, segment, { start, count });
         parts.push({ slab, raw: await field.file.arrays.read(field.variable.name, slab.start, slab.count) });
       }
-      slabs.push(parts);
+      fetched.push(parts);
     }
-    if (
-      this.skipMissing(
-        slabs[0].map(({ raw }) => raw),
-        piece,
-      )
-    )
-      return;
+    return fetched;
+  }
+
+  /** Counts the numbers of cells of which nothing is stored as missing. */
+  passOver(cellsOf: (field: Field) => CellsOfFile): void {
+    for (const { piece, count } of this.series.steps.runs) {
+      for (const { fields, tally } of this.series.inputs) {
+        for (const { cells } of this.segmentsOf(fields[piece], cellsOf)) tally.declared += cells.length * count;
+      }
+    }
+  }
+
+  /** Takes fetched numbers into the sinks, step by step. */
+  async use({ piece, start, count }: StepSlab, fetched: FetchedSlabs): Promise<void> {
+    for (const { tally } of this.series.inputs) {
+      tally.base = this.first;
+      tally.piece = piece;
+    }
+    const isEmpty = this.skipMissing(
+      fetched[0].map(({ raw }) => raw),
+      piece,
+    );
+    if (isEmpty) return;
     for (let t = 0; t < count; t++) {
-      for (const [i, input] of this.series.inputs.entries()) {
-        for (const { slab, raw } of slabs[i])
+      for (let i = 0; i < fetched.length; i++) {
+        const input = this.series.inputs[i];
+        for (const { slab, raw } of fetched[i])
           unpackStep(raw, t * slab.timeStride, slab.places, input.unpackings[piece], this.values[i], input.tally, start + t);
         this.single(i, piece, start + t);
       }
       this.lastEnd = this.series.steps.to[piece]?.[start + t] ?? Number.NaN;
       this.series.combine?.(this.values);
-      await this.pass(piece, start + t);
+      const waiting = this.pass(piece, start + t);
+      if (waiting) await waiting;
     }
   }
 
@@ -207,21 +208,29 @@ class Tile {
     }
   }
 
-  private async pass(piece: number, step: number): Promise<void> {
-    const { steps, dayFactor } = this.series;
-    const values = this.values[0];
+  /** Hands the values of a step on. Wait for what it returns, if anything, before the next. */
+  private pass(piece: number, step: number): Promise<void> | null {
+    const { steps } = this.series;
     const { daily } = this.sinks;
-    if (daily) {
-      const day = steps.days[piece][step];
-      if (dayFactor !== 1) for (let cell = 0; cell < values.length; cell++) values[cell] *= dayFactor;
-      await daily.advance(day);
-      daily.put(day, 0, values, this.first);
-      return;
+    if (daily) return this.passDay(daily, steps.days[piece][step]);
+    return this.bin(0, steps.from[piece][step], steps.to[piece][step]);
+  }
+
+  /** Adds a step to the bins from the k-th on, one after the other. */
+  private bin(k: number, from: number, to: number): Promise<void> | null {
+    for (let i = k; i < this.bins.length; i++) {
+      const waiting = this.bins[i].add(from, to, this.values[0]);
+      if (waiting) return waiting.then(() => this.bin(i + 1, from, to) ?? undefined);
     }
-    for (const bins of this.bins) {
-      const waiting = bins.add(steps.from[piece][step], steps.to[piece][step], values);
-      if (waiting) await waiting;
-    }
+    return null;
+  }
+
+  private async passDay(daily: ValueStore, day: number): Promise<void> {
+    const values = this.values[0];
+    const { dayFactor } = this.series;
+    if (dayFactor !== 1) for (let cell = 0; cell < values.length; cell++) values[cell] *= dayFactor;
+    await daily.advance(day);
+    daily.put(day, 0, values, this.first);
   }
 
   async finish(): Promise<void> {

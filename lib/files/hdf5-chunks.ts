@@ -7,11 +7,11 @@
 import { promisify } from 'node:util';
 import { inflate } from 'node:zlib';
 import { type Block, eachBlock, isWantedAgain } from './array-block.ts';
-import type { ArrayVariable } from './array-file.ts';
-import { sizeOf, stridesOf, widthOf } from './array-slab.ts';
+import { sizeOf } from './array-slab.ts';
 import { BLOCK_CACHE_LIMIT, BlockCache } from './block-cache.ts';
 import { type ByteSource, openBytes } from './byte-source.ts';
 import { type ChunkIndex, hasPlainSuperblock, readChunkIndex } from './hdf5-chunk-index.ts';
+import { copyChunk, isCopied } from './hdf5-copy.ts';
 import type { Hdf5Layout, Hdf5Variable } from './hdf5-messages.ts';
 
 const inflateAsync = promisify(inflate);
@@ -43,7 +43,7 @@ export class ChunkReader {
     const isKnown = layout.filters.every(
       (filter, k) => (filter === SHUFFLE && k === 0) || (filter === DEFLATE && k === layout.filters.length - 1),
     );
-    if (!this.isPlain || chunk === null || !isKnown || !layout.isLittleEndian || VIEWS[type] === undefined) return null;
+    if (!this.isPlain || chunk === null || !isKnown || !layout.isLittleEndian || !isCopied(type)) return null;
     const index = await this.indexOf(variable);
     if (index === null || index.chunk.some((length, k) => length !== chunk[k])) return null;
     const blocks = [...eachBlock(chunk, start, count)];
@@ -87,7 +87,7 @@ export class ChunkReader {
       () => this.unpacked(layout, index, place, size, room),
       room.keep && isWantedAgain(block, shape, storedShape),
     );
-    copyPart(bytes, isApplied(layout, index, place, SHUFFLE) && layout.width > 1, type, shape, block, into);
+    copyChunk(bytes, isApplied(layout, index, place, SHUFFLE), type, shape, block, into);
   }
 
   private async unpacked(layout: Hdf5Layout, index: ChunkIndex, place: number, size: number, room: Room): Promise<Uint8Array> {
@@ -116,91 +116,4 @@ function isApplied({ filters }: Hdf5Layout, index: ChunkIndex, place: number, fi
 
 function placeIn({ grid }: ChunkIndex, place: readonly number[]): number {
   return place.reduce((sum, along, k) => sum * grid[k] + along, 0);
-}
-
-/** Copies the part of a chunk that belongs to the slab, row by row along the last dimension. */
-function copyPart(
-  bytes: Uint8Array,
-  isShuffled: boolean,
-  type: ArrayVariable['type'],
-  shape: readonly number[],
-  block: Block,
-  into: Float64Array,
-): void {
-  const strides = stridesOf(shape);
-  const inner = shape.length - 1;
-  const values = sizeOf(shape);
-  const length = block.count[inner];
-  const copyRow = (isShuffled ? gatherOf(type, bytes, values, length) : takeOf(type, bytes)) as CopyRow;
-  const index = new Array<number>(inner).fill(0);
-  for (;;) {
-    let from = block.from[inner];
-    let to = block.into;
-    for (let k = 0; k < inner; k++) {
-      from += (block.from[k] + index[k]) * strides[k];
-      to += index[k] * block.intoStride[k];
-    }
-    copyRow(from, into, to, length);
-    let k = inner - 1;
-    while (k >= 0 && ++index[k] === block.count[k]) {
-      index[k] = 0;
-      k--;
-    }
-    if (k < 0) return;
-  }
-}
-
-/** Copies `length` values of a chunk, from its value `from` on, to place `to`. */
-type CopyRow = (from: number, into: Float64Array, to: number, length: number) => void;
-
-/** The chunk's bytes as numbers in their order; null for types that are left to the library. */
-function takeOf(type: ArrayVariable['type'], bytes: Uint8Array): CopyRow | null {
-  const width = widthOf(type);
-  const plain = bytes.byteOffset % Math.max(1, width) === 0 ? bytes : bytes.slice();
-  const make = VIEWS[type];
-  if (make === undefined) return null;
-  const numbers = make(plain.buffer as ArrayBuffer, plain.byteOffset, plain.byteLength / width);
-  return (from, into, to, length) => into.set(numbers.subarray(from, from + length), to);
-}
-
-type Numbers = Float32Array | Float64Array | Int8Array | Uint8Array | Int16Array | Uint16Array | Int32Array | Uint32Array;
-
-const VIEWS: Partial<Record<ArrayVariable['type'], (buffer: ArrayBuffer, offset: number, length: number) => Numbers>> = {
-  int8: (...place) => new Int8Array(...place),
-  uint8: (...place) => new Uint8Array(...place),
-  int16: (...place) => new Int16Array(...place),
-  uint16: (...place) => new Uint16Array(...place),
-  int32: (...place) => new Int32Array(...place),
-  uint32: (...place) => new Uint32Array(...place),
-  float32: (...place) => new Float32Array(...place),
-  float64: (...place) => new Float64Array(...place),
-};
-
-/** The chunk's bytes where byte k of all values stands together, `apart` values each. */
-function gatherOf(type: ArrayVariable['type'], bytes: Uint8Array, apart: number, longest: number): CopyRow | null {
-  if (type === 'int16') return (from, into, to, length) => gatherInt16(bytes, apart, from, into, to, length);
-  if (type === 'uint16') return (from, into, to, length) => gatherUint16(bytes, apart, from, into, to, length);
-  const width = widthOf(type);
-  const numbers = VIEWS[type]?.(new ArrayBuffer(longest * width), 0, longest);
-  if (numbers === undefined || width < 4) return null;
-  const words = new Int32Array(numbers.buffer);
-  const step = width / 4;
-  return (from, into, to, length) => {
-    for (let word = 0; word < step; word++) gatherWords(bytes, apart, from + 4 * word * apart, words, word, step);
-    into.set(length === longest ? numbers : numbers.subarray(0, length), to);
-  };
-}
-
-function gatherInt16(bytes: Uint8Array, apart: number, from: number, into: Float64Array, to: number, length: number): void {
-  for (let k = 0; k < length; k++) into[to + k] = ((bytes[from + k] | (bytes[apart + from + k] << 8)) << 16) >> 16;
-}
-
-function gatherUint16(bytes: Uint8Array, apart: number, from: number, into: Float64Array, to: number, length: number): void {
-  for (let k = 0; k < length; k++) into[to + k] = bytes[from + k] | (bytes[apart + from + k] << 8);
-}
-
-function gatherWords(bytes: Uint8Array, apart: number, from: number, words: Int32Array, first: number, step: number): void {
-  for (let k = first, at = from; k < words.length; k += step, at++) {
-    words[k] = bytes[at] | (bytes[at + apart] << 8) | (bytes[at + 2 * apart] << 16) | (bytes[at + 3 * apart] << 24);
-  }
 }

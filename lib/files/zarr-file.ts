@@ -211,6 +211,16 @@ class ZarrFile implements ArrayFile {
     return texts;
   }
 
+  async filledWith(name: string, start: readonly number[], count: readonly number[]): Promise<number | null> {
+    checkSlab(variableOf(this.variables, name), start, count);
+    const { described, array, prefix, variable } = this.readable(name);
+    if (described.isSharded || variable.type === 'text') return null;
+    for (const { place } of eachBlock(array.chunks, start, count)) {
+      if (await this.pieces.has(prefix + described.chunkKey(place))) return null;
+    }
+    return described.fill;
+  }
+
   async close(): Promise<void> {
     this.cache.dismiss();
     await this.pieces.close();

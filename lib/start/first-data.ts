@@ -14,6 +14,7 @@ import { createPerson } from '../access/sessions.ts';
 import { createSetupToken, createToken } from '../access/tokens.ts';
 import { prepareDemo } from '../jobs/demo/load-demo.ts';
 import { requestRun } from '../jobs/runs.ts';
+import { requestWeatherCheck } from '../jobs/weather-check.ts';
 
 export interface FirstData {
   readonly setupToken: string | null;
@@ -66,6 +67,7 @@ async function makeDemo(): Promise<FirstData> {
     if (grower) await demo.assignGrower(tx, districtId, grower.userId);
   });
   await renewDemoToken(districtId);
+  await requestWeatherCheck(districtId);
   const runs: string[] = [];
   for (const season of demo.seasonCodes) runs.push(await requestRun({ districtId, userId: null }, { season }));
   return shown(demo.district.name, allEnded(districtId, runs));

@@ -4,6 +4,7 @@ import { ChartFrame } from '../../../../_components/chart-frame.tsx';
 import { inUnits, plain, unitOf } from '../../../../_components/figures.ts';
 import { type ErrorUnit, inSentence } from './error-units.ts';
 import styles from './interpolation.module.css';
+import { labelPlaces } from './label-places.ts';
 import { type MapFrame, mapFrame } from './map-frame.ts';
 
 const WIDTH = 760;
@@ -24,6 +25,7 @@ export function ErrorMap({ check, shown, boundary, unit, units }: ErrorMapProps)
   const most = shown.site_errors.reduce((high, { rmse }) => Math.max(high, rmse ?? 0), 0);
   const errors = new Map(shown.site_errors.map((each) => [each.site, each]));
   const marks = check.sites.map((site) => markOf(site, errors.get(site.code), { frame, most, unit }));
+  const places = labelPlaces(marks, WIDTH);
   return (
     <ChartFrame
       id="error-map"
@@ -44,12 +46,12 @@ export function ErrorMap({ check, shown, boundary, unit, units }: ErrorMapProps)
           </text>
         </g>
       ))}
-      {marks.map((mark) => (
-        <text key={mark.code} className={styles.label} transform={`translate(${mark.x + mark.radius + 5} ${mark.y})`}>
-          <tspan x={0} y={-2}>
+      {marks.map((mark, at) => (
+        <text key={mark.code} className={styles.label} transform={`translate(${mark.x + places[at].dx} ${mark.y + places[at].dy})`}>
+          <tspan x={0} y={0}>
             {mark.code}
           </tspan>
-          <tspan x={0} y={12}>
+          <tspan x={0} y={14}>
             {mark.words}
           </tspan>
         </text>
