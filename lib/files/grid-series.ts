@@ -78,7 +78,7 @@ async function readTile(
   let done = 0;
   try {
     for (const [k, slab] of slabs.entries()) {
-      const fetched = await (ahead ?? tile.fetch(slab, cellsOf));
+      const fetched: FetchedSlabs = await (ahead ?? tile.fetch(slab, cellsOf));
       const isSmall = fetched.flat().reduce((sum, { raw }) => sum + raw.length, 0) <= SLAB_NUMBERS;
       ahead = isSmall && k + 1 < slabs.length ? tile.fetch(slabs[k + 1], cellsOf) : null;
       // a failure is met when its turn comes
@@ -136,10 +136,9 @@ class Tile {
 
   /** Counts the numbers of cells of which nothing is stored as missing. */
   passOver(cellsOf: (field: Field) => CellsOfFile): void {
+    const [{ fields, tally }] = this.series.inputs;
     for (const { piece, count } of this.series.steps.runs) {
-      for (const { fields, tally } of this.series.inputs) {
-        for (const { cells } of this.segmentsOf(fields[piece], cellsOf)) tally.declared += cells.length * count;
-      }
+      for (const { cells } of this.segmentsOf(fields[piece], cellsOf)) tally.declared += cells.length * count;
     }
   }
 

@@ -110,16 +110,19 @@ function timeOrder(pieces: readonly TimeAxis[], label: string, findings: Finding
   let repeated = 0;
   for (const piece of order) {
     const { stamps } = pieces[piece];
+    let first = 0;
+    const close = (end: number) => {
+      if (end > first) runs.push({ piece, first, count: end - first });
+      first = end + 1;
+    };
     for (let i = 0; i < stamps.length; i++) {
-      const open = runs.at(-1);
-      if (!(stamps[i] > last)) {
+      if (stamps[i] > last) last = stamps[i];
+      else {
         if (!Number.isNaN(stamps[i])) repeated++;
-        continue;
+        close(i);
       }
-      last = stamps[i];
-      if (open && open.piece === piece && open.first + open.count === i) runs[runs.length - 1] = { ...open, count: open.count + 1 };
-      else runs.push({ piece, first: i, count: 1 });
     }
+    close(stamps.length);
   }
   if (repeated > 0) {
     findings.warn({

@@ -1,54 +1,51 @@
 /**
- * Speed of window reading from NetCDF-4: a 200 × 200 cell window of a year of a large daily grid (585 × 1386 cells, 16-bit, deflated chunks).
+ * Speed of gridded weather: a 200 × 200 cell window of a large daily grid (585 × 1386 cells), in deflated blocks as archives keep them.
  *
  *   node --import tsx test/bench/grid.bench.ts [days]
  *
- * Makes its own file in the system's temporary folder (invented numbers, seeded; about a minute) and reads it several times. Where Python 3
- * with xarray is on the machine, it reads the same window of the same file as often, and the ratio of the medians is printed; ratios within one run
- * compare across machines, absolute figures do not. "stored" is the numbers as they are stored, "unpacked" with scale, offset and
- * missing code applied.
+ * Makes its own files in the system's temporary folder (invented numbers, seeded; a few minutes). First the whole way, from seven variables of a
+ * year to monthly blocks. Then the window alone: where Python 3 with netCDF4 and xarray is on the machine, it makes files of 16-bit and
+ * of floating-point numbers, with and without the shuffle filter, in three shapes of block, and xarray and our reader read each of them in
+ * turn; without it only the unshuffled file of our own writer is read, for that writer has no shuffle filter. Ratios of medians within
+ * one run compare across machines, absolute figures do not. "stored" is the numbers as they are stored (ours are doubles always),
+ * "unpacked" with scale, offset and missing code applied.
  */
-import { spawnSync } from 'node:child_process';
+import { type ChildProcess, spawn } from 'node:child_process';
 import { mkdtempSync, rmSync, statSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
+import { createInterface } from 'node:readline';
+import { fileOnDisk } from '../../lib/files/file-on-disk.ts';
+import { readGridWeather } from '../../lib/files/grid-weather.ts';
 import { openArrayFile } from '../../lib/files/open-array-file.ts';
-import { writeGridFile } from '../support/grid-file.ts';
+import { type GridFileShape, writeGridFile } from '../support/grid-file.ts';
+import { importContext } from '../support/import-context.ts';
 
 const days = Number(process.argv[2] ?? 365);
-const ROWS = 585;
-const COLUMNS = 1386;
-const COUNT = [days, 200, 200];
 const TURNS = 5;
-/** Days read at a time when a district is read: whole chunks. */
+/** Days of files of one block a day, which take longest to make. */
+const MOST_SINGLE_DAYS = 60;
+/** Days read at a time when a district is read: whole blocks. */
 const SLAB_DAYS = 30;
+const SHAPE = { rows: 585, columns: 1386, chunk: [30, 64, 64], part: { rows: [192, 448], columns: [576, 832] } } as const;
+const BLOCKS = ['30 64 64', '1 585 1386', '61 98 231'];
 
-const PYTHON = `
-import sys, time
-try:
-    import xarray
-except ImportError:
-    sys.exit(3)
-path, turns = sys.argv[1], int(sys.argv[2])
-for scaled in (False, True):
-    for turn in range(turns + 1):
-        wall, busy = time.perf_counter(), time.process_time()
-        with xarray.open_dataset(path, mask_and_scale=scaled, decode_times=False) as data:
-            data['tas'][:, 200:400, 600:800].values
-        if turn > 0:
-            print(time.perf_counter() - wall, time.process_time() - busy)
-`;
+/** Names and units as archives of daily weather have them; scales that bring the invented numbers to plausible weather. */
+const YEAR: GridFileShape['variables'] = [
+  { name: 'tmmx', units: 'K', scale: 0.01, offset: 298 },
+  { name: 'tmmn', units: 'K', scale: 0.01, offset: 285 },
+  { name: 'rmax', units: '%', scale: 0.01, offset: 70 },
+  { name: 'rmin', units: '%', scale: 0.01, offset: 35 },
+  { name: 'vs', units: 'm s-1', scale: 0.001, offset: 4 },
+  { name: 'srad', units: 'W m-2', scale: 0.05, offset: 200 },
+  { name: 'pr', units: 'mm', scale: 0.001, offset: 4 },
+];
 
 /** Seconds by the clock, and of processor time over all threads. */
 type Times = readonly [wall: number, busy: number];
 
 function median(values: readonly number[]): number {
   return [...values].sort((a, b) => a - b)[Math.floor(values.length / 2)];
-}
-
-function unpack(values: Float64Array): Float64Array {
-  for (let k = 0; k < values.length; k++) values[k] = values[k] === -32768 ? Number.NaN : values[k] * 0.01 + 280;
-  return values;
 }
 
 async function timed(work: () => Promise<unknown>): Promise<Times> {
@@ -59,67 +56,155 @@ async function timed(work: () => Promise<unknown>): Promise<Times> {
   return [(performance.now() - begin) / 1000, (user + system) / 1e6];
 }
 
+/** The process that runs the other reader. */
+class OtherReader {
+  private readonly lines: AsyncIterator<string>;
+
+  private constructor(private readonly child: ChildProcess) {
+    this.lines = createInterface({ input: child.stdout as NodeJS.ReadableStream })[Symbol.asyncIterator]();
+  }
+
+  /** Null where no Python of the machine has what it takes. */
+  static async start(): Promise<OtherReader | null> {
+    const script = new URL('../support/grid-reader.py', import.meta.url).pathname;
+    for (const python of ['python3', '/usr/bin/python3']) {
+      const child = spawn(python, [script], { stdio: ['pipe', 'pipe', 'inherit'] });
+      child.on('error', () => undefined);
+      const reader = new OtherReader(child);
+      if ((await reader.lines.next()).value === 'ready') return reader;
+    }
+    return null;
+  }
+
+  async ask(command: string): Promise<string> {
+    this.child.stdin?.write(`${command}\n`);
+    const { value, done } = await this.lines.next();
+    if (done) throw new Error(`the other reader ended at: ${command}`);
+    return value;
+  }
+
+  async read(path: string, way: string, dayCount: number): Promise<{ times: Times; sum: number }> {
+    const [wall, busy, sum] = (await this.ask(`read ${path} ${way} ${dayCount}`)).split(' ').map(Number);
+    return { times: [wall, busy], sum };
+  }
+
+  end(): void {
+    this.child.stdin?.end();
+  }
+}
+
+/** Unpacks in place as the other reader does; files of floating-point numbers have nothing to unpack but their missing code. */
+function unpack(values: Float64Array, isPacked: boolean): void {
+  if (!isPacked) return;
+  for (let k = 0; k < values.length; k++) values[k] = values[k] === -32768 ? Number.NaN : values[k] * 0.01 + 280;
+}
+
 /** Opens the file and reads the window, in slabs of at most `slabDays`. */
-async function readWindow(path: string, slabDays: number, finish: (values: Float64Array) => unknown): Promise<void> {
-  const file = await openArrayFile({ name: 'grid.nc', path, bytes: new Uint8Array() });
+async function readWindow(path: string, dayCount: number, slabDays: number, take: (values: Float64Array) => void): Promise<void> {
+  const file = await openArrayFile(fileOnDisk('grid.nc', path));
   if (file === null) throw new Error('the made file is not told as an array file');
-  for (let day = 0; day < days; day += slabDays) {
-    finish(await file.read('tas', [day, 200, 600], [Math.min(slabDays, days - day), 200, 200]));
+  for (let day = 0; day < dayCount; day += slabDays) {
+    take(await file.read('tas', [day, 200, 600], [Math.min(slabDays, dayCount - day), 200, 200]));
   }
   await file.close();
 }
 
-/** The same by xarray, as stored and unpacked; null where there is none. */
-function readByXarray(path: string): readonly (readonly Times[])[] | null {
-  for (const python of ['python3', '/usr/bin/python3']) {
-    const run = spawnSync(python, ['-c', PYTHON, path, String(TURNS)], { encoding: 'utf8' });
-    if (run.status !== 0) continue;
-    const times = run.stdout
-      .trim()
-      .split('\n')
-      .map((line) => line.split(' ').map(Number) as unknown as Times);
-    return [times.slice(0, TURNS), times.slice(TURNS)];
-  }
-  return null;
+async function sumOfWindow(path: string, dayCount: number): Promise<number> {
+  let sum = 0;
+  await readWindow(path, dayCount, dayCount, (values) => {
+    for (const value of values) sum += value;
+  });
+  return sum;
 }
 
-function report(name: string, own: readonly Times[], other: readonly Times[] | undefined): void {
-  const values = COUNT.reduce((product, length) => product * length, 1) / 1e6;
-  const [wall, busy] = [0, 1].map((k) => median(own.map((times) => times[k])));
-  const line = `window ${name}: ${wall.toFixed(3)} s (${busy.toFixed(3)} s of processor), ${(values / wall).toFixed(1)} million values a second`;
-  if (other === undefined) {
-    console.log(line);
-    return;
+/** Reads one file both ways in turn, and prints the medians. */
+async function compare(name: string, path: string, dayCount: number, isPacked: boolean, other: OtherReader | null): Promise<void> {
+  const ways = [
+    ['stored', 'stored', dayCount, () => undefined],
+    ['unpacked', 'unpacked', dayCount, (values: Float64Array) => unpack(values, isPacked)],
+    [`unpacked, ${SLAB_DAYS} days at a time`, 'unpacked', SLAB_DAYS, (values: Float64Array) => unpack(values, isPacked)],
+  ] as const;
+  if (other) {
+    const [own, { sum }] = [await sumOfWindow(path, dayCount), await other.read(path, 'stored', dayCount)];
+    if (Math.abs(own - sum) > 1e-9 * Math.abs(sum)) throw new Error(`${name}: the readers differ: ${own}, ${sum}`);
   }
-  const [otherWall, otherBusy] = [0, 1].map((k) => median(other.map((times) => times[k])));
-  console.log(`${line}; xarray ${otherWall.toFixed(3)} s (${otherBusy.toFixed(3)} s): ratio ${(otherWall / wall).toFixed(2)}`);
+  console.log(`${name}, ${dayCount} days, ${(statSync(path).size / 2 ** 20).toFixed(0)} MiB`);
+  for (const [label, way, slabDays, take] of ways) {
+    const own: Times[] = [];
+    const others: Times[] = [];
+    for (let turn = 0; turn <= TURNS; turn++) {
+      const times = await timed(() => readWindow(path, dayCount, slabDays, take));
+      const otherTimes = (await other?.read(path, way, dayCount))?.times;
+      if (turn === 0) continue;
+      own.push(times);
+      if (otherTimes) others.push(otherTimes);
+    }
+    report(label, own, others);
+  }
+}
+
+function report(label: string, own: readonly Times[], others: readonly Times[]): void {
+  const middle = (all: readonly Times[], k: 0 | 1) => median(all.map((times) => times[k]));
+  const line = `  ${label}: ${middle(own, 0).toFixed(3)} s (${middle(own, 1).toFixed(3)} s of processor)`;
+  if (others.length === 0) return console.log(line);
+  const ratios = ([0, 1] as const).map((k) => (middle(others, k) / middle(own, k)).toFixed(2));
+  console.log(
+    `${line}; xarray ${middle(others, 0).toFixed(3)} s (${middle(others, 1).toFixed(3)} s): ratio ${ratios[0]} (processor ${ratios[1]})`,
+  );
+}
+
+/** The whole way of a year of seven variables. */
+async function readYear(path: string): Promise<void> {
+  const [west, south, east, north] = [-124 + 600 / 24, 49 - 399 / 24, -124 + 799 / 24, 49 - 200 / 24];
+  const context = importContext({ districtBox: [west, south, east, north], timeZone: 'UTC' });
+  let values = 0;
+  let cells = 0;
+  const [wall, busy] = await timed(async () => {
+    const reading = await readGridWeather(
+      [fileOnDisk('year.nc', path)],
+      { margin: 0 },
+      context,
+      async () => undefined,
+      async (block) => {
+        values += block.values.length;
+      },
+    );
+    cells = reading.understood.grid?.cells ?? 0;
+  });
+  console.log(
+    `${YEAR.length} variables to monthly blocks: ${cells} cells, ${(values / 1e6).toFixed(0)} million values, ${wall.toFixed(1)} s ` +
+      `(${busy.toFixed(1)} s of processor); most memory, the making of the file included: ${(process.resourceUsage().maxRSS / 1024).toFixed(0)} MiB`,
+  );
 }
 
 const folder = mkdtempSync(join(tmpdir(), 'grid-bench-'));
+const other = await OtherReader.start();
 try {
+  const year = join(folder, 'year.nc');
+  await writeGridFile(year, { ...SHAPE, days, variables: YEAR });
+  await readYear(year);
   const path = join(folder, 'grid.nc');
-  const shape = { days, rows: ROWS, columns: COLUMNS, chunk: [30, 64, 64] as const };
-  await writeGridFile(path, { ...shape, variables: [{ name: 'tas', units: 'K', scale: 0.01, offset: 280 }] });
-  console.log(`${days} days × ${ROWS} × ${COLUMNS} cells, ${(statSync(path).size / 2 ** 20).toFixed(0)} MiB on disk`);
+  await writeGridFile(path, { ...SHAPE, days, variables: [{ name: 'tas', units: 'K', scale: 0.01, offset: 280 }] });
   // one file stays open, so that the HDF5 library stays loaded, as it does in the other process
-  const keeper = await openArrayFile({ name: 'grid.nc', path, bytes: new Uint8Array() });
-  const ways = [
-    ['as stored', days, () => undefined],
-    ['unpacked', days, unpack],
-    [`unpacked, ${SLAB_DAYS} days at a time`, SLAB_DAYS, unpack],
-  ] as const;
-  const own: Times[][] = ways.map(() => []);
-  for (let turn = 0; turn <= TURNS; turn++) {
-    for (const [k, [, slabDays, finish]] of ways.entries()) {
-      const times = await timed(() => readWindow(path, slabDays, finish));
-      if (turn > 0) own[k].push(times);
+  const keeper = await openArrayFile(fileOnDisk('grid.nc', path));
+  if (other === null) {
+    console.log('no Python 3 with netCDF4 and xarray on this machine: nothing to compare with, and no shuffled files');
+    await compare('int16 plain [30 64 64]', path, days, true, null);
+  } else {
+    for (const block of BLOCKS) {
+      for (const kind of ['int16', 'float32']) {
+        for (const filters of ['plain', 'shuffled']) {
+          const dayCount = block.startsWith('1 ') ? Math.min(days, MOST_SINGLE_DAYS) : days;
+          const copy = join(folder, 'copy.nc');
+          await other.ask(`copy ${path} ${copy} ${kind} ${filters} ${dayCount} ${block}`);
+          await compare(`${kind} ${filters} [${block}]`, copy, dayCount, kind === 'int16', other);
+          rmSync(copy);
+        }
+      }
     }
   }
   await keeper?.close();
-  const other = readByXarray(path);
-  for (const [k, [name]] of ways.entries()) report(name, own[k], other?.[Math.min(k, 1)]);
-  if (other === null) console.log('no Python 3 with xarray on this machine: nothing to compare with');
-  console.log(`memory, the making of the file included: ${(process.memoryUsage.rss() / 2 ** 20).toFixed(0)} MiB`);
 } finally {
+  other?.end();
   rmSync(folder, { recursive: true, force: true });
 }
