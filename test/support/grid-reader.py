@@ -16,7 +16,8 @@ WRITTEN = (slice(192, 448), slice(576, 832))
 
 def copy(source, target, kind, filters, days, *chunk):
     """The part that is written stands in place of what the source leaves out: no block is empty."""
-    days, chunk = int(days), [int(length) for length in chunk]
+    days = int(days)
+    chunk = [min(days, int(chunk[0])), int(chunk[1]), int(chunk[2])]
     with netCDF4.Dataset(source) as old, netCDF4.Dataset(target, 'w') as new:
         shape = old['tas'].shape
         old['tas'].set_auto_maskandscale(False)

@@ -4,6 +4,9 @@ import { TIGHT_SHARE } from '../../../lib/canal/reach-period.ts';
 import type { RunAnswer } from '../../../lib/http/contract/run.ts';
 import { REPORT_CAUTIONS } from '../../../lib/report/cautions.ts';
 import { CLASS_METHODS } from '../../../lib/report/classes.ts';
+import { LONGEST_GAP_IN_TIME } from '../../../lib/weather/gaps.ts';
+import { REGRESSION_LIMITS } from '../../../lib/weather/gaps-regression.ts';
+import { RULES } from '../../../lib/weather/quality/rules.ts';
 import { FALLBACK, FALLBACK_TEXT, type Fallback } from '../../../lib/weather/variable.ts';
 import { DataTable } from '../../_components/data-table.tsx';
 import { Cautions } from '../../_components/empty-state.tsx';
@@ -12,22 +15,13 @@ import { Go } from '../../_components/go.tsx';
 import { Section } from '../../_components/page-head.tsx';
 import { SETTINGS, settingText } from '../../_components/run-words.ts';
 
-/** What is done between the equations: weather to parcels, gaps, canals, classes, and the cautions. */
+/** What is done between the equations: weather to parcels, gaps, checks, canals, classes, and the cautions. */
 export function Rules({ run }: { run: RunAnswer | null }) {
   return (
     <>
       <Interpolation run={run} />
-      <Section
-        id="gaps"
-        title="What stands in for missing weather"
-        note="In the order in which they are tried for each quantity. Every figure that rests on one says so."
-      >
-        <ol>
-          {(Object.keys(FALLBACK) as Fallback[]).map((name) => (
-            <li key={name}>{FALLBACK_TEXT[name]}</li>
-          ))}
-        </ol>
-      </Section>
+      <Gaps />
+      <QualityRules />
       <Canals />
       <Section id="classes" title="Classes of the map">
         <p>
@@ -40,6 +34,67 @@ export function Rules({ run }: { run: RunAnswer | null }) {
         <Cautions which={REPORT_CAUTIONS} />
       </Section>
     </>
+  );
+}
+
+/** What a day that was not measured is made of, in the order of the code. */
+function Gaps() {
+  const { leastR2, leastSlope, greatestSlope, leastDays } = REGRESSION_LIMITS;
+  return (
+    <Section
+      id="gaps"
+      title="What stands in for missing weather"
+      note="Every value that was filled or estimated carries its method, and every figure that rests on one says how much."
+    >
+      <ol>
+        <li>
+          A neighbouring site by regression, y = a + b x, over at least {leastDays} common days, taken with r² of at least {leastR2} and a
+          slope from {leastSlope} to {greatestSlope} (FAO-56 Annex 4). Rain only so.
+        </li>
+        <li>
+          The nearest site or cell of another source, with the mean difference or ratio of their common days taken off (common practice).
+        </li>
+        <li>
+          Temperature: a straight line over at most {LONGEST_GAP_IN_TIME} days. Humidity and radiation: the published estimates (FAO-56
+          chapter 3).
+        </li>
+        <li>Temperature and wind: the normal of the day, the mean of the other years within seven days of it (common practice).</li>
+        <li>What is left: wind 2 m/s, no rain; a site without temperature carries no weight that day (FAO-56 chapter 3).</li>
+      </ol>
+      <h3>What a figure says of its weather</h3>
+      <ul>
+        {(Object.keys(FALLBACK) as Fallback[]).map((name) => (
+          <li key={name}>{FALLBACK_TEXT[name]}</li>
+        ))}
+      </ul>
+    </Section>
+  );
+}
+
+/** The rules of the quality desk with their sources, as the checks use them. */
+function QualityRules() {
+  const rules = Object.entries(RULES).map(([key, rule]) => ({ key, ...rule }));
+  return (
+    <Section
+      id="quality"
+      title="Checks of station weather"
+      note="A flag is a question to a person; it never changes a value. Corrections are layers over the record and can each be undone."
+    >
+      <DataTable
+        caption="Rules of the quality desk"
+        rows={rules}
+        rowKey={(rule) => rule.key}
+        columns={[
+          { key: 'name', head: 'Rule', rowHead: true, cell: (rule) => rule.name },
+          {
+            key: 'about',
+            head: 'Tells of',
+            cell: (rule) => (rule.about === 'day' ? 'the days it names' : 'the instrument or its surroundings'),
+          },
+          { key: 'source', head: 'Source', cell: (rule) => rule.source },
+        ]}
+      />
+    </Section>
   );
 }
 
