@@ -9,7 +9,7 @@ import type { Field } from './grid-fields.ts';
 import { type CellsOfFile, type Slab, slabOf, tileSegments } from './grid-slab.ts';
 import type { Steps } from './grid-steps.ts';
 import type { ValueStore } from './grid-store.ts';
-import { type ReadingPlan, SLAB_NUMBERS, type StepSlab, slabsOf, tilesOf } from './grid-tiles.ts';
+import { AHEAD_NUMBERS, type ReadingPlan, type StepSlab, slabsOf, tilesOf } from './grid-tiles.ts';
 import { type Tally, type Unpacking, unpackStep } from './grid-unpack.ts';
 import type { Segment } from './grid-window.ts';
 
@@ -79,7 +79,7 @@ async function readTile(
   try {
     for (const [k, slab] of slabs.entries()) {
       const fetched: FetchedSlabs = await (ahead ?? tile.fetch(slab, cellsOf));
-      const isSmall = fetched.flat().reduce((sum, { raw }) => sum + raw.length, 0) <= SLAB_NUMBERS;
+      const isSmall = fetched.flat().reduce((sum, { raw }) => sum + raw.length, 0) <= AHEAD_NUMBERS;
       ahead = isSmall && k + 1 < slabs.length ? tile.fetch(slabs[k + 1], cellsOf) : null;
       // a failure is met when its turn comes
       ahead?.catch(() => undefined);

@@ -7,7 +7,9 @@ import type { Steps } from './grid-steps.ts';
 import type { Unpacking } from './grid-unpack.ts';
 
 /** Numbers of a slab. */
-export const SLAB_NUMBERS = 4_000_000;
+const SLAB_NUMBERS = 2_000_000;
+/** Numbers of the largest slab beside which the next is read. */
+export const AHEAD_NUMBERS = 4_000_000;
 /** Numbers of a slab that is one stored block long. */
 const BLOCK_SLAB_NUMBERS = 12_000_000;
 /** Values that are held where cells are read part by part. */

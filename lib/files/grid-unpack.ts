@@ -15,6 +15,8 @@ const KNOWN_CODES = [
   ...[-3276.7, -3276.8, 3276.7, -32767, -32768, 32767, 32766, 65535, -999, -999.9, -9999, -9999.9, -99, -99.9, 9999, 99999, -99999],
   ...[1e20, -1e20, 1e30, 1e15, 1e36, -1e34, 3.4028234663852886e38, -3.4028234663852886e38, 9.969209968386869e36, -2147483648, -2147483647],
 ];
+/** Numbers nearer to zero than this are no code. */
+const LEAST_CODE = 0.99 * Math.min(...KNOWN_CODES.map(Math.abs));
 /** Kinds of impossible numbers told apart in one field. */
 const CODES_KEPT = 8;
 
@@ -258,7 +260,9 @@ function countOutside(tally: Tally, stored: number, value: number, cell: number,
 
 /** True for a number that files use for missing. @example isKnownCode(-3276.699951171875) // true */
 export function isKnownCode(value: number): boolean {
-  return KNOWN_CODES.some((code) => Math.abs(value - code) <= Math.abs(code) * 1e-6);
+  if (Math.abs(value) < LEAST_CODE) return false;
+  for (const code of KNOWN_CODES) if (Math.abs(value - code) <= Math.abs(code) * 1e-6) return true;
+  return false;
 }
 
 /** The impossible numbers of a field: codes for missing with their counts, and how many other values lie outside. */
