@@ -20,7 +20,8 @@ test('every station with its record and its completeness', async ({ page, api })
       .getByRole('table', { name: /^coverage/i })
       .locator('tbody tr')
       .filter({ has: page.getByRole('rowheader', { name: site.code, exact: true }) });
-    const share = (100 * (site.coverage_days.precipitation_mm ?? 0)) / site.day_count;
+    const span = (Date.parse(site.last_day ?? '') - Date.parse(site.first_day ?? '')) / 86_400_000 + 1;
+    const share = (100 * (site.coverage_days.precipitation_mm ?? 0)) / span;
     await expectFigure(coverage.locator('th, td').nth(rain), share, `rain record of ${site.code} [%]`);
   }
 });

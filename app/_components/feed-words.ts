@@ -1,8 +1,8 @@
 /** Feeds in a reader's words. */
 
 const OUTCOMES: Readonly<Record<string, string>> = {
-  new: 'new, imported',
-  changed: 'changed, imported again',
+  new: 'new',
+  changed: 'changed',
   unchanged: 'unchanged',
   absent: 'not there yet',
   failed: 'no answer',
@@ -11,6 +11,19 @@ const OUTCOMES: Readonly<Record<string, string>> = {
 
 export function outcomeWords(outcome: string | null): string {
   return outcome === null ? '–' : (OUTCOMES[outcome] ?? outcome);
+}
+
+const IMPORTS: Readonly<Record<string, string>> = {
+  reading: 'being read',
+  ready: 'waits for a person',
+  applying: 'being applied',
+  applied: 'applied',
+  failed: 'failed',
+};
+
+/** What has become of the import that a feed made. */
+export function importWords(state: string | null): string {
+  return state === null ? 'open' : (IMPORTS[state] ?? state);
 }
 
 /** @example scheduleWords('30 6 * * *') // 'every day at 06:30' */

@@ -63,11 +63,15 @@ export const SETTINGS: readonly SettingWords[] = [
     name: 'Application method where none is given',
     help: 'Taken for parcels without one; its efficiency turns the net into the gross requirement.',
   },
-  { key: 'source', name: 'Weather source', help: 'One source by its name, or every site of the district.' },
+  {
+    key: 'source',
+    name: 'Weather source',
+    help: 'One source by its name; left open, all stations of the district, or its first grid where there are no stations.',
+  },
 ];
 
 export function settingText(value: unknown): string {
-  if (value === null || value === undefined) return 'every source';
+  if (value === null || value === undefined) return 'the stations, or the first grid';
   if (typeof value === 'boolean') return value ? 'yes' : 'no';
   if (value === 'fao56') return 'FAO-56 Penman–Monteith (Eq. 6)';
   if (value === 'asce2005') return 'ASCE 2005 standardized, short surface';

@@ -4,7 +4,19 @@ import { DataTable } from './data-table.tsx';
 import { figure, percent, unitOf } from './figures.ts';
 import { Go } from './go.tsx';
 
-/** Which sites the parcel's weather comes from, and how much of it. */
+type Row = ParcelSeason['weights'][number];
+
+const SERIES_HEADS: Readonly<Record<string, string>> = {
+  air_temperature_max: 'Maximum temperature',
+  air_temperature_min: 'Minimum temperature',
+  vapour_pressure: 'Vapour pressure',
+  solar_radiation: 'Solar radiation',
+  wind_speed: 'Wind',
+  precipitation: 'Rain',
+  reference_et: 'Reference ET',
+};
+
+/** Which sites the parcel’s weather comes from, and how much of it; a column for each series that has weights of its own. */
 export function SiteWeights({
   weights,
   elevation,
@@ -14,6 +26,8 @@ export function SiteWeights({
   elevation: number | null;
   units: UnitSystem;
 }) {
+  const own = [...new Set(weights.flatMap((weight) => Object.keys(weight.series_weights)))];
+  const allOwn = own.filter((name) => name !== 'reference_et').length === Object.keys(SERIES_HEADS).length - 1;
   return (
     <DataTable
       caption="Weather sites behind this parcel"
@@ -26,7 +40,13 @@ export function SiteWeights({
           rowHead: true,
           cell: (weight) => <Go href={`/weather/${encodeURIComponent(weight.site)}`}>{weight.name}</Go>,
         },
-        { key: 'weight', head: 'Weight', numeric: true, cell: (weight) => percent(weight.weight, 1) },
+        ...(allOwn ? [] : [{ key: 'weight', head: 'Weight', numeric: true, cell: (weight: Row) => percent(weight.weight, 1) }]),
+        ...own.map((name) => ({
+          key: name,
+          head: SERIES_HEADS[name] ?? name,
+          numeric: true,
+          cell: (weight: Row) => percent(weight.series_weights[name], 1),
+        })),
         {
           key: 'distance',
           head: 'Distance',

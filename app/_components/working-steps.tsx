@@ -121,7 +121,7 @@ function WeatherIn({ working }: { working: WorkingAnswer }) {
     <Section
       id="sites"
       title="Weather of the day at its sites"
-      note={`Completed values: where a source had none, what stands in its place is named below.${ownWeights ? ' A share beside a value is its weight in a series that has weights of its own; the column Weight holds for the others.' : ''}`}
+      note={`Completed values: where a source had none, what stands in its place is named below.${ownWeights ? ' A share beside a value is its weight in a series that has weights of its own; the column Weight holds for any other.' : ''}`}
     >
       <DataTable
         caption="Weather values by site with their weights"

@@ -1,6 +1,7 @@
 /** Feeds and what they fetched. */
-import { and, asc, desc, eq, inArray, sql } from 'drizzle-orm';
+import { and, asc, desc, eq, getTableColumns, inArray, sql } from 'drizzle-orm';
 import type { Tx } from '../connect.ts';
+import { type ImportState, importJob } from '../schema/import.ts';
 import { feedFetch, weatherFeed } from '../schema/weather.ts';
 import { storable, storableText } from './json-text.ts';
 
@@ -69,10 +70,17 @@ export async function findLastAnswer(tx: Tx, districtId: string, feedId: string,
   return row ?? null;
 }
 
-export function listFetches(tx: Tx, districtId: string, feedId: string, limit: number): Promise<FetchRow[]> {
+/** Newest first, each with the state of the import it made. */
+export function listFetches(
+  tx: Tx,
+  districtId: string,
+  feedId: string,
+  limit: number,
+): Promise<(FetchRow & { importState: ImportState | null })[]> {
   return tx
-    .select()
+    .select({ ...getTableColumns(feedFetch), importState: importJob.state })
     .from(feedFetch)
+    .leftJoin(importJob, and(eq(importJob.districtId, feedFetch.districtId), eq(importJob.importId, feedFetch.importId)))
     .where(and(eq(feedFetch.districtId, districtId), eq(feedFetch.feedId, feedId)))
     .orderBy(desc(feedFetch.at))
     .limit(limit);

@@ -44,7 +44,8 @@ interface Shape {
   readonly types: readonly string[];
   readonly keyOf: (alias: string) => SQL;
   readonly same: (left: string, right: string) => SQL;
-  readonly isKey: (alias: string, image: string) => SQL;
+  /** the key of an image `i` as columns of the table's own types */
+  readonly typedKey: SQL;
   readonly order: SQL;
 }
 
@@ -59,8 +60,7 @@ function shapeOf(name: ImportTable): Shape {
     types: Object.values(key),
     keyOf: (alias) => sql.raw(`jsonb_build_object(${names.map((column) => `'${column}', ${alias}.${column}`).join(', ')})`),
     same: (left, right) => sql.raw(names.map((column) => `${left}.${column} = ${right}.${column}`).join(' and ')),
-    isKey: (alias, image) =>
-      sql.raw(names.map((column) => `${alias}.${column} = (${image}.key ->> '${column}')::${key[column]}`).join(' and ')),
+    typedKey: sql.raw(names.map((column) => `(i.key ->> '${column}')::${key[column]} as ${column}`).join(', ')),
     order: sql.raw(order ?? names[0]),
   };
 }
@@ -187,12 +187,15 @@ export async function removeRows(tx: Tx, own: ImportKey, name: ImportTable, keys
 
 async function deleteImaged(tx: Tx, own: ImportKey, name: ImportTable): Promise<void> {
   const shape = shapeOf(name);
+  // the planner knows nothing of fresh images and would compare each with each
+  await tx.execute(sql`select set_config('enable_nestloop', 'off', true)`);
   await tx.execute(sql`
     delete from ${shape.table} t using (
-      select distinct key from import_before
-      where district_id = ${own.districtId}::uuid and import_id = ${own.importId}::uuid and table_name = ${name}
+      select distinct ${shape.typedKey} from import_before i
+      where i.district_id = ${own.districtId}::uuid and i.import_id = ${own.importId}::uuid and i.table_name = ${name}
     ) b
-    where t.district_id = ${own.districtId}::uuid and ${shape.isKey('t', 'b')}`);
+    where t.district_id = ${own.districtId}::uuid and ${shape.same('t', 'b')}`);
+  await tx.execute(sql`select set_config('enable_nestloop', 'on', true)`);
 }
 
 /** Puts every row-by-row table back as it was before an import. The oldest image of a key counts. Answers the tables touched. */
@@ -239,7 +242,21 @@ export interface LaterImport {
   readonly example: string;
 }
 
-/** The newest import applied after this one that changed a row this one changed; for weather, the same station and month. */
+/**
+ * True where two images of a weather block tell of one site: sites that stood in the block are members of `rows`, those it did not reach are
+ * runs of ordinals in `absent`.
+ */
+function sameSites(): SQL {
+  const runs = (image: string) => sql.raw(`jsonb_array_elements(coalesce(${image}.before -> 'absent', '[]'::jsonb))`);
+  const keys = (image: string) => sql.raw(`jsonb_object_keys(coalesce(${image}.before -> 'rows', '{}'::jsonb))`);
+  const within = (one: string, other: string) =>
+    sql`exists (select 1 from ${keys(one)} k, ${runs(other)} r where k::int between (r ->> 0)::int and (r ->> 1)::int)`;
+  return sql`(exists (select 1 from ${keys('a')} k where jsonb_exists(b.before -> 'rows', k))
+    or ${within('a', 'b')} or ${within('b', 'a')}
+    or exists (select 1 from ${runs('a')} x, ${runs('b')} y where (x ->> 0)::int <= (y ->> 1)::int and (y ->> 0)::int <= (x ->> 1)::int))`;
+}
+
+/** The newest import applied after this one that changed a row this one changed; for weather, the same site and month. */
 export async function findLaterImport(tx: Tx, own: ImportKey): Promise<LaterImport | null> {
   // the planner knows nothing of fresh images and would compare each with each
   await tx.execute(sql`select set_config('enable_nestloop', 'off', true)`);
@@ -254,7 +271,7 @@ export async function findLaterImport(tx: Tx, own: ImportKey): Promise<LaterImpo
     where mine.district_id = ${own.districtId}::uuid and mine.import_id = ${own.importId}::uuid
       and i.state in ('applied', 'undoing') and i.applied_order > mine.applied_order
       and (a.table_name <> ${BLOCK_TABLE}
-        or exists (select 1 from jsonb_object_keys(a.before -> 'rows') k where jsonb_exists(b.before -> 'rows', k)))
+        or ${sameSites()})
     order by i.applied_order desc limit 1`);
   await tx.execute(sql`select set_config('enable_nestloop', 'on', true)`);
   return row ? laterImport(row) : null;
@@ -273,8 +290,13 @@ export async function findLaterImportOf(tx: Tx, own: ImportKey, name: string): P
   return row ? laterImport(row) : null;
 }
 
+/** @example 'the weather of 2023-06 (precipitation_mm)' */
+function blockWords({ month, variable }: { month?: string; variable?: string }): string {
+  return `The weather of ${month?.slice(0, 7) ?? 'a month'} (${variable ?? ''})`;
+}
+
 function laterImport(row: Record<string, string>): LaterImport {
   const key = Object.values(JSON.parse(row.key) as Record<string, unknown>).join(' ');
-  const example = `${row.table_name.replace('_', ' ')} ${key}`.trim();
+  const example = row.table_name === BLOCK_TABLE ? blockWords(JSON.parse(row.key)) : `${row.table_name.replaceAll('_', ' ')} ${key}`.trim();
   return { importId: row.import_id, kind: row.kind, file: row.file ?? '', appliedAt: row.applied_at, example };
 }

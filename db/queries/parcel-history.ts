@@ -122,3 +122,24 @@ export function listParcelShapesAt(
     where p.west <= ${box.east} and p.east >= ${box.west} and p.south <= ${box.north} and p.north >= ${box.south} and ${own}
     order by p.ordinal`);
 }
+
+/** Shapes of some parcels of a run as they stood at its geometry version: from the history where they have changed since. */
+export async function listRunGeometries(
+  tx: Tx,
+  districtId: string,
+  runId: string,
+  codes: readonly string[],
+): Promise<{ code: string; geometry: unknown }[]> {
+  const rows = await tx.execute<{ code: string; geometry: unknown }>(sql`
+    with version as (select geometry_version as v from run where district_id = ${districtId}::uuid and run_id = ${runId}::uuid),
+    old as (
+      select distinct on (h.parcel_code) h.parcel_code as code, h.row -> 'geometry' as geometry from parcel_history h, version
+      where h.district_id = ${districtId}::uuid and h.geometry_version >= version.v and h.parcel_code = any(${textArray(codes)})
+      order by h.parcel_code, h.geometry_version
+    )
+    select code, geometry from old
+    union all
+    select p.code, p.geometry from public.parcel p
+    where p.district_id = ${districtId}::uuid and p.code = any(${textArray(codes)}) and not exists (select 1 from old where old.code = p.code)`);
+  return [...rows];
+}

@@ -50,14 +50,6 @@ export function listReachShapes(tx: Tx, districtId: string) {
     .orderBy(asc(reach.code));
 }
 
-/** Shapes of the named parcels as GeoJSON geometries. */
-export async function listParcelGeometries(tx: Tx, districtId: string, codes: readonly string[]) {
-  return tx
-    .select({ code: parcel.code, geometry: parcel.geometry })
-    .from(parcel)
-    .where(and(eq(parcel.districtId, districtId), sql`${parcel.code} = any(${textArray(codes)})`));
-}
-
 interface TileKey {
   readonly districtId: string;
   readonly layer: string;

@@ -115,7 +115,7 @@ function drySurroundings(
     return {
       ...{ site, variable, rule: 'dew-point-far-below-minimum', severity: 'note', firstDay: from, lastDay: to },
       ...{ value: means[worst], limit: DEW_POINT_BELOW },
-      detail: `Minimum temperature stays ${figureText(means[worst])} °C above the dew point in the driest month ${daysText(observations, from, to)}; over a well-watered surface it is 2 to 3 °C at most. The surroundings are dry, or the humidity sensor reads low: see the offer for dry surroundings.`,
+      detail: `Minimum temperature stays ${figureText(means[worst])} °C above the dew point in the driest month ${daysText(observations, from, to)}; over a well-watered surface it is 2 to 3 °C at most. The surroundings are dry, or the humidity sensor reads low; where rain is scarce too, the desk offers the adjustment of FAO-56 Annex 6.`,
       figures: { unit: '°C' },
     };
   });

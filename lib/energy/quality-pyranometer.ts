@@ -135,11 +135,18 @@ function driftOf(windows: readonly ClearWindow[]): { slope: number; slopeError: 
   return { slope, slopeError: Math.sqrt(residual / (n - 2) / squares) };
 }
 
-/** True where clear days have moved away from the curve by more than chance and by more than 3 % over the record. */
+/** Shortest record that can show a drift [a]. */
+const SHORTEST_YEARS = 0.75;
+
+/**
+ * True where clear days have moved away from the curve by more than chance and by more than 3 % over the record; twice that in a record short of
+ * a year and a half, whose seasons are not yet told from a drift.
+ */
 export function isDrifting({ slope, slopeError, windows }: Pyranometer): boolean {
   if (Number.isNaN(slope) || windows.length === 0) return false;
   const years = (windows[windows.length - 1].last - windows[0].first + 1) / DAYS_OF_YEAR;
-  return years >= 1.5 && Math.abs(slope) > DRIFT_ERRORS * slopeError && Math.abs(slope) * years >= LEAST_DRIFT;
+  const least = years >= 1.5 ? LEAST_DRIFT : 2 * LEAST_DRIFT;
+  return years >= SHORTEST_YEARS && Math.abs(slope) > DRIFT_ERRORS * slopeError && Math.abs(slope) * years >= least;
 }
 
 /** Years whose clear days are off the curve by more than 3 % (note) or 5 % (suspect), and drift. Source: as the rules. */

@@ -107,7 +107,7 @@ export function parcelJoins(context: ImportContext, options: ImportOptions, find
     listUnknown(unknown.method, 'method', 'The run takes the method of the district.', 'note', findings);
     listUnknown(unknown.reach, 'reach', 'Their parcels hang on no canal.', 'warning', findings);
     listUnknown(unknown.turnout, 'turnout', 'They have no reach: their parcels hang on no canal.', 'warning', findings);
-    noteMissing(withoutSoil, 'soil', 'the soil of the district is used', findings);
+    noteMissing(withoutSoil, 'soil', 'they take the soil polygons under them, else the soil of the district', findings);
     noteMissing(withoutMethod, 'method', 'the method of the district is used', findings);
     noteMissing(withoutReach, 'reach', 'their demand reaches no canal', findings);
     if (reaches.size === 0 && parcelCount > withoutReach)

@@ -37,7 +37,7 @@ export function warnLarge({ parcels, rows }: Parcels, findings: FindingList): vo
 export function warnFar({ parcels, rows }: Parcels, context: ImportContext, options: ImportOptions, findings: FindingList): void {
   const stored = options.replace === true ? null : context.districtBox;
   const known = [stored, context.siteBox].filter((box) => box !== null && box !== undefined);
-  const boxes = known.length > 0 ? known : [middleOf(parcels)];
+  const boxes = known.length > 0 && options.replace !== true ? known : [...known, middleOf(parcels)];
   for (const [index, { code, longitude, latitude }] of parcels.entries()) {
     const distance = Math.min(...boxes.map((box) => distanceTo(box, longitude, latitude)));
     if (distance <= FAR) continue;

@@ -32,6 +32,7 @@ export async function openVectorArchive(
   const archive = await openZip(file, findings);
   try {
     const members = archive.members.filter(({ name }) => !NOISE.test(name));
+    if (members.length > MOST_MEMBERS && !members.some(({ name }) => /\.gdb\//i.test(name))) throw crowded(file, members.length);
     if (members.some(({ name }) => /\.gdb\/[^/]+\.gdbtable$/i.test(name))) throw fileGeodatabase(file);
     const shapefiles = members.filter(({ name }) => /\.shp$/i.test(name));
     if (shapefiles.length > 0) return await openShapefiles(file, { archive, members, shapefiles }, options, findings);
@@ -48,6 +49,18 @@ export async function openVectorArchive(
   } finally {
     archive.close();
   }
+}
+
+/** Most members of an archive of layers: a shapefile has up to a dozen. */
+const MOST_MEMBERS = 2000;
+
+function crowded(file: ImportFile, count: number) {
+  return refusal(file.name, {
+    code: 'archive-crowded',
+    message: `The archive has ${count} members; layers are looked for among at most ${MOST_MEMBERS}.`,
+    limit: `${MOST_MEMBERS} members`,
+    advice: 'Pack only the layer into the archive, or send it by itself.',
+  });
 }
 
 function fileGeodatabase(file: ImportFile) {

@@ -30,15 +30,28 @@ export interface WeatherTable {
   readonly offset: number | null;
 }
 
+/** Most tables of one archive: as many as an import takes files. */
+const MOST_TABLES = 400;
+
 /** The tables of a file: itself, a fixed layout written out as a table, or the tables within an archive. */
 export async function weatherTables(file: ImportFile, findings: FindingList): Promise<WeatherTable[]> {
   if (!isZip(file.bytes.subarray(0, 8))) return [fixedLayout(file, findings) ?? { file, place: null, offset: null }];
   const archive = await openZip(file, findings);
   try {
     const tables = archive.members.filter(({ name }) => TABLE_NAME.test(name) && !/(^|\/)(\.|__MACOSX)/.test(name));
+    if (tables.length > MOST_TABLES) {
+      findings.refuse({
+        code: 'too-many-tables',
+        message: `The archive holds ${tables.length} tables; an import takes at most ${MOST_TABLES}.`,
+        file: file.name,
+        limit: `${MOST_TABLES} tables`,
+        advice: 'Put the rows of many small files into few, or split the archive.',
+      });
+      return [];
+    }
     noteOthers(
       file,
-      archive.members.map(({ name }) => name).filter((name) => !tables.some((table) => table.name === name)),
+      archive.members.filter((member) => !tables.includes(member)).map(({ name }) => name),
       findings,
     );
     if (tables.length === 0) {

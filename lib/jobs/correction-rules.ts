@@ -1,5 +1,5 @@
 /** What a decision may be: every refusal says what, where, the limit, and what to do instead. */
-import { addDays, dayNumber } from '../base/civil-date.ts';
+import { addDays, dayNumber, isoDate } from '../base/civil-date.ts';
 import { type Finding, Refused } from '../base/errors.ts';
 import type { CorrectionAct } from '../weather/quality/correction.ts';
 import { figureText, seriesOf } from '../weather/quality/flag.ts';
@@ -47,6 +47,8 @@ function refuse(message: string, column: string, more: Partial<Finding> = {}): n
 export function checkedCorrection(wanted: CorrectionWanted): Omit<StoredCorrection, 'sourceId' | 'ordinal'> {
   const { from, to, act, rule } = wanted;
   if (from > to) refuse(`from ${from} is after to ${to}: give the first day first`, 'from');
+  const today = isoDate(Math.floor(Date.now() / 86_400_000) + 1);
+  if (to > today) refuse(`${to} lies ahead: only days that have passed are corrected`, 'to', { limit: today });
   if (dayNumber(to) - dayNumber(from) >= LONGEST)
     refuse(`${from} to ${to} is longer than ${LONGEST} days`, 'to', { limit: `${LONGEST} d` });
   if (rule !== undefined && !(rule in RULES)) refuse(`"${rule}" is not a rule; known: ${Object.keys(RULES).join(', ')}`, 'rule');

@@ -80,7 +80,7 @@ async function applyInside(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void
   const result = await new Applier(tx, own, row, head, onStep).apply();
   await refuseDangling(tx, own, { before: danglingBefore, doing: 'apply' });
   await onStep('checked');
-  const touched = countsChanged(result.counts) ? await seasonsTouched(tx, own.districtId, result.touched) : [];
+  const touched = countsChanged(result.counts) ? await seasonsTouched(tx, own.districtId, result.touched, validFromOf(row)) : [];
   await markStale(tx, own.districtId, touched, `import of ${row.kind} applied`);
   if (row.kind === 'weather' || row.kind === 'stations') await requestWeatherCheck(own.districtId, undefined, tx);
   const applied = { ...result.counts, seasons: touched, runs: null };
@@ -98,6 +98,12 @@ async function applyInside(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void
   );
   if (!done) throw new Error(`import ${own.importId} was moved while it was applied`);
   await onStep('marked');
+}
+
+/** First day on which the parcels of an import stand, where it says. */
+function validFromOf({ kind, options }: ImportRow): string | null {
+  const { validFrom } = options as { validFrom?: unknown };
+  return kind === 'parcels' && typeof validFrom === 'string' ? validFrom : null;
 }
 
 /** Writes the staged pieces of one import, one after the other. */

@@ -11,9 +11,13 @@ import { requestRun } from './runs.ts';
 
 const LONGEST_MONTH = 31;
 
-/** Codes of the seasons that an import bears on and that have parcels, plantings and weather. */
-export async function seasonsTouched(tx: Tx, districtId: string, touched: Touched): Promise<string[]> {
-  const seasons = await listComputableSeasons(tx, districtId);
+/**
+ * Codes of the seasons that an import bears on and that have parcels, plantings and weather.
+ *
+ * @param since first day on which what it brought stands: seasons that ended before keep the run they have
+ */
+export async function seasonsTouched(tx: Tx, districtId: string, touched: Touched, since: string | null = null): Promise<string[]> {
+  const seasons = (await listComputableSeasons(tx, districtId)).filter((season) => since === null || season.endDate >= since);
   const inSeason = (month: string, season: { startDate: string; endDate: string }) =>
     month <= season.endDate && addDays(month, LONGEST_MONTH) > season.startDate;
   return seasons

@@ -11,6 +11,7 @@ import { checkTree } from './import-land.ts';
 import { laterText, refuseDangling } from './import-references.ts';
 import { startImportRuns } from './import-runs.ts';
 import { refuseLostWeather, restoreBlocks } from './import-weather.ts';
+import { updateSoilShares } from './soil-shares.ts';
 import { markStale } from './stale-runs.ts';
 import { requestWeatherCheck } from './weather-check.ts';
 
@@ -67,6 +68,7 @@ async function restoreAll(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void>
   const tables = await restoreRows(tx, own);
   await onStep('rows');
   await refuseDangling(tx, own, { before: danglingBefore, doing: 'undo' });
+  if (tables.includes('soil_area')) await updateSoilShares(tx, own);
   if (tables.includes('site')) await refuseLostWeather(tx, own.districtId, sites);
   if (tables.includes('reach')) await checkTreeLeft(tx, own.districtId);
   if (tables.some((table) => ['reach', 'parcel', 'service_area'].includes(table))) await countGeometryUp(tx, own.districtId);

@@ -212,16 +212,19 @@ export async function restoreBlocks(tx: Tx, own: ImportKey): Promise<boolean> {
  */
 export async function refuseLostWeather(tx: Tx, districtId: string, before: Awaited<ReturnType<typeof listSiteKeys>>): Promise<void> {
   const now = new Set((await listSiteKeys(tx, districtId)).map((site) => `${site.sourceId} ${site.ordinal}`));
-  for (const site of before) {
-    if (now.has(`${site.sourceId} ${site.ordinal}`)) continue;
-    const blocks = await listBlocksBeyond(tx, districtId, site.sourceId, site.ordinal);
-    const hasWeather = blocks.some((block) =>
-      block.quality
-        .subarray(site.ordinal * block.dayCount * block.steps, (site.ordinal + 1) * block.dayCount * block.steps)
-        .some((q) => q !== 0),
-    );
-    if (hasWeather) {
-      throw new Conflict(`Station "${site.code}" has weather that was imported after it. Undo the weather import first, then this one.`);
-    }
+  const lost = before.filter((site) => !now.has(`${site.sourceId} ${site.ordinal}`));
+  for (const sourceId of new Set(lost.map((site) => site.sourceId))) {
+    const own = lost.filter((site) => site.sourceId === sourceId);
+    const lowest = own.reduce((least, { ordinal }) => Math.min(least, ordinal), Number.POSITIVE_INFINITY);
+    const blocks = await listBlocksBeyond(tx, districtId, sourceId, lowest);
+    const left = own.find(({ ordinal }) => blocks.some((block) => holdsWeather(block, ordinal)));
+    if (!left) continue;
+    throw new Conflict(`Station "${left.code}" has weather that was imported after it. Undo the weather import first, then this one.`);
   }
+}
+
+/** True where a block has a value of a site. */
+function holdsWeather({ dayCount, steps, quality }: { dayCount: number; steps: number; quality: Uint8Array }, ordinal: number): boolean {
+  const length = dayCount * steps;
+  return quality.subarray(ordinal * length, (ordinal + 1) * length).some((code) => code !== 0);
 }

@@ -132,7 +132,8 @@ async function withDecisions(tx: Tx, districtId: string, { stored, rows, sourceI
 /** The site as the numeric rooms take it. */
 function siteOf(row: SiteRow): Site {
   const { code, name, longitude, latitude } = row;
-  return { code, name, longitude, latitude, elevation: nanFromNull(row.elevation), windHeight: nanFromNull(row.windHeight) };
+  // a cell of a grid has no name of its own
+  return { code, name: name || code, longitude, latitude, elevation: nanFromNull(row.elevation), windHeight: nanFromNull(row.windHeight) };
 }
 
 /** Puts blocks of any sources and months into arrays over the sites and days asked for. A block shorter than its source leaves NaN. */

@@ -400,6 +400,56 @@ describe('weather', () => {
     expect((await cells(districtId)).flatMap((left) => [...left.quality]).every((quality) => quality === 0)).toBe(true);
   });
 
+  it('refuses to undo the import that made a month while a later one has written the same days', async () => {
+    const districtId = await newDistrict();
+    await apply(districtId, { kind: 'stations', sites: [site('1'), site('2')] });
+    const first = await apply(districtId, weather([block('2023-02-01', ['1', '2'], () => 1)]));
+    const second = await apply(districtId, weather([block('2023-02-01', ['2'], () => 2)]));
+    await expect(undoImport({ districtId, name: 'test' }, first.importId)).rejects.toThrow(
+      /weather of 2023-02 \(precipitation_mm\) was changed/,
+    );
+    await undo(second);
+    await undo(first);
+    expect(await cells(districtId)).toEqual([]);
+  });
+
+  it('makes a grid with its cells and takes it away whole', async () => {
+    const districtId = await newDistrict();
+    const before = await dumpTables(districtId);
+    const [rows, columns] = [60, 80];
+    const codes = Array.from(
+      { length: rows * columns },
+      (_, i) => `r${String(Math.floor(i / columns)).padStart(3, '0')}c${i % columns}`,
+    ).sort();
+    const staged: StagedImport = {
+      kind: 'weather',
+      source: 'Grid',
+      blocks: [block('2023-02-01', codes, (cell) => cell % 7)],
+      cells: codes.map((code, i) => ({
+        code,
+        row: Math.floor(i / columns),
+        column: i % columns,
+        longitude: -120 + (i % columns) / 100,
+        latitude: 45 + Math.floor(i / columns) / 100,
+        elevation: null,
+      })),
+      grid: {
+        rows,
+        columns,
+        kind: 'rectilinear',
+        x: Array.from({ length: columns }, (_, i) => -120 + i / 100),
+        y: Array.from({ length: rows }, (_, i) => 45 + i / 100),
+        crs: 'EPSG:4326',
+      },
+      rows: 1,
+      sites: codes.length,
+    };
+    const own = await apply(districtId, staged);
+    expect(await rowsOf(districtId, 'select count(*)::int as n from site')).toEqual([{ n: codes.length }]);
+    await undo(own);
+    expect(await dumpTables(districtId)).toEqual(before);
+  });
+
   it('puts a station’s weather where the station is', async () => {
     const districtId = await newDistrict();
     await apply(districtId, { kind: 'stations', sites: [site('1')] }, { source: 'North' });

@@ -1,8 +1,9 @@
 import type { Metadata } from 'next';
-import { answerSites } from '../../../lib/http/answers/weather.ts';
+import { answerSites, answerSources } from '../../../lib/http/answers/weather.ts';
 import { callerInView, runInView } from '../../_components/in-view.ts';
 import { PageHead } from '../../_components/page-head.tsx';
 import { WeatherNav } from '../../_components/weather-nav.tsx';
+import { GridTable } from './grid-table.tsx';
 import { loadSiteSeries } from './load-site-series.ts';
 import { SiteTable } from './site-table.tsx';
 
@@ -10,7 +11,8 @@ export const metadata: Metadata = { title: 'Weather' };
 
 export default async function WeatherPage() {
   const [caller, run] = await Promise.all([callerInView(), runInView()]);
-  const sites = await answerSites(caller);
+  const [sites, sources] = await Promise.all([answerSites(caller), answerSources(caller)]);
+  const grids = sources.filter(({ kind }) => kind === 'grid');
   const series = await loadSiteSeries(caller, sites, run);
   return (
     <div className="page">
@@ -19,7 +21,10 @@ export default async function WeatherPage() {
         lead="Every site the district’s weather comes from, how complete its record is, and the reference ET that follows from it."
       />
       <WeatherNav here="/weather" />
-      <SiteTable sites={sites} series={series} season={run?.season ?? null} units={caller.units} />
+      {sites.length > 0 || grids.length === 0 ? (
+        <SiteTable sites={sites} series={series} season={run?.season ?? null} units={caller.units} />
+      ) : null}
+      {grids.length > 0 ? <GridTable grids={grids} /> : null}
     </div>
   );
 }

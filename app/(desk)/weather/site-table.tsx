@@ -1,3 +1,4 @@
+import { dayNumber } from '../../../lib/base/civil-date.ts';
 import type { UnitSystem } from '../../../lib/base/units.ts';
 import type { SiteAnswer, SiteDay } from '../../../lib/http/contract/rest.ts';
 import { WEATHER_VARIABLES, type WeatherVariable } from '../../../lib/weather/variable.ts';
@@ -94,6 +95,11 @@ function siteColumns(series: SiteTableProps['series'], units: UnitSystem): Colum
   ];
 }
 
+/** Days from the first with anything to the last. */
+function spanDays({ first_day, last_day }: SiteAnswer): number {
+  return first_day && last_day ? dayNumber(last_day) - dayNumber(first_day) + 1 : 1;
+}
+
 function coverageColumns(sites: readonly SiteAnswer[]): Column<SiteAnswer>[] {
   const present = (Object.keys(WEATHER_VARIABLES) as WeatherVariable[]).filter((name) =>
     sites.some((site) => (site.coverage_days[name] ?? 0) > 0),
@@ -104,7 +110,7 @@ function coverageColumns(sites: readonly SiteAnswer[]): Column<SiteAnswer>[] {
       key: name,
       head: WEATHER_VARIABLES[name].term,
       numeric: true,
-      cell: (site: SiteAnswer) => (site.coverage_days[name] ? percent(site.coverage_days[name] / site.day_count, 1) : 'none'),
+      cell: (site: SiteAnswer) => (site.coverage_days[name] ? percent(site.coverage_days[name] / spanDays(site), 1) : 'none'),
     })),
   ];
 }

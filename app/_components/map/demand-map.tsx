@@ -58,7 +58,7 @@ function useChoropleth(given: {
     [values, held, variable, choice, area],
   );
   const breaks = held ?? own;
-  const classes = useMemo(() => (values && breaks ? classIndexes(values, breaks, variable.zeroApart) : null), [values, breaks, variable]);
+  const classes = useMemo(() => (values && breaks ? classIndexes(values, breaks, variable) : null), [values, breaks, variable]);
   return { values, classes, breaks, days, fault };
 }
 

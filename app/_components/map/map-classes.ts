@@ -28,8 +28,14 @@ export interface LegendRow {
   readonly count: number;
 }
 
-/** What rounds to nothing on the screen counts as none: 0.05 mm, 0.05 m³. */
+/** What rounds to nothing on the screen counts as none: 0.05 mm, 0.05 m³, 0.05 % of a share. */
 const NOUGHT_BELOW = 0.05;
+const NOUGHT_SHARE = 0.0005;
+
+function noughtOf({ quantity }: MapVariable): number {
+  return quantity === 'fraction' ? NOUGHT_SHARE : NOUGHT_BELOW;
+}
+
 /** Limits are drawn from at most about this many values, taken evenly. */
 const SAMPLE = 50_000;
 
@@ -57,17 +63,19 @@ function sampleOf({ variable, values, stored, area }: LimitsQuestion): number[] 
   const kept: number[] = [];
   for (let index = 0; index < source.length; index += stride) {
     const value = volume ? (source[index] * area[index % area.length]) / 1000 : source[index];
-    if (Number.isFinite(value) && !(variable.zeroApart && value < NOUGHT_BELOW)) kept.push(value);
+    if (Number.isFinite(value) && !(variable.zeroApart && value < noughtOf(variable))) kept.push(value);
   }
   return kept;
 }
 
 /** Class of each value: 0 … n−1, NOUGHT or NO_VALUE. */
-export function classIndexes(values: Float32Array, breaks: readonly number[], zeroApart: boolean): Uint8Array {
+export function classIndexes(values: Float32Array, breaks: readonly number[], variable: MapVariable): Uint8Array {
+  const { zeroApart } = variable;
+  const nought = noughtOf(variable);
   const classes = new Uint8Array(values.length);
   for (let index = 0; index < values.length; index++) {
     const value = values[index];
-    if (zeroApart && value < NOUGHT_BELOW) classes[index] = NOUGHT;
+    if (zeroApart && value < nought) classes[index] = NOUGHT;
     else {
       const found = classOf(breaks, value);
       classes[index] = found < 0 ? NO_VALUE : found;

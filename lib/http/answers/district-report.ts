@@ -1,8 +1,9 @@
 /** The season of a district put together for its printed report. */
 import type { MultiPolygon, Polygon } from 'geojson';
 import { listMethods, listSoils } from '../../../db/queries/land-read.ts';
+import { listRunGeometries } from '../../../db/queries/parcel-history.ts';
 import { listRunParcelHeads } from '../../../db/queries/run-read.ts';
-import { listParcelGeometries, listReachShapes } from '../../../db/queries/tiles.ts';
+import { listReachShapes } from '../../../db/queries/tiles.ts';
 import type { Caller } from '../../access/caller.ts';
 import { database } from '../../access/database.ts';
 import { nanFromNull } from '../../base/missing.ts';
@@ -60,7 +61,7 @@ async function readLand(caller: Caller, runId: string, rows: readonly ParcelPeri
       { method: methods.get(head.methodCode) ?? head.methodCode, soil: soils.get(head.soilCode) ?? head.soilCode },
     ]);
     const codes = rows.map((row) => row.parcel);
-    const shapes = await listParcelGeometries(tx, districtId, codes);
+    const shapes = await listRunGeometries(tx, districtId, runId, codes);
     const lines = await listReachShapes(tx, districtId);
     return {
       tables: new Map(tables),

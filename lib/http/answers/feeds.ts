@@ -100,7 +100,7 @@ function feedMembers(row: FeedRow, last: FetchRow | undefined): FeedAnswer {
   };
 }
 
-function fetchMembers(row: FetchRow): FetchAnswer {
+function fetchMembers(row: FetchRow & { importState: string | null }): FetchAnswer {
   return {
     id: row.fetchId,
     address: row.address,
@@ -110,6 +110,7 @@ function fetchMembers(row: FetchRow): FetchAnswer {
     size_bytes: row.sizeBytes,
     sha256: row.sha256,
     import_id: row.importId,
+    import_state: row.importState,
     error: row.error,
   };
 }

@@ -57,7 +57,7 @@ export function answerGaps(caller: Caller, wanted: GapsWanted): Promise<GapsAnsw
       source: source.name,
       ...span,
       ...known,
-      sites: filled.sites.map((_, site) => siteRecord(filled, completed, site, window)),
+      sites: shownSites(filled.sites, wanted.site).map((site) => siteRecord(filled, completed, site, window)),
       items: inWindow.map((gap) => rowOf(gap, filled, others)),
     };
   });
@@ -137,6 +137,12 @@ const OBSERVED: ReadonlySet<RecordMethod> = new Set(['measured', 'corrected', 's
 interface Window {
   readonly first: number;
   readonly last: number;
+}
+
+/** Places of every site, or of the one named. */
+function shownSites(sites: FilledObservations['sites'], code: string | undefined): number[] {
+  const all = sites.map((_, site) => site);
+  return code === undefined ? all : all.filter((site) => sites[site].code === code);
 }
 
 function siteRecord(filled: FilledObservations, completed: CompletedWeather, site: number, { first, last }: Window): SiteRecord {

@@ -37,13 +37,15 @@ export function answerMapDescription(caller: Caller, runId: string): Promise<Map
       periods: { week: spans('week'), month: spans('month') },
       parcels: await mapParcels(tx, caller, runId, version),
       reaches: await mapReaches(tx, districtId, runId),
-      sites: (await listSites(tx, districtId)).map(({ code, name, longitude, latitude, elevation }) => ({
-        code,
-        name,
-        longitude,
-        latitude,
-        elevation_m: elevation,
-      })),
+      sites: (await listSites(tx, districtId))
+        .filter(({ kind }) => kind === 'stations')
+        .map(({ code, name, longitude, latitude, elevation }) => ({
+          code,
+          name,
+          longitude,
+          latitude,
+          elevation_m: elevation,
+        })),
       boundary: district.boundary ?? null,
     };
   });

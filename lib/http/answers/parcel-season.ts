@@ -13,6 +13,7 @@ import { geodesicDistance } from '../../geo/geodesic.ts';
 import { loadFrozenSeason } from '../../jobs/frozen-season.ts';
 import { DAILY_VARIABLES, type DailyVariable, type ParcelInput, type SeasonInput } from '../../season/types.ts';
 import { explainDay } from '../../season/working.ts';
+import type { CarriedSeries, SeriesWeights } from '../../weather/variable.ts';
 import type { ParcelDay, ParcelSeason, WorkingAnswer } from '../contract/run.ts';
 import { isStorable } from '../storable-text.ts';
 import { dayOffset, readFinishedRun } from './run.ts';
@@ -61,7 +62,7 @@ export async function answerParcelSeason(caller: Caller, runId: string, code: st
     plantings: input.plantings.map(plantingMembers),
     estimated_share: roundOrNull(new DayReader(parcel, run.dayCount).estimatedShare({ from: 0, to: run.dayCount - 1 }), 4),
     reference_et: season.settings.referenceEt ?? 'at-parcels',
-    weights: input.weights.map((entry) => weightMembers(entry, input, season)),
+    weights: sitesOf(input).map((site) => weightMembers(site, input, season)),
     days: parcelDays(parcel, run),
   };
 }
@@ -78,12 +79,36 @@ function plantingMembers(planting: ParcelInput['plantings'][number]): ParcelSeas
   };
 }
 
-function weightMembers(entry: ParcelInput['weights'][number], parcel: ParcelInput, season: SeasonInput): ParcelSeason['weights'][number] {
-  const site = season.sites[entry.site];
+/** Sites with a weight in any series, those that all series share first. */
+function sitesOf(input: ParcelInput): number[] {
+  const own = Object.values(input.series ?? {}).flatMap((series) => series.weights);
+  return [...new Set([...input.weights, ...own].filter(({ weight }) => weight !== 0).map(({ site }) => site))];
+}
+
+const SERIES_NAMES: Record<CarriedSeries, string> = {
+  airTemperatureMax: 'air_temperature_max',
+  airTemperatureMin: 'air_temperature_min',
+  actualVapourPressure: 'vapour_pressure',
+  solarRadiation: 'solar_radiation',
+  windSpeed2m: 'wind_speed',
+  precipitation: 'precipitation',
+  referenceEt: 'reference_et',
+};
+
+function seriesWeightsOf(place: number, { series }: ParcelInput): Record<string, number> {
+  const own = Object.entries(series ?? {}) as [CarriedSeries, SeriesWeights][];
+  return Object.fromEntries(
+    own.map(([name, { weights }]) => [SERIES_NAMES[name], weights.find(({ site }) => site === place)?.weight ?? 0]),
+  );
+}
+
+function weightMembers(place: number, parcel: ParcelInput, season: SeasonInput): ParcelSeason['weights'][number] {
+  const site = season.sites[place];
   return {
     site: site.code,
     name: site.name,
-    weight: entry.weight,
+    weight: parcel.weights.find((entry) => entry.site === place)?.weight ?? 0,
+    series_weights: seriesWeightsOf(place, parcel),
     distance_km: roundOrNull(geodesicDistance(parcel.longitude, parcel.latitude, site.longitude, site.latitude) / 1000, 2) ?? 0,
     elevation_m: nullFromNaN(site.elevation),
   };

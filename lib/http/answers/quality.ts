@@ -15,7 +15,7 @@ import {
 import { listSites, listWeatherSources } from '../../../db/queries/weather-observations.ts';
 import type { Caller } from '../../access/caller.ts';
 import { database } from '../../access/database.ts';
-import { dayNumber } from '../../base/civil-date.ts';
+import { dayNumber, isIsoDate } from '../../base/civil-date.ts';
 import { Malformed, NotFound } from '../../base/errors.ts';
 import { nullFromNaN, roundOrNull } from '../../base/missing.ts';
 import type { CorrectionWanted } from '../../jobs/correction-rules.ts';
@@ -44,6 +44,7 @@ export interface FlagPage {
 
 /** A page of flags that fit the filter, the gravest first. */
 export async function answerFlags(caller: Caller, { limit, cursor, ...filter }: FlagFilter & Paged, csv = false): Promise<FlagPage> {
+  for (const date of [filter.from, filter.to]) if (date && !isIsoDate(date)) throw new Malformed(`"${date}" is not a day of the calendar`);
   if (filter.from && filter.to && filter.from > filter.to) throw new Malformed(`from ${filter.from} is after to ${filter.to}`);
   const [offset] = readCursor(cursor, z.tuple([z.number().int().min(0)])) ?? [0];
   const size = pageLimit({ limit }, csv, USUAL_ROWS);

@@ -1,5 +1,5 @@
 /** Documents of a run: tables and shapes, written as the reader takes them. */
-import { listParcelGeometries } from '../../../db/queries/tiles.ts';
+import { listRunGeometries } from '../../../db/queries/parcel-history.ts';
 import type { Caller } from '../../access/caller.ts';
 import { database } from '../../access/database.ts';
 import type { UnitSystem } from '../../base/units.ts';
@@ -13,7 +13,7 @@ export async function* parcelsAsGeoJson(caller: Caller, runId: string, wanted: S
   let separator = '';
   yield '{"type":"FeatureCollection","features":[';
   for await (const rows of eachRunParcels(caller, runId, wanted)) {
-    const shapes = await readShapes(caller, rows);
+    const shapes = await readShapes(caller, runId, rows);
     for (const row of rows) {
       const feature = { type: 'Feature', id: row.parcel, geometry: shapes.get(row.parcel) ?? null, properties: answerIn(units, row) };
       yield `${separator}\n${JSON.stringify(feature)}`;
@@ -23,9 +23,9 @@ export async function* parcelsAsGeoJson(caller: Caller, runId: string, wanted: S
   yield '\n]}\n';
 }
 
-async function readShapes(caller: Caller, rows: readonly ParcelPeriod[]): Promise<Map<string, unknown>> {
+async function readShapes(caller: Caller, runId: string, rows: readonly ParcelPeriod[]): Promise<Map<string, unknown>> {
   const codes = rows.map((row) => row.parcel);
-  const shapes = await database().inDistrict(caller.districtId, (tx) => listParcelGeometries(tx, caller.districtId, codes));
+  const shapes = await database().inDistrict(caller.districtId, (tx) => listRunGeometries(tx, caller.districtId, runId, codes));
   return new Map(shapes.map((shape) => [shape.code, shape.geometry]));
 }
 

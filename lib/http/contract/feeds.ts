@@ -66,6 +66,7 @@ export const fetchAnswer = z
     size_bytes: z.number().nullable(),
     sha256: z.string().nullable(),
     import_id: z.string().nullable(),
+    import_state: z.string().nullable().meta({ description: 'what has become of the import; "ready" waits for a person' }),
     error: z.string().nullable(),
   })
   .meta({ id: 'FeedFetch' });

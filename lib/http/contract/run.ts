@@ -38,7 +38,7 @@ export const runSettings = z
       .string()
       .nullable()
       .default(usual.source)
-      .meta({ description: 'weather source by name; null takes every site of the district' }),
+      .meta({ description: 'weather source by name; null takes all stations, or the first grid where there are none' }),
   })
   .meta({ id: 'RunSettings' });
 
@@ -171,7 +171,18 @@ export const parcelSeason = z
     reference_et: z
       .enum(['at-parcels', 'given', 'hourly-sum', 'at-sites'])
       .meta({ description: 'where the reference ET was computed, or taken from' }),
-    weights: z.array(z.object({ site: z.string(), name: z.string(), weight: z.number(), distance_km: z.number(), elevation_m: n })),
+    weights: z.array(
+      z.object({
+        site: z.string(),
+        name: z.string(),
+        weight: z.number().meta({ description: 'in every series that has no weights of its own' }),
+        series_weights: z
+          .record(z.string(), z.number())
+          .meta({ description: 'weights of the series that have their own: reference_et, precipitation …' }),
+        distance_km: z.number(),
+        elevation_m: n,
+      }),
+    ),
     days: z.array(parcelDay),
   })
   .meta({ id: 'ParcelSeason' });

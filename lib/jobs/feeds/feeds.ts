@@ -25,7 +25,8 @@ export async function makeFeed(who: FeedActor, wanted: FeedWanted): Promise<Feed
     const district = await findDistrict(tx, who.districtId);
     if (!district) throw new NotFound('this district is gone');
     checkFeed(wanted, district.code);
-    const nextAt = wanted.enabled === false ? null : nextTime(wanted.schedule, district.timeZone, new Date());
+    const due = nextTime(wanted.schedule, district.timeZone, new Date());
+    const nextAt = wanted.enabled === false ? null : due;
     const feed = await insertFeed(tx, who.districtId, { ...wanted, nextAt, createdBy: who.name });
     if (!feed) throw new Conflict(`There is a feed named "${wanted.name}" already: give another name, or change that one.`);
     if (nextAt) await putTurn(tx, feed);
@@ -41,7 +42,8 @@ export async function changeFeed(who: FeedActor, feedId: string, change: Partial
     if (!feed || !district) throw notFound(feedId);
     const merged = { ...feed, ...change };
     checkFeed(merged, district.code);
-    const nextAt = merged.enabled ? nextTime(merged.schedule, district.timeZone, new Date()) : null;
+    const due = nextTime(merged.schedule, district.timeZone, new Date());
+    const nextAt = merged.enabled ? due : null;
     const changed = await updateFeed(tx, who.districtId, feedId, { ...change, nextAt, failures: 0 });
     if (!changed) throw notFound(feedId);
     if (nextAt) await putTurn(tx, changed);

@@ -3,6 +3,7 @@ import { createHash } from 'node:crypto';
 import { createReadStream } from 'node:fs';
 import { copyFile, open, readdir, realpath, stat } from 'node:fs/promises';
 import { basename, dirname, join, resolve, sep } from 'node:path';
+import { setTimeout as sleep } from 'node:timers/promises';
 import { environment } from '../../access/environment.ts';
 import { Refused } from '../../base/errors.ts';
 import { HEAD_BYTES } from '../../files/content-kind.ts';
@@ -46,21 +47,33 @@ export function checkPattern(pattern: string): void {
     throw new Refused(`"${pattern}" has a star in a folder's name: a star may stand only in the file's name.`);
 }
 
-/** Files of a filled pattern that have come to rest, by name. */
+/** Files of a filled pattern, by name; those that were changed a moment ago are waited for once. */
 export async function listFolder(root: string, pattern: string): Promise<FolderFile[]> {
+  const first = await listRested(root, pattern);
+  if (!first.restless) return first.files;
+  await sleep(REST_MS);
+  return (await listRested(root, pattern)).files;
+}
+
+async function listRested(root: string, pattern: string): Promise<{ files: FolderFile[]; restless: boolean }> {
   checkPattern(pattern);
   const folder = join(root, dirname(pattern));
   const wanted = matcher(basename(pattern));
   const names = (await readdir(folder).catch(() => [])).filter((name) => wanted.test(name)).sort();
   const files: FolderFile[] = [];
+  let restless = false;
   for (const name of names.slice(0, MOST_FILES)) {
     const path = await insideOnly(root, join(folder, name));
     if (path === null) continue;
     const info = await stat(path);
-    if (!info.isFile() || Date.now() - info.mtimeMs < REST_MS) continue;
+    if (!info.isFile()) continue;
+    if (Date.now() - info.mtimeMs < REST_MS) {
+      restless = true;
+      continue;
+    }
     files.push({ path, name, mark: `${info.size}-${info.mtimeMs}-${info.ctimeMs}` });
   }
-  return files;
+  return { files, restless };
 }
 
 /** The real path, or null where a link leads out of the folder. */

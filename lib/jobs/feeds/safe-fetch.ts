@@ -78,8 +78,15 @@ export function checkAddress(address: string): URL {
     throw new Refused(`"${address}" is ${url.protocol}//: only https and http are asked.`);
   if (url.username || url.password) throw new Refused('The address carries a name or password: leave it out; feeds are asked without one.');
   const host = bareHost(url);
-  if (isIP(host) && !isAllowed(host, host)) throw privateHost(host);
+  if (isIP(host) ? !isAllowed(host, host) : LOCAL_NAMES.test(host) && !isNamed(host)) throw privateHost(host);
   return url;
+}
+
+/** Names that never lead to a public address. Source: RFC 6761, RFC 6762 and RFC 8375 (recalled). */
+const LOCAL_NAMES = /(^|\.)(localhost|local|internal|home\.arpa)$/i;
+
+function isNamed(host: string): boolean {
+  return environment().TILLWATER_FEED_HOSTS.some((entry) => entry.toLowerCase() === host.toLowerCase());
 }
 
 function bareHost(url: URL): string {

@@ -72,7 +72,7 @@ export function ParcelView({ run, season, crops, history, query, weekStart, unit
       <Section
         id="weather"
         title="Where the weather comes from"
-        note="Each site counts by its weight; temperatures are corrected for the difference in elevation."
+        note="Each site counts by its weight, series by series where they have weights of their own; temperatures are corrected for the difference in elevation."
       >
         <SiteWeights weights={season.weights} elevation={season.elevation_m} units={units} />
         <EstimatedShare share={season.estimated_share} of="the days" />

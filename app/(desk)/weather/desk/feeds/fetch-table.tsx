@@ -1,7 +1,7 @@
 import type { FeedAnswer, FetchAnswer } from '../../../../../lib/http/contract/feeds.ts';
 import { DataTable } from '../../../../_components/data-table.tsx';
 import { moment } from '../../../../_components/date-words.ts';
-import { outcomeWords } from '../../../../_components/feed-words.ts';
+import { importWords, outcomeWords } from '../../../../_components/feed-words.ts';
 import { Go } from '../../../../_components/go.tsx';
 import { sizeWords } from '../../../../_components/import-words.ts';
 import { Section } from '../../../../_components/page-head.tsx';
@@ -40,7 +40,7 @@ export function FetchTable({ feed, fetches, timeZone }: FetchTableProps) {
             {
               key: 'import',
               head: 'Import',
-              cell: (fetch) => (fetch.import_id ? <Go href={`/imports/${fetch.import_id}`}>open</Go> : '–'),
+              cell: (fetch) => (fetch.import_id ? <Go href={`/imports/${fetch.import_id}`}>{importWords(fetch.import_state)}</Go> : '–'),
             },
             {
               key: 'error',

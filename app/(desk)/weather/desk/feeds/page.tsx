@@ -14,6 +14,14 @@ export const metadata: Metadata = { title: 'Weather feeds' };
 
 export default async function FeedsPage({ searchParams }: { searchParams: Promise<Query> }) {
   const [caller, query] = await Promise.all([callerInView(), searchParams]);
+  if (caller.parcels !== null) {
+    return (
+      <div className="page narrow">
+        <PageHead title="Weather feeds" crumbs={[['/weather', 'Weather']]} />
+        <p className="notice">Feeds belong to the whole district. Growers may not see them.</p>
+      </div>
+    );
+  }
   const feeds = await answerFeeds(caller);
   const chosen = feeds.find((feed) => feed.id === one(query, 'feed')) ?? feeds[0];
   const fetches = chosen ? await answerFetches(caller, chosen.id) : [];

@@ -66,7 +66,7 @@ function SpanForm({ answer, asked }: { answer: GapsAnswer | null; asked: Asked }
         </select>
       </label>
       <label>
-        Cell of a grid <input type="text" name="site" size={10} defaultValue={asked.site ?? ''} />
+        Site or cell <input type="text" name="site" size={10} defaultValue={asked.site ?? ''} />
       </label>
       <label>
         From <input type="date" name="from" defaultValue={asked.from ?? answer?.from ?? ''} />
@@ -186,7 +186,7 @@ function ShareTable({ sites }: { sites: readonly SiteRecord[] }) {
 /** How much of a site's record was not measured. */
 function shareWords(share: number | null): string {
   if (share === null) return '';
-  if (share === 0) return 'measured throughout';
+  if (share === 0) return 'nothing filled or estimated';
   return share < 0.005 ? 'under 1 % filled, estimated or missing' : `${percent(share)} filled, estimated or missing`;
 }
 

@@ -34,7 +34,7 @@ export function InterpolationView({ check, shown, boundary, query, units }: Inte
       <Section
         id="methods"
         title={`${shown.term}: error of each way`}
-        note={`${check.sites.length} stations${check.source === 'stations' ? '' : ` of ${check.source}`}, ${dateRange(check.from, check.to)}. Only measured values are held against; a run with automatic weather takes the way marked here.`}
+        note={`${check.sites.length} stations${check.source === 'stations' ? '' : ` of ${check.source}`}, ${dateRange(check.from, check.to)}. Estimates are held against measured values only; the neighbours they come from may be filled on some days. A run with automatic weather takes the way marked here.`}
       >
         <MethodTable shown={shown} query={query} unit={unit} />
       </Section>

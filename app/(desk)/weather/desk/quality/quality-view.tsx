@@ -28,11 +28,13 @@ interface QualityViewProps {
 /** The quality desk: what the checks found, what was decided on it, and what is offered. */
 export function QualityView({ checks, flags, corrections, query, mayAct, timeZone }: QualityViewProps) {
   const stations = checks.filter(({ kind }) => kind === 'stations');
+  const checked = stations.some(({ checked_at }) => checked_at !== null);
   const sites = [...new Set(stations.flatMap(({ counts }) => counts.map(({ site }) => site)))].sort();
   return (
     <div className="page">
       <PageHead
         title="Weather quality"
+        crumbs={[['/weather', 'Weather']]}
         lead="What the published checks found in the record of each station, and what was decided on it. Values are in the units of the record."
       >
         {mayAct ? (
@@ -72,7 +74,7 @@ export function QualityView({ checks, flags, corrections, query, mayAct, timeZon
       <Section id="corrections" title="Corrections" note="The newest first. Of two on one day the later one stands.">
         <CorrectionList corrections={corrections} mayAct={mayAct} timeZone={timeZone} />
       </Section>
-      {stations.length > 0 ? (
+      {checked ? (
         <>
           <Section
             id="pyranometers"
@@ -108,7 +110,7 @@ function CheckFacts({ checks, timeZone }: { checks: readonly CheckAnswer[]; time
 
 function checkWords(check: CheckAnswer, timeZone: string): string {
   if (check.kind === 'grid') return 'a grid; its cells have no instruments and are not checked.';
-  if (!check.checked_at) return 'not checked yet: a check follows each change of its weather, or ask for one with Check again.';
+  if (!check.checked_at) return 'not checked yet: a check follows each change of its weather.';
   const { impossible, suspect, note } = check.open;
   const span = check.first_day && check.last_day ? `${check.first_day} to ${check.last_day}` : 'no days';
   return `${check.sites} ${check.sites === 1 ? 'station' : 'stations'}, ${span}, checked ${moment(check.checked_at, timeZone)}. Open: ${impossible} that cannot be, ${suspect} suspect, ${note} ${note === 1 ? 'note' : 'notes'}; settled: ${check.settled}.`;

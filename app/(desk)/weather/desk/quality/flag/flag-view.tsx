@@ -73,7 +73,7 @@ export function FlagView({ flag, series, decision, mayAct, timeZone }: FlagViewP
           <CorrectionForm
             {...{ source: flag.source, site: flag.site, variable: flag.variable, unit: series.unit }}
             {...{ from: flag.first_day, to: flag.last_day, rule: flag.rule }}
-            act={factor === null ? (flag.severity === 'impossible' ? 'reject' : 'accept') : 'factor'}
+            act={factor === null ? (/reject/i.test(flag.detail) ? 'reject' : 'accept') : 'factor'}
             amount={factor ?? undefined}
           />
         </Section>
