@@ -170,7 +170,8 @@ describe('decisions', () => {
     ['no amount', { act: 'factor' }, /needs an amount/],
     ['an unknown rule', { act: 'accept', rule: 'nothing' }, /is not a rule/],
     ['days out of order', { act: 'reject', from: '2024-03-12' }, /is after to/],
-    ['days without a record', { act: 'reject', from: '2030-01-01', to: '2030-01-02' }, /nothing is stored/],
+    ['days without a record', { act: 'reject', from: '1990-01-01', to: '1990-01-02' }, /nothing is stored/],
+    ['days ahead', { act: 'replace', amount: 20, from: '2999-01-01', to: '2999-01-02' }, /lies ahead/],
     ['values outside the period', { act: 'replace', values: { '2024-03-12': 20 } }, /is outside 2024-03-11 to 2024-03-11/],
   ])('refuse %s in words', async (_, wanted, words) => {
     const response = await post({ ...SPIKE, ...wanted });

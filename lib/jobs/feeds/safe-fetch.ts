@@ -115,7 +115,7 @@ function namesHost(entry: string, host: string, address: ipaddr.IPv4 | ipaddr.IP
 }
 
 /** Resolves a name and hands out only addresses that may be asked: the connection is made to one of these and no other. */
-const guardedLookup: LookupFunction = (host, options, done) => {
+export const guardedLookup: LookupFunction = (host, options, done) => {
   resolve(host, { ...options, all: true }, (error, addresses) => {
     if (error) return done(error, '');
     const allowed = addresses.filter(({ address }) => isAllowed(host, address));
