@@ -146,8 +146,12 @@ describe('an address', () => {
 
   it('is not asked where a name leads inside the network', async () => {
     await expect(feedOf({ template: `http://localhost:${new URL(base).port}/x.csv` })).rejects.toThrow('localhost is not a public address');
+    process.env.TILLWATER_FEED_HOSTS = '';
+    rereadEnvironment();
     const found = await new Promise<Error | null>((resolve) => guardedLookup('localhost', { all: true }, (error) => resolve(error)));
     expect(found?.message, 'resolved to the loopback, and handed out to nobody').toContain('localhost is not a public address');
+    process.env.TILLWATER_FEED_HOSTS = '127.0.0.1';
+    rereadEnvironment();
   });
 
   it('is not taken beyond the limit of an upload, however its length is stated', async () => {
