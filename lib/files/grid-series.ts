@@ -4,6 +4,7 @@
  * A slab holds a few million numbers at most. Where the stored blocks are long in time the cells are read part by part instead, so that no
  * block is unpacked twice.
  */
+
 import type { Bins } from './grid-bins.ts';
 import type { Field } from './grid-fields.ts';
 import { type CellsOfFile, type Slab, slabOf, tileSegments } from './grid-slab.ts';
@@ -12,6 +13,7 @@ import type { ValueStore } from './grid-store.ts';
 import { AHEAD_NUMBERS, type ReadingPlan, type StepSlab, slabsOf, tilesOf } from './grid-tiles.ts';
 import { type Tally, type Unpacking, unpackStep } from './grid-unpack.ts';
 import type { Segment } from './grid-window.ts';
+import { relieveMemory } from './relieve-memory.ts';
 
 /** One field of a quantity, over all its files. */
 export interface SeriesInput {
@@ -84,6 +86,7 @@ async function readTile(
       // a failure is met when its turn comes
       ahead?.catch(() => undefined);
       await tile.use(slab, fetched);
+      relieveMemory();
       done += slab.count;
       await progress(done);
     }

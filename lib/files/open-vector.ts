@@ -1,12 +1,12 @@
 /**
  * A vector file of any format → a layer in WGS 84. The format is told by content; the coordinate system by the file, or by the options.
  */
-import { closeSync, openSync, readSync } from 'node:fs';
 import type { Geometry } from 'geojson';
 import type { Finding } from '../base/errors.ts';
 import { TillwaterError } from '../base/errors.ts';
-import { type ContentKind, contentKind, contentWords, HEAD_BYTES } from './content-kind.ts';
+import { type ContentKind, contentKind, contentWords } from './content-kind.ts';
 import { isCrsFault, type Projection, projectionOf } from './crs.ts';
+import { headOf } from './file-head.ts';
 import { type FindingList, shown } from './finding-list.ts';
 import { openFlatGeobuf } from './flatgeobuf.ts';
 import { openGeoJson } from './geojson.ts';
@@ -153,15 +153,4 @@ function tellTransformation({ name, transformation, accuracy, gridAccuracy }: Pr
       advice: 'Reproject the layer to WGS 84 with software that has the grid-shift file of the country, and import that.',
     });
   else findings.note({ code: gridAccuracy === null ? 'reprojected' : 'grid-shift-not-used', ...told });
-}
-
-function headOf(file: ImportFile): Uint8Array {
-  if (file.path === undefined) return file.bytes.subarray(0, HEAD_BYTES);
-  const head = Buffer.alloc(HEAD_BYTES);
-  const handle = openSync(file.path, 'r');
-  try {
-    return head.subarray(0, readSync(handle, head, 0, HEAD_BYTES, 0));
-  } finally {
-    closeSync(handle);
-  }
 }

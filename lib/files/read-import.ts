@@ -1,9 +1,9 @@
 /**
  * The front door for files: bytes of a kind → what was understood, what was found, a preview, and rows ready to apply.
  */
-import { closeSync, openSync, readSync } from 'node:fs';
 import { readCanals } from './canals.ts';
-import { type ContentKind, contentKind, HEAD_BYTES } from './content-kind.ts';
+import { type ContentKind, contentKind } from './content-kind.ts';
+import { headOf } from './file-head.ts';
 import { FINDING_LIMIT, FindingList } from './finding-list.ts';
 import { checkOptions } from './import-options.ts';
 import { readParcels } from './parcels.ts';
@@ -128,16 +128,5 @@ async function holdsArrays(file: ImportFile): Promise<boolean> {
     return members.some(({ name }) => /(^|\/)(\.z(group|array|metadata)|zarr\.json)$|\.(nc4?|cdf|h5|hdf5?|tiff?)$/i.test(name));
   } catch {
     return false;
-  }
-}
-
-function headOf(file: ImportFile): Uint8Array {
-  if (file.path === undefined) return file.bytes.subarray(0, HEAD_BYTES);
-  const head = Buffer.alloc(HEAD_BYTES);
-  const handle = openSync(file.path, 'r');
-  try {
-    return head.subarray(0, readSync(handle, head, 0, HEAD_BYTES, 0));
-  } finally {
-    closeSync(handle);
   }
 }

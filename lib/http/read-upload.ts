@@ -1,14 +1,13 @@
 /** Reading a multipart upload within a limit, part by part onto disk, so that its size is never the process's. */
-import { createHash } from 'node:crypto';
-import { createReadStream, createWriteStream } from 'node:fs';
+import { createReadStream } from 'node:fs';
 import { join } from 'node:path';
 import { Readable, Transform } from 'node:stream';
 import { pipeline } from 'node:stream/promises';
 import busboy from 'busboy';
 import { Malformed, TooLarge, UnknownKind } from '../base/errors.ts';
-import { HEAD_BYTES } from '../files/content-kind.ts';
 import type { UploadedFile } from '../jobs/imports.ts';
 import { makeReadingFolder, removeReadingFolder } from '../jobs/reading-folder.ts';
+import { streamToFile } from '../jobs/stream-to-file.ts';
 import { requireStorable } from './storable-text.ts';
 
 interface Upload {
@@ -112,20 +111,8 @@ function parserOf(type: string): busboy.Busboy {
 }
 
 async function takeFile(stream: Readable, name: string, path: string): Promise<UploadedFile> {
-  const hash = createHash('sha256');
-  const heads: Buffer[] = [];
-  let size = 0;
-  const watch = new Transform({
-    transform(part: Buffer, _encoding, done) {
-      hash.update(part);
-      if (size < HEAD_BYTES) heads.push(part);
-      size += part.byteLength;
-      done(null, part);
-    },
-  });
-  await pipeline(stream, watch, createWriteStream(path));
-  const head = Buffer.concat(heads).subarray(0, HEAD_BYTES);
-  return { name, size, sha256: hash.digest('hex'), head, content: createReadStreamOf(path) };
+  const { size, sha256, head } = await streamToFile(stream, path);
+  return { name, size, sha256, head, content: createReadStreamOf(path) };
 }
 
 /** A file's bytes, opened when they are asked for. */

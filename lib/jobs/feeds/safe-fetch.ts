@@ -2,22 +2,19 @@
  * Fetching an address that a user gave, from inside the service's own network: only public addresses are asked, whatever a name resolves to
  * and wherever a redirect leads, unless whoever runs the service has named the host (TILLWATER_FEED_HOSTS).
  */
-import { createHash } from 'node:crypto';
 import { lookup as resolve } from 'node:dns';
-import { createWriteStream } from 'node:fs';
 import { request as httpRequest, type IncomingMessage } from 'node:http';
 import { request as httpsRequest } from 'node:https';
 import { isIP, type LookupFunction } from 'node:net';
-import { Transform } from 'node:stream';
-import { pipeline } from 'node:stream/promises';
 import ipaddr from 'ipaddr.js';
 import { environment } from '../../access/environment.ts';
 import { Refused } from '../../base/errors.ts';
+import { streamToFile, type WrittenFile } from '../stream-to-file.ts';
 
 export interface Fetched {
   readonly status: number;
   /** null when nothing new came */
-  readonly file: { readonly path: string; readonly size: number; readonly sha256: string; readonly head: Uint8Array } | null;
+  readonly file: WrittenFile | null;
   readonly etag: string | null;
   readonly lastModified: string | null;
   /** seconds the server asked to wait */
@@ -36,7 +33,6 @@ interface Asking {
 
 const REDIRECTS = 5;
 const IDLE_MS = 30_000;
-const HEAD = 4096;
 
 /**
  * Gets an address into a file, if it has changed.
@@ -153,19 +149,8 @@ async function take(response: IncomingMessage, { path, limit, signal }: Asking):
     response.destroy();
     throw tooLarge(limit);
   }
-  const hash = createHash('sha256');
-  const heads: Buffer[] = [];
-  let size = 0;
-  const watch = new Transform({
-    transform(part: Buffer, _encoding, done) {
-      hash.update(part);
-      if (size < HEAD) heads.push(part);
-      size += part.length;
-      done(size > limit ? tooLarge(limit) : null, part);
-    },
-  });
-  await pipeline(response, watch, createWriteStream(path), { signal });
-  return { ...told, file: { path, size, sha256: hash.digest('hex'), head: Buffer.concat(heads).subarray(0, HEAD) } };
+  const file = await streamToFile(response, path, { refuse: (size) => (size > limit ? tooLarge(limit) : null), signal });
+  return { ...told, file };
 }
 
 function tooLarge(limit: number): Refused {
