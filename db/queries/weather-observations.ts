@@ -3,21 +3,24 @@ import { and, asc, eq, gte, inArray, lte, type SQL, sql } from 'drizzle-orm';
 import type { Tx } from '../connect.ts';
 import { site, weatherBlock, weatherSource } from '../schema/weather.ts';
 
+/** A site with the name and kind of its source. */
+export const SITE_COLUMNS = {
+  sourceId: site.sourceId,
+  source: weatherSource.name,
+  kind: weatherSource.kind,
+  ordinal: site.ordinal,
+  code: site.code,
+  name: site.name,
+  longitude: site.longitude,
+  latitude: site.latitude,
+  elevation: site.elevation,
+  windHeight: site.windHeight,
+};
+
 /** Sites with the name of their source, in the order of sources and of rows in their blocks. */
 export function listSites(tx: Tx, districtId: string, source?: string | null) {
   return tx
-    .select({
-      sourceId: site.sourceId,
-      source: weatherSource.name,
-      kind: weatherSource.kind,
-      ordinal: site.ordinal,
-      code: site.code,
-      name: site.name,
-      longitude: site.longitude,
-      latitude: site.latitude,
-      elevation: site.elevation,
-      windHeight: site.windHeight,
-    })
+    .select(SITE_COLUMNS)
     .from(site)
     .innerJoin(weatherSource, and(eq(weatherSource.districtId, site.districtId), eq(weatherSource.sourceId, site.sourceId)))
     .where(and(eq(site.districtId, districtId), source ? eq(weatherSource.name, source) : undefined))

@@ -2,6 +2,7 @@
 import { and, asc, count, eq, gt, gte, lte, max, min, sql } from 'drizzle-orm';
 import type { Tx } from '../connect.ts';
 import { site, weatherBlock, weatherSource } from '../schema/weather.ts';
+import { SITE_COLUMNS } from './weather-observations.ts';
 
 /** Sources in the order in which they stand in for one another, with their number of sites. */
 export function listSourcesWithSites(tx: Tx, districtId: string) {
@@ -43,19 +44,7 @@ export function listSitePage(tx: Tx, districtId: string, wanted: { sourceId: num
 /** One site by its code, of a source by name or of the first that has it; null when there is none. */
 export async function findSite(tx: Tx, districtId: string, code: string, source?: string) {
   const [row] = await tx
-    .select({
-      sourceId: site.sourceId,
-      source: weatherSource.name,
-      kind: weatherSource.kind,
-      ordinal: site.ordinal,
-      code: site.code,
-      name: site.name,
-      longitude: site.longitude,
-      latitude: site.latitude,
-      elevation: site.elevation,
-      windHeight: site.windHeight,
-      zone: site.zone,
-    })
+    .select({ ...SITE_COLUMNS, zone: site.zone })
     .from(site)
     .innerJoin(weatherSource, and(eq(weatherSource.districtId, site.districtId), eq(weatherSource.sourceId, site.sourceId)))
     .where(and(eq(site.districtId, districtId), eq(site.code, code), source === undefined ? undefined : eq(weatherSource.name, source)))

@@ -13,7 +13,6 @@ import type { ValueStore } from './grid-store.ts';
 import { AHEAD_NUMBERS, type ReadingPlan, type StepSlab, slabsOf, tilesOf } from './grid-tiles.ts';
 import { type Tally, type Unpacking, unpackStep } from './grid-unpack.ts';
 import type { Segment } from './grid-window.ts';
-import { relieveMemory } from './relieve-memory.ts';
 
 /** One field of a quantity, over all its files. */
 export interface SeriesInput {
@@ -86,7 +85,6 @@ async function readTile(
       // a failure is met when its turn comes
       ahead?.catch(() => undefined);
       await tile.use(slab, fetched);
-      relieveMemory();
       done += slab.count;
       await progress(done);
     }

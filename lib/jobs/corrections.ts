@@ -1,4 +1,5 @@
 /** Decisions of the quality desk: made, previewed and undone. Each is a layer over the raw record, with its reason and its maker. */
+
 import type { Tx } from '../../db/connect.ts';
 import { findWholeDistrict } from '../../db/queries/district-read.ts';
 import {
@@ -12,6 +13,7 @@ import {
   settleFlags,
 } from '../../db/queries/quality.ts';
 import { findStandingSettings } from '../../db/queries/run-state.ts';
+import { markRunsStale } from '../../db/queries/stale-runs.ts';
 import { listSites, type SiteRow } from '../../db/queries/weather-observations.ts';
 import { database } from '../access/database.ts';
 import { addDays, dayNumber, isIsoDate } from '../base/civil-date.ts';
@@ -27,7 +29,6 @@ import { type CorrectionWanted, checkedCorrection, refuseImpossible } from './co
 import { seasonsTouched } from './import-runs.ts';
 import { loadObservations } from './observations.ts';
 import { requestRun } from './runs.ts';
-import { markStale } from './stale-runs.ts';
 import { requestWeatherCheck } from './weather-check.ts';
 
 interface Who {
@@ -184,7 +185,7 @@ async function follow(tx: Tx, districtId: string, row: CorrectionRow, place: Sit
   const standing: string[] = [];
   for (const season of touched) if (await findStandingSettings(tx, districtId, season)) standing.push(season);
   const what = done === 'made' ? 'weather corrected' : 'weather correction undone';
-  await markStale(tx, districtId, standing, `${what} at ${place?.code ?? 'a station'}`);
+  await markRunsStale(tx, districtId, standing, `${what} at ${place?.code ?? 'a station'}`);
   return standing;
 }
 

@@ -2,10 +2,12 @@
  * The job that applies an import, and the one that undoes it: each one transaction, so that a process killed at any moment leaves the
  * district either as it was or with all of it, and doing either again changes nothing.
  */
+
 import type { Tx } from '../../db/connect.ts';
 import type { ImportKey, RowChanges } from '../../db/queries/import-before.ts';
 import { countGeometryUp, listDangling } from '../../db/queries/import-land.ts';
 import { changeImport, findImport, holdDistrict, type ImportRow, type ImportState, nextAppliedOrder } from '../../db/queries/import-row.ts';
+import { markRunsStale } from '../../db/queries/stale-runs.ts';
 import { database } from '../access/database.ts';
 import { Refused, TillwaterError } from '../base/errors.ts';
 import type { GridShape } from '../weather/variable.ts';
@@ -31,7 +33,6 @@ import { performUndo } from './import-undo.ts';
 import { applyBlocks, applyCells, applySites } from './import-weather.ts';
 import type { JobData } from './queue.ts';
 import { updateSoilShares } from './soil-shares.ts';
-import { markStale } from './stale-runs.ts';
 import { requestWeatherCheck } from './weather-check.ts';
 
 export interface ImportApplyData extends JobData {
@@ -81,7 +82,7 @@ async function applyInside(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void
   await refuseDangling(tx, own, { before: danglingBefore, doing: 'apply' });
   await onStep('checked');
   const touched = countsChanged(result.counts) ? await seasonsTouched(tx, own.districtId, result.touched, validFromOf(row)) : [];
-  await markStale(tx, own.districtId, touched, `import of ${row.kind} applied`);
+  await markRunsStale(tx, own.districtId, touched, `import of ${row.kind} applied`);
   if (row.kind === 'weather' || row.kind === 'stations') await requestWeatherCheck(own.districtId, undefined, tx);
   const applied = { ...result.counts, seasons: touched, runs: null };
   const done = await changeImport(

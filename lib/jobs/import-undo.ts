@@ -1,9 +1,11 @@
 /** Undoing an import: every row it changed is put back as it was, in one transaction. */
+
 import type { Tx } from '../../db/connect.ts';
 import { findLaterImport, type ImportKey, restoreRows } from '../../db/queries/import-before.ts';
 import { countGeometryUp, listDangling } from '../../db/queries/import-land.ts';
 import { changeImport, dropBefore, findImport, holdDistrict } from '../../db/queries/import-row.ts';
 import { listSiteKeys } from '../../db/queries/import-weather.ts';
+import { markRunsStale } from '../../db/queries/stale-runs.ts';
 import { database } from '../access/database.ts';
 import { Conflict, TillwaterError, TreeError } from '../base/errors.ts';
 import type { OnStep } from './import-apply.ts';
@@ -12,7 +14,6 @@ import { laterText, refuseDangling } from './import-references.ts';
 import { startImportRuns } from './import-runs.ts';
 import { refuseLostWeather, restoreBlocks } from './import-weather.ts';
 import { updateSoilShares } from './soil-shares.ts';
-import { markStale } from './stale-runs.ts';
 import { requestWeatherCheck } from './weather-check.ts';
 
 /** @throws Conflict naming the import that must be undone first */
@@ -44,7 +45,7 @@ async function undoInside(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void>
   await dropBefore(tx, own.districtId, own.importId);
   const understood = row.understood as { applied?: { seasons?: string[] } };
   if (row.kind === 'weather' || row.kind === 'stations') await requestWeatherCheck(own.districtId, undefined, tx);
-  await markStale(tx, own.districtId, understood.applied?.seasons ?? [], `import of ${row.kind} undone`);
+  await markRunsStale(tx, own.districtId, understood.applied?.seasons ?? [], `import of ${row.kind} undone`);
   const done = await changeImport(
     tx,
     { ...own, from: ['undoing'] },
