@@ -93,10 +93,11 @@ for (const shown of SCREENS) {
       test.setTimeout(240_000);
       const path = shown.path(await knownOf(api));
       for (const theme of THEMES) {
+        await page.setViewportSize(DESKTOP);
+        await open(page, path, theme);
         for (const [size, viewport] of Object.entries(SIZES)) {
           const name = `${shown.name}-${size}-${theme}`;
           await page.setViewportSize(viewport);
-          await open(page, path, theme);
           await expect(page.getByRole('heading', { level: 1 }), `${name}: one first heading`).toHaveCount(1);
           expect.soft(await overflowOf(page), `${name}: nothing wider than the window`).toBeNull();
           await screen(page, name);

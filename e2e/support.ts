@@ -72,7 +72,8 @@ export interface Api {
 
 function apiOver(request: APIRequestContext): Api {
   const get = async <Answer>(path: string): Promise<Answer> => {
-    const response = await request.get(path);
+    // a kept connection may be closed by the other end just as it is used again; reading is safe to repeat
+    const response = await request.get(path, { maxRetries: 2 });
     expect(response.status(), `GET ${path}: ${response.ok() ? '' : await response.text()}`).toBe(200);
     return (await response.json()) as Answer;
   };

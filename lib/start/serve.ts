@@ -65,6 +65,8 @@ const server = createServer((request, response) => {
 // a large upload on a slow line may take long; an idle or stalled connection may not
 server.requestTimeout = 15 * 60_000;
 server.headersTimeout = 30_000;
+// longer than a reverse proxy or a client commonly keeps an idle connection (60 s): whoever closes first, it should not be us in the middle of a request
+server.keepAliveTimeout = 75_000;
 
 server.listen(PORT, HOST, () => {
   log().info({ host: HOST, port: PORT }, 'serving');
