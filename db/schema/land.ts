@@ -1,5 +1,10 @@
 import { boolean, date, doublePrecision, index, integer, jsonb, pgTable, primaryKey, text, timestamp, uuid } from 'drizzle-orm/pg-core';
+import type { ApplicationMethod, Planting, Soil } from '../../lib/season/types.ts';
 import { district } from './district.ts';
+
+type SoilProfile = Pick<Soil, 'layers' | 'saturation' | 'texture' | 'percolationRate' | 'capillary'>;
+type MethodSystem = Pick<ApplicationMethod, 'minimumDepth' | 'flow' | 'efficiencyByDepth'>;
+type PlantingPractice = Pick<Planting, 'irrigation' | 'mulch' | 'canopy' | 'preIrrigation' | 'germination'>;
 
 const owner = () =>
   uuid('district_id')
@@ -89,6 +94,8 @@ export const soil = pgTable(
     totalEvaporableWater: doublePrecision('total_evaporable_water_mm').notNull(),
     curveNumber: doublePrecision('curve_number'),
     rootLimit: doublePrecision('root_limit_m'),
+    /** layers, saturation, texture, percolation rate, capillary properties: the optional members of lib/season Soil */
+    profile: jsonb('profile').notNull().$type<SoilProfile>().default({}),
     source: text('source').notNull(),
   },
   (t) => [primaryKey({ columns: [t.districtId, t.code] })],
@@ -105,6 +112,8 @@ export const applicationMethod = pgTable(
     underCanopy: boolean('under_canopy').notNull().default(false),
     maximumDailyDepth: doublePrecision('maximum_daily_depth_mm').notNull(),
     triggerFraction: doublePrecision('trigger_fraction').notNull(),
+    /** limits of the system and efficiency by depth: the optional members of lib/season ApplicationMethod */
+    system: jsonb('system').notNull().$type<MethodSystem>().default({}),
     source: text('source').notNull(),
   },
   (t) => [primaryKey({ columns: [t.districtId, t.code] })],
@@ -168,8 +177,59 @@ export const planting = pgTable(
     harvestDate: date('harvest_date'),
     cutDates: jsonb('cut_dates').notNull().$type<string[]>().default([]),
     areaShare: doublePrecision('area_share').notNull().default(1),
+    /** irrigation rule, mulch, canopy, pre-irrigation, germination: the optional members of lib/season Planting */
+    practice: jsonb('practice').notNull().$type<PlantingPractice>().default({}),
   },
   (t) => [primaryKey({ columns: [t.districtId, t.seasonCode, t.parcelCode, t.sequence] })],
+);
+
+/** Water put on a parcel on a day, as the district recorded it: volume at the turnout or field edge, gross. */
+export const delivery = pgTable(
+  'delivery',
+  {
+    districtId: owner(),
+    parcelCode: text('parcel_code').notNull(),
+    date: date('date').notNull(),
+    volume: doublePrecision('volume_m3').notNull(),
+  },
+  (t) => [primaryKey({ columns: [t.districtId, t.parcelCode, t.date] })],
+);
+
+export type FieldQuantity =
+  | 'water_content_m3_m3'
+  | 'root_zone_depletion_mm'
+  | 'water_table_depth_m'
+  | 'soil_salinity_ds_m'
+  | 'water_salinity_ds_m'
+  | 'efficiency';
+
+/** Something measured, or given, at a parcel on a day. `depth` is the lower edge of the soil it holds for [m], 0 where depth means nothing. */
+export const fieldMeasurement = pgTable(
+  'field_measurement',
+  {
+    districtId: owner(),
+    parcelCode: text('parcel_code').notNull(),
+    date: date('date').notNull(),
+    quantity: text('quantity').notNull().$type<FieldQuantity>(),
+    depth: doublePrecision('depth_m').notNull().default(0),
+    value: doublePrecision('value').notNull(),
+  },
+  (t) => [primaryKey({ columns: [t.districtId, t.parcelCode, t.date, t.quantity, t.depth] })],
+);
+
+/** Mean of an image over a parcel on a day: a vegetation index, or the fraction of the ground covered. */
+export const imageMean = pgTable(
+  'image_mean',
+  {
+    districtId: owner(),
+    parcelCode: text('parcel_code').notNull(),
+    date: date('date').notNull(),
+    quantity: text('quantity').notNull().$type<'vegetation_index' | 'fraction_covered'>(),
+    value: doublePrecision('value').notNull(),
+    /** share of the parcel's area that the image saw without cloud, 0–1 */
+    seenShare: doublePrecision('seen_share').notNull(),
+  },
+  (t) => [primaryKey({ columns: [t.districtId, t.parcelCode, t.date, t.quantity] })],
 );
 
 /** Foreign crop codes of a file, and the crop of ours each stands for. Kept, so that the next file is mapped already. */

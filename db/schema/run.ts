@@ -51,6 +51,8 @@ export const run = pgTable(
     /** since when an input has changed under it; null while it stands on what the district has */
     staleSince: timestamp('stale_since', { withTimezone: true }),
     staleReason: text('stale_reason'),
+    /** where its band stands: { state, members, seed, ...}; null when none was asked for */
+    band: jsonb('band'),
     error: text('error'),
     createdBy: text('created_by'),
     createdAt: timestamp('created_at', { withTimezone: true }).notNull().defaultNow(),
@@ -94,6 +96,12 @@ export const runParcel = pgTable(
     daily: bytea('daily'),
     /** FALLBACK bits by day: Uint32 LE, or Uint16 LE in runs of kernel version 1 */
     flags: bytea('flags'),
+    /** Float64 LE [planting × 4 stages × 2]: ETc and ETc adj [mm]; lib/season SeasonOutput */
+    stageEt: bytea('stage_et'),
+    /** Int32 LE [planting × 5]: first day of each stage and first day after the last */
+    stageDays: bytea('stage_days'),
+    /** lib/season InitialWater as JSON: what the season leaves in the soil */
+    closing: jsonb('closing'),
   },
   (t) => [
     primaryKey({ columns: [t.districtId, t.runId, t.position] }),
@@ -137,6 +145,25 @@ export const runReach = pgTable(
     daily: bytea('daily').notNull(),
   },
   (t) => [primaryKey({ columns: [t.districtId, t.runId, t.ordinal] })],
+);
+
+/**
+ * How sure the numbers of a run are: Float32 LE [quantile × period × place], quantiles P10, P50, P90; places are the parcels of the run
+ * by position, its reaches by ordinal, or the district (one).
+ */
+export const runBand = pgTable(
+  'run_band',
+  {
+    districtId: owner(),
+    runId: uuid('run_id').notNull(),
+    level: text('level').notNull().$type<'parcel' | 'reach' | 'district'>(),
+    variable: text('variable').notNull(),
+    period: text('period').notNull().$type<'week' | 'month' | 'season'>(),
+    periodCount: integer('period_count').notNull(),
+    placeCount: integer('place_count').notNull(),
+    values: bytea('values').notNull(),
+  },
+  (t) => [primaryKey({ columns: [t.districtId, t.runId, t.level, t.variable, t.period] })],
 );
 
 /** Encoded vector tiles, immutable per geometry version. */

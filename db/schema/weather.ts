@@ -30,6 +30,8 @@ export const weatherSource = pgTable(
     sourceId: integer('source_id').notNull(),
     name: text('name').notNull(),
     kind: text('kind').notNull().$type<'stations' | 'grid'>().default('stations'),
+    /** what its values are: measured, or a forecast of days to come, which never stands in for a measured day */
+    role: text('role').notNull().$type<'observed' | 'forecast'>().default('observed'),
     /** lib/weather GridShape as JSON; null for stations */
     grid: jsonb('grid'),
     /** place in the order in which sources stand in for one another, from 1 */

@@ -14,8 +14,33 @@ export interface RunSettings {
   fill_gaps: boolean;
   lapse_rate_c_per_m: number;
   initial_depletion: number;
+  /** how the soil begins: at `initial_depletion`, as measured, as the season before left it, or after a spin-up */
+  initial_state: 'fraction' | 'measured' | 'carry-over' | 'spin-up';
+  /** days stepped before the season when the soil is spun up */
+  spin_up_days: number;
+  coefficient: 'dual' | 'single';
   irrigate: boolean;
+  /** water as each planting's rule asks, as recorded, or as recorded to date and by the rule from then on */
+  water: 'rule' | 'recorded' | 'recorded-then-rule';
   runoff: boolean;
+  antecedent_moisture: 'average' | 'five-day-rain' | 'surface-layer';
+  snow: boolean;
+  frozen_ground: boolean;
+  capillary_rise: boolean;
+  salinity: 'off' | 'stress' | 'stress-and-leaching';
+  /** of the irrigation water where a parcel has none of its own [dS m⁻¹] */
+  water_salinity_ds_m: number;
+  fallow: 'bare' | 'weeds';
+  /** vegetation index or cover from images replaces the curve where a parcel has any */
+  observed_cover: boolean;
+  /** days past the last observation: none, by forecast where there is one and then the normal of the day, or then an analogue year */
+  ahead: 'refuse' | 'normal' | 'analogue';
+  analogue_year: number | null;
+  /** name of the forecast source; null takes the district's first */
+  forecast_source: string | null;
+  /** members of the band; 0 for none */
+  band_members: number;
+  band_seed: number;
   default_soil: string;
   default_method: string;
   source: string | null;
@@ -31,8 +56,25 @@ export const DEFAULT_RUN_SETTINGS: RunSettings = {
   fill_gaps: true,
   lapse_rate_c_per_m: 0.0065,
   initial_depletion: 0.3,
+  initial_state: 'fraction',
+  spin_up_days: 365,
+  coefficient: 'dual',
   irrigate: true,
+  water: 'rule',
   runoff: true,
+  antecedent_moisture: 'average',
+  snow: false,
+  frozen_ground: false,
+  capillary_rise: false,
+  salinity: 'off',
+  water_salinity_ds_m: 1,
+  fallow: 'bare',
+  observed_cover: false,
+  ahead: 'normal',
+  analogue_year: null,
+  forecast_source: null,
+  band_members: 0,
+  band_seed: 1,
   default_soil: 'loam',
   default_method: 'furrow',
   source: null,
@@ -45,6 +87,14 @@ export function seasonSettings(settings: RunSettings): SeasonSettings {
     lapseRate: settings.elevation_trend === 'none' ? 0 : settings.lapse_rate_c_per_m,
     irrigate: settings.irrigate,
     runoff: settings.runoff,
+    coefficient: settings.coefficient,
+    antecedentMoisture: settings.antecedent_moisture,
+    snow: settings.snow,
+    frozenGround: settings.frozen_ground,
+    capillaryRise: settings.capillary_rise,
+    salinity: settings.salinity,
+    water: settings.water,
+    fallow: settings.fallow,
     ...(isAtSites(settings.reference_et) ? { referenceEt: settings.reference_et } : {}),
   };
 }

@@ -78,7 +78,14 @@ function joined(input: SeasonInput, parts: [number, number][], outputs: SeasonOu
     daily.set(output.daily, parts[k][0] * size);
     flags.set(output.flags, parts[k][0] * input.dayCount);
   }
-  return { daily, flags, maxBalanceResidual: Math.max(...outputs.map(({ maxBalanceResidual }) => maxBalanceResidual)) };
+  return {
+    daily,
+    flags,
+    stageEt: new Float64Array(0),
+    stageDays: new Int32Array(0),
+    closing: [],
+    maxBalanceResidual: Math.max(...outputs.map(({ maxBalanceResidual }) => maxBalanceResidual)),
+  };
 }
 
 const sharedCopies = new WeakMap<CompletedWeather, CompletedWeather>();

@@ -54,7 +54,15 @@ export function runSeason(input: SeasonInput, options: { readonly keep?: 'stored
     flags.set(season.flags, p * days);
     exact?.set(season.daily, p * size);
   }
-  return { daily, maxBalanceResidual: worst, flags, dailyExact: exact };
+  return {
+    daily,
+    maxBalanceResidual: worst,
+    flags,
+    dailyExact: exact,
+    stageEt: new Float64Array(0),
+    stageDays: new Int32Array(0),
+    closing: [],
+  };
 }
 
 /** Rounds the parcel's day rows to storage: `storedValue` of every one, written so that it costs little. */

@@ -56,7 +56,22 @@ export interface Mix {
 }
 
 /** Bits of `StripCurve.mark`. */
-export const MARK = { planted: 1, firstDay: 2, mayIrrigate: 4 } as const;
+export const MARK = {
+  planted: 1,
+  firstDay: 2,
+  /** the rule of the planting may call for water on its own account: depletion, or deficit */
+  mayIrrigate: 4,
+  /** water is put on today if there is any depletion: interval, daily replacement */
+  due: 8,
+  /** water is what `prescribed` says and nothing else */
+  recorded: 16,
+  /** bunds are up: water above field capacity is held */
+  ponded: 32,
+  /** `prescribed` is a refill down to the scheduling depth instead of a depth */
+  refill: 64,
+  /** first day of a drained field after ponding */
+  drained: 128,
+} as const;
 
 /** A strip's crops over the run, each [day]; overwritten by the next strip. */
 export interface StripCurve {
@@ -67,7 +82,33 @@ export interface StripCurve {
   /** depth irrigation is scheduled over, see `scheduleDepth`; 0 where nothing is planted */
   readonly scheduleDepth: Float64Array;
   readonly tableFraction: Float64Array;
+  /** TAW of the root zone [mm], through the layers of the soil */
+  readonly available: Float64Array;
+  /** water the soil holds between wilting point and field capacity down to the scheduling depth [mm] */
+  readonly scheduleAvailable: Float64Array;
+  /** given fraction of ground covered fc (orchards, images); NaN: from Kcb (FAO-56 Eq. 76) */
+  readonly covered: Float64Array;
+  /** factor on Ke for mulch, 1 without */
+  readonly evaporationShare: Float64Array;
+  /** Ks of salinity, 1 without */
+  readonly saltStress: Float64Array;
+  /** most that rises from the water table [mm d⁻¹], 0 without */
+  readonly capillaryMost: Float64Array;
+  /** share of RAW at which the rule starts an irrigation; above 1 the crop runs short on purpose */
+  readonly triggerShare: Float64Array;
+  /** share of the depletion that an irrigation takes away, 1 = to field capacity */
+  readonly refillShare: Float64Array;
+  /** depth of an application of fixed depth [mm net]; 0: refill */
+  readonly fixedDepth: Float64Array;
+  /** water given whatever the soil says [mm]: net for pre-irrigation and germination; gross where `MARK.recorded` */
+  readonly prescribed: Float64Array;
+  /** 0 initial … 3 late; 0 where nothing is planted */
+  readonly stage: Uint8Array;
+  /** index of the planting in its parcel's list; −1 where nothing is planted */
+  readonly planting: Int16Array;
   readonly mark: Uint8Array;
+  /** water the soil holds down to the deepest root of the run [mm] */
+  deepestAvailable: number;
 }
 
 export interface PackedSeason {
@@ -176,6 +217,19 @@ function emptyCurve(days: number): StripCurve {
     rootDepth: row(),
     scheduleDepth: row(),
     tableFraction: row(),
+    available: row(),
+    scheduleAvailable: row(),
+    covered: row(),
+    evaporationShare: row(),
+    saltStress: row(),
+    capillaryMost: row(),
+    triggerShare: row(),
+    refillShare: row(),
+    fixedDepth: row(),
+    prescribed: row(),
+    stage: new Uint8Array(days),
+    planting: new Int16Array(days),
     mark: new Uint8Array(days),
+    deepestAvailable: Number.NaN,
   };
 }

@@ -109,6 +109,9 @@ export const FALLBACK = {
   elevationAssumed: 1 << 10,
   climateAssumedStandard: 1 << 24,
   referenceEtFromDailyWeather: 1 << 25,
+  aheadFromForecast: 1 << 26,
+  aheadFromNormal: 1 << 27,
+  aheadFromAnalogue: 1 << 28,
 } as const;
 export type Fallback = keyof typeof FALLBACK;
 
@@ -140,6 +143,9 @@ export const FALLBACK_TEXT: Record<Fallback, string> = {
   elevationAssumed: 'site elevation unknown: taken from the district setting',
   climateAssumedStandard: 'no temperature: crop coefficients kept at their standard climate',
   referenceEtFromDailyWeather: 'reference ET computed from the day’s weather, where the given or hourly one is missing',
+  aheadFromForecast: 'a day to come: weather of the forecast',
+  aheadFromNormal: 'a day to come: normal of the day from the years on record',
+  aheadFromAnalogue: 'a day to come: weather of the analogue year',
 };
 
 /** Assumptions about a site or a coefficient, and the dew point, which ranks as a measurement: not filled or estimated weather. */

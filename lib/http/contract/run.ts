@@ -30,8 +30,43 @@ export const runSettings = z
       .max(1)
       .default(usual.initial_depletion)
       .meta({ description: 'root-zone depletion on the first day, fraction of TAW' }),
+    initial_state: z.enum(['fraction', 'measured', 'carry-over', 'spin-up']).default(usual.initial_state).meta({
+      description:
+        'soil water on the first morning: at initial_depletion, as measured at the parcel (else at initial_depletion), as the standing run of the season before left it, or after spin_up_days stepped before the season',
+    }),
+    spin_up_days: z.number().int().min(30).max(400).default(usual.spin_up_days),
+    coefficient: z
+      .enum(['dual', 'single'])
+      .default(usual.coefficient)
+      .meta({ description: 'crop coefficient approach of FAO-56: chapter 7, or chapter 6' }),
     irrigate: z.boolean().default(usual.irrigate),
+    water: z.enum(['rule', 'recorded', 'recorded-then-rule']).default(usual.water).meta({
+      description:
+        'irrigation as the rule of each planting asks, as the deliveries recorded, or as recorded to date and by the rule from then on',
+    }),
     runoff: z.boolean().default(usual.runoff),
+    antecedent_moisture: z.enum(['average', 'five-day-rain', 'surface-layer']).default(usual.antecedent_moisture).meta({
+      description: 'how the curve number follows the wetness of the ground',
+    }),
+    snow: z.boolean().default(usual.snow).meta({ description: 'precipitation of cold days is kept as snow and melts by degree-days' }),
+    frozen_ground: z.boolean().default(usual.frozen_ground),
+    capillary_rise: z.boolean().default(usual.capillary_rise),
+    salinity: z.enum(['off', 'stress', 'stress-and-leaching']).default(usual.salinity),
+    water_salinity_ds_m: z.number().min(0).max(20).default(usual.water_salinity_ds_m),
+    fallow: z.enum(['bare', 'weeds']).default(usual.fallow).meta({ description: 'what stands on ground between plantings' }),
+    observed_cover: z.boolean().default(usual.observed_cover).meta({
+      description: 'vegetation index or cover from images replaces the basal curve where a parcel has any',
+    }),
+    ahead: z.enum(['refuse', 'normal', 'analogue']).default(usual.ahead).meta({
+      description:
+        'days past the last observation: refused, or by the forecast and after it the normal of the day, or the days of an analogue year',
+    }),
+    analogue_year: z.number().int().min(1900).max(2200).nullable().default(usual.analogue_year),
+    forecast_source: z.string().nullable().default(usual.forecast_source),
+    band_members: z.number().int().min(0).max(500).default(usual.band_members).meta({
+      description: 'members of the ensemble behind P10, P50 and P90; 0 for no band',
+    }),
+    band_seed: z.number().int().min(0).max(2147483647).default(usual.band_seed),
     default_soil: z.string().default(usual.default_soil),
     default_method: z.string().default(usual.default_method),
     source: z
