@@ -36,3 +36,35 @@ export function relativeYield(response: number, adjustedCropEt: number, cropEt: 
 export function stressFromRelativeYield(response: number, yieldFraction: number): number {
   return 1 - (1 - yieldFraction) / response;
 }
+
+/** ET of one growth stage with the stage's yield response factor. */
+export interface StageDeficit {
+  /** Ky of the stage [1] */
+  readonly response: number;
+  /** ETc adj of the stage [mm] */
+  readonly adjustedCropEt: number;
+  /** ETc of the stage [mm] */
+  readonly cropEt: number;
+}
+
+/**
+ * Relative yield from the deficits of the growth stages, each weighing by its own response.
+ *
+ *   Ya / Ym = Π (1 − Ky,i (1 − ETc adj,i / ETc,i)), no factor below 0
+ *
+ * A stage without ET (not reached, or not in the run) leaves the product as it is.
+ *
+ * Missing: a stage whose response is NaN is not listed for the crop; the caller leaves it out.
+ *
+ * @returns 0 … 1; 1 without stages
+ * @example relativeYieldOfStages([{ response: 1.5, adjustedCropEt: 90, cropEt: 100 }, { response: 0.5, adjustedCropEt: 40, cropEt: 50 }]) // 0.765
+ * Source: response by stage of FAO-33 (Doorenbos & Kassam 1979), Table 24; product over the stages: Rao, Sarma & Chander (1988), Agricultural Water
+ * Management 13 (recalled, not re-read).
+ */
+export function relativeYieldOfStages(stages: readonly StageDeficit[]): number {
+  let product = 1;
+  for (const { response, adjustedCropEt, cropEt } of stages) {
+    if (cropEt > 0) product *= relativeYield(response, adjustedCropEt, cropEt);
+  }
+  return product;
+}

@@ -20,6 +20,13 @@ import { referenceEtDay } from '../../lib/energy/reference-day.ts';
 import { hourlyConstants, referenceEtHour, referenceEtHours } from '../../lib/energy/reference-hour.ts';
 import { aerodynamicConstant } from '../../lib/energy/resistance.ts';
 import { windSpeedAt2m } from '../../lib/energy/wind.ts';
+import { validation } from '../support/validation.ts';
+
+const check = validation(import.meta.url, {
+  title: 'Standardized reference ET: constants, their derivation, station of Appendix C',
+  source: 'ASCE-EWRI (2005), The ASCE Standardized Reference Evapotranspiration Equation',
+  provenance: 'recalled',
+});
 
 const short = aerodynamicConstant({ cropHeight: 0.12, windHeight: 2, humidityHeight: 2 });
 /** The tall surface is seen from sensors over clipped grass, so that its displacement height is that of the grass (recalled). */
@@ -30,8 +37,8 @@ const [hourly, hourlyTall] = [hourlyConstants('asce2005', 'short'), hourlyConsta
 
 describe('constants of Table 1 (recalled) against their derivation', () => {
   test('aerodynamic constants: ra u2 = 208 short, 118 tall', () => {
-    expect(Math.abs(short - 208)).toBeLessThan(0.5);
-    expect(Math.abs(tall - 118)).toBeLessThan(0.5);
+    check.held(short, 208, 0.5);
+    check.held(tall, 118, 0.5);
   });
   const rows: [name: string, constant: number, recalled: number, resistance: number, aerodynamic: number][] = [
     ['daily short, rs 70', daily.denominator, 0.34, 70, short],
@@ -55,7 +62,7 @@ describe('constants of Table 1 (recalled) against their derivation', () => {
   test.each(numerators)('Cn %s', (_name, constant, seconds, aerodynamic, step) => {
     const gammaPerPressure = AIR_SPECIFIC_HEAT / (VAPOUR_WEIGHT_RATIO * LATENT_HEAT);
     const derived = (seconds * AIR_SPECIFIC_HEAT) / (1.01 * 0.287 * aerodynamic * gammaPerPressure * LATENT_HEAT);
-    expect(Math.abs(constant - derived)).toBeLessThanOrEqual(step);
+    check.held(constant, derived, step);
   });
   test('cloud factor within 0.05 … 1', () => {
     expect(cloudFactor(relativeShortwave(1, 30, daily.lowestRelativeShortwave))).toBeCloseTo(0.055, 12);
@@ -73,7 +80,7 @@ describe('constants of Table 1 (recalled) against their derivation', () => {
     ['2005 hourly 2.042e-10', hourly.stefanBoltzmann, perDay / 24],
   ];
   test.each(sigmas)('σ %s lies within 0.1 %% of the CODATA 2018 constant', (_name, constant, perPeriod) => {
-    expect(Math.abs(constant / perPeriod - 1)).toBeLessThan(0.001);
+    check.held(constant / perPeriod, 1, 0.001);
   });
   test('FAO-56 has no tall surface', () => {
     expect(() => dailyConstants('fao56', 'tall')).toThrow(/use method "asce2005"/);
@@ -109,12 +116,12 @@ function greeley(surface: 'short' | 'tall', row: (typeof GREELEY)[number], trace
 
 describe('Greeley, Colorado, Appendix C (recalled and recomputed, ± 0.05 mm d⁻¹, not certified)', () => {
   test.each(GREELEY)('%s', (...row) => {
-    expect(Math.abs(greeley('short', row) - row[7])).toBeLessThanOrEqual(0.05);
-    expect(Math.abs(greeley('tall', row) - row[8])).toBeLessThanOrEqual(0.05);
+    check.held(greeley('short', row), row[7], 0.05);
+    check.held(greeley('tall', row), row[8], 0.05);
   });
   test('1 July as recalled from the report: 5.71 short, 7.34 tall', () => {
-    expect(Math.abs(greeley('short', GREELEY[0]) - 5.71)).toBeLessThanOrEqual(0.05);
-    expect(Math.abs(greeley('tall', GREELEY[0]) - 7.34)).toBeLessThanOrEqual(0.05);
+    check.held(greeley('short', GREELEY[0]), 5.71, 0.05);
+    check.held(greeley('tall', GREELEY[0]), 7.34, 0.05);
   });
   test('the working names the tall result and marks recalled equation numbers', () => {
     const steps: WorkingStep[] = [];
@@ -159,11 +166,11 @@ describe('FAO-56 Example 19 with the 2005 constants (recomputed, mm h⁻¹)', ()
     ['tall, night 0.0067', referenceEtHour(place('tall'), night).referenceEt, 0.0067, 0.0001],
   ];
   test.each(rows)('%s', (_name, value, expected, tolerance) => {
-    expect(Math.abs(value - expected)).toBeLessThanOrEqual(tolerance);
+    check.held(value, expected, tolerance);
   });
   test('through the hours of a day the night takes Rs/Rso of the last high sun', () => {
     const [afternoon, evening] = referenceEtHours(place('short'), [day, { ...night, clockHour: 21.5, carriedRelativeShortwave: 0.5 }]);
-    expect(Math.abs(afternoon.relativeShortwave - 0.922)).toBeLessThan(0.0005); // printed in Example 19
+    check.held(afternoon.relativeShortwave, 0.922, 0.0005); // printed in Example 19
     expect(evening.relativeShortwave).toBe(afternoon.relativeShortwave);
   });
   // By hand, sin β = sin φ sin δ + cos φ cos δ cos ω with the printed δ −0.0753: at 16:30 ω 1.206 and β 0.33; at 17:00 ω 1.337 and β 0.20.

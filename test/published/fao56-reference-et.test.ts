@@ -72,20 +72,26 @@ import {
   sunDay,
 } from '../../lib/energy/sun.ts';
 import { windProfileFactor, windSpeedAt2m } from '../../lib/energy/wind.ts';
+import { validation } from '../support/validation.ts';
+
+const check = validation(import.meta.url, {
+  title: 'Reference ET, chapters 2–4 of FAO-56: worked examples 1–20, boxes and Annex 3',
+  source: 'Allen, Pereira, Raes & Smith (1998), FAO Irrigation and Drainage Paper 56',
+});
 
 type Row = [name: string, value: number, expected: number, digits: number];
 
 /** [what, our value, printed, decimals printed] */
 function printed(rows: Row[]) {
   test.each(rows)('%s', (_name, value, expected, digits) => {
-    expect(Math.abs(value - expected)).toBeLessThanOrEqual(0.5 * 10 ** -digits + 1e-12);
+    check.held(value, expected, 0.5 * 10 ** -digits + 1e-12);
   });
 }
 
 /** [what with the printed figure, our value, recomputed value] */
 function recomputed(rows: [name: string, value: number, expected: number][]) {
   test.each(rows)('%s', (_name, value, expected) => {
-    expect(Math.abs(value - expected)).toBeLessThanOrEqual(Math.max(0.001 * Math.abs(expected), 0.0005));
+    check.held(value, expected, Math.max(0.001 * Math.abs(expected), 0.0005), { provenance: 'recomputed' });
   });
 }
 
@@ -265,7 +271,7 @@ describe('Example 17: Bangkok, April, monthly means', () => {
       windSpeed2m: 2,
     } as const;
     // printed 5.72 plus the share of the month's G: 0.685 × 0.408 × 0.14 = 0.04
-    expect(Math.abs(referenceEtDay(input, null) - (5.72 + 0.685 * 0.408 * 0.14))).toBeLessThan(0.006);
+    check.held(referenceEtDay(input, null), 5.72 + 0.685 * 0.408 * 0.14, 0.006);
   });
 });
 
@@ -519,14 +525,18 @@ describe('Eq 28 closes on Eq 21: the hours of a day sum to the day (recomputed)'
     const sun = sunDay(latitude, day);
     const hours = Array.from({ length: 24 }, (_, h) => extraterrestrialRadiationPeriod(sun, hourAngle(day, h + 0.5, 7, 15), 1));
     const sum = hours.reduce((a, b) => a + b, 0);
-    expect(Math.abs(sum - expected)).toBeLessThan(0.0001);
-    expect(Math.abs(sum - sun.extraterrestrialRadiation)).toBeLessThan(1e-9);
+    check.held(sum, expected, 0.0001);
+    check.held(sum, sun.extraterrestrialRadiation, 1e-9);
   });
   test('also where the sun does not set', () => {
     const sun = sunDay(75, 172);
     const hours = Array.from({ length: 24 }, (_, h) => extraterrestrialRadiationPeriod(sun, hourAngle(172, h + 0.5, 40, 30), 1));
     expect(sun.sunsetAngle).toBe(Math.PI);
-    expect(Math.abs(hours.reduce((a, b) => a + b, 0) - sun.extraterrestrialRadiation)).toBeLessThan(1e-9);
+    check.held(
+      hours.reduce((a, b) => a + b, 0),
+      sun.extraterrestrialRadiation,
+      1e-9,
+    );
   });
 });
 
@@ -589,7 +599,7 @@ describe('Boxes 4 and 5: resistances of the grass surface', () => {
       aerodynamicResistance: 208 / 2.078,
       surfaceResistance: 70,
     });
-    expect(Math.abs(value / 3.88 - 1)).toBeLessThan(0.01);
+    check.held(value / 3.88, 1, 0.01);
   });
 });
 

@@ -10,6 +10,13 @@ import { nearSites, placeOnPlane } from '../../lib/weather/interpolation.ts';
 import { krigingWeights, prepareKriging } from '../../lib/weather/kriging.ts';
 import { chooseVariogram, fitVariogram, type VariogramModel } from '../../lib/weather/variogram.ts';
 import { experimentalVariogram } from '../../lib/weather/variogram-classes.ts';
+import { validation } from '../support/validation.ts';
+
+const check = validation(import.meta.url, {
+  title: 'Kriging: variogram and predictions',
+  source: 'Pebesma (2004), gstat, regression test on the open meuse data; Isaaks & Srivastava (1989), chapters 11–12',
+  provenance: 'outside',
+});
 
 type Row = readonly [x: number, y: number, value: number];
 
@@ -45,15 +52,15 @@ describe('fit to the classes of ln zinc at the Meuse', () => {
   test('spherical: nugget 0.05066, partial sill 0.59060, range 897.0, weighted squares 9.011e-6', () => {
     const { model, weightedSse } = fitVariogram(MEUSE_CLASSES, 'spherical');
     expect(model.nugget).toBeCloseTo(0.05066, 5);
-    expect(Math.abs(model.partialSill - 0.5906)).toBeLessThan(1e-5);
+    check.held(model.partialSill, 0.5906, 1e-5);
     expect(model.range).toBeCloseTo(897.0, 1);
-    expect(Math.abs(weightedSse - 9.011195e-6)).toBeLessThan(1e-11);
+    check.held(weightedSse, 9.011195e-6, 1e-11);
   });
   test('exponential, exp(−h/a): no nugget, sill 0.71865, a 449.76 (gstat)', () => {
     const { model, weightedSse } = fitVariogram(MEUSE_CLASSES, 'exponential');
     expect(model.nugget).toBe(0);
-    expect(Math.abs(model.partialSill - 0.7186525804)).toBeLessThan(1e-4);
-    expect(Math.abs(model.range - 449.7580025)).toBeLessThan(0.05);
+    check.held(model.partialSill, 0.7186525804, 1e-4);
+    check.held(model.range, 449.7580025, 0.05);
     expect(weightedSse).toBeLessThanOrEqual(1.628328e-5);
   });
   test('no kind fits better than the spherical', () => {
@@ -70,7 +77,7 @@ describe('fit to the classes of ln zinc at the Meuse', () => {
     ].map(([pairCount, distance, semivariance]) => ({ pairCount, distance, semivariance }));
     const { model, weightedSse } = fitVariogram(forced, 'spherical');
     expect(model.nugget).toBe(0);
-    expect(Math.abs(model.partialSill - 7.878195)).toBeLessThan(1e-5);
+    check.held(model.partialSill, 7.878195, 1e-5);
     expect(model.range).toBeCloseTo(1567.77, 2);
     expect(weightedSse).toBeCloseTo(0.001217055, 8);
   });
@@ -92,13 +99,13 @@ describe('the seven samples of Isaaks & Srivastava (1989), chapter 12', () => {
     const { value, variance, weights } = krigedAt(samples, model, [65, 137]);
     const bySample = weights.toSorted((a, b) => a.site - b.site).map(({ weight }) => Math.round(weight * 1000) / 1000);
     expect(bySample).toEqual([0.173, 0.318, 0.129, 0.086, 0.151, 0.057, 0.086]);
-    expect(Math.abs(value - 592.73)).toBeLessThanOrEqual(0.01);
-    expect(Math.abs(variance - 8.956)).toBeLessThanOrEqual(0.001);
+    check.held(value, 592.73, 0.01);
+    check.held(variance, 8.956, 0.001);
   });
   test('twice the sill: the same estimate, variance 17.912', () => {
     const { value, variance } = krigedAt(samples, { ...model, partialSill: 20 }, [65, 137]);
-    expect(Math.abs(value - 592.73)).toBeLessThanOrEqual(0.01);
-    expect(Math.abs(variance - 17.912)).toBeLessThanOrEqual(0.002);
+    check.held(value, 592.73, 0.01);
+    check.held(variance, 17.912, 0.002);
   });
 });
 
@@ -215,8 +222,8 @@ describe('twenty invented sites against R gstat 2.1-0 (krige, krige.cv, variogra
   test.each(MODELS)('predictions and variances at eight places: $kind', (model, expected) => {
     PLACES.forEach((place, i) => {
       const { value, variance } = krigedAt(SITES, model, place);
-      expect(Math.abs(value - expected[i][0])).toBeLessThan(2e-8);
-      expect(Math.abs(variance - expected[i][1])).toBeLessThan(2e-8);
+      check.held(value, expected[i][0], 2e-8);
+      check.held(variance, expected[i][1], 2e-8);
     });
   });
 

@@ -1,5 +1,6 @@
 import type { Metadata } from 'next';
 import { answerMethods, answerSoils } from '../../../lib/http/answers/land.ts';
+import { Go } from '../../_components/go.tsx';
 import { callerInView, runInView } from '../../_components/in-view.ts';
 import { PageHead } from '../../_components/page-head.tsx';
 import { CodeDocs } from './code-docs-view.tsx';
@@ -15,7 +16,11 @@ export default async function MethodsPage() {
   const [caller, run] = await Promise.all([callerInView(), runInView()]);
   return (
     <div className="page">
-      <PageHead title="Methods" lead="Every equation, table and constant in use with its source, read from the code that computes." />
+      <PageHead title="Methods" lead="Every equation, table and constant in use with its source, read from the code that computes.">
+        <Go className="button" href="/methods/validation">
+          Validation
+        </Go>
+      </PageHead>
       <EquationList worked={run ? await loadEquations(caller, run) : null} />
       <Rules run={run} />
       <Tables soils={await answerSoils(caller)} methods={await answerMethods(caller)} />

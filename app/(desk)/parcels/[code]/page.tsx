@@ -4,6 +4,7 @@ import { NotFound } from '../../../../lib/base/errors.ts';
 import { answerCrops } from '../../../../lib/http/answers/land.ts';
 import { answerParcelHistory } from '../../../../lib/http/answers/parcel-history.ts';
 import { answerParcelSeason } from '../../../../lib/http/answers/parcel-season.ts';
+import { answerYields } from '../../../../lib/http/answers/yields.ts';
 import type { ParcelHistoryAnswer } from '../../../../lib/http/contract/land-places.ts';
 import { NoRunPage } from '../../../_components/empty-state.tsx';
 import { callerInView } from '../../../_components/in-view.ts';
@@ -21,10 +22,11 @@ export default async function ParcelPage({ params, searchParams }: PageProps<'co
   const [caller, { code }, query] = await Promise.all([callerInView(), params, searchParams]);
   const run = await runAsked(caller, query);
   if (!run) return <NoRunPage />;
-  const [season, crops, history] = await Promise.all([
+  const [season, crops, history, yields] = await Promise.all([
     orNotFound(answerParcelSeason(caller, run.id, decoded(code))),
     answerCrops(caller),
     historyOf(caller, decoded(code)),
+    orNotFound(answerYields(caller, run.id, { parcel: decoded(code), limit: 1 })),
   ]);
   return (
     <ParcelView
@@ -32,6 +34,7 @@ export default async function ParcelPage({ params, searchParams }: PageProps<'co
       season={season}
       crops={crops}
       history={history}
+      yields={yields.items}
       query={query}
       weekStart={weekStartOf(run, caller.district)}
       units={caller.units}

@@ -3,6 +3,7 @@ import type { UnitSystem } from '../../../../lib/base/units.ts';
 import type { ParcelHistoryAnswer } from '../../../../lib/http/contract/land-places.ts';
 import type { CropAnswer } from '../../../../lib/http/contract/rest.ts';
 import type { ParcelDay, ParcelSeason, RunAnswer } from '../../../../lib/http/contract/run.ts';
+import type { PlantingYieldRow } from '../../../../lib/http/contract/yields.ts';
 import { CalendarStrip } from '../../../_components/calendar-strip.tsx';
 import { DailyChart } from '../../../_components/daily-chart.tsx';
 import { dateRange, longDate } from '../../../_components/date-words.ts';
@@ -19,19 +20,21 @@ import { DayTable } from './day-table.tsx';
 import { GroundHistory } from './ground-history.tsx';
 import { ParcelHead } from './parcel-head.tsx';
 import { PlantingTable } from './planting-table.tsx';
+import { YieldTable } from './yield-table.tsx';
 
 interface ParcelViewProps {
   readonly run: RunAnswer;
   readonly season: ParcelSeason;
   readonly crops: readonly CropAnswer[];
   readonly history: ParcelHistoryAnswer;
+  readonly yields: readonly PlantingYieldRow[];
   readonly query: Query;
   readonly weekStart: number;
   readonly units: UnitSystem;
 }
 
 /** Everything about one parcel in one season. */
-export function ParcelView({ run, season, crops, history, query, weekStart, units }: ParcelViewProps) {
+export function ParcelView({ run, season, crops, history, yields, query, weekStart, units }: ParcelViewProps) {
   if (season.days.length === 0)
     return <EmptyState title={`Parcel ${season.parcel} has no days in this run`}>Run the season again.</EmptyState>;
   const path = `/parcels/${encodeURIComponent(season.parcel)}`;
@@ -69,6 +72,7 @@ export function ParcelView({ run, season, crops, history, query, weekStart, unit
         <DayTable season={season} units={units} run={one(query, 'run') ?? null} />
       </Section>
       <Plantings season={season} crops={crops} />
+      <YieldTable rows={yields} units={units} />
       <Section
         id="weather"
         title="Where the weather comes from"
