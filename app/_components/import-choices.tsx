@@ -76,6 +76,7 @@ function fieldsOf(now: ImportAnswer, understood: Understood): React.ReactNode[] 
       <NumberField key="hours" name="minimumHours" label="Fewest hours of a day" value={said('minimumHours')} most={24} assumed={22} />,
     );
   }
+  if (now.kind === 'images') fields.push(<QuantityField key="quantity" value={said('quantity')} />);
   if (now.kind === 'weather' && GRIDS.includes(understood.format)) {
     fields.push(<NumberField key="margin" name="margin" label="Cells around the district (degrees)" value={said('margin')} most={10} />);
   }
@@ -93,6 +94,18 @@ function LayerField({ understood }: { understood: Understood }) {
             {layer.featureCount === null ? '' : ` (${layer.featureCount})`}
           </option>
         ))}
+      </select>
+    </div>
+  );
+}
+
+function QuantityField({ value }: { value: string }) {
+  return (
+    <div className="field">
+      <label htmlFor="import-quantity">The images show</label>
+      <select id="import-quantity" name="quantity" defaultValue={value}>
+        <option value="">a vegetation index</option>
+        <option value="fraction_covered">the fraction of ground covered</option>
       </select>
     </div>
   );

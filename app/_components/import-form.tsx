@@ -45,13 +45,19 @@ export function ImportForm(props: ImportFormProps) {
       }}
     >
       <KindChoice kind={kind} onChange={setKind} />
-      <p className="small">
-        <strong>Columns of {kind.name.toLowerCase()}:</strong> {kind.columns}. Headers in any order and case; columns can be assigned by
-        hand afterwards. {kind.formats === 'shapes' ? `Read from ${SHAPE_FORMATS}, in any coordinate system. ` : ''}
-        <a href={templateHref(kind)} download={kind.template.name}>
-          Download a template ({kind.template.name.endsWith('.csv') ? 'CSV' : 'GeoJSON'})
-        </a>
-      </p>
+      {kind.template ? (
+        <p className="small">
+          <strong>Columns of {kind.name.toLowerCase()}:</strong> {kind.columns}. Headers in any order and case; columns can be assigned by
+          hand afterwards. {kind.formats === 'shapes' ? `Read from ${SHAPE_FORMATS}, in any coordinate system. ` : ''}
+          <a href={templateHref(kind.template)} download={kind.template.name}>
+            Download a template ({kind.template.name.endsWith('.csv') ? 'CSV' : 'GeoJSON'})
+          </a>
+        </p>
+      ) : (
+        <p className="small">
+          <strong>{kind.name}:</strong> {kind.columns}.
+        </p>
+      )}
       <FileDrop kind={kind} files={files} onChange={setFiles} limitMegabytes={props.limitMegabytes} />
       <KindOptions kind={kind} {...props} />
       {fault ? (

@@ -19,8 +19,8 @@ export interface ImportKindText {
   readonly accept: string;
   readonly says: string;
   readonly columns: string;
-  /** the template's file name and content; invented */
-  readonly template: { readonly name: string; readonly text: string };
+  /** the template's file name and content, invented; null for what no text can show */
+  readonly template: { readonly name: string; readonly text: string } | null;
 }
 
 const rows = (...lines: readonly string[]) => `${lines.join('\r\n')}\r\n`;
@@ -193,13 +193,22 @@ export const IMPORT_KINDS: readonly ImportKindText[] = [
       text: features({ properties: { code: 'S-1', soil: 'loam' }, geometry: square(-120.145, 45.135, 0.02) }),
     },
   },
+  {
+    kind: 'images',
+    name: 'Images of plant cover',
+    formats: 'GeoTIFF',
+    accept: '.tif,.tiff,image/tiff',
+    says: 'A vegetation index (−1 … 1) or the fraction of ground covered (0 … 1), one image a file with its day in the name. The mean over each parcel can replace the crop curve of a run.',
+    columns: 'one band; cells without a value where clouds hid the ground',
+    template: null,
+  },
 ];
 
 export function kindName(kind: string): string {
   return IMPORT_KINDS.find((one) => one.kind === kind)?.name ?? kind;
 }
 
-export function templateHref(kind: ImportKindText): string {
-  const type = kind.template.name.endsWith('.csv') ? 'text/csv' : 'application/geo+json';
-  return `data:${type};charset=utf-8,${encodeURIComponent(kind.template.text)}`;
+export function templateHref({ name, text }: NonNullable<ImportKindText['template']>): string {
+  const type = name.endsWith('.csv') ? 'text/csv' : 'application/geo+json';
+  return `data:${type};charset=utf-8,${encodeURIComponent(text)}`;
 }

@@ -21,7 +21,8 @@ const TABLES = {
   service_area: { key: { code: 'text' } },
   soil_area: { key: { code: 'text' } },
   parcel_history: { key: { history_id: 'uuid' } },
-} as const satisfies Record<string, { key: Record<string, 'int' | 'text' | 'uuid'>; order?: string }>;
+  image_mean: { key: { parcel_code: 'text', date: 'date', quantity: 'text' } },
+} as const satisfies Record<string, { key: Record<string, 'int' | 'text' | 'uuid' | 'date' | 'float8'>; order?: string }>;
 
 type ImportTable = keyof typeof TABLES;
 

@@ -1,7 +1,7 @@
 /** What a district already knows, for a reader to check and join against. */
 import { and, asc, eq, isNotNull, sql } from 'drizzle-orm';
 import type { LineString, MultiLineString, MultiPolygon, Polygon } from 'geojson';
-import type { ImportContext } from '../../lib/files/reading.ts';
+import type { ImportContext, ImportKind } from '../../lib/files/reading.ts';
 import type { GridShape } from '../../lib/weather/variable.ts';
 import type { Tx } from '../connect.ts';
 import { district } from '../schema/district.ts';
@@ -20,7 +20,8 @@ import {
 } from '../schema/land.ts';
 import { site, weatherBlock, weatherSource } from '../schema/weather.ts';
 
-export async function findImportContext(tx: Tx, districtId: string): Promise<ImportContext> {
+/** @param kind shapes of the parcels come along only where it needs them */
+export async function findImportContext(tx: Tx, districtId: string, kind?: ImportKind): Promise<ImportContext> {
   const [own] = await tx
     .select({ units: district.units, timeZone: district.timeZone, defaultElevation: district.defaultElevation })
     .from(district)
@@ -59,8 +60,18 @@ export async function findImportContext(tx: Tx, districtId: string): Promise<Imp
     siteBox: await siteBox(tx, districtId),
     plantingCounts: await plantingCounts(tx, districtId),
     parcelCounts: await parcelCounts(tx, districtId),
+    ...(kind === 'images' ? { parcelShapes: await listParcelShapes(tx, districtId) } : {}),
     ...(await libraries(tx, districtId)),
   };
+}
+
+async function listParcelShapes(tx: Tx, districtId: string): Promise<ImportContext['parcelShapes']> {
+  const rows = await tx
+    .select({ code: parcel.code, geometry: parcel.geometry })
+    .from(parcel)
+    .where(eq(parcel.districtId, districtId))
+    .orderBy(asc(parcel.ordinal));
+  return rows.map((row) => ({ ...row, geometry: row.geometry as Polygon | MultiPolygon }));
 }
 
 async function listContextSources(tx: Tx, districtId: string): Promise<ImportContext['sources']> {

@@ -55,6 +55,7 @@ const OPTIONS: Record<keyof ImportOptions, { readonly check: Check; readonly lim
   minimumHours: { check: within(1, 24), limit: '1 to 24 h' },
   margin: { check: within(0, 10), limit: '0 to 10 degrees' },
   wholeGrid: { check: isFlag, limit: 'true or false' },
+  quantity: { check: oneOf('vegetation_index', 'fraction_covered'), limit: 'vegetation_index or fraction_covered' },
 };
 
 /** A name of the time-zone database, or a fixed offset from UTC. */

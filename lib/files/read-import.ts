@@ -46,6 +46,7 @@ const READERS: Record<ImportKind, Reader> = {
     (await import('./soil-areas.ts')).readSoilAreas(files, options, context, progress),
   plantings: readPlantings,
   soils: readSoils,
+  images: async (files, options, context, progress) => (await import('./images.ts')).readImages(files, options, context, progress),
 };
 
 const EMPTY: Record<ImportKind, StagedImport> = {
@@ -58,6 +59,7 @@ const EMPTY: Record<ImportKind, StagedImport> = {
   'soil-areas': { kind: 'soil-areas', soilAreas: [] },
   plantings: { kind: 'plantings', plantings: [] },
   soils: { kind: 'soils', soils: [] },
+  images: { kind: 'images', images: [] },
 };
 
 /**

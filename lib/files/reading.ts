@@ -10,7 +10,7 @@ import type { Soil } from '../season/types.ts';
 import type { BlockVariable, GridShape } from '../weather/variable.ts';
 import type { LineageSummary } from './lineage-summary.ts';
 
-export type ImportKind = 'stations' | 'weather' | 'parcels' | 'canals' | 'turnouts' | 'areas' | 'plantings' | 'soils' | 'soil-areas';
+export type ImportKind = 'stations' | 'weather' | 'parcels' | 'canals' | 'turnouts' | 'areas' | 'plantings' | 'soils' | 'soil-areas' | 'images';
 
 /** One uploaded file. Readers of large formats open `path` where it is given; `bytes` then reads the whole file, and is only for small ones. */
 export interface ImportFile {
@@ -68,6 +68,8 @@ export interface ImportContext {
   }[];
   /** lines of the reaches, head to tail */
   readonly reachLines?: readonly { readonly code: string; readonly geometry: LineString | MultiLineString }[];
+  /** shapes of the parcels, where the kind needs them: images */
+  readonly parcelShapes?: readonly { readonly code: string; readonly geometry: Polygon | MultiPolygon }[];
   /** soil class → its name */
   readonly soilNames?: Readonly<Record<string, string>>;
   /** reach → parcels that name it; reaches without parcels are left out */
@@ -132,6 +134,8 @@ export interface ImportOptions {
   readonly minimumHours?: number;
   /** grids: cells within this many degrees around the district are kept; default one cell */
   readonly margin?: number;
+  /** images: what their values are; default vegetation index */
+  readonly quantity?: 'vegetation_index' | 'fraction_covered';
   /** grids: read the whole grid although the district has a place; only for small grids */
   readonly wholeGrid?: boolean;
 }
@@ -368,6 +372,17 @@ export interface StagedTurnout {
   readonly latitude?: number | null;
 }
 
+/** Mean of an image over a parcel. */
+export interface StagedImageMean {
+  readonly parcelCode: string;
+  /** YYYY-MM-DD */
+  readonly date: string;
+  readonly quantity: 'vegetation_index' | 'fraction_covered';
+  readonly value: number;
+  /** share of the parcel that was seen, 0–1 */
+  readonly seenShare: number;
+}
+
 export interface StagedPlanting {
   readonly parcelCode: string;
   readonly seasonCode: string;
@@ -431,6 +446,7 @@ export type StagedImport =
   | { readonly kind: 'areas'; readonly areas: readonly StagedArea[] }
   | { readonly kind: 'soil-areas'; readonly soilAreas: readonly StagedSoilArea[] }
   | { readonly kind: 'plantings'; readonly plantings: readonly StagedPlanting[] }
+  | { readonly kind: 'images'; readonly images: readonly StagedImageMean[] }
   | { readonly kind: 'soils'; readonly soils: readonly StagedSoil[] };
 
 export interface FindingCounts {

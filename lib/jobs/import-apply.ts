@@ -15,6 +15,7 @@ import { type ApplyCounts, countsChanged, type Touched } from './import-counts.t
 import {
   applyAreas,
   applyCropMappings,
+  applyImages,
   applyPlantings,
   applyReaches,
   applySoilAreas,
@@ -135,7 +136,7 @@ class Applier {
     }
     this.count('crop_mappings', await applyCropMappings(this.tx, this.own, this.head.cropMappings));
     await this.finish();
-    const everything = !['weather', 'plantings', 'areas'].includes(this.head.kind);
+    const everything = !['weather', 'plantings', 'areas', 'images'].includes(this.head.kind);
     return { counts: this.counts, touched: { everything, months: [...this.months], seasons: [...this.seasons] } };
   }
 
@@ -171,6 +172,9 @@ class Applier {
         return this.count('soil_areas', await applySoilAreas(tx, own, part.items));
       case 'soils':
         return this.count('soils', await applySoils(tx, own, part.items));
+      case 'images':
+        for (const { date } of part.items) this.months.add(`${date.slice(0, 7)}-01`);
+        return this.count('images', await applyImages(tx, own, part.items));
     }
   }
 

@@ -14,7 +14,16 @@ import { counted } from '../base/counted.ts';
 import { Refused } from '../base/errors.ts';
 import { checkLossRule } from '../canal/loss-rule.ts';
 import { buildTree } from '../canal/tree.ts';
-import type { StagedArea, StagedParcel, StagedPlanting, StagedReach, StagedSoil, StagedSoilArea, StagedTurnout } from '../files/reading.ts';
+import type {
+  StagedArea,
+  StagedImageMean,
+  StagedParcel,
+  StagedPlanting,
+  StagedReach,
+  StagedSoil,
+  StagedSoilArea,
+  StagedTurnout,
+} from '../files/reading.ts';
 import { SoilMap } from './soil-shares.ts';
 
 type StoredParcels = Awaited<ReturnType<typeof mapStoredParcels>>;
@@ -168,6 +177,18 @@ export function applyPlantings(tx: Tx, own: ImportKey, plantings: readonly Stage
     area_share: planting.areaShare,
   }));
   return replaceRows(tx, own, 'planting', rows);
+}
+
+/** Image means of parcels and days, over what was there for the same parcel, day and quantity. */
+export function applyImages(tx: Tx, own: ImportKey, images: readonly StagedImageMean[]): Promise<RowChanges> {
+  const rows = images.map((image) => ({
+    parcel_code: image.parcelCode,
+    date: image.date,
+    quantity: image.quantity,
+    value: image.value,
+    seen_share: image.seenShare,
+  }));
+  return replaceRows(tx, own, 'image_mean', rows);
 }
 
 export function applyReaches(tx: Tx, own: ImportKey, reaches: readonly StagedReach[]): Promise<RowChanges> {

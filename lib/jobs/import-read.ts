@@ -44,7 +44,7 @@ export async function performRead(data: ImportReadData, reader?: Reader): Promis
     const row = await findImport(tx, data.districtId, data.importId);
     if (row?.state !== 'reading' || row.revision !== data.revision) return null;
     await dropStaged(tx, data.districtId, data.importId);
-    return { row, context: await findImportContext(tx, data.districtId) };
+    return { row, context: await findImportContext(tx, data.districtId, row.kind as ImportKind) };
   });
   if (!given) return;
   const hooks = { progress: progressOf(data), piece: pieceTaker(data) };

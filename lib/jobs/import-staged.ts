@@ -8,6 +8,7 @@ import type {
   StagedArea,
   StagedBlock,
   StagedCell,
+  StagedImageMean,
   StagedImport,
   StagedParcel,
   StagedPlanting,
@@ -44,6 +45,7 @@ export type StagedPart =
   | { readonly part: 'reaches'; readonly items: readonly StagedReach[] }
   | { readonly part: 'areas'; readonly items: readonly StagedArea[] }
   | { readonly part: 'soilAreas'; readonly items: readonly StagedSoilArea[] }
+  | { readonly part: 'images'; readonly items: readonly StagedImageMean[] }
   | { readonly part: 'soils'; readonly items: readonly StagedSoil[] };
 
 const ITEMS_IN_PIECE = 1000;
@@ -148,6 +150,8 @@ function partsOf(staged: StagedImport): StagedPart[] {
   switch (staged.kind) {
     case 'stations':
       return [{ part: 'sites', items: staged.sites }];
+    case 'images':
+      return [{ part: 'images', items: staged.images }];
     case 'weather':
       return [
         { part: 'sites', items: staged.stations ?? [] },

@@ -136,14 +136,17 @@ describe('the whole way', () => {
     expect(new Float32Array(new Uint8Array(row.values).buffer)[0]).toBeCloseTo(20, 5);
   });
 
-  it.each(IMPORT_KINDS.map((kind) => [kind.kind, kind] as const))('reads the template of %s without an error', async (_name, kind) => {
-    const token = there.write;
-    const response = await upload(kind.kind, { [kind.template.name]: kind.template.text }, {}, token);
-    const ready = await settled(((await response.json()) as ImportAnswer).id, token);
-    expect(ready.state).toBe('ready');
-    const faults = ready.findings.filter((finding) => finding.severity === 'error' && !/^(unknown|unmapped)-/.test(finding.code));
-    expect(faults).toEqual([]);
-  });
+  it.each(IMPORT_KINDS.flatMap(({ kind, template }) => (template ? [[kind, template] as const] : [])))(
+    'reads the template of %s without an error',
+    async (kind, template) => {
+      const token = there.write;
+      const response = await upload(kind, { [template.name]: template.text }, {}, token);
+      const ready = await settled(((await response.json()) as ImportAnswer).id, token);
+      expect(ready.state).toBe('ready');
+      const faults = ready.findings.filter((finding) => finding.severity === 'error' && !/^(unknown|unmapped)-/.test(finding.code));
+      expect(faults).toEqual([]);
+    },
+  );
 
   it('gives the findings as CSV', async () => {
     const ready = await read('weather', { 'bad.csv': `${WEATHER}2023-05-04,007,-4,20,5\n` });

@@ -65,7 +65,7 @@ export const districtSummary = z
   .meta({ id: 'DistrictSummary' });
 export type DistrictSummary = z.infer<typeof districtSummary>;
 
-export const importKind = z.enum(['weather', 'stations', 'parcels', 'canals', 'turnouts', 'areas', 'soils', 'soil-areas', 'plantings']);
+export const importKind = z.enum(['weather', 'stations', 'parcels', 'canals', 'turnouts', 'areas', 'soils', 'soil-areas', 'plantings', 'images']);
 export const importAnswer = z
   .object({
     id: z.string(),

@@ -1,6 +1,7 @@
 import type { Metadata } from 'next';
 import type { Caller } from '../../../../lib/access/caller.ts';
 import { NotFound } from '../../../../lib/base/errors.ts';
+import { answerImages } from '../../../../lib/http/answers/images.ts';
 import { answerCrops } from '../../../../lib/http/answers/land.ts';
 import { answerParcelHistory } from '../../../../lib/http/answers/parcel-history.ts';
 import { answerParcelSeason } from '../../../../lib/http/answers/parcel-season.ts';
@@ -22,11 +23,12 @@ export default async function ParcelPage({ params, searchParams }: PageProps<'co
   const [caller, { code }, query] = await Promise.all([callerInView(), params, searchParams]);
   const run = await runAsked(caller, query);
   if (!run) return <NoRunPage />;
-  const [season, crops, history, yields] = await Promise.all([
+  const [season, crops, history, yields, images] = await Promise.all([
     orNotFound(answerParcelSeason(caller, run.id, decoded(code))),
     answerCrops(caller),
     historyOf(caller, decoded(code)),
     orNotFound(answerYields(caller, run.id, { parcel: decoded(code), limit: 1 })),
+    answerImages(caller, { from: run.start_date, to: run.end_date, parcel: decoded(code), limit: 200 }),
   ]);
   return (
     <ParcelView
@@ -35,6 +37,7 @@ export default async function ParcelPage({ params, searchParams }: PageProps<'co
       crops={crops}
       history={history}
       yields={yields.items}
+      images={images.items}
       query={query}
       weekStart={weekStartOf(run, caller.district)}
       units={caller.units}

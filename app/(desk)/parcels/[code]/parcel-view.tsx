@@ -1,5 +1,6 @@
 import type { IsoDate } from '../../../../lib/base/civil-date.ts';
 import type { UnitSystem } from '../../../../lib/base/units.ts';
+import type { ImageRow } from '../../../../lib/http/contract/images.ts';
 import type { ParcelHistoryAnswer } from '../../../../lib/http/contract/land-places.ts';
 import type { CropAnswer } from '../../../../lib/http/contract/rest.ts';
 import type { ParcelDay, ParcelSeason, RunAnswer } from '../../../../lib/http/contract/run.ts';
@@ -18,6 +19,7 @@ import { SoilGauge } from '../../../_components/soil-gauge.tsx';
 import { WaterChain } from '../../../_components/water-chain.tsx';
 import { DayTable } from './day-table.tsx';
 import { GroundHistory } from './ground-history.tsx';
+import { ImageTable } from './image-table.tsx';
 import { ParcelHead } from './parcel-head.tsx';
 import { PlantingTable } from './planting-table.tsx';
 import { YieldTable } from './yield-table.tsx';
@@ -28,13 +30,14 @@ interface ParcelViewProps {
   readonly crops: readonly CropAnswer[];
   readonly history: ParcelHistoryAnswer;
   readonly yields: readonly PlantingYieldRow[];
+  readonly images: readonly ImageRow[];
   readonly query: Query;
   readonly weekStart: number;
   readonly units: UnitSystem;
 }
 
 /** Everything about one parcel in one season. */
-export function ParcelView({ run, season, crops, history, yields, query, weekStart, units }: ParcelViewProps) {
+export function ParcelView({ run, season, crops, history, yields, images, query, weekStart, units }: ParcelViewProps) {
   if (season.days.length === 0)
     return <EmptyState title={`Parcel ${season.parcel} has no days in this run`}>Run the season again.</EmptyState>;
   const path = `/parcels/${encodeURIComponent(season.parcel)}`;
@@ -73,6 +76,7 @@ export function ParcelView({ run, season, crops, history, yields, query, weekSta
       </Section>
       <Plantings season={season} crops={crops} />
       <YieldTable rows={yields} units={units} />
+      <ImageTable images={images} used={run.settings.observed_cover} />
       <Section
         id="weather"
         title="Where the weather comes from"
