@@ -10,6 +10,7 @@ export const QUEUES = [
   { name: 'run-start', ...PIECE },
   { name: 'run-slice', ...PIECE },
   { name: 'run-finish', ...PIECE },
+  { name: 'run-band', ...PIECE },
   { name: 'feed-turn', ...PIECE },
   { name: 'weather-check', ...PIECE },
 ] as const;

@@ -1,8 +1,5 @@
 import { scaleLinear } from 'd3-scale';
-import type { IsoDate } from '../../lib/base/civil-date.ts';
-import { addDays, dayNumber } from '../../lib/base/civil-date.ts';
-import { type Cycle, cyclesOf, type StageLengths } from '../../lib/crop/curve.ts';
-import type { CropAnswer } from '../../lib/http/contract/rest.ts';
+import { dayNumber, type IsoDate } from '../../lib/base/civil-date.ts';
 import type { ParcelSeason } from '../../lib/http/contract/run.ts';
 import styles from './calendar-strip.module.css';
 import { type Box, ChartFrame, NamedAxis } from './chart-frame.tsx';
@@ -25,9 +22,9 @@ interface StageSpan {
 type PlantingOfSeason = ParcelSeason['plantings'][number];
 
 /** The stages of each planting along the season. */
-export function CalendarStrip({ season, crops }: { season: ParcelSeason; crops: readonly CropAnswer[] }) {
+export function CalendarStrip({ season }: { season: ParcelSeason }) {
   const [first, last] = [season.days[0].date, season.days[season.days.length - 1].date];
-  const rows = season.plantings.map((planting) => ({ planting, spans: stagesOf(planting, crops, last) }));
+  const rows = season.plantings.map((planting) => ({ planting, spans: stagesOf(planting) }));
   const x = scaleLinear().domain([0, season.days.length]).range([BOX.left, BOX.right]);
   const bottom = BOX.top + rows.length * ROW;
   return (
@@ -37,7 +34,7 @@ export function CalendarStrip({ season, crops }: { season: ParcelSeason; crops: 
       description={rows
         .map(
           (row) =>
-            `${row.planting.crop_name}: ${row.spans.map((span) => `${NAMES[span.stage]} ${dateRange(span.start, span.end)}`).join('; ')}`,
+            `${row.planting.crop_name}: ${row.spans.map((span) => `${NAMES[span.stage]} ${dateRange(span.start, span.end)}`).join('; ') || 'never started in this run'}`,
         )
         .join('. ')}
       width={960}
@@ -110,31 +107,7 @@ function plantingName(planting: PlantingOfSeason): string {
   return `${planting.crop_name}, planted ${longDate(planting.planting_date)}${share}`;
 }
 
-/** Dated stages of a planting, from the calendar of the crop library; empty when the library no longer has the calendar. */
-export function stagesOf(planting: PlantingOfSeason, crops: readonly CropAnswer[], seasonEnd: IsoDate): StageSpan[] {
-  const crop = crops.find((one) => one.code === planting.crop);
-  const definition = crop?.calendars.find((one) => one.code === planting.calendar || one.name === planting.calendar)?.definition;
-  if (!crop || !definition) return [];
-  const start = dayNumber(planting.planting_date);
-  const cycles = cyclesOf({
-    start,
-    harvest: planting.harvest_date ? dayNumber(planting.harvest_date) : Number.POSITIVE_INFINITY,
-    lengths: definition as unknown as StageLengths,
-    later: (definition.laterCycle ?? null) as StageLengths | null,
-    cuts: planting.cut_dates.map(dayNumber),
-    repeats: crop.definition.type === 'forage-cut' && planting.cut_dates.length === 0,
-    runEnd: dayNumber(seasonEnd) + 1,
-  });
-  return cycles.flatMap((cycle) => stagesOfCycle(cycle, plantingName(planting), planting.planting_date, start));
-}
-
-function stagesOfCycle(cycle: Cycle, planting: string, base: IsoDate, origin: number): StageSpan[] {
-  let from = cycle.start;
-  const spans: StageSpan[] = [];
-  for (const stage of STAGES) {
-    const to = stage === 'late' ? cycle.end : Math.min(cycle.end, from + cycle.lengths[stage]);
-    if (to > from) spans.push({ planting, stage, start: addDays(base, from - origin), end: addDays(base, to - 1 - origin) });
-    from = Math.max(from, to);
-  }
-  return spans;
+/** Dated stages of a planting as the run settled them. */
+export function stagesOf(planting: PlantingOfSeason): StageSpan[] {
+  return planting.stages.map(({ stage, start, end }) => ({ planting: plantingName(planting), stage, start, end }));
 }

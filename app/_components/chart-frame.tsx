@@ -24,10 +24,12 @@ export type MarkName =
   | 'third'
   | 'fourth'
   | 'band'
+  | 'forecast'
+  | 'beyond'
   | 'quiet';
 
 /** Marks drawn as a filled patch in the legend; the others are lines. */
-const PATCHES: ReadonlySet<MarkName> = new Set(['rain', 'irrigation', 'depletion', 'band']);
+const PATCHES: ReadonlySet<MarkName> = new Set(['rain', 'irrigation', 'depletion', 'band', 'forecast', 'beyond']);
 
 export function markClass(mark: MarkName): string {
   return styles[mark];
@@ -85,6 +87,12 @@ function Patterns() {
       </pattern>
       <pattern id="mark-dots" width="5" height="5" patternUnits="userSpaceOnUse">
         <circle cx="1.5" cy="1.5" r="0.9" className={styles.dot} />
+      </pattern>
+      <pattern id="mark-forecast" width="9" height="9" patternUnits="userSpaceOnUse" patternTransform="rotate(-45)">
+        <line x1="0" y1="0" x2="0" y2="9" className={styles.hatchStroke} />
+      </pattern>
+      <pattern id="mark-beyond" width="6" height="6" patternUnits="userSpaceOnUse" patternTransform="rotate(-45)">
+        <path d="M0 0V6M0 0H6" className={styles.hatchStroke} />
       </pattern>
     </defs>
   );

@@ -2,6 +2,7 @@ import { scaleLinear } from 'd3-scale';
 import { area } from 'd3-shape';
 import type { UnitSystem } from '../../lib/base/units.ts';
 import type { ParcelDay } from '../../lib/http/contract/run.ts';
+import { AheadNote, AheadShade, aheadLegend, aheadWords } from './ahead-shade.tsx';
 import { type Box, ChartFrame, type LegendItem, markClass, NamedAxis, seriesPath, ValueAxis, valueScale } from './chart-frame.tsx';
 import { longDate, monthTicks } from './date-words.ts';
 import { figureWithUnit, inUnits, sumOf, unitOf } from './figures.ts';
@@ -26,7 +27,16 @@ export function DailyChart({ days, units, marked }: { days: readonly ParcelDay[]
   const ticks = monthTicks(days[0].date, days[days.length - 1].date);
   const at = days.findIndex((day) => day.date === marked);
   return (
-    <ChartFrame id="daily" title="The season day by day" description={chartWords(days, units)} width={WIDTH} height={436} legend={LEGEND}>
+    <ChartFrame
+      id="daily"
+      title="The season day by day"
+      description={chartWords(days, units)}
+      width={WIDTH}
+      height={436}
+      legend={[...LEGEND, ...aheadLegend(days)]}
+      below={<AheadNote days={days} />}
+    >
+      <AheadShade days={days} x={x} boxes={[UPPER, LOWER]} />
       <WaterPart days={days} units={units} x={x} />
       <SoilPart days={days} units={units} x={x} />
       <NamedAxis scale={x} box={LOWER} ticks={ticks} label={`${longDate(days[0].date)} to ${longDate(days[days.length - 1].date)}`} />
@@ -116,5 +126,8 @@ function chartWords(days: readonly ParcelDay[], units: UnitSystem): string {
     `${days.length} days. Rain ${total((day) => day.precipitation_mm)}, net irrigation ${total((day) => day.net_requirement_mm)},`,
     `crop ET ${total((day) => day.crop_et_mm)}.`,
     `The soil is driest on ${longDate(deepest.date)}: ${figureWithUnit(deepest.root_zone_depletion_mm, 'depth', units)} below field capacity.`,
-  ].join(' ');
+    aheadWords(days),
+  ]
+    .join(' ')
+    .trim();
 }

@@ -57,7 +57,7 @@ function FeedForm({ feed, close }: { feed?: FeedAnswer; close: () => void }) {
     try {
       if (feed) await sendJson('PATCH', `/api/v1/weather/feeds/${feed.id}`, request);
       else {
-        const options = text('site') ? { site: text('site') } : {};
+        const options = { ...(text('site') ? { site: text('site') } : {}), ...(text('role') === 'forecast' ? { role: 'forecast' } : {}) };
         await sendJson('POST', '/api/v1/weather/feeds', { ...request, from, kind: text('kind'), options });
       }
       close();
@@ -128,6 +128,14 @@ function Origin({ from, onChange }: { from: string; onChange: (from: string) => 
           <option value="weather">weather (tables or grids)</option>
           <option value="stations">stations</option>
         </select>
+      </label>
+      <label className="field">
+        <span className="label">Its values are</span>
+        <select name="role" defaultValue="observed">
+          <option value="observed">observed</option>
+          <option value="forecast">a forecast of days to come</option>
+        </select>
+        <span className="hint">A forecast stays apart from what was measured; the newest issue stands.</span>
       </label>
       <label className="field">
         <span className="label">From</span>

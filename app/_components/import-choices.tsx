@@ -76,6 +76,7 @@ function fieldsOf(now: ImportAnswer, understood: Understood): React.ReactNode[] 
       <NumberField key="hours" name="minimumHours" label="Fewest hours of a day" value={said('minimumHours')} most={24} assumed={22} />,
     );
   }
+  if (now.kind === 'weather' || now.kind === 'stations') fields.push(<RoleField key="role" value={said('role')} />);
   if (now.kind === 'images') fields.push(<QuantityField key="quantity" value={said('quantity')} />);
   if (now.kind === 'weather' && GRIDS.includes(understood.format)) {
     fields.push(<NumberField key="margin" name="margin" label="Cells around the district (degrees)" value={said('margin')} most={10} />);
@@ -94,6 +95,19 @@ function LayerField({ understood }: { understood: Understood }) {
             {layer.featureCount === null ? '' : ` (${layer.featureCount})`}
           </option>
         ))}
+      </select>
+    </div>
+  );
+}
+
+function RoleField({ value }: { value: string }) {
+  return (
+    <div className="field">
+      <label htmlFor="import-role">The values are</label>
+      <select id="import-role" name="role" defaultValue={value}>
+        <option value="">as the source’s</option>
+        <option value="observed">observed</option>
+        <option value="forecast">a forecast</option>
       </select>
     </div>
   );

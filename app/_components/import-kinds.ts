@@ -161,7 +161,8 @@ export const IMPORT_KINDS: readonly ImportKindText[] = [
     name: 'Plantings',
     ...TABLE,
     says: 'What stands on each parcel in a season. Plantings of a parcel and season are replaced as a whole.',
-    columns: 'parcel, season, crop, calendar, planting_date, harvest_date, cut_dates (divided by ;), area_share',
+    columns:
+      'parcel, season, crop, calendar, planting_date, harvest_date, cut_dates (divided by ;), area_share; how it is watered and covered, where it differs from the method: irrigation_rule (depletion, interval, fixed-depth, daily, deficit, none) with irrigation_trigger, irrigation_refill, irrigation_interval_d or irrigation_depth_mm, trigger_initial … refill_late of a deficit, pre_irrigation_days, pre_irrigation_depth_mm, germination (days:mm, divided by ;), mulch, mulch_cover, canopy_cover, canopy_height_m',
     template: {
       name: 'plantings-template.csv',
       text: rows(
@@ -175,11 +176,17 @@ export const IMPORT_KINDS: readonly ImportKindText[] = [
     kind: 'soils',
     name: 'Soil classes',
     ...TABLE,
-    says: 'One row per soil class; parcels and soil polygons name them by code.',
-    columns: 'code, name, field_capacity, wilting_point, rew_mm, tew_mm, ze_m, curve_number, root_limit_m, source',
+    says: 'One row per soil class, or one for each of its layers from the surface down; parcels and soil polygons name them by code.',
+    columns:
+      'code, name, field_capacity, wilting_point, rew_mm, tew_mm, ze_m, curve_number, root_limit_m, top_m and bottom_m of a layer, saturation, texture, percolation_mm_d, capillary_class',
     template: {
       name: 'soils-template.csv',
-      text: rows('code,name,field_capacity,wilting_point,rew_mm,curve_number', 'SL,Sandy loam,0.23,0.11,8,75'),
+      text: rows(
+        'code,name,top_m,bottom_m,field_capacity,wilting_point,rew_mm,curve_number,texture',
+        'SL,Sandy loam,,,0.23,0.11,8,75,sandy loam',
+        'LS,Loam over sand,0,0.4,0.27,0.12,9,78,loam',
+        'LS,Loam over sand,0.4,1.5,0.12,0.05,,,sand',
+      ),
     },
   },
   {
@@ -191,6 +198,34 @@ export const IMPORT_KINDS: readonly ImportKindText[] = [
     template: {
       name: 'soil-polygons-template.geojson',
       text: features({ properties: { code: 'S-1', soil: 'loam' }, geometry: square(-120.145, 45.135, 0.02) }),
+    },
+  },
+  {
+    kind: 'deliveries',
+    name: 'Deliveries',
+    ...TABLE,
+    says: 'Water put on parcels, one row per parcel and day or turn; rows of a day add up. Later imports replace the day. A 0 says that nothing was delivered. Runs can take them in place of what the crops ask for.',
+    columns: 'parcel, date, and volume_m3 (or acre-feet, megalitres …) or gross_depth_mm over the parcel',
+    template: {
+      name: 'deliveries-template.csv',
+      text: rows('parcel,date,volume_m3', '0001,2023-05-02,1250', '0002,2023-05-04,980'),
+    },
+  },
+  {
+    kind: 'measurements',
+    name: 'Field measurements',
+    ...TABLE,
+    says: 'What was measured at parcels: a column for each quantity, or one row per value with its quantity named. Later imports replace all depths of a parcel, day and quantity.',
+    columns:
+      'parcel, date, depth_m, and any of: water_content, depletion_mm, water_table_m, soil_salinity_ds_m (ECe), water_salinity_ds_m (ECw), efficiency; or quantity, value, unit',
+    template: {
+      name: 'measurements-template.csv',
+      text: rows(
+        'parcel,date,depth_m,water_content,water_table_m,efficiency',
+        '0001,2023-03-28,0.3,0.21,,',
+        '0001,2023-03-28,0.6,0.24,,',
+        '0002,2023-03-28,,,1.8,0.72',
+      ),
     },
   },
   {

@@ -2,6 +2,8 @@
 
 import { AREA_ROLES, SOIL_AREA_ROLES } from '../../lib/files/area-roles.ts';
 import { CANAL_ROLES } from '../../lib/files/canal-roles.ts';
+import { DELIVERY_ROLES } from '../../lib/files/deliveries-csv.ts';
+import { MEASUREMENT_ROLES } from '../../lib/files/measurements-csv.ts';
 import { PARCEL_ROLES } from '../../lib/files/parcel-roles.ts';
 import { PLANTING_ROLES } from '../../lib/files/plantings-csv.ts';
 import { SOIL_ROLES } from '../../lib/files/soils-csv.ts';
@@ -21,6 +23,8 @@ export interface RoleChoice {
 const TABLES: Readonly<Record<string, readonly TableRole[]>> = {
   areas: AREA_ROLES,
   canals: CANAL_ROLES,
+  deliveries: DELIVERY_ROLES,
+  measurements: MEASUREMENT_ROLES,
   parcels: PARCEL_ROLES,
   plantings: PLANTING_ROLES,
   'soil-areas': SOIL_AREA_ROLES,

@@ -46,6 +46,9 @@ const THINGS: Readonly<Record<string, string>> = {
   soils: 'Soils',
   plantings: 'Parcels with plantings',
   crop_mappings: 'Crop codes remembered',
+  images: 'Parcels and days seen by images',
+  deliveries: 'Parcels and days of deliveries',
+  measurements: 'Days of measurements',
 };
 
 /** What an applied import changed, one row per thing, without what did not change. */

@@ -9,6 +9,7 @@ const PLACES = [
   { href: '/parcels', name: 'Parcels', short: 'Parcels' },
   { href: '/canals', name: 'Canals', short: 'Canals' },
   { href: '/weather', name: 'Weather', short: 'Weather' },
+  { href: '/frost', name: 'Frost', short: 'Frost' },
   { href: '/crops', name: 'Crops', short: 'Crops' },
   { href: '/imports', name: 'Imports', short: 'Imports' },
   { href: '/runs', name: 'Runs', short: 'Runs' },

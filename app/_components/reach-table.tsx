@@ -1,5 +1,6 @@
 import type { UnitSystem } from '../../lib/base/units.ts';
 import { capacityStatus } from '../../lib/canal/reach-period.ts';
+import type { BandRow } from '../../lib/http/contract/band.ts';
 import type { ReachPeriod } from '../../lib/http/contract/run.ts';
 import { type Column, DataTable } from './data-table.tsx';
 import { figure, percent, unitOf } from './figures.ts';
@@ -15,13 +16,13 @@ export function capacityWord(share: number | null): string {
 }
 
 /** The tree as a table: each reach under the one that feeds it. */
-export function ReachTable({ reaches, units, period, long }: ReachTableProps) {
+export function ReachTable({ reaches, band, units, period, long }: ReachTableProps) {
   return (
     <DataTable
       caption={`Reaches, ${period}`}
       rows={inTreeOrder(reaches)}
       rowKey={(row) => row.reach}
-      columns={columnsOf(units, long)}
+      columns={columnsOf(units, long, band)}
       unitsBelow
     />
   );
@@ -29,13 +30,15 @@ export function ReachTable({ reaches, units, period, long }: ReachTableProps) {
 
 interface ReachTableProps {
   readonly reaches: readonly ReachPeriod[];
+  /** head inflow by reach; without rows where the run has no band */
+  readonly band?: ReadonlyMap<string, BandRow>;
   readonly units: UnitSystem;
   readonly period: string;
   /** the period holds more than a week, so that its busiest one differs from its mean */
   readonly long: boolean;
 }
 
-function columnsOf(units: UnitSystem, long: boolean): Column<ReachPeriod>[] {
+function columnsOf(units: UnitSystem, long: boolean, band: ReadonlyMap<string, BandRow> = new Map()): Column<ReachPeriod>[] {
   const volume = (key: string, head: string, pick: (row: ReachPeriod) => number | null): Column<ReachPeriod> => ({
     key,
     head,
@@ -63,6 +66,12 @@ function columnsOf(units: UnitSystem, long: boolean): Column<ReachPeriod>[] {
     volume('demand', 'Turnouts', (row) => row.turnout_demand_m3),
     volume('loss', 'Lost', (row) => row.reach_loss_m3),
     volume('inflow', 'Head inflow', (row) => row.head_inflow_m3),
+    ...(band.size > 0
+      ? [
+          volume('low', 'Low (P10)', (row) => band.get(row.reach)?.p10_m3 ?? null),
+          volume('high', 'High (P90)', (row) => band.get(row.reach)?.p90_m3 ?? null),
+        ]
+      : []),
     flow('mean', 'Mean', (row) => row.mean_inflow_m3_s),
     ...(long ? [flow('busiest', 'Busiest 7 days', (row) => row.busiest_week_inflow_m3_s)] : []),
     flow('peak', 'Peak day', (row) => row.peak_inflow_m3_s),

@@ -3,47 +3,25 @@
 import { useRouter } from 'next/navigation';
 import { type ReactNode, useState } from 'react';
 import { messageOf, sendJson } from './problem-text.ts';
-import { SETTINGS, settingText } from './run-words.ts';
+import { SETTING_GROUPS, SETTINGS, type SettingWords } from './run-setting-words.ts';
+import { settingText } from './run-value-words.ts';
 
 export interface Named {
   readonly code: string;
   readonly name: string;
 }
 
-interface RunFormProps {
+/** What the district has to choose from. */
+interface RunChoices {
   readonly seasons: readonly Named[];
   readonly soils: readonly Named[];
   readonly methods: readonly Named[];
   readonly sources: readonly string[];
+  readonly forecasts: readonly string[];
 }
 
-/** The usual values, as the API documents them. */
-const USUAL: Readonly<Record<string, string>> = {
-  method: 'fao56',
-  interpolation: '',
-  elevation_trend: 'lapse-rate',
-  reference_et: 'automatic',
-  power: '2',
-  maximum_sites: '6',
-  lapse_rate_c_per_m: '0.0065',
-  initial_depletion: '0.3',
-  default_soil: 'loam',
-  default_method: 'furrow',
-};
-
-/** Settings that are on or off; on unless said. */
-const CHECKS: ReadonlySet<string> = new Set(['irrigate', 'runoff', 'fill_gaps']);
-
-/** Bounds and step of the number settings. */
-const NUMBERS: Readonly<Record<string, { min: number; max: number; step: number | 'any' }>> = {
-  power: { min: 0.5, max: 6, step: 0.5 },
-  maximum_sites: { min: 1, max: 8, step: 1 },
-  lapse_rate_c_per_m: { min: 0, max: 0.012, step: 'any' },
-  initial_depletion: { min: 0, max: 1, step: 0.05 },
-};
-
-/** Season and settings of a new run, each explained. */
-export function RunForm(props: RunFormProps) {
+/** Season and settings of a new run, grouped, each explained. */
+export function RunForm(props: RunChoices) {
   const router = useRouter();
   const [sending, setSending] = useState(false);
   const [fault, setFault] = useState<string | null>(null);
@@ -67,14 +45,19 @@ export function RunForm(props: RunFormProps) {
       }}
     >
       <Field id="season" name="Season" help="The days to compute.">
-        <Options name="season" options={props.seasons} />
+        <Options name="season" usual="" options={props.seasons} />
       </Field>
       <details className="stack">
         <summary>Settings</summary>
-        {SETTINGS.map((setting) => (
-          <Field key={setting.key} id={setting.key} name={setting.name} help={setting.help}>
-            <Control name={setting.key} {...props} />
-          </Field>
+        {SETTING_GROUPS.map((group) => (
+          <fieldset key={group.id} className="stack">
+            <legend className="legend">{group.name}</legend>
+            {SETTINGS.filter((setting) => setting.group === group.id).map((setting) => (
+              <Field key={setting.key} id={setting.key} name={setting.name} help={setting.help}>
+                <Control setting={setting} choices={props} />
+              </Field>
+            ))}
+          </fieldset>
         ))}
       </details>
       {fault ? (
@@ -103,41 +86,28 @@ function Field({ id, name, help, children }: { id: string; name: string; help: s
   );
 }
 
-function Control(props: RunFormProps & { name: string }) {
-  const { name } = props;
-  if (CHECKS.has(name))
-    return <input id={`run-${name}`} type="checkbox" name={name} defaultChecked aria-describedby={`run-${name}-help`} />;
-  if (NUMBERS[name])
-    return (
-      <input
-        id={`run-${name}`}
-        type="number"
-        name={name}
-        required
-        defaultValue={USUAL[name]}
-        {...NUMBERS[name]}
-        aria-describedby={`run-${name}-help`}
-      />
-    );
-  return <Options name={name} options={optionsOf(props)} />;
+function Control({ setting, choices }: { setting: SettingWords; choices: RunChoices }) {
+  const { key: name, control } = setting;
+  const common = { id: `run-${name}`, name, 'aria-describedby': `run-${name}-help` };
+  if (control.kind === 'check') return <input type="checkbox" defaultChecked={control.usual} {...common} />;
+  if (control.kind === 'number') {
+    const { min, max, step, usual, optional } = control;
+    return <input type="number" required={!optional} defaultValue={usual} min={min} max={max} step={step} {...common} />;
+  }
+  return <Options name={name} usual={control.usual} options={optionsOf(control, choices)} />;
 }
 
-/** Left out of the request: the service takes what suits the kind of the source. */
-const USUAL_WAY: Named = { code: '', name: 'the usual: inverse distance between stations, bilinear on a grid' };
-
-function optionsOf(props: RunFormProps & { name: string }): Named[] {
-  const said = (codes: readonly string[]) => codes.map((code) => ({ code, name: settingText(code) }));
-  if (props.name === 'method') return said(['fao56', 'asce2005']);
-  if (props.name === 'interpolation') return [USUAL_WAY, ...said(['automatic', 'inverse-distance', 'nearest', 'kriging', 'bilinear'])];
-  if (props.name === 'reference_et') return said(['automatic', 'at-parcels', 'at-sites', 'given', 'hourly-sum']);
-  if (props.name === 'elevation_trend') return said(['lapse-rate', 'fitted', 'none']);
-  if (props.name === 'source') return [{ code: '', name: 'every source' }, ...said(props.sources)];
-  return [...(props.name === 'default_soil' ? props.soils : props.methods)];
+function optionsOf(control: SettingWords['control'], choices: RunChoices): Named[] {
+  if (control.kind === 'choice') return control.values.map((code) => ({ code, name: settingText(code) }));
+  if (control.kind !== 'named') return [];
+  const open = control.open ? [{ code: '', name: control.open }] : [];
+  const named = choices[control.of].map((each) => (typeof each === 'string' ? { code: each, name: each } : each));
+  return [...open, ...named];
 }
 
-function Options({ name, options }: { name: string; options: readonly Named[] }) {
+function Options({ name, usual, options }: { name: string; usual: string; options: readonly Named[] }) {
   return (
-    <select id={`run-${name}`} name={name} defaultValue={USUAL[name]} aria-describedby={`run-${name}-help`}>
+    <select id={`run-${name}`} name={name} defaultValue={usual || undefined} aria-describedby={`run-${name}-help`}>
       {options.map((option) => (
         <option key={option.code} value={option.code}>
           {option.name}
@@ -147,14 +117,15 @@ function Options({ name, options }: { name: string; options: readonly Named[] })
   );
 }
 
-/** What the API is asked for. */
+/** What the API is asked for. An interpolation left open goes by the kind of the source, and is not sent. */
 export function requestOf(form: FormData): { season: string; settings: Record<string, unknown> } {
-  const settings: Record<string, unknown> = Object.fromEntries([...CHECKS].map((name) => [name, form.has(name)]));
-  for (const { key } of SETTINGS) {
-    if (key in settings) continue;
+  const settings: Record<string, unknown> = {};
+  for (const { key, control } of SETTINGS) {
     const value = String(form.get(key) ?? '');
-    if (key === 'interpolation' && value === '') continue;
-    settings[key] = key === 'source' ? value || null : key in NUMBERS ? Number(value) : value;
+    if (control.kind === 'check') settings[key] = form.has(key);
+    else if (control.kind === 'number') settings[key] = value === '' ? null : Number(value);
+    else if (control.kind === 'named') settings[key] = value || null;
+    else if (value !== '') settings[key] = value;
   }
   return { season: String(form.get('season')), settings };
 }

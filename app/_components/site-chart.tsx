@@ -2,6 +2,7 @@ import { scaleLinear } from 'd3-scale';
 import { area } from 'd3-shape';
 import type { UnitSystem } from '../../lib/base/units.ts';
 import type { SiteDay } from '../../lib/http/contract/rest.ts';
+import { AheadShade, aheadLegend } from './ahead-shade.tsx';
 import {
   type Box,
   ChartFrame,
@@ -51,8 +52,9 @@ export function SeriesChart(props: SeriesChartProps) {
       description={chartWords(props)}
       width={960}
       height={206}
-      legend={legend.map(({ label, mark }) => ({ label, mark }))}
+      legend={[...legend.map(({ label, mark }) => ({ label, mark })), ...aheadLegend(days)]}
     >
+      <AheadShade days={days} x={x} boxes={[BOX]} />
       <ValueAxis scale={y} box={BOX} label={props.unit} ticks={4} />
       {band ? <path className={markClass('band')} d={bandPath(band.low, band.high, middle, y)} /> : null}
       {bars ? <DayBars series={bars} x={x} y={y} /> : null}

@@ -1,5 +1,7 @@
 import { depthToVolume, type UnitSystem, volumeToFlow } from '../../lib/base/units.ts';
 import type { ParcelDay, ParcelSeason } from '../../lib/http/contract/run.ts';
+import { isAhead } from '../../lib/weather/day-kind.ts';
+import { dayKindWord } from './ahead-shade.tsx';
 import { dayMonth } from './date-words.ts';
 import { figure, type Maybe, percent, plain, sumOf, unitOf } from './figures.ts';
 import { Go } from './go.tsx';
@@ -36,6 +38,13 @@ export function WaterChain({ season, spans, date, units, workingHref }: WaterCha
             {spans.map((span) => (
               <th scope="col" key={span.name} className="num">
                 {span.name}
+                {aheadCount(span.days) > 0 ? (
+                  <span className="chain-note">
+                    {span.days.length === 1
+                      ? dayKindWord(span.days[0].day_kind)
+                      : `${aheadCount(span.days)} of ${span.days.length} days not observed`}
+                  </span>
+                ) : null}
               </th>
             ))}
             <th scope="col">Unit</th>
@@ -107,7 +116,7 @@ function linksOf(season: ParcelSeason, units: UnitSystem): readonly Link[] {
     },
     {
       name: 'Rain',
-      note: 'measured, weighted over the sites',
+      note: 'of the sites by their weights, as measured or told ahead',
       water: 'rain',
       part: 'weather',
       unit: mm,
@@ -170,6 +179,11 @@ function linksOf(season: ParcelSeason, units: UnitSystem): readonly Link[] {
       value: (days) => steadyFlow(volumeToFlow(volume(days), days.length), units),
     },
   ];
+}
+
+/** Days past the last observation. */
+function aheadCount(days: readonly ParcelDay[]): number {
+  return days.filter(({ day_kind }) => isAhead(day_kind)).length;
 }
 
 function flowUnit(units: UnitSystem): string {

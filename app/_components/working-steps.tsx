@@ -14,6 +14,7 @@ const PARTS: Readonly<Record<string, string>> = {
   weather: 'Weather at the parcel',
   radiation: 'Radiation',
   'reference-et': 'Reference ET',
+  calendar: 'Crop calendar',
   coefficient: 'Crop coefficient',
   surface: 'Evaporation from the soil surface',
   'root-zone': 'Water in the root zone',

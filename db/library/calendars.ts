@@ -3,6 +3,7 @@
  */
 import type { CropCalendar } from '../../lib/season/types.ts';
 import { type CropRow, kebab } from './crop-rows.ts';
+import { weatherCalendars } from './weather-calendars.ts';
 
 export interface LibraryCalendar {
   readonly cropCode: string;
@@ -14,12 +15,13 @@ export interface LibraryCalendar {
 
 const MONTHS = ['jan', 'feb', 'mar', 'apr', 'may', 'jun', 'jul', 'aug', 'sep', 'oct', 'nov', 'dec'];
 
-/** Calendars of all rows. Later cutting cycles join the first cycle of the same crop and region. */
+/** Calendars of all rows, then those that follow the weather. Later cutting cycles join the first cycle of the same crop and region. */
 export function libraryCalendars(rows: readonly CropRow[]): LibraryCalendar[] {
   const starts = rows.filter((row) => row.stages !== null && row.cycle !== 'later').map((row) => calendarOf(row, laterCycle(rows, row)));
   const listed = new Set(starts.map((each) => each.cropCode));
   const standing = rows.filter((row) => !listed.has(row.code) && row.type !== 'annual').map(allYear);
-  return [...starts, ...standing];
+  const fixed = [...starts, ...standing];
+  return [...fixed, ...weatherCalendars(fixed)];
 }
 
 function laterCycle(rows: readonly CropRow[], first: CropRow): CropRow['stages'] {

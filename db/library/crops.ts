@@ -6,6 +6,7 @@
  */
 import type { Crop } from '../../lib/season/types.ts';
 import { type LibraryCalendar, libraryCalendars } from './calendars.ts';
+import { additionSources, additionsOf } from './crop-additions.ts';
 import { type CropRow, cropRows } from './crop-rows.ts';
 
 interface CropLibrary {
@@ -69,7 +70,19 @@ function cropOf(row: CropRow): Crop {
     depletionFraction: row.depletionFraction,
     yieldResponse: row.yieldResponse,
     lastIrrigation: basal.basalEnd <= DRIES_OFF_BELOW ? 0.5 : 1,
+    ...singleOf(row),
+    ...saltOf(row),
+    ...additionsOf(row),
   };
+}
+
+function singleOf(row: CropRow): Pick<Crop, 'single'> {
+  if (Number.isNaN(row.singleInitial + row.singleMid + row.singleEnd)) return {};
+  return { single: { initial: row.singleInitial, mid: row.singleMid, end: row.singleEnd } };
+}
+
+function saltOf(row: CropRow): Pick<Crop, 'salinity'> {
+  return Number.isNaN(row.salinityThreshold) ? {} : { salinity: { threshold: row.salinityThreshold, slope: row.salinitySlope } };
 }
 
 /** Kcb of Table 17; where it lists none, from Kc by the rule of Table 18 (mid and end less 0.05), with the initial value of the cut crop. */
@@ -105,6 +118,9 @@ function sourcesOf(row: CropRow): Partial<Record<keyof Crop, string>> {
     depletionFraction: 'FAO-56 Table 22',
     ...(Number.isNaN(row.yieldResponse) ? {} : { yieldResponse: `FAO-56 Table 24; ${RANGE}` }),
     lastIrrigation: 'FAO-56 Annex 8 for crops that dry off (Kcb end ≤ 0.35): middle of the late stage; otherwise until harvest',
+    ...(singleOf(row).single ? { single: `FAO-56 Table 12; ${RANGE}` } : {}),
+    ...(saltOf(row).salinity ? { salinity: `FAO-56 Table 23; ${RANGE}` } : {}),
+    ...additionSources(additionsOf(row)),
   };
 }
 

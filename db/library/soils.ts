@@ -10,8 +10,26 @@ interface LibrarySoil extends Soil {
 /** Runoff curve numbers of straight-row crops in good condition by hydrologic soil group. Source: NEH 630 chapter 9, Table 9-1 (recalled, not re-read). */
 const ROW_CROP_CURVE_NUMBER = { A: 67, B: 78, C: 85, D: 89 } as const;
 
+/**
+ * Total porosity, taken for saturation [m³ m⁻³], saturated conductivity [mm d⁻¹], bubbling head [m] and exponent b = 1 / pore-size index, by texture; of silt none are
+ * printed. Source: Rawls, Brakensiek & Saxton 1982, Table 2 (recalled, not re-read), as `lib/crop/capillary-rise` has them.
+ */
+const HYDRAULIC: Readonly<Record<string, readonly [number, number, number, number]>> = {
+  sand: [0.437, 5040, 0.0726, 1 / 0.592],
+  'loamy-sand': [0.437, 1466.4, 0.0869, 1 / 0.474],
+  'sandy-loam': [0.453, 621.6, 0.1466, 1 / 0.322],
+  loam: [0.463, 316.8, 0.1115, 1 / 0.22],
+  'silt-loam': [0.501, 163.2, 0.2076, 1 / 0.211],
+  'silt-clay-loam': [0.471, 36, 0.3256, 1 / 0.151],
+  'silty-clay': [0.479, 21.6, 0.3419, 1 / 0.127],
+  clay: [0.475, 14.4, 0.373, 1 / 0.131],
+};
+
+/** Soils whose texture moves p: coarse raise it, fine lower it. Source: FAO-56, note to Table 22; which classes count: common practice, no source. */
+const SHIFTED: Readonly<Record<string, Soil['texture']>> = { sand: 'coarse', 'loamy-sand': 'coarse', 'silty-clay': 'fine', clay: 'fine' };
+
 const SOURCE =
-  'FAO-56 Table 19, middle of the printed ranges, Ze 0.10 m; curve number of row crops recalled from NEH 630 (not re-read), soil group by texture';
+  'FAO-56 Table 19, middle of the printed ranges, Ze 0.10 m; curve number of row crops recalled from NEH 630 (not re-read), soil group by texture; saturation and capillary properties Rawls et al. 1982 Table 2 (recalled, not re-read)';
 
 /** Printed ranges: field capacity, wilting point [m³ m⁻³], readily and totally evaporable water [mm], hydrologic group by texture (TR-55 appendix A, recalled). */
 const RANGES = [
@@ -36,8 +54,19 @@ export const LIBRARY_SOILS: readonly LibrarySoil[] = RANGES.map(([code, name, ca
   totalEvaporableWater: middle(total),
   curveNumber: ROW_CROP_CURVE_NUMBER[group],
   rootLimit: Number.NaN,
+  ...profileOf(code),
   source: SOURCE,
 }));
+
+/** The members of a soil that only some have. */
+function profileOf(code: string): Pick<Soil, 'saturation' | 'texture' | 'capillary'> {
+  const printed = HYDRAULIC[code];
+  const texture = SHIFTED[code];
+  const shift = texture ? { texture } : {};
+  if (!printed) return shift;
+  const [saturation, conductivity, bubblingHead, exponent] = printed;
+  return { ...shift, saturation, capillary: { conductivity, bubblingHead, exponent } };
+}
 
 function middle([low, high]: readonly [number, number]): number {
   return Math.round(((low + high) / 2) * 10000) / 10000;

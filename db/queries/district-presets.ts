@@ -12,8 +12,9 @@ export async function saveDistrictPresets(tx: Tx, districtId: string): Promise<v
   await tx
     .insert(soil)
     .values(
-      LIBRARY_SOILS.map((row) => ({
+      LIBRARY_SOILS.map(({ layers, saturation, texture, percolationRate, capillary, ...row }) => ({
         ...row,
+        profile: { layers, saturation, texture, percolationRate, capillary },
         districtId,
         curveNumber: nullFromNaN(row.curveNumber),
         rootLimit: nullFromNaN(row.rootLimit),

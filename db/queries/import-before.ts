@@ -8,7 +8,7 @@ import { type SQL, sql } from 'drizzle-orm';
 import type { Tx } from '../connect.ts';
 import { jsonText, storableText } from './json-text.ts';
 
-/** Key columns of the tables an import writes row by row. Plantings are replaced as all the plantings of a parcel and season. */
+/** Key columns of the tables an import writes row by row. Plantings are replaced as all the plantings of a parcel and season, measurements as all the depths of a day. */
 const TABLES = {
   weather_source: { key: { source_id: 'int' } },
   site: { key: { source_id: 'int', ordinal: 'int' } },
@@ -22,6 +22,8 @@ const TABLES = {
   soil_area: { key: { code: 'text' } },
   parcel_history: { key: { history_id: 'uuid' } },
   image_mean: { key: { parcel_code: 'text', date: 'date', quantity: 'text' } },
+  delivery: { key: { parcel_code: 'text', date: 'date' } },
+  field_measurement: { key: { parcel_code: 'text', date: 'date', quantity: 'text' }, order: 'depth_m' },
 } as const satisfies Record<string, { key: Record<string, 'int' | 'text' | 'uuid' | 'date' | 'float8'>; order?: string }>;
 
 type ImportTable = keyof typeof TABLES;

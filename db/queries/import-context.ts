@@ -20,7 +20,7 @@ import {
 } from '../schema/land.ts';
 import { site, weatherBlock, weatherSource } from '../schema/weather.ts';
 
-/** @param kind shapes of the parcels come along only where it needs them */
+/** @param kind shapes and areas of the parcels come along only where it needs them */
 export async function findImportContext(tx: Tx, districtId: string, kind?: ImportKind): Promise<ImportContext> {
   const [own] = await tx
     .select({ units: district.units, timeZone: district.timeZone, defaultElevation: district.defaultElevation })
@@ -61,8 +61,14 @@ export async function findImportContext(tx: Tx, districtId: string, kind?: Impor
     plantingCounts: await plantingCounts(tx, districtId),
     parcelCounts: await parcelCounts(tx, districtId),
     ...(kind === 'images' ? { parcelShapes: await listParcelShapes(tx, districtId) } : {}),
+    ...(kind === 'deliveries' ? { parcelAreas: await listParcelAreas(tx, districtId) } : {}),
     ...(await libraries(tx, districtId)),
   };
+}
+
+async function listParcelAreas(tx: Tx, districtId: string): Promise<Record<string, number>> {
+  const rows = await tx.select({ code: parcel.code, area: parcel.area }).from(parcel).where(eq(parcel.districtId, districtId));
+  return Object.fromEntries(rows.map(({ code, area }) => [code, area]));
 }
 
 async function listParcelShapes(tx: Tx, districtId: string): Promise<ImportContext['parcelShapes']> {
@@ -196,7 +202,7 @@ async function parcelCounts(tx: Tx, districtId: string): Promise<Record<string, 
   return Object.fromEntries(rows.map(({ code, count }) => [code ?? '', count]));
 }
 
-/** Seasons that could be computed now: the district has parcels, the season has plantings, and some weather falls in it. */
+/** Seasons that could be computed now: the district has parcels, the season has plantings, and some weather falls in it or a run of it stands. */
 export async function listComputableSeasons(tx: Tx, districtId: string) {
   return tx
     .select({ code: season.code, startDate: season.startDate, endDate: season.endDate })
@@ -206,8 +212,9 @@ export async function listComputableSeasons(tx: Tx, districtId: string) {
         eq(season.districtId, districtId),
         sql`exists (select 1 from ${parcel} where ${parcel.districtId} = ${districtId})`,
         sql`exists (select 1 from ${planting} where ${planting.districtId} = ${districtId} and ${planting.seasonCode} = ${season.code})`,
-        sql`exists (select 1 from ${weatherBlock} where ${weatherBlock.districtId} = ${districtId}
-              and ${weatherBlock.month} <= ${season.endDate} and ${weatherBlock.month} + interval '1 month' > ${season.startDate})`,
+        sql`(exists (select 1 from ${weatherBlock} where ${weatherBlock.districtId} = ${districtId}
+              and ${weatherBlock.month} <= ${season.endDate} and ${weatherBlock.month} + interval '1 month' > ${season.startDate})
+            or exists (select 1 from run where run.district_id = ${districtId} and run.season_code = ${season.code} and run.standing))`,
       ),
     )
     .orderBy(asc(season.startDate));
@@ -216,7 +223,14 @@ export async function listComputableSeasons(tx: Tx, districtId: string) {
 /** Sites with the name of their source. */
 export function listSourceSites(tx: Tx, districtId: string) {
   return tx
-    .select({ sourceId: site.sourceId, source: weatherSource.name, kind: weatherSource.kind, ordinal: site.ordinal, code: site.code })
+    .select({
+      sourceId: site.sourceId,
+      source: weatherSource.name,
+      kind: weatherSource.kind,
+      role: weatherSource.role,
+      ordinal: site.ordinal,
+      code: site.code,
+    })
     .from(site)
     .innerJoin(weatherSource, and(eq(weatherSource.districtId, site.districtId), eq(weatherSource.sourceId, site.sourceId)))
     .where(eq(site.districtId, districtId))
@@ -225,7 +239,13 @@ export function listSourceSites(tx: Tx, districtId: string) {
 
 export function listSources(tx: Tx, districtId: string) {
   return tx
-    .select({ sourceId: weatherSource.sourceId, name: weatherSource.name, kind: weatherSource.kind, grid: weatherSource.grid })
+    .select({
+      sourceId: weatherSource.sourceId,
+      name: weatherSource.name,
+      kind: weatherSource.kind,
+      role: weatherSource.role,
+      grid: weatherSource.grid,
+    })
     .from(weatherSource)
     .where(eq(weatherSource.districtId, districtId))
     .orderBy(asc(weatherSource.sourceId));

@@ -3,7 +3,7 @@ import { and, asc, eq, inArray, sql } from 'drizzle-orm';
 import type { Tx } from '../connect.ts';
 import { district } from '../schema/district.ts';
 import { importBefore } from '../schema/import.ts';
-import { parcel, planting, reach, turnout } from '../schema/land.ts';
+import { delivery, fieldMeasurement, parcel, planting, reach, turnout } from '../schema/land.ts';
 import { site, weatherSource } from '../schema/weather.ts';
 
 /** What the parcels hold that a file may leave unsaid, by code. */
@@ -78,6 +78,20 @@ export function listPlantingKeys(tx: Tx, districtId: string, parcelCodes: readon
     .where(and(eq(planting.districtId, districtId), inArray(planting.parcelCode, [...parcelCodes])));
 }
 
+/** Days of deliveries, and days and quantities of measurements, of some parcels. */
+export async function listRecordKeys(tx: Tx, districtId: string, parcelCodes: readonly string[]) {
+  const codes = [...parcelCodes];
+  const deliveries = await tx
+    .select({ parcel_code: delivery.parcelCode, date: delivery.date })
+    .from(delivery)
+    .where(and(eq(delivery.districtId, districtId), inArray(delivery.parcelCode, codes)));
+  const measurements = await tx
+    .selectDistinct({ parcel_code: fieldMeasurement.parcelCode, date: fieldMeasurement.date, quantity: fieldMeasurement.quantity })
+    .from(fieldMeasurement)
+    .where(and(eq(fieldMeasurement.districtId, districtId), inArray(fieldMeasurement.parcelCode, codes)));
+  return { deliveries, measurements };
+}
+
 /** Turnouts and parcels that name some reaches. */
 export async function listReachUsers(tx: Tx, districtId: string, reachCodes: readonly string[]) {
   const turnouts = await tx
@@ -115,6 +129,8 @@ const REFERENCES = [
   { table: 'planting', column: 'season_code', to: 'season', words: 'plantings in seasons that do not exist' },
   { table: 'planting', column: 'crop_code', to: 'crop', words: 'plantings of crops that are not in the library' },
   { table: 'planting', column: 'calendar_code', to: 'crop_calendar', words: 'plantings with calendars that do not exist' },
+  { table: 'delivery', column: 'parcel_code', to: 'parcel', words: 'deliveries to parcels that do not exist' },
+  { table: 'field_measurement', column: 'parcel_code', to: 'parcel', words: 'measurements at parcels that do not exist' },
   { table: 'parcel', column: 'reach_code', to: 'reach', words: 'parcels on reaches that do not exist' },
   { table: 'parcel', column: 'turnout_code', to: 'turnout', words: 'parcels on turnouts that do not exist' },
   { table: 'parcel', column: 'soil_code', to: 'soil', words: 'parcels on soils that do not exist' },

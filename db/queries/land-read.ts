@@ -76,6 +76,16 @@ export async function findParcel(tx: Tx, districtId: string, code: string) {
   return row ?? null;
 }
 
+/** Areas of parcels [m²] by code. */
+export async function mapParcelAreas(tx: Tx, districtId: string, codes: readonly string[]): Promise<Map<string, number>> {
+  if (codes.length === 0) return new Map();
+  const rows = await tx
+    .select({ code: parcel.code, area: parcel.area })
+    .from(parcel)
+    .where(and(eq(parcel.districtId, districtId), sql`${parcel.code} = any(${textArray(codes)})`));
+  return new Map(rows.map(({ code, area }) => [code, area]));
+}
+
 interface PlantingFilter {
   readonly districtId: string;
   readonly codes: readonly string[] | null;
@@ -127,6 +137,26 @@ export function listSoils(tx: Tx, districtId: string) {
 
 export function listMethods(tx: Tx, districtId: string) {
   return tx.select().from(applicationMethod).where(eq(applicationMethod.districtId, districtId)).orderBy(asc(applicationMethod.code));
+}
+
+export async function findMethod(tx: Tx, districtId: string, code: string) {
+  const [row] = await tx
+    .select()
+    .from(applicationMethod)
+    .where(and(eq(applicationMethod.districtId, districtId), eq(applicationMethod.code, code)));
+  return row ?? null;
+}
+
+export async function updateMethod(
+  tx: Tx,
+  districtId: string,
+  code: string,
+  values: Partial<Omit<typeof applicationMethod.$inferInsert, 'districtId' | 'code'>>,
+): Promise<void> {
+  await tx
+    .update(applicationMethod)
+    .set(values)
+    .where(and(eq(applicationMethod.districtId, districtId), eq(applicationMethod.code, code)));
 }
 
 /** Crops with the number of plantings of each; one only when `code` is given. */

@@ -1,8 +1,10 @@
 /** Everything a run is a function of, as it stands now. */
-import { and, asc, eq } from 'drizzle-orm';
+import { and, asc, desc, eq, lt, sql } from 'drizzle-orm';
 import type { Tx } from '../connect.ts';
 import { district } from '../schema/district.ts';
 import { crop, cropCalendar, parcel, planting, reach, season, turnout } from '../schema/land.ts';
+import { run, runParcel } from '../schema/run.ts';
+import { textArray } from './district-read.ts';
 import { listMethods, listSoils, PARCEL_JOINS_AND_PLACE, REACH_COLUMNS } from './land-read.ts';
 
 export async function findDistrict(tx: Tx, districtId: string) {
@@ -38,6 +40,54 @@ export function listSeasonPlantings(tx: Tx, districtId: string, seasonCode: stri
     .from(planting)
     .where(and(eq(planting.districtId, districtId), eq(planting.seasonCode, seasonCode)))
     .orderBy(asc(planting.parcelCode), asc(planting.sequence));
+}
+
+export function listSeasonDates(tx: Tx, districtId: string) {
+  return tx
+    .select({ code: season.code, startDate: season.startDate, endDate: season.endDate })
+    .from(season)
+    .where(eq(season.districtId, districtId));
+}
+
+/** Plantings of another season on some parcels. */
+export function listEarlierPlantings(tx: Tx, districtId: string, wanted: { season: string; codes: readonly string[] }) {
+  return tx
+    .select()
+    .from(planting)
+    .where(
+      and(
+        eq(planting.districtId, districtId),
+        eq(planting.seasonCode, wanted.season),
+        sql`${planting.parcelCode} = any(${textArray(wanted.codes)})`,
+      ),
+    )
+    .orderBy(asc(planting.parcelCode), asc(planting.sequence));
+}
+
+/** The standing run of the latest season that ends before a day; null where none stands. */
+export async function findRunBefore(tx: Tx, districtId: string, startDate: string) {
+  const [row] = await tx
+    .select({ runId: run.runId, seasonCode: run.seasonCode, endDate: run.endDate, staleSince: run.staleSince })
+    .from(run)
+    .where(and(eq(run.districtId, districtId), eq(run.standing, true), lt(run.endDate, startDate)))
+    .orderBy(desc(run.endDate))
+    .limit(1);
+  return row ?? null;
+}
+
+/** What a run left in the soil of some parcels; parcels of which it kept nothing are left out. */
+export function listClosings(tx: Tx, districtId: string, runId: string, codes: readonly string[]) {
+  return tx
+    .select({ parcelCode: runParcel.parcelCode, closing: runParcel.closing })
+    .from(runParcel)
+    .where(
+      and(
+        eq(runParcel.districtId, districtId),
+        eq(runParcel.runId, runId),
+        sql`${runParcel.parcelCode} = any(${textArray(codes)})`,
+        sql`${runParcel.closing} is not null`,
+      ),
+    );
 }
 
 /** The libraries of the district: soils, methods, crops, calendars. */

@@ -4,6 +4,7 @@ import type { Tx } from '../connect.ts';
 import { parcel } from '../schema/land.ts';
 import { run, runParcel, runReach, runValue } from '../schema/run.ts';
 import { textArray } from './district-read.ts';
+import { isMapArray } from './run-results.ts';
 
 const { frozen: _frozen, ...columns } = getTableColumns(run);
 export type RunHead = Omit<typeof run.$inferSelect, 'frozen'>;
@@ -120,7 +121,7 @@ export async function listRunVariables(tx: Tx, { districtId, runId }: RunKey): P
   const rows = await tx
     .selectDistinct({ variable: runValue.variable })
     .from(runValue)
-    .where(and(eq(runValue.districtId, districtId), eq(runValue.runId, runId)));
+    .where(and(eq(runValue.districtId, districtId), eq(runValue.runId, runId), isMapArray));
   return rows.map(({ variable }) => variable);
 }
 

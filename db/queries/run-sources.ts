@@ -3,7 +3,7 @@ import { and, asc, eq, gte, lte, sql } from 'drizzle-orm';
 import type { Tx } from '../connect.ts';
 import { site, weatherBlock, weatherSource } from '../schema/weather.ts';
 
-/** Sources in the order in which they stand in for one another, each with whether it has any weather. */
+/** Sources of observations in the order in which they stand in for one another, each with whether it has any weather. Forecasts are not among them. */
 export function listRunSources(tx: Tx, districtId: string) {
   const hasWeather = sql<boolean>`exists (select 1 from weather_block b
     where b.district_id = "weather_source"."district_id" and b.source_id = "weather_source"."source_id")`;
@@ -16,7 +16,7 @@ export function listRunSources(tx: Tx, districtId: string) {
       hasWeather,
     })
     .from(weatherSource)
-    .where(eq(weatherSource.districtId, districtId))
+    .where(and(eq(weatherSource.districtId, districtId), eq(weatherSource.role, 'observed')))
     .orderBy(asc(weatherSource.rank), asc(weatherSource.sourceId));
 }
 

@@ -2,6 +2,7 @@
 import { and, eq, getTableColumns, inArray, isNull, ne, sql } from 'drizzle-orm';
 import type { Tx } from '../connect.ts';
 import { run, runParcel, runSlice } from '../schema/run.ts';
+import { deleteRunParts } from './run-results.ts';
 
 export type RunRow = typeof run.$inferSelect;
 type NewRun = typeof run.$inferInsert;
@@ -27,38 +28,30 @@ export async function findFrozen(tx: Tx, districtId: string, runId: string): Pro
   return row?.frozen ?? null;
 }
 
-/** Changes a run and tells listeners. Only a run that is still going is changed; answers whether it was. */
+/** Changes a run and tells listeners; one that ends without results leaves no parts. Only a run that is still going is changed; answers whether it was. */
 export async function updateGoingRun(tx: Tx, districtId: string, runId: string, values: Partial<NewRun>): Promise<boolean> {
   const rows = await tx
     .update(run)
     .set(values)
     .where(and(one(districtId, runId), inArray(run.state, ['queued', 'running'])))
     .returning({ runId: run.runId });
-  if (rows.length > 0) await notifyRun(tx, districtId, runId);
-  return rows.length > 0;
+  if (rows.length === 0) return false;
+  if (values.state === 'failed' || values.state === 'cancelled') await deleteRunParts(tx, { districtId, runId });
+  await notifyRun(tx, districtId, runId);
+  return true;
 }
 
 export async function notifyRun(tx: Tx, districtId: string, runId: string): Promise<void> {
   await tx.execute(sql`select pg_notify('run_progress', ${JSON.stringify({ district: districtId, run: runId })})`);
 }
 
+/** Cuts a run anew: nothing of its slices of before is left. */
 export async function replaceSlices(tx: Tx, districtId: string, runId: string, count: number): Promise<void> {
+  await deleteRunParts(tx, { districtId, runId });
   await tx.delete(runSlice).where(and(eq(runSlice.districtId, districtId), eq(runSlice.runId, runId)));
   await tx.delete(runParcel).where(and(eq(runParcel.districtId, districtId), eq(runParcel.runId, runId)));
   const rows = Array.from({ length: count }, (_, slice) => ({ districtId, runId, slice }));
   if (rows.length > 0) await tx.insert(runSlice).values(rows);
-}
-
-export async function insertRunParcels(tx: Tx, rows: (typeof runParcel.$inferInsert)[]): Promise<void> {
-  for (let from = 0; from < rows.length; from += 1000) await tx.insert(runParcel).values(rows.slice(from, from + 1000));
-}
-
-export function listSliceParcels(tx: Tx, districtId: string, runId: string, slice: number) {
-  return tx
-    .select({ position: runParcel.position, parcelCode: runParcel.parcelCode, input: runParcel.input })
-    .from(runParcel)
-    .where(and(eq(runParcel.districtId, districtId), eq(runParcel.runId, runId), eq(runParcel.slice, slice)))
-    .orderBy(runParcel.position);
 }
 
 export function listParcelInputs(tx: Tx, districtId: string, runId: string, positions: readonly number[]) {
@@ -67,27 +60,6 @@ export function listParcelInputs(tx: Tx, districtId: string, runId: string, posi
     .from(runParcel)
     .where(and(eq(runParcel.districtId, districtId), eq(runParcel.runId, runId), inArray(runParcel.position, [...positions])))
     .orderBy(runParcel.position);
-}
-
-/** Stores one slice's results in few statements. Doing it twice stores the same. */
-export async function saveSlice(
-  tx: Tx,
-  key: { districtId: string; runId: string; slice: number },
-  results: { positions: number[]; daily: Uint8Array[]; flags: Uint8Array[]; maxResidual: number },
-): Promise<void> {
-  const step = 250;
-  for (let from = 0; from < results.positions.length; from += step) {
-    const to = Math.min(from + step, results.positions.length);
-    const rows = [];
-    for (let i = from; i < to; i++) rows.push(sql`(${results.positions[i]}::int, ${results.daily[i]}::bytea, ${results.flags[i]}::bytea)`);
-    await tx.execute(sql`update run_parcel p set daily = v.daily, flags = v.flags
-      from (values ${sql.join(rows, sql`, `)}) as v (position, daily, flags)
-      where p.district_id = ${key.districtId} and p.run_id = ${key.runId} and p.position = v.position`);
-  }
-  await tx
-    .update(runSlice)
-    .set({ done: true, maxResidual: results.maxResidual })
-    .where(and(eq(runSlice.districtId, key.districtId), eq(runSlice.runId, key.runId), eq(runSlice.slice, key.slice)));
 }
 
 export async function countSlices(tx: Tx, districtId: string, runId: string): Promise<{ done: number; all: number; maxResidual: number }> {
@@ -102,12 +74,27 @@ export async function countSlices(tx: Tx, districtId: string, runId: string): Pr
   return row;
 }
 
-export async function isSliceDone(tx: Tx, districtId: string, runId: string, slice: number): Promise<boolean> {
+/** Whether a slice is stored; null when the run has no such slice. */
+export async function isSliceDone(tx: Tx, districtId: string, runId: string, slice: number): Promise<boolean | null> {
   const [row] = await tx
     .select({ done: runSlice.done })
     .from(runSlice)
-    .where(and(eq(runSlice.districtId, districtId), eq(runSlice.runId, runId), eq(runSlice.slice, slice)));
-  return row?.done ?? false;
+    .where(sliceOf(districtId, runId, slice));
+  return row?.done ?? null;
+}
+
+/** As `isSliceDone`, and no other transaction stores the slice until this one ends. */
+export async function lockSlice(tx: Tx, districtId: string, runId: string, slice: number): Promise<boolean | null> {
+  const [row] = await tx
+    .select({ done: runSlice.done })
+    .from(runSlice)
+    .where(sliceOf(districtId, runId, slice))
+    .for('update');
+  return row?.done ?? null;
+}
+
+function sliceOf(districtId: string, runId: string, slice: number) {
+  return and(eq(runSlice.districtId, districtId), eq(runSlice.runId, runId), eq(runSlice.slice, slice));
 }
 
 /** Makes a finished run the one readers see; the run it replaces stays readable by its id. */

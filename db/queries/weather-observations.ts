@@ -8,6 +8,7 @@ export const SITE_COLUMNS = {
   sourceId: site.sourceId,
   source: weatherSource.name,
   kind: weatherSource.kind,
+  role: weatherSource.role,
   ordinal: site.ordinal,
   code: site.code,
   name: site.name,
@@ -43,6 +44,7 @@ export function listWeatherSources(tx: Tx, districtId: string) {
       sourceId: weatherSource.sourceId,
       name: weatherSource.name,
       kind: weatherSource.kind,
+      role: weatherSource.role,
       rank: weatherSource.rank,
       hasWeather: sql<boolean>`exists (select 1 from weather_block own where own.district_id = weather_source.district_id
         and own.source_id = weather_source.source_id and own.steps = 1)`,

@@ -92,9 +92,9 @@ export const runParcel = pgTable(
     area: doublePrecision('area_m2').notNull(),
     /** lib/season ParcelInput as JSON, frozen at the start of the run */
     input: jsonb('input').notNull(),
-    /** Uint16 LE [variable × day] in the order of DAILY_VARIABLES */
+    /** Uint16 [variable × day] in the order of DAILY_VARIABLES, packed (lib/season/day-pack); plain and little-endian in runs of kernel version 2 and before */
     daily: bytea('daily'),
-    /** FALLBACK bits by day: Uint32 LE, or Uint16 LE in runs of kernel version 1 */
+    /** FALLBACK bits by day, packed (lib/season/day-pack); Uint32 LE in runs of kernel version 2, Uint16 LE of version 1 */
     flags: bytea('flags'),
     /** Float64 LE [planting × 4 stages × 2]: ETc and ETc adj [mm]; lib/season SeasonOutput */
     stageEt: bytea('stage_et'),
@@ -110,7 +110,10 @@ export const runParcel = pgTable(
   ],
 );
 
-/** Map numbers: Float32 LE [period × parcel position] of one variable and period kind. Depths are sums [mm]; state variables are period-end values. */
+/**
+ * Map numbers: Float32 LE [period × parcel position] of one variable and period kind. Depths are sums [mm]; state variables are period-end values. While a run
+ * is under way its slices keep their inputs and sums here too, under a period with a slash in it.
+ */
 export const runValue = pgTable(
   'run_value',
   {
@@ -149,14 +152,14 @@ export const runReach = pgTable(
 
 /**
  * How sure the numbers of a run are: Float32 LE [quantile × period × place], quantiles P10, P50, P90; places are the parcels of the run
- * by position, its reaches by ordinal, or the district (one).
+ * by position, its reaches by ordinal, or the district (one). Rows of level `part` are the pieces of a band that is not finished yet.
  */
 export const runBand = pgTable(
   'run_band',
   {
     districtId: owner(),
     runId: uuid('run_id').notNull(),
-    level: text('level').notNull().$type<'parcel' | 'reach' | 'district'>(),
+    level: text('level').notNull().$type<'parcel' | 'reach' | 'district' | 'part'>(),
     variable: text('variable').notNull(),
     period: text('period').notNull().$type<'week' | 'month' | 'season'>(),
     periodCount: integer('period_count').notNull(),

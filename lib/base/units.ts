@@ -149,4 +149,16 @@ export const BORDER_UNITS: Record<string, { metric: BorderUnit; us: BorderUnit }
     metric: { suffix: 'm_s', label: 'm/s', fromMetric: 1 },
     us: { suffix: 'mph', label: 'mph', fromMetric: 1 / METRES_PER_SECOND_PER_MPH },
   },
+  mm_h: {
+    metric: { suffix: 'mm_h', label: 'mm/h', fromMetric: 1 },
+    us: { suffix: 'in_h', label: 'in/h', fromMetric: 1 / MILLIMETRES_PER_INCH },
+  },
+  l_s: {
+    metric: { suffix: 'l_s', label: 'L/s', fromMetric: 1 },
+    us: { suffix: 'gpm', label: 'gpm', fromMetric: 1e-3 / CUBIC_METRES_PER_SECOND_PER_GPM },
+  },
+  m3_h: {
+    metric: { suffix: 'm3_h', label: 'm³/h', fromMetric: 1 },
+    us: { suffix: 'cfs', label: 'cfs', fromMetric: 1 / (3600 * CUBIC_METRES_PER_CUBIC_FOOT) },
+  },
 };

@@ -4,7 +4,7 @@
 
 /** One step of a derivation as the code did it. */
 export interface WorkingStep {
-  /** which part of the chain: weather, radiation, reference-et, coefficient, surface, root-zone, irrigation, balance */
+  /** which part of the chain: weather, radiation, reference-et, calendar, coefficient, surface, root-zone, irrigation, balance */
   readonly part: string;
   readonly symbol: string;
   readonly name: string;

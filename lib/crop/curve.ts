@@ -4,6 +4,8 @@
  * Days are offsets from the run's first day; a planting may begin before it (negative offset) and end after the last day.
  */
 
+import type { ShortCoefficient } from './surface-coefficient.ts';
+
 /** Lengths of the growth stages [d]. */
 export interface StageLengths {
   readonly initial: number;
@@ -12,11 +14,11 @@ export interface StageLengths {
   readonly late: number;
 }
 
-/** Basal coefficients that anchor the curve [1]. */
+/** Coefficients that anchor the curve [1], to multiply with short reference ET. */
 export interface StageCoefficients {
-  readonly initial: number;
-  readonly mid: number;
-  readonly end: number;
+  readonly initial: ShortCoefficient;
+  readonly mid: ShortCoefficient;
+  readonly end: ShortCoefficient;
 }
 
 /** One run through the stages: from planting or a cut to harvest or the next cut. `end` is the first day that is no longer part of it. */
@@ -140,6 +142,8 @@ interface CycleInput {
   readonly repeats: boolean;
   /** first day after the run; open-ended crops stop there */
   readonly runEnd: number;
+  /** lengths of a cycle that the weather decides, from its place (0 the first) and first day; in place of `lengths` and `later` */
+  readonly lengthsOf?: (cycle: number, start: number) => StageLengths;
 }
 
 /**
@@ -155,8 +159,14 @@ interface CycleInput {
 export function cyclesOf(input: CycleInput): Cycle[] {
   if (input.cuts.length > 0) return cyclesBetweenCuts(input);
   if (input.repeats) return repeatedCycles(input);
-  const end = Number.isFinite(input.harvest) ? input.harvest : input.start + totalLength(input.lengths);
-  return [{ start: input.start, end, lengths: input.lengths }];
+  const lengths = lengthsOfCycle(input, 0, input.start);
+  const end = Number.isFinite(input.harvest) ? input.harvest : input.start + totalLength(lengths);
+  return [{ start: input.start, end, lengths }];
+}
+
+function lengthsOfCycle(input: CycleInput, cycle: number, start: number): StageLengths {
+  if (input.lengthsOf) return input.lengthsOf(cycle, start);
+  return cycle === 0 ? input.lengths : (input.later ?? input.lengths);
 }
 
 function cyclesBetweenCuts(input: CycleInput): Cycle[] {
@@ -165,17 +175,19 @@ function cyclesBetweenCuts(input: CycleInput): Cycle[] {
   return edges.map((start, k) => ({
     start,
     end: edges[k + 1] ?? last,
-    lengths: k === 0 ? input.lengths : (input.later ?? input.lengths),
+    lengths: lengthsOfCycle(input, k, start),
   }));
 }
 
 function repeatedCycles(input: CycleInput): Cycle[] {
   const last = Number.isFinite(input.harvest) ? input.harvest : input.runEnd;
   const cycles: Cycle[] = [];
-  let lengths = input.lengths;
-  for (let start = input.start; start < last; start += totalLength(lengths)) {
-    if (cycles.length > 0) lengths = input.later ?? input.lengths;
-    cycles.push({ start, end: Math.min(last, start + totalLength(lengths)), lengths });
+  let start = input.start;
+  while (start < last) {
+    const lengths = lengthsOfCycle(input, cycles.length, start);
+    const next = start + Math.max(1, totalLength(lengths));
+    cycles.push({ start, end: Math.min(last, next), lengths });
+    start = next;
   }
   return cycles;
 }

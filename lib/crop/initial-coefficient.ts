@@ -5,7 +5,7 @@
 /** Energy-limited evaporation of wet bare soil over reference ET (FAO-56 Annex 7). */
 const WET_SOIL_RATIO = 1.15;
 
-type SoilTexture = 'coarse' | 'medium-fine';
+export type SoilTexture = 'coarse' | 'medium-fine';
 
 interface Wetting {
   /** mean interval between wettings tw [d] */

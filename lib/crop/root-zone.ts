@@ -2,8 +2,9 @@
  * Water in the root zone: what it holds, how much of it is easy to take, and what happens when it runs short.
  */
 
-const FRACTION_LOW = 0.1;
-const FRACTION_HIGH = 0.8;
+/** Limits of the adjusted p. Source: FAO-56, text of Eq. 83. */
+export const FRACTION_LOW = 0.1;
+export const FRACTION_HIGH = 0.8;
 
 /**
  * Total available water of a root zone.
@@ -122,19 +123,19 @@ export function scheduleDepth(rootDepth: number, rootDepthMax: number): number {
 /**
  * Depletion that changes hands when the lower edge of the root zone moves.
  *
- * Growing roots take over soil from below with its depletion, 1000 (θFC − θsub) dZr, here the same share of the lower store's depletion as of its
- * thickness. A shallower root zone (a new planting) gives the share back.
+ * Growing roots take over soil from below with its depletion, 1000 (θFC − θsub) dZr: the same share of the lower store's depletion as of the water that
+ * the store can hold. In soil of one layer that is its share of thickness. A shallower root zone (a new planting) gives the share back.
  *
  * Missing: NaN in any input gives NaN out.
  *
  * @param depletion depletion of the store that gives soil away [mm]
- * @param thickness thickness of that store before the change [m]
- * @param taken thickness taken from it [m], at most `thickness`
+ * @param held water that store holds between field capacity and wilting point before the change [mm]
+ * @param taken what of it the soil taken over holds [mm], at most `held`
  * @returns depletion that moves [mm]
- * @example movedDepletion(40, 0.8, 0.2) // 10
+ * @example movedDepletion(40, 160, 40) // 10
  * Source: FAO-56 chapter 8, text of Eq. 85 (root growth).
  */
-export function movedDepletion(depletion: number, thickness: number, taken: number): number {
-  if (taken >= thickness) return depletion;
-  return (depletion * taken) / thickness;
+export function movedDepletion(depletion: number, held: number, taken: number): number {
+  if (taken >= held) return depletion;
+  return (depletion * taken) / held;
 }

@@ -2,6 +2,9 @@
  * The layer that dries by evaporation: its water, and the evaporation coefficient it allows.
  */
 
+/** Rain [mm d⁻¹] above which the whole surface is wetted. Source: FAO-56, text of Eq. 75 (3 … 4 mm). */
+export const WETTING_RAIN = 3;
+
 /**
  * Total evaporable water of the surface layer.
  *

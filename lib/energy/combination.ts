@@ -8,6 +8,7 @@ import {
   STEFAN_BOLTZMANN_DAY_FAO56,
 } from '../base/constants.ts';
 import { RangeViolation } from '../base/errors.ts';
+import { exponential } from '../base/exponential.ts';
 import { saturationVapourPressure } from './humidity.ts';
 import { blackBodyRadiation, clearSkyRadiation, netLongwave, netShortwave, relativeShortwave } from './radiation.ts';
 import { SOIL_HEAT_FLUX_DAY } from './soil-heat.ts';
@@ -179,7 +180,7 @@ function solveHumidity(day: ReferenceDay, constants: DailyConstants): void {
   day.saturationAtMin = saturationVapourPressure(day.airTemperatureMin);
   day.saturationVapourPressure = (day.saturationAtMax + day.saturationAtMin) / 2;
   day.vapourPressureDeficit = day.saturationVapourPressure - day.actualVapourPressure;
-  day.slope = (constants.slope * Math.exp((17.27 * mean) / t)) / (t * t);
+  day.slope = (constants.slope * exponential((17.27 * mean) / t)) / (t * t);
 }
 
 function solveRadiation(day: ReferenceDay, constants: DailyConstants): void {

@@ -4,6 +4,7 @@
  * Vapour pressures [kPa], temperatures [°C], relative humidities [%] as stations report them. NaN in any input gives NaN out.
  */
 import { VAPOUR_WEIGHT_RATIO } from '../base/constants.ts';
+import { exponential } from '../base/exponential.ts';
 
 /**
  * Saturation vapour pressure over water at a temperature.
@@ -13,7 +14,7 @@ import { VAPOUR_WEIGHT_RATIO } from '../base/constants.ts';
  * Source: FAO-56 Eq. 11.
  */
 export function saturationVapourPressure(airTemperature: number): number {
-  return 0.6108 * Math.exp((17.27 * airTemperature) / (airTemperature + 237.3));
+  return 0.6108 * exponential((17.27 * airTemperature) / (airTemperature + 237.3));
 }
 
 /**

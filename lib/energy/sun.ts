@@ -68,7 +68,9 @@ export function sunsetHourAngle(sinSin: number, cosCos: number): number {
  * Source: FAO-56 Eq. 21.
  */
 export function extraterrestrialRadiation(dr: number, omegaS: number, sinSin: number, cosCos: number): number {
-  const ra = DAY_FACTOR * dr * (omegaS * sinSin + cosCos * Math.sin(omegaS));
+  // sin ωs = √(1 − cos² ωs) with cos ωs = −tan φ tan δ: a root costs a loop over parcels less than a sine
+  const cosine = sinSin / cosCos;
+  const ra = DAY_FACTOR * dr * (omegaS * sinSin + cosCos * Math.sqrt(Math.max(0, (1 - cosine) * (1 + cosine))));
   return Math.max(ra, 0);
 }
 

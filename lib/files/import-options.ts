@@ -27,6 +27,7 @@ const OPTIONS: Record<keyof ImportOptions, { readonly check: Check; readonly lim
   plan: { check: isRecord, limit: 'an object' },
   season: { check: isText, limit: 'the code of a season' },
   source: { check: isText, limit: 'a name of at most 200 characters' },
+  role: { check: oneOf('observed', 'forecast'), limit: 'observed or forecast' },
   site: { check: isText, limit: 'the code of a site' },
   replace: { check: isFlag, limit: 'true or false' },
   missingCodes: { check: isTexts, limit: 'a list of at most 100 texts' },

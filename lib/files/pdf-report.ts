@@ -122,6 +122,14 @@ interface Place {
   readonly scale: number;
 }
 
+/** The band of a bar as a line with its ends marked. */
+function drawBand(doc: Pdf, { x, top, bottom }: { readonly x: number; readonly top: number; readonly bottom: number }): void {
+  const end = (y: number) => doc.moveTo(x - 2, y).lineTo(x + 2, y);
+  doc.lineWidth(0.8).strokeColor(INK.text).moveTo(x, top).lineTo(x, bottom);
+  end(top);
+  end(bottom).stroke();
+}
+
 function drawBars(doc: Pdf, chart: BarChart, { x, y, scale }: Place): void {
   const { plot } = chart;
   doc.save().translate(x, y).scale(scale);
@@ -140,6 +148,7 @@ function drawBars(doc: Pdf, chart: BarChart, { x, y, scale }: Place): void {
     if (bar.forecast) doc.lineWidth(0.6).strokeColor(INK.accent).rect(bar.x, bar.y, bar.width, bar.height).stroke();
     else doc.rect(bar.x, bar.y, bar.width, bar.height).fill(INK.accent);
   }
+  for (const { band } of chart.bars) if (band) drawBand(doc, band);
   const base = plot.y + plot.height;
   doc
     .lineWidth(0.7)

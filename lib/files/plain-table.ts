@@ -25,6 +25,8 @@ export interface PlainRow {
   readonly row: number;
   /** trimmed text, or null when the column or the cell is missing */
   text(role: string): string | null;
+  /** trimmed text as it stands, words for a missing value too; empty when there is no column */
+  cell(role: string): string;
   /** number in the inside unit, or null; outside the limits is a problem, unless customary codes for missing are allowed and it is one */
   number(role: string, limits: NumberLimits): number | null;
   /** ISO date, or null; a text that is no date is a problem */
@@ -192,9 +194,13 @@ class PlainRowCells implements PlainRow {
 
   readonly header = (role: string): string | undefined => this.table.bound.get(role)?.header;
 
-  text(role: string): string | null {
+  cell(role: string): string {
     const column = this.table.bound.get(role);
-    const cell = column ? this.cells[column.index].trim() : '';
+    return column ? this.cells[column.index].trim() : '';
+  }
+
+  text(role: string): string | null {
+    const cell = this.cell(role);
     return isMissingText(cell) ? null : cell;
   }
 

@@ -7,6 +7,7 @@ import { parseDate } from './date-cell.ts';
 import { type FindingList, shown } from './finding-list.ts';
 import { type PlainRow, type PlainTable, readPlainTable } from './plain-table.ts';
 import { calendarOf, plantingDateIn, type Season } from './planting-defaults.ts';
+import { PRACTICE_ROLES, practiceOf } from './planting-practice.ts';
 import type { CropCount, ImportContext, ImportFile, ImportOptions, ImportReading, Progress, StagedPlanting } from './reading.ts';
 import type { TableRole } from './table-columns.ts';
 
@@ -19,6 +20,7 @@ export const PLANTING_ROLES: readonly TableRole[] = [
   { role: 'harvest_date', names: ['harvest date', 'harvest', 'harvested'] },
   { role: 'cut_dates', names: ['cut dates', 'cuts', 'cutting dates', 'cut date'] },
   { role: 'area_share', names: ['area share', 'share', 'area fraction', 'fraction', 'percent'], kind: 'share' },
+  ...PRACTICE_ROLES,
 ];
 
 /** Sum of shares may pass 1 by rounding of the file. */
@@ -75,6 +77,7 @@ function plantingOf(row: PlainRow, work: Work): Draft | null {
   const given = row.date('planting_date');
   const harvestDate = row.date('harvest_date');
   const cutDates = cutDatesOf(row);
+  const practice = practiceOf(row);
   if (!row.good || parcelCode === null || !season || !crop) return null;
   const calendar = calendarOf(work.context, crop, row.text('calendar'));
   if (!calendar) return noCalendar(row, crop);
@@ -90,6 +93,7 @@ function plantingOf(row: PlainRow, work: Work): Draft | null {
     harvestDate,
     cutDates,
     areaShare,
+    ...(practice === null ? {} : { practice }),
   };
 }
 

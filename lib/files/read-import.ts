@@ -3,9 +3,11 @@
  */
 import { readCanals } from './canals.ts';
 import { type ContentKind, contentKind } from './content-kind.ts';
+import { readDeliveries } from './deliveries-csv.ts';
 import { headOf } from './file-head.ts';
 import { FINDING_LIMIT, FindingList } from './finding-list.ts';
 import { checkOptions } from './import-options.ts';
+import { readMeasurements } from './measurements-csv.ts';
 import { readParcels } from './parcels.ts';
 import { readPlantings } from './plantings-csv.ts';
 import {
@@ -47,6 +49,8 @@ const READERS: Record<ImportKind, Reader> = {
   plantings: readPlantings,
   soils: readSoils,
   images: async (files, options, context, progress) => (await import('./images.ts')).readImages(files, options, context, progress),
+  deliveries: readDeliveries,
+  measurements: readMeasurements,
 };
 
 const EMPTY: Record<ImportKind, StagedImport> = {
@@ -60,6 +64,8 @@ const EMPTY: Record<ImportKind, StagedImport> = {
   plantings: { kind: 'plantings', plantings: [] },
   soils: { kind: 'soils', soils: [] },
   images: { kind: 'images', images: [] },
+  deliveries: { kind: 'deliveries', deliveries: [] },
+  measurements: { kind: 'measurements', measurements: [] },
 };
 
 /**

@@ -6,11 +6,23 @@
 import type { Geometry, LineString, MultiLineString, MultiPolygon, Polygon } from 'geojson';
 import type { Finding } from '../base/errors.ts';
 import type { LossRule } from '../canal/loss-rule.ts';
-import type { Soil } from '../season/types.ts';
+import type { Planting, Soil } from '../season/types.ts';
 import type { BlockVariable, GridShape } from '../weather/variable.ts';
 import type { LineageSummary } from './lineage-summary.ts';
 
-export type ImportKind = 'stations' | 'weather' | 'parcels' | 'canals' | 'turnouts' | 'areas' | 'plantings' | 'soils' | 'soil-areas' | 'images';
+export type ImportKind =
+  | 'stations'
+  | 'weather'
+  | 'parcels'
+  | 'canals'
+  | 'turnouts'
+  | 'areas'
+  | 'plantings'
+  | 'soils'
+  | 'soil-areas'
+  | 'images'
+  | 'deliveries'
+  | 'measurements';
 
 /** One uploaded file. Readers of large formats open `path` where it is given; `bytes` then reads the whole file, and is only for small ones. */
 export interface ImportFile {
@@ -70,6 +82,8 @@ export interface ImportContext {
   readonly reachLines?: readonly { readonly code: string; readonly geometry: LineString | MultiLineString }[];
   /** shapes of the parcels, where the kind needs them: images */
   readonly parcelShapes?: readonly { readonly code: string; readonly geometry: Polygon | MultiPolygon }[];
+  /** area of each parcel [m²], where the kind needs them: deliveries */
+  readonly parcelAreas?: Readonly<Record<string, number>>;
   /** soil class → its name */
   readonly soilNames?: Readonly<Record<string, string>>;
   /** reach → parcels that name it; reaches without parcels are left out */
@@ -98,6 +112,8 @@ export interface ImportOptions {
   readonly season?: string;
   /** name of the weather source; default: the name of the first file without its ending */
   readonly source?: string;
+  /** weather and stations: whether the source's values are observed, or a forecast of days to come; default as the source is, a new one observed */
+  readonly role?: 'observed' | 'forecast';
   /** weather: site of a file without a site column */
   readonly site?: string;
   /** parcels and canals: what the district has and the file does not is removed */
@@ -383,6 +399,34 @@ export interface StagedImageMean {
   readonly seenShare: number;
 }
 
+/** Water put on a parcel on a day, gross [m³]. */
+export interface StagedDelivery {
+  readonly parcelCode: string;
+  /** YYYY-MM-DD */
+  readonly date: string;
+  readonly volume: number;
+}
+
+/** Something measured, or given, at a parcel on a day, in the unit of its quantity. */
+export interface StagedMeasurement {
+  readonly parcelCode: string;
+  /** YYYY-MM-DD */
+  readonly date: string;
+  readonly quantity:
+    | 'water_content_m3_m3'
+    | 'root_zone_depletion_mm'
+    | 'water_table_depth_m'
+    | 'soil_salinity_ds_m'
+    | 'water_salinity_ds_m'
+    | 'efficiency';
+  /** lower edge of the soil it holds for [m]; 0 where depth means nothing, or is not told */
+  readonly depth: number;
+  readonly value: number;
+}
+
+/** The members of a planting that say how it is watered and covered. */
+export type PlantingPractice = Pick<Planting, 'irrigation' | 'mulch' | 'canopy' | 'preIrrigation' | 'germination'>;
+
 export interface StagedPlanting {
   readonly parcelCode: string;
   readonly seasonCode: string;
@@ -394,6 +438,8 @@ export interface StagedPlanting {
   readonly harvestDate: string | null;
   readonly cutDates: readonly string[];
   readonly areaShare: number;
+  /** how it is watered and covered; left out when the file says nothing */
+  readonly practice?: PlantingPractice;
 }
 
 export interface StagedReach {
@@ -410,7 +456,9 @@ export interface StagedReach {
 }
 
 /** A soil class as a file brings it: what it does not say is null. */
-export interface StagedSoil extends Omit<Soil, 'curveNumber' | 'rootLimit'> {
+export interface StagedSoil extends Omit<Soil, 'curveNumber' | 'rootLimit' | 'capillary'> {
+  /** texture whose capillary properties it has */
+  readonly capillaryClass?: string;
   readonly curveNumber: number | null;
   /** m */
   readonly rootLimit: number | null;
@@ -447,6 +495,8 @@ export type StagedImport =
   | { readonly kind: 'soil-areas'; readonly soilAreas: readonly StagedSoilArea[] }
   | { readonly kind: 'plantings'; readonly plantings: readonly StagedPlanting[] }
   | { readonly kind: 'images'; readonly images: readonly StagedImageMean[] }
+  | { readonly kind: 'deliveries'; readonly deliveries: readonly StagedDelivery[] }
+  | { readonly kind: 'measurements'; readonly measurements: readonly StagedMeasurement[] }
   | { readonly kind: 'soils'; readonly soils: readonly StagedSoil[] };
 
 export interface FindingCounts {

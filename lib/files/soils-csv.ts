@@ -1,22 +1,23 @@
 /**
- * Soil classes, one row each, in a delimited file.
+ * Soil classes, one row each or one row for each of their layers, in a delimited file.
  */
 import { counted } from '../base/counted.ts';
 import { codeFault } from './code-text.ts';
 import { type FindingList, shown } from './finding-list.ts';
 import { type PlainRow, type PlainTable, readPlainTable } from './plain-table.ts';
 import type { ImportContext, ImportFile, ImportOptions, ImportReading, Progress, StagedSoil } from './reading.ts';
+import { groundMembers, LAYER_ROLES, layerOf, type SoilRow, soilOfRows } from './soil-layers.ts';
 import type { TableRole } from './table-columns.ts';
 
 /** Columns of water contents. */
-const WATER_ROLES = ['field_capacity', 'wilting_point'] as const;
+const WATER_ROLES = ['field_capacity', 'wilting_point', 'saturation'] as const;
 
 /** Depth of the layer that dries by evaporation where the table gives none [m]: FAO-56 chapter 7, 0.10 to 0.15 m. */
 const EVAPORATION_DEPTH = 0.1;
 
 export const SOIL_ROLES: readonly TableRole[] = [
   { role: 'code', names: ['code', 'soil', 'soil code', 'soil id', 'id'], required: true },
-  { role: 'name', names: ['name', 'soil name', 'texture', 'description'] },
+  { role: 'name', names: ['name', 'soil name', 'description'] },
   { role: 'field_capacity', names: ['field capacity', 'fc', 'theta fc'], kind: 'share', required: true },
   { role: 'wilting_point', names: ['wilting point', 'wp', 'theta wp', 'permanent wilting point', 'pwp'], kind: 'share', required: true },
   { role: 'rew', names: ['rew', 'readily evaporable water'], kind: 'depth' },
@@ -24,6 +25,7 @@ export const SOIL_ROLES: readonly TableRole[] = [
   { role: 'ze', names: ['ze', 'evaporation depth'], kind: 'length' },
   { role: 'curve_number', names: ['curve number', 'cn'] },
   { role: 'root_limit', names: ['root limit', 'root limit depth', 'rooting depth limit'], kind: 'length' },
+  ...LAYER_ROLES,
 ];
 
 /**
@@ -65,22 +67,23 @@ export async function readSoils(
   context: ImportContext,
   progress: Progress,
 ): Promise<ImportReading> {
-  const kept = new Map<string, { soil: StagedSoil; row: number }>();
-  const derived = { tew: 0, rew: 0 };
+  const kept = new Map<string, SoilRow[]>();
+  const derived = { tew: 0, rew: 0, unknownTextures: 0 };
   const known = new Set(context.soils);
   const units = await waterUnits(files, options);
   const each = (row: PlainRow, { file }: PlainTable) => {
+    const edges = layerOf(row);
     const soil = soilOf(row, file, { derived, units });
     if (!soil) return;
     const earlier = kept.get(soil.code);
-    if (earlier)
+    if (earlier && (edges === null || earlier[0].edges === null))
       return row.fail({
         code: 'duplicate-code',
-        message: `Soil ${soil.code} stands in row ${earlier.row} already; the first is kept.`,
+        message: `Soil ${soil.code} stands in row ${earlier[0].row} already; the first is kept.`,
         role: 'code',
-        advice: 'Delete the wrong row.',
+        advice: 'Delete the wrong row, or give the depths of the layers.',
       });
-    kept.set(soil.code, { soil, row: row.row });
+    kept.set(soil.code, [...(earlier ?? []), { soil, edges, row: row.row }]);
   };
   const finish = (findings: FindingList) => {
     for (const unit of units.values()) noteUnit(unit, findings);
@@ -94,13 +97,20 @@ export async function readSoils(
         code: 'rew-derived',
         message: `REW of ${counted(derived.rew, 'soil', 'soils')} is taken by texture from FAO-56 Table 19.`,
       });
+    if (derived.unknownTextures > 0)
+      findings.warn({
+        code: 'texture-unknown',
+        message: `The texture of ${counted(derived.unknownTextures, 'row', 'rows')} is not a known class; it is taken as medium, without capillary properties.`,
+        advice: 'Name a texture class (sand … clay), or coarse, medium or fine.',
+      });
     const again = [...kept.keys()].filter((code) => known.has(code));
     if (again.length > 0)
       findings.note({
         code: 'soil-replaced',
         message: `${counted(again.length, 'soil is', 'soils are')} known already and will be replaced: ${again.slice(0, 10).join(', ')}.`,
       });
-    return { kind: 'soils' as const, soils: findings.fatal ? [] : [...kept.values()].map(({ soil }) => soil) };
+    const soils = [...kept.values()].flatMap((rows) => soilOfRows(rows, findings) ?? []);
+    return { kind: 'soils' as const, soils: findings.fatal ? [] : soils };
   };
   return readPlainTable({ files, options, progress, roles: SOIL_ROLES }, each, finish);
 }
@@ -118,6 +128,8 @@ function soilOf(row: PlainRow, source: string, { derived, units }: SoilWork): St
   const tew = row.number('tew', { low: 1, high: 100, unit: 'mm' });
   const curveNumber = row.number('curve_number', { low: 30, high: 100, unit: '' });
   const rootLimit = row.number('root_limit', { low: 0.05, high: 5, unit: 'm' });
+  const saturation = row.text('saturation') === null ? null : waterContent(row, 'saturation', units.get(`${source} saturation`));
+  const ground = groundMembers(row, derived);
   if (!row.good || code === null || fieldCapacity === null || wiltingPoint === null) return null;
   if (wiltingPoint >= fieldCapacity) {
     row.fail({
@@ -125,6 +137,16 @@ function soilOf(row: PlainRow, source: string, { derived, units }: SoilWork): St
       message: `Wilting point ${wiltingPoint} is not below field capacity ${fieldCapacity}.`,
       role: 'wilting_point',
       limit: `below ${fieldCapacity}`,
+      advice: 'Check that the columns are not exchanged.',
+    });
+    return null;
+  }
+  if (saturation !== null && saturation <= fieldCapacity) {
+    row.fail({
+      code: 'saturation-below-field-capacity',
+      message: `Saturation ${saturation} is not above field capacity ${fieldCapacity}.`,
+      role: 'saturation',
+      limit: `above ${fieldCapacity}`,
       advice: 'Check that the columns are not exchanged.',
     });
     return null;
@@ -145,7 +167,7 @@ function soilOf(row: PlainRow, source: string, { derived, units }: SoilWork): St
   if (rew === null) derived.rew++;
   return {
     code,
-    name: row.text('name') ?? code,
+    name: row.text('name') ?? row.text('texture') ?? code,
     fieldCapacity,
     wiltingPoint,
     evaporationDepth,
@@ -153,6 +175,8 @@ function soilOf(row: PlainRow, source: string, { derived, units }: SoilWork): St
     totalEvaporableWater: round(total),
     curveNumber,
     rootLimit,
+    ...(saturation === null ? {} : { saturation }),
+    ...ground,
     source: `imported from ${source}`,
   };
 }
@@ -165,7 +189,7 @@ interface WaterUnit {
 }
 
 interface SoilWork {
-  readonly derived: { tew: number; rew: number };
+  readonly derived: { tew: number; rew: number; unknownTextures: number };
   /** file and role → unit */
   readonly units: ReadonlyMap<string, WaterUnit>;
 }

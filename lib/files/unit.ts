@@ -5,7 +5,13 @@
  * conventional millimetre and inch of mercury, NIST SP 811 Appendix B.8.
  */
 import {
+  CUBIC_METRES_PER_ACRE_FOOT,
+  CUBIC_METRES_PER_ACRE_INCH,
+  CUBIC_METRES_PER_CFS_DAY,
   CUBIC_METRES_PER_CUBIC_FOOT,
+  CUBIC_METRES_PER_HECTARE_METRE,
+  CUBIC_METRES_PER_MEGALITRE,
+  CUBIC_METRES_PER_US_GALLON,
   celsiusFromFahrenheit,
   celsiusFromKelvin,
   MEGAJOULES_PER_CALORIE_CM2,
@@ -23,7 +29,19 @@ const KILOPASCALS_PER_MMHG = 0.1333224;
 const KILOPASCALS_PER_INHG = 3.386389;
 const METRES_PER_MILE = 1609.344;
 
-export type UnitKind = 'temperature' | 'pressure' | 'share' | 'ratio' | 'speed' | 'radiation' | 'duration' | 'depth' | 'length' | 'flow';
+export type UnitKind =
+  | 'temperature'
+  | 'pressure'
+  | 'share'
+  | 'ratio'
+  | 'speed'
+  | 'radiation'
+  | 'duration'
+  | 'depth'
+  | 'length'
+  | 'flow'
+  | 'volume'
+  | 'conductivity';
 
 interface UnitDefinition {
   readonly kind: UnitKind;
@@ -58,7 +76,12 @@ const UNITS: readonly UnitDefinition[] = [
   { kind: 'pressure', name: 'mmHg', spellings: ['mmhg', 'torr'], convert: times(KILOPASCALS_PER_MMHG) },
   { kind: 'pressure', name: 'inHg', spellings: ['inhg'], convert: times(KILOPASCALS_PER_INHG) },
   { kind: 'share', name: '%', spellings: ['%', 'pct', 'percent', 'per cent', 'prozent'], convert: same },
-  { kind: 'share', name: 'fraction', spellings: ['fraction', '0-1', 'frac'], convert: times(100) },
+  {
+    kind: 'share',
+    name: 'fraction',
+    spellings: ['fraction', '0-1', 'frac', 'm3/m3', 'm3m3', 'm3m-3', 'cm3/cm3', 'cm3cm3', 'cm3cm-3', 'mm/mm', 'in/in'],
+    convert: times(100),
+  },
   { kind: 'ratio', name: 'kg/kg', spellings: ['kg/kg', 'kgkg-1', 'kgkg'], convert: same },
   { kind: 'ratio', name: 'g/kg', spellings: ['g/kg', 'gkg-1', 'gkg'], convert: times(0.001) },
   { kind: 'speed', name: 'm/s', spellings: ['m/s', 'ms-1', 'ms', 'mps', 'm/sec', 'metrespersecond'], convert: same },
@@ -108,6 +131,58 @@ const UNITS: readonly UnitDefinition[] = [
   { kind: 'flow', name: 'm³/s', spellings: ['m3/s', 'm3s', 'm3s-1', 'cms', 'cumec', 'cumecs'], convert: same },
   { kind: 'flow', name: 'L/s', spellings: ['l/s', 'ls', 'ls-1', 'lps'], convert: times(0.001) },
   { kind: 'flow', name: 'cfs', spellings: ['cfs', 'ft3/s', 'ft3s', 'ft3s-1'], convert: times(CUBIC_METRES_PER_CUBIC_FOOT) },
+  {
+    kind: 'volume',
+    name: 'm³',
+    spellings: ['m3', 'cubicmetre', 'cubicmetres', 'cubicmeter', 'cubicmeters', 'cum', 'kl', 'kilolitre', 'kilolitres'],
+    convert: same,
+  },
+  {
+    kind: 'volume',
+    name: 'ML',
+    spellings: ['ml', 'megalitre', 'megalitres', 'megaliter', 'megaliters', 'dam3'],
+    convert: times(CUBIC_METRES_PER_MEGALITRE),
+  },
+  { kind: 'volume', name: 'L', spellings: ['l', 'litre', 'litres', 'liter', 'liters'], convert: times(0.001) },
+  {
+    kind: 'volume',
+    name: 'ac-ft',
+    spellings: ['ac-ft', 'acft', 'acrefoot', 'acrefeet', 'acre-foot', 'acre-feet', 'acreft', 'af'],
+    convert: times(CUBIC_METRES_PER_ACRE_FOOT),
+  },
+  {
+    kind: 'volume',
+    name: 'ac-in',
+    spellings: ['ac-in', 'acin', 'acreinch', 'acreinches', 'acre-inch', 'acre-inches'],
+    convert: times(CUBIC_METRES_PER_ACRE_INCH),
+  },
+  {
+    kind: 'volume',
+    name: 'ha-m',
+    spellings: ['ha-m', 'ham', 'hectaremetre', 'hectaremetres', 'hectaremeter', 'hectaremeters'],
+    convert: times(CUBIC_METRES_PER_HECTARE_METRE),
+  },
+  { kind: 'volume', name: 'ft³', spellings: ['ft3', 'cubicfoot', 'cubicfeet', 'cf'], convert: times(CUBIC_METRES_PER_CUBIC_FOOT) },
+  {
+    kind: 'volume',
+    name: 'US gal',
+    spellings: ['gal', 'usgal', 'gallon', 'gallons', 'usgallon'],
+    convert: times(CUBIC_METRES_PER_US_GALLON),
+  },
+  {
+    kind: 'volume',
+    name: 'cfs-day',
+    spellings: ['cfs-day', 'cfsday', 'cfs-days', 'cfsdays', 'cfsd'],
+    convert: times(CUBIC_METRES_PER_CFS_DAY),
+  },
+  {
+    kind: 'conductivity',
+    name: 'dS/m',
+    spellings: ['ds/m', 'dsm', 'dsm-1', 'ms/cm', 'mscm', 'mscm-1', 'mmho/cm', 'mmhocm', 'mmhos/cm', 'mmhoscm'],
+    convert: same,
+  },
+  { kind: 'conductivity', name: 'mS/m', spellings: ['ms/m', 'msm', 'msm-1'], convert: times(0.01) },
+  { kind: 'conductivity', name: 'µS/cm', spellings: ['us/cm', 'uscm', 'uscm-1', 'µs/cm', 'µscm', 'μs/cm'], convert: times(0.001) },
   { kind: 'flow', name: 'ML/d', spellings: ['ml/d', 'mld', 'ml/day', 'mld-1'], convert: times(1000 / SECONDS_PER_DAY) },
 ];
 

@@ -67,7 +67,8 @@ export function insideRuns({ rings }: CellShape, row: number): [number, number][
   crossings.sort((a, b) => a - b);
   const runs: [number, number][] = [];
   for (let i = 0; i + 1 < crossings.length; i += 2) {
-    const run: [number, number] = [Math.ceil(crossings[i]), Math.ceil(crossings[i + 1]) - 1];
+    // adding zero turns −0 into 0
+    const run: [number, number] = [Math.ceil(crossings[i]) + 0, Math.ceil(crossings[i + 1]) - 1];
     if (run[1] >= run[0]) runs.push(run);
   }
   return runs;

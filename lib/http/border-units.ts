@@ -21,7 +21,7 @@ const CHANGES: readonly (readonly [string, Change])[] = [
 ].sort((a, b) => b[0].length - a[0].length);
 
 /** Compound units whose tail looks like one of ours. */
-const LEFT_ALONE = /_(m3_m3|c_per_m|per_km|mj_m2_d|kg_kg|m3_ha)$/;
+const LEFT_ALONE = /_(m3_m3|c_per_m|per_km|mj_m2_d|kg_kg|m3_ha|l_s_ha|ds_m)$/;
 /** Members that are settings or definitions, to be sent back as they came. */
 const DEFINITIONS = ['settings', 'manifest', 'definition', 'options', 'boundary', 'geometry', 'loss_rule'];
 /** Members whose own members are named after quantities, while the values are counts, shares or words. */

@@ -109,7 +109,10 @@ export async function undoCorrection(who: Who, correctionId: string): Promise<vo
 
 async function weigh(tx: Tx, districtId: string, wanted: CorrectionWanted): Promise<Weighed> {
   for (const date of [wanted.from, wanted.to]) if (!isIsoDate(date)) throw new Malformed(`"${date}" is not a day of the calendar`);
-  const place = findPlace(await listSites(tx, districtId), wanted);
+  const place = findPlace(
+    (await listSites(tx, districtId)).filter(({ role }) => role === 'observed'),
+    wanted,
+  );
   const row = { sourceId: place.sourceId, ordinal: place.ordinal, ...checkedCorrection(wanted) };
   const district = await findWholeDistrict(tx, districtId);
   const raw = await loadObservations(tx, districtId, { sites: [place], from: row.fromDay, to: row.toDay, raw: true });

@@ -6,17 +6,23 @@
 import { once } from 'node:events';
 import { createGzip, gunzipSync } from 'node:zlib';
 import type { Tx } from '../../db/connect.ts';
-import { findFrozen, listParcelInputs, listSliceParcels } from '../../db/queries/run-state.ts';
+import { findRunPart } from '../../db/queries/run-results.ts';
+import { findFrozen, listParcelInputs } from '../../db/queries/run-state.ts';
 import { NotFound } from '../base/errors.ts';
 import { nanFromNull, nullFromNaN } from '../base/missing.ts';
 import type { SeasonInput, Soil } from '../season/types.ts';
 import { type CarriedSeries, COMPLETED_SERIES, type CompletedWeather, type Site } from '../weather/variable.ts';
+import type { WaterSpan } from './run-deliveries.ts';
 import { cropFromJson, type FrozenParcel, type Libraries, seasonInput } from './run-plan.ts';
 import type { RunSettings } from './run-settings.ts';
+import { sharedWeather } from './shared-weather.ts';
 
 /** Everything of a run but its parcels. */
-interface FrozenSeason {
+export interface FrozenSeason {
+  /** first day stepped: the season's first, less `span.leadDays` */
   readonly startDate: string;
+  /** left out in runs of the first versions: no days before the season, water by the settings */
+  readonly span?: WaterSpan;
   readonly settings: RunSettings;
   readonly sites: readonly Site[];
   readonly weather: CompletedWeather;
@@ -29,6 +35,7 @@ export async function packFrozenSeason(frozen: FrozenSeason): Promise<Uint8Array
   const series: CarriedSeries[] = weather.referenceEt ? [...COMPLETED_SERIES, 'referenceEt'] : [...COMPLETED_SERIES];
   const json = JSON.stringify({
     startDate: frozen.startDate,
+    span: frozen.span,
     settings: frozen.settings,
     sites: frozen.sites.map((site) => ({ ...site, elevation: nullFromNaN(site.elevation), windHeight: nullFromNaN(site.windHeight) })),
     siteCount: weather.siteCount,
@@ -78,6 +85,7 @@ export function unpackFrozenSeason(packed: Uint8Array): FrozenSeason {
     : Uint32Array.from(new Uint16Array(body.buffer, flagsAt, count));
   return {
     startDate: header.startDate,
+    span: header.span,
     settings: header.settings,
     sites: header.sites.map((site: Record<'elevation' | 'windHeight', number | null>) => ({
       ...site,
@@ -108,7 +116,8 @@ async function findFrozenSeason(tx: Tx, districtId: string, runId: string): Prom
   if (held) return held;
   const packed = await findFrozen(tx, districtId, runId);
   if (!packed) throw new NotFound(`Run ${runId} has no frozen inputs: it has not begun, or is not of this district.`);
-  const frozen = unpackFrozenSeason(packed);
+  const unpacked = unpackFrozenSeason(packed);
+  const frozen = { ...unpacked, weather: sharedWeather(unpacked.weather) };
   HELD.set(key, frozen);
   for (const oldest of HELD.keys()) {
     if (HELD.size <= HELD_LIMIT) break;
@@ -124,15 +133,13 @@ export async function loadFrozenSeason(tx: Tx, districtId: string, runId: string
   return seasonInput({ ...frozen, parcels: rows.map((row) => ({ code: row.parcelCode, input: row.input as FrozenParcel })) });
 }
 
-/** The season input of one slice with the positions of its parcels. */
-export async function loadFrozenSlice(
-  tx: Tx,
-  districtId: string,
-  runId: string,
-  slice: number,
-): Promise<{ input: SeasonInput; positions: number[] }> {
-  const frozen = await findFrozenSeason(tx, districtId, runId);
-  const rows = await listSliceParcels(tx, districtId, runId, slice);
-  const parcels = rows.map((row) => ({ code: row.parcelCode, input: row.input as FrozenParcel }));
-  return { input: seasonInput({ ...frozen, parcels }), positions: rows.map((row) => row.position) };
+/** Name of the part that holds the parcels of a slice until they are computed, see `slice-text`. */
+export const SLICE_INPUT = 'input';
+
+/** The season of a run and the text of one slice of its parcels. @throws NotFound */
+export async function loadFrozenSlice(tx: Tx, job: { readonly districtId: string; readonly runId: string; readonly slice: number }) {
+  const season = await findFrozenSeason(tx, job.districtId, job.runId);
+  const text = await findRunPart(tx, job, job.slice, SLICE_INPUT);
+  if (!text) throw new NotFound(`Slice ${job.slice} of run ${job.runId} has no parcels left to compute: start the run again.`);
+  return { season, text };
 }

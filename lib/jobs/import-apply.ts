@@ -11,7 +11,7 @@ import { markRunsStale } from '../../db/queries/stale-runs.ts';
 import { database } from '../access/database.ts';
 import { Refused, TillwaterError } from '../base/errors.ts';
 import type { GridShape } from '../weather/variable.ts';
-import { type ApplyCounts, countsChanged, type Touched } from './import-counts.ts';
+import { type ApplyCounts, countsChanged, RecordDays, type Touched } from './import-counts.ts';
 import {
   applyAreas,
   applyCropMappings,
@@ -19,7 +19,6 @@ import {
   applyPlantings,
   applyReaches,
   applySoilAreas,
-  applySoils,
   applyTurnouts,
   checkTree,
   ParcelWriter,
@@ -27,6 +26,8 @@ import {
   removeAbsentReaches,
 } from './import-land.ts';
 import { keepHistory } from './import-lineage.ts';
+import type { SourceRole, SourceTarget } from './import-places.ts';
+import { applyDeliveries, applyMeasurements, applySoils } from './import-records.ts';
 import { refuseDangling } from './import-references.ts';
 import { seasonsTouched, startImportRuns } from './import-runs.ts';
 import { findStagedHead, type StagedHead, type StagedPart, stagedParts } from './import-staged.ts';
@@ -85,7 +86,7 @@ async function applyInside(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void
   const touched = countsChanged(result.counts) ? await seasonsTouched(tx, own.districtId, result.touched, validFromOf(row)) : [];
   await markRunsStale(tx, own.districtId, touched, `import of ${row.kind} applied`);
   if (row.kind === 'weather' || row.kind === 'stations') await requestWeatherCheck(own.districtId, undefined, tx);
-  const applied = { ...result.counts, seasons: touched, runs: null };
+  const applied = { ...result.counts, seasons: touched, records: result.touched.records, runs: null };
   const done = await changeImport(
     tx,
     { ...own, from: ['applying'] },
@@ -113,6 +114,7 @@ class Applier {
   private readonly counts: ApplyCounts = {};
   private readonly months = new Set<string>();
   private readonly seasons = new Set<string>();
+  private readonly records = new RecordDays();
   private readonly reaches = new Set<string>();
   /** of service areas or soil polygons */
   private readonly areas = new Set<string>();
@@ -136,19 +138,21 @@ class Applier {
     }
     this.count('crop_mappings', await applyCropMappings(this.tx, this.own, this.head.cropMappings));
     await this.finish();
-    const everything = !['weather', 'plantings', 'areas', 'images'].includes(this.head.kind);
-    return { counts: this.counts, touched: { everything, months: [...this.months], seasons: [...this.seasons] } };
+    const everything = !['weather', 'plantings', 'areas', 'images', 'deliveries', 'measurements'].includes(this.head.kind);
+    const touched = { everything, months: [...this.months], seasons: [...this.seasons], records: this.records.touched() };
+    return { counts: this.counts, touched };
   }
 
   private async write(part: StagedPart): Promise<void> {
     const { tx, own } = this;
     switch (part.part) {
       case 'sites':
-        return this.count('sites', await applySites(tx, own, part.items, this.sourceOption() ?? this.head.source));
+        return this.count('sites', await applySites(tx, own, part.items, this.target()));
       case 'cells':
         return this.count('cells', await applyCells(tx, own, part.items, this.gridOfHead()));
       case 'blocks': {
-        const { blocks, months } = await applyBlocks(tx, own, part.items, this.sourceOption() ?? this.head.source);
+        const { blocks, months, sites } = await applyBlocks(tx, own, part.items, this.target());
+        if (sites.added > 0) this.count('sites', sites);
         this.counts.weather_blocks_changed = (this.counts.weather_blocks_changed ?? 0) + blocks;
         for (const month of months) this.months.add(month);
         return;
@@ -175,6 +179,12 @@ class Applier {
       case 'images':
         for (const { date } of part.items) this.months.add(`${date.slice(0, 7)}-01`);
         return this.count('images', await applyImages(tx, own, part.items));
+      case 'deliveries':
+        for (const { date } of part.items) this.records.add('deliveries', date);
+        return this.count('deliveries', await applyDeliveries(tx, own, part.items));
+      case 'measurements':
+        for (const { quantity, date } of part.items) this.records.add(quantity, date);
+        return this.count('measurements', await applyMeasurements(tx, own, part.items));
     }
   }
 
@@ -183,10 +193,10 @@ class Applier {
     return ParcelWriter.open(this.tx, this.own.districtId);
   }
 
-  private gridOfHead(): { name: string; shape: GridShape } {
+  private gridOfHead(): { name: string; shape: GridShape; role: SourceRole | null } {
     const { source, grid } = this.head;
     if (!grid) throw new Refused('The cells of this grid came without their lattice: read the files again.');
-    return { name: this.sourceOption() ?? source ?? 'Grid', shape: grid };
+    return { name: this.sourceOption() ?? source ?? 'Grid', shape: grid, role: this.roleOption() };
   }
 
   private async finish(): Promise<void> {
@@ -204,6 +214,18 @@ class Applier {
     const land = kind === 'parcels' || kind === 'canals' || kind === 'areas';
     if (land && countsChanged(this.counts)) await countGeometryUp(tx, own.districtId);
     await this.onStep('finished');
+  }
+
+  /** The files' own name for a source serves observations; issues of a forecast, each with a name of its own, belong together. */
+  private target(): SourceTarget {
+    const role = this.roleOption();
+    if (this.head.grid) return { source: this.gridOfHead().name, role };
+    return { source: this.sourceOption() ?? (role === 'forecast' ? null : this.head.source), role };
+  }
+
+  private roleOption(): SourceRole | null {
+    const { role } = this.row.options as { role?: unknown };
+    return role === 'forecast' || role === 'observed' ? role : null;
   }
 
   private sourceOption(): string | null {

@@ -25,6 +25,8 @@ const ACCEPTED: Record<ImportKind, { readonly kinds: readonly ContentKind[]; rea
   'soil-areas': { kinds: SHAPES, words: SHAPE_WORDS },
   plantings: { kinds: TABLES, words: TABLE_WORDS },
   soils: { kinds: TABLES, words: TABLE_WORDS },
+  deliveries: { kinds: TABLES, words: TABLE_WORDS },
+  measurements: { kinds: TABLES, words: TABLE_WORDS },
   images: { kinds: ['tiff'], words: 'GeoTIFF, one image a file' },
 };
 

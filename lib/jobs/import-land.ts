@@ -1,9 +1,10 @@
-/** Applying parcels, plantings, canals and soils. */
+/** Applying parcels, plantings and canals. */
 import type { Tx } from '../../db/connect.ts';
 import { type ImportKey, type RowChanges, removeRows, replaceRows } from '../../db/queries/import-before.ts';
 import {
   listPlantingKeys,
   listReachUsers,
+  listRecordKeys,
   listTreeNodes,
   mapStoredParcels,
   mapTurnouts,
@@ -20,7 +21,6 @@ import type {
   StagedParcel,
   StagedPlanting,
   StagedReach,
-  StagedSoil,
   StagedSoilArea,
   StagedTurnout,
 } from '../files/reading.ts';
@@ -91,12 +91,15 @@ export class ParcelWriter {
     return this.turnouts.get(kept)?.reachCode === parcel.reachCode ? kept : null;
   }
 
-  /** Removes the parcels that the file did not have, with their plantings. */
+  /** Removes the parcels that the file did not have, with their plantings, deliveries and measurements. */
   async removeAbsent(tx: Tx, own: ImportKey): Promise<number> {
     const absent = [...this.stored.keys()].filter((code) => !this.seen.has(code));
     for (let from = 0; from < absent.length; from += 1000) {
       const codes = absent.slice(from, from + 1000);
       await removeRows(tx, own, 'planting', await listPlantingKeys(tx, own.districtId, codes));
+      const { deliveries, measurements } = await listRecordKeys(tx, own.districtId, codes);
+      await removeRows(tx, own, 'delivery', deliveries);
+      await removeRows(tx, own, 'field_measurement', measurements);
       await removeRows(
         tx,
         own,
@@ -175,6 +178,7 @@ export function applyPlantings(tx: Tx, own: ImportKey, plantings: readonly Stage
     harvest_date: planting.harvestDate,
     cut_dates: planting.cutDates,
     area_share: planting.areaShare,
+    practice: planting.practice ?? {},
   }));
   return replaceRows(tx, own, 'planting', rows);
 }
@@ -246,22 +250,6 @@ function named(users: readonly { code: string; reachCode: string | null }[]): st
 export async function checkTree(tx: Tx, districtId: string): Promise<void> {
   const nodes = await listTreeNodes(tx, districtId);
   if (nodes.length > 0) buildTree(nodes);
-}
-
-export function applySoils(tx: Tx, own: ImportKey, soils: readonly StagedSoil[]): Promise<RowChanges> {
-  const rows = soils.map((soil) => ({
-    code: soil.code,
-    name: soil.name,
-    field_capacity_m3_m3: soil.fieldCapacity,
-    wilting_point_m3_m3: soil.wiltingPoint,
-    evaporation_depth_m: soil.evaporationDepth,
-    readily_evaporable_water_mm: soil.readilyEvaporableWater,
-    total_evaporable_water_mm: soil.totalEvaporableWater,
-    curve_number: soil.curveNumber,
-    root_limit_m: soil.rootLimit,
-    source: soil.source,
-  }));
-  return replaceRows(tx, own, 'soil', rows);
 }
 
 export function applyCropMappings(tx: Tx, own: ImportKey, mappings: Readonly<Record<string, string | null>>): Promise<RowChanges> {

@@ -3,6 +3,7 @@ import type { Tx } from '../../db/connect.ts';
 import type { ImportKey } from '../../db/queries/import-before.ts';
 import { listComputableSeasons } from '../../db/queries/import-context.ts';
 import { changeImport, findImport, type ImportState } from '../../db/queries/import-row.ts';
+import { listSeasonsAhead, listSeasonsOnRecords } from '../../db/queries/stale-runs.ts';
 import { database } from '../access/database.ts';
 import { addDays } from '../base/civil-date.ts';
 import { TillwaterError } from '../base/errors.ts';
@@ -12,7 +13,8 @@ import { requestRun } from './runs.ts';
 const LONGEST_MONTH = 31;
 
 /**
- * Codes of the seasons that an import bears on and that have parcels, plantings and weather.
+ * Codes of the seasons that an import bears on and that have parcels, plantings and weather. Any weather bears on a season whose run has days to come: it may be
+ * of these days, or of the years that their normals rest on.
  *
  * @param since first day on which what it brought stands: seasons that ended before keep the run they have
  */
@@ -20,9 +22,16 @@ export async function seasonsTouched(tx: Tx, districtId: string, touched: Touche
   const seasons = (await listComputableSeasons(tx, districtId)).filter((season) => since === null || season.endDate >= since);
   const inSeason = (month: string, season: { startDate: string; endDate: string }) =>
     month <= season.endDate && addDays(month, LONGEST_MONTH) > season.startDate;
+  const ahead = touched.months.length > 0 ? await listSeasonsAhead(tx, districtId) : [];
+  const onRecords = touched.records ? await listSeasonsOnRecords(tx, districtId, touched.records) : [];
   return seasons
     .filter(
-      (season) => touched.everything || touched.seasons.includes(season.code) || touched.months.some((month) => inSeason(month, season)),
+      (season) =>
+        touched.everything ||
+        touched.seasons.includes(season.code) ||
+        touched.months.some((month) => inSeason(month, season)) ||
+        ahead.includes(season.code) ||
+        onRecords.includes(season.code),
     )
     .map((season) => season.code);
 }

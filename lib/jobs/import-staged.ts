@@ -8,8 +8,10 @@ import type {
   StagedArea,
   StagedBlock,
   StagedCell,
+  StagedDelivery,
   StagedImageMean,
   StagedImport,
+  StagedMeasurement,
   StagedParcel,
   StagedPlanting,
   StagedReach,
@@ -46,6 +48,8 @@ export type StagedPart =
   | { readonly part: 'areas'; readonly items: readonly StagedArea[] }
   | { readonly part: 'soilAreas'; readonly items: readonly StagedSoilArea[] }
   | { readonly part: 'images'; readonly items: readonly StagedImageMean[] }
+  | { readonly part: 'deliveries'; readonly items: readonly StagedDelivery[] }
+  | { readonly part: 'measurements'; readonly items: readonly StagedMeasurement[] }
   | { readonly part: 'soils'; readonly items: readonly StagedSoil[] };
 
 const ITEMS_IN_PIECE = 1000;
@@ -152,6 +156,10 @@ function partsOf(staged: StagedImport): StagedPart[] {
       return [{ part: 'sites', items: staged.sites }];
     case 'images':
       return [{ part: 'images', items: staged.images }];
+    case 'deliveries':
+      return [{ part: 'deliveries', items: staged.deliveries }];
+    case 'measurements':
+      return [{ part: 'measurements', items: staged.measurements }];
     case 'weather':
       return [
         { part: 'sites', items: staged.stations ?? [] },
@@ -180,7 +188,14 @@ function partsOf(staged: StagedImport): StagedPart[] {
 }
 
 function cutPart(part: StagedPart): StagedPart[] {
-  if (part.part === 'plantings') return plantingPieces(part.items);
+  if (part.part === 'plantings') {
+    const pieces = piecesOfGroups(part.items, ({ seasonCode, parcelCode }) => `${seasonCode}\n${parcelCode}`);
+    return pieces.map((items) => ({ part: 'plantings', items }));
+  }
+  if (part.part === 'measurements') {
+    const pieces = piecesOfGroups(part.items, ({ parcelCode, date, quantity }) => `${parcelCode}\n${date}\n${quantity}`);
+    return pieces.map((items) => ({ part: 'measurements', items }));
+  }
   const size = part.part === 'blocks' ? BLOCKS_IN_PIECE : ITEMS_IN_PIECE;
   const pieces: StagedPart[] = [];
   for (let from = 0; from < part.items.length; from += size) {
@@ -189,15 +204,16 @@ function cutPart(part: StagedPart): StagedPart[] {
   return pieces;
 }
 
-/** Plantings of one parcel and season are replaced together, so they must never be cut apart. */
-function plantingPieces(items: readonly StagedPlanting[]): StagedPart[] {
-  const groups = new Map<string, StagedPlanting[]>();
+/** Plantings of one parcel and season, and readings of one parcel, day and quantity, are replaced together, so they must never be cut apart. */
+function piecesOfGroups<Item>(items: readonly Item[], keyOf: (item: Item) => string): Item[][] {
+  const groups = new Map<string, Item[]>();
   for (const item of items) {
-    const key = `${item.seasonCode}\n${item.parcelCode}`;
-    groups.set(key, [...(groups.get(key) ?? []), item]);
+    const group = groups.get(keyOf(item));
+    if (group) group.push(item);
+    else groups.set(keyOf(item), [item]);
   }
-  const pieces: StagedPlanting[][] = [];
-  let last: StagedPlanting[] = [];
+  const pieces: Item[][] = [];
+  let last: Item[] = [];
   for (const group of groups.values()) {
     if (last.length === 0 || last.length + group.length > ITEMS_IN_PIECE) {
       last = [];
@@ -205,7 +221,7 @@ function plantingPieces(items: readonly StagedPlanting[]): StagedPart[] {
     }
     last.push(...group);
   }
-  return pieces.map((piece) => ({ part: 'plantings', items: piece }));
+  return pieces;
 }
 
 export async function findStagedHead(tx: Tx, districtId: string, importId: string): Promise<StagedHead | null> {

@@ -5,10 +5,11 @@ import { findLaterImport, type ImportKey, restoreRows } from '../../db/queries/i
 import { countGeometryUp, listDangling } from '../../db/queries/import-land.ts';
 import { changeImport, dropBefore, findImport, holdDistrict } from '../../db/queries/import-row.ts';
 import { listSiteKeys } from '../../db/queries/import-weather.ts';
-import { markRunsStale } from '../../db/queries/stale-runs.ts';
+import { listSeasonsOnRecords, markRunsStale } from '../../db/queries/stale-runs.ts';
 import { database } from '../access/database.ts';
 import { Conflict, TillwaterError, TreeError } from '../base/errors.ts';
 import type { OnStep } from './import-apply.ts';
+import type { RecordsTouched } from './import-counts.ts';
 import { checkTree } from './import-land.ts';
 import { laterText, refuseDangling } from './import-references.ts';
 import { startImportRuns } from './import-runs.ts';
@@ -43,9 +44,10 @@ async function undoInside(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void>
   await refuseLaterImport(tx, own);
   await restoreAll(tx, own, onStep);
   await dropBefore(tx, own.districtId, own.importId);
-  const understood = row.understood as { applied?: { seasons?: string[] } };
+  const understood = row.understood as { applied?: { seasons?: string[]; records?: RecordsTouched } };
+  const seasons = await seasonsUndone(tx, own.districtId, understood.applied ?? {});
   if (row.kind === 'weather' || row.kind === 'stations') await requestWeatherCheck(own.districtId, undefined, tx);
-  await markRunsStale(tx, own.districtId, understood.applied?.seasons ?? [], `import of ${row.kind} undone`);
+  await markRunsStale(tx, own.districtId, seasons, `import of ${row.kind} undone`);
   const done = await changeImport(
     tx,
     { ...own, from: ['undoing'] },
@@ -54,11 +56,17 @@ async function undoInside(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void>
       progress: 1,
       error: null,
       undoneAt: new Date(),
-      understood: { ...understood, undone: { seasons: understood.applied?.seasons ?? [], runs: null } },
+      understood: { ...understood, undone: { seasons, runs: null } },
     },
   );
   if (!done) throw new Error(`import ${own.importId} was moved while it was undone`);
   await onStep('marked');
+}
+
+/** The seasons it bore on when it was applied, and those whose runs have come to rest on its records since. */
+async function seasonsUndone(tx: Tx, districtId: string, applied: { seasons?: string[]; records?: RecordsTouched }): Promise<string[]> {
+  const since = applied.records ? await listSeasonsOnRecords(tx, districtId, applied.records) : [];
+  return [...new Set([...(applied.seasons ?? []), ...since])];
 }
 
 async function restoreAll(tx: Tx, own: ImportKey, onStep: OnStep): Promise<void> {

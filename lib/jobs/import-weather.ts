@@ -4,48 +4,35 @@ import { fileBlockImage, type ImportKey, listBlockImages, type RowChanges, repla
 import { listSourceSites, listSources } from '../../db/queries/import-context.ts';
 import { nextSiteOrdinal, nextSourceId } from '../../db/queries/import-land.ts';
 import { type BlockKey, deleteBlock, findBlock, listBlocksBeyond, listSiteKeys, saveBlock } from '../../db/queries/import-weather.ts';
+import { listObservedStations } from '../../db/queries/weather-sources.ts';
 import { daysInMonth } from '../base/civil-date.ts';
 import { Conflict, type Finding, Refused } from '../base/errors.ts';
 import type { StagedBlock, StagedCell, StagedSite } from '../files/reading.ts';
 import type { GridShape } from '../weather/variable.ts';
 import { type BlockImage, type BlockRow, mergeBlock, restoreBlock } from './import-block.ts';
-
-interface Place {
-  readonly sourceId: number;
-  readonly ordinal: number;
-}
-
-/** Where each station lives: in the named source when it is there, else in the first source that has it. */
-class SitePlaces {
-  private readonly known = new Map<string, Place>();
-
-  constructor(sites: Awaited<ReturnType<typeof listSourceSites>>, preferred: string | null) {
-    for (const site of sites) {
-      if (site.kind === 'grid' && site.source !== preferred) continue;
-      if (!this.known.has(site.code) || site.source === preferred)
-        this.known.set(site.code, { sourceId: site.sourceId, ordinal: site.ordinal });
-    }
-  }
-
-  find(code: string): Place | null {
-    return this.known.get(code) ?? null;
-  }
-}
-
-const DEFAULT_SOURCE = 'Stations';
+import {
+  DEFAULT_SOURCE,
+  type Place,
+  refuseOtherRole,
+  SitePlaces,
+  type SourceRole,
+  type SourceTarget,
+  settledTarget,
+} from './import-places.ts';
 
 /**
  * Adds stations and changes those already known by their code. New ones are appended: a station's place in its source never changes.
  *
- * @param source name of the source for new stations; null takes the district's only source, or makes "Stations"
+ * @param target source for new stations; without a name: the district's only source of its role, or "Stations" or "Forecast"
  */
-export async function applySites(tx: Tx, own: ImportKey, sites: readonly StagedSite[], source: string | null): Promise<RowChanges> {
-  const places = new SitePlaces(await listSourceSites(tx, own.districtId), source);
+export async function applySites(tx: Tx, own: ImportKey, sites: readonly StagedSite[], target: SourceTarget): Promise<RowChanges> {
+  const { source, role } = await settledTarget(tx, own, target);
+  const places = new SitePlaces(await listSourceSites(tx, own.districtId), source, role);
   const isNew = sites.some((site) => !places.find(site.code));
-  const target = isNew ? await ensureSource(tx, own, source) : 0;
-  let next = isNew ? await nextSiteOrdinal(tx, own.districtId, target) : 0;
+  const sourceId = isNew ? await ensureSource(tx, own, source, role) : 0;
+  let next = isNew ? await nextSiteOrdinal(tx, own.districtId, sourceId) : 0;
   const rows = sites.map((site) => {
-    const place = places.find(site.code) ?? { sourceId: target, ordinal: next++ };
+    const place = places.find(site.code) ?? { sourceId, ordinal: next++ };
     return {
       source_id: place.sourceId,
       ordinal: place.ordinal,
@@ -61,9 +48,9 @@ export async function applySites(tx: Tx, own: ImportKey, sites: readonly StagedS
   return replaceRows(tx, own, 'site', rows);
 }
 
-async function ensureSource(tx: Tx, own: ImportKey, name: string | null): Promise<number> {
+async function ensureSource(tx: Tx, own: ImportKey, name: string | null, role: SourceRole): Promise<number> {
   const all = await listSources(tx, own.districtId);
-  const sources = all.filter((source) => source.kind === 'stations');
+  const sources = all.filter((source) => source.kind === 'stations' && source.role === role);
   if (name === null && sources.length === 1) return sources[0].sourceId;
   const grid = all.find((source) => source.name === name && source.kind === 'grid');
   if (grid) throw new Conflict(`"${name}" is the name of a grid: give the stations a source of another name.`);
@@ -71,18 +58,39 @@ async function ensureSource(tx: Tx, own: ImportKey, name: string | null): Promis
   const found = sources.find((source) => source.name === wanted);
   if (found) return found.sourceId;
   const sourceId = await nextSourceId(tx, own.districtId);
-  await replaceRows(tx, own, 'weather_source', [{ source_id: sourceId, name: wanted, kind: 'stations', rank: all.length + 1 }]);
+  await replaceRows(tx, own, 'weather_source', [{ source_id: sourceId, name: wanted, kind: 'stations', role, rank: all.length + 1 }]);
   return sourceId;
+}
+
+/** A forecast for stations of the district that its source does not have yet: they are taken over with their place. */
+async function copySites(tx: Tx, own: ImportKey, blocks: readonly StagedBlock[], target: { source: string | null; role: SourceRole }) {
+  const places = new SitePlaces(await listSourceSites(tx, own.districtId), target.source, target.role);
+  const absent = [...new Set(blocks.flatMap((block) => block.siteCodes))].filter((code) => !places.find(code));
+  const known = await listObservedStations(tx, own.districtId, absent);
+  return applySites(
+    tx,
+    own,
+    known.map(({ code, name, longitude, latitude, elevation, windHeight, zone }) => ({
+      ...{ code, name, longitude, latitude, elevation, windHeight, zone },
+    })),
+    target,
+  );
 }
 
 /**
  * Makes the source of a grid and those of its cells that are not there yet. The lattice of a source never changes.
  *
- * @throws Conflict when the name is that of stations, or of a grid on another lattice
+ * @throws Conflict when the name is that of stations, of a grid on another lattice, or of the other role
  */
-export async function applyCells(tx: Tx, own: ImportKey, cells: readonly StagedCell[], grid: { name: string; shape: GridShape }) {
+export async function applyCells(
+  tx: Tx,
+  own: ImportKey,
+  cells: readonly StagedCell[],
+  grid: { name: string; shape: GridShape; role: SourceRole | null },
+) {
   const sources = await listSources(tx, own.districtId);
   const found = sources.find((source) => source.name === grid.name);
+  refuseOtherRole(found, grid.role);
   if (found && found.kind !== 'grid')
     throw new Conflict(`"${grid.name}" is the name of a source of stations: give the grid another name in the options.`);
   if (found && !sameLattice(found.grid as GridShape, grid.shape))
@@ -91,7 +99,8 @@ export async function applyCells(tx: Tx, own: ImportKey, cells: readonly StagedC
     );
   const sourceId = found?.sourceId ?? (await nextSourceId(tx, own.districtId));
   if (!found) {
-    const row = { source_id: sourceId, name: grid.name, kind: 'grid', grid: grid.shape, rank: sources.length + 1 };
+    const role = grid.role ?? 'observed';
+    const row = { source_id: sourceId, name: grid.name, kind: 'grid', role, grid: grid.shape, rank: sources.length + 1 };
     await replaceRows(tx, own, 'weather_source', [row]);
   }
   const known = new Map(
@@ -131,15 +140,19 @@ interface BlockChanges {
   /** blocks made or changed */
   readonly blocks: number;
   readonly months: readonly string[];
+  /** stations that a forecast took over */
+  readonly sites: RowChanges;
 }
 
 /**
- * Merges staged months into the stored blocks.
+ * Merges staged months into the stored blocks, day by day: of a forecast the newest issue stands.
  *
  * @throws Refused naming the stations that are not in the district
  */
-export async function applyBlocks(tx: Tx, own: ImportKey, blocks: readonly StagedBlock[], source: string | null): Promise<BlockChanges> {
-  const places = new SitePlaces(await listSourceSites(tx, own.districtId), source);
+export async function applyBlocks(tx: Tx, own: ImportKey, blocks: readonly StagedBlock[], wanted: SourceTarget): Promise<BlockChanges> {
+  const target = await settledTarget(tx, own, wanted);
+  const sites = target.role === 'forecast' ? await copySites(tx, own, blocks, target) : { added: 0, changed: 0 };
+  const places = new SitePlaces(await listSourceSites(tx, own.districtId), target.source, target.role);
   refuseUnknown(blocks, places);
   const months = new Set<string>();
   let count = 0;
@@ -154,7 +167,7 @@ export async function applyBlocks(tx: Tx, own: ImportKey, blocks: readonly Stage
       count++;
     }
   }
-  return { blocks: count, months: [...months] };
+  return { blocks: count, months: [...months], sites };
 }
 
 function rowsBySource(block: StagedBlock, places: SitePlaces) {

@@ -1,7 +1,8 @@
-/** The numbers of the map: for each variable and period kind one Float32 array [period × parcel], filled parcel by parcel. */
-import type { Period } from '../base/civil-date.ts';
-import { dailyValues } from '../season/daily-store.ts';
-import type { DailyVariable } from '../season/types.ts';
+/** The numbers of the map: for each variable one Float32 array [period × parcel], made slice by slice and put together at the end of a run. */
+import { type Period, periodsOf } from '../base/civil-date.ts';
+import { variableIndex } from '../season/daily-store.ts';
+import { mostPackedBytes, packDays, unpackDays } from '../season/day-pack.ts';
+import { DAILY_VARIABLE_COUNT, DAILY_VARIABLES, type DailyVariable } from '../season/types.ts';
 import { ESTIMATED_BITS } from '../weather/variable.ts';
 
 /** How a day's value becomes a period's: a sum of depths, the state at the period's end, or the mean. */
@@ -27,64 +28,141 @@ export const MAP_VARIABLES: readonly {
   { id: 'estimated_share', term: 'Days with estimated weather, share', unit: '1', aggregate: 'mean' },
 ];
 
-interface PeriodSet {
+export interface PeriodSet {
   readonly kind: 'week' | 'month' | 'season';
   readonly periods: readonly Period[];
 }
 
-export class MapArrays {
-  private readonly arrays: { variable: string; aggregate: Aggregate; set: PeriodSet; values: Float32Array }[];
+/** Weeks, months and the season of a run, in the order in which a slice's values hold them. */
+export function periodSets(run: { readonly startDate: string; readonly endDate: string }, weekStart: number): PeriodSet[] {
+  return (['week', 'month', 'season'] as const).map((kind) => ({ kind, periods: periodsOf(kind, run.startDate, run.endDate, weekStart) }));
+}
 
-  constructor(
-    private readonly parcelCount: number,
-    private readonly dayCount: number,
-    sets: readonly PeriodSet[],
-  ) {
-    this.arrays = MAP_VARIABLES.flatMap(({ id, aggregate }) =>
-      sets.map((set) => ({ variable: id, aggregate, set, values: new Float32Array(set.periods.length * parcelCount).fill(Number.NaN) })),
-    );
-  }
+/** The two halves of a whole number, each in a row of its own. */
+const HALVES = 2;
 
-  /** Puts one parcel's season into every array. @param stored [variable × day] @param flags bits of FALLBACK [day] */
-  add(position: number, stored: Uint16Array, flags: Uint32Array): void {
-    const days = new Map(MAP_VARIABLES.map((variable) => [variable.id, this.daily(stored, flags, variable.id)]));
-    for (const { variable, aggregate, set, values } of this.arrays) {
-      const series = days.get(variable) as Float64Array;
-      set.periods.forEach((period, index) => {
-        values[index * this.parcelCount + position] = aggregated(series, period, aggregate);
-      });
+/**
+ * Period values of the parcels of a slice, for each of MAP_VARIABLES packed: whole numbers [parcel × half × period], the low half before the high one, the
+ * periods of every set one after another. A sum is of the values as stored, so that it equals the days a reader sees.
+ *
+ * Whole numbers pack to a third of what Float32 takes, and lose nothing on the way.
+ *
+ * @param daily [parcel × variable × day] as stored, without a missing value: the kernel leaves none
+ * @param flags bits of FALLBACK [parcel × day]
+ */
+export function packPeriods(daily: Uint16Array, flags: Uint32Array, dayCount: number, sets: readonly PeriodSet[]): Uint8Array[] {
+  const parcelCount = flags.length / dayCount;
+  const from = Int32Array.from(sets.flatMap(({ periods }) => periods.map((period) => period.from)));
+  const to = Int32Array.from(sets.flatMap(({ periods }) => periods.map((period) => period.to)));
+  const spans: Spans = { from, to, running: new Int32Array(dayCount + 1) };
+  const plain = new Uint16Array(parcelCount * HALVES * from.length);
+  const like = new Array<number>(parcelCount * HALVES).fill(-1);
+  const scratch = new Uint8Array(mostPackedBytes(like.length, from.length));
+  return KEPT.map(({ id, aggregate }) => {
+    for (let parcel = 0; parcel < parcelCount; parcel++) {
+      const at = parcel * HALVES * from.length;
+      if (id === 'estimated') countEstimated(flags, parcel * dayCount, spans, plain, at);
+      else {
+        const row = (parcel * DAILY_VARIABLE_COUNT + variableIndex(id)) * dayCount;
+        if (aggregate === 'end') ends(daily, row, spans, plain, at);
+        else sums(daily, row, spans, plain, at);
+      }
     }
-  }
+    return scratch.slice(0, packDays(plain, 0, from.length, like, scratch, 0));
+  });
+}
 
-  private daily(stored: Uint16Array, flags: Uint32Array, id: string): Float64Array {
-    if (id === 'estimated_share') return Float64Array.from(flags, (bits) => ((bits & ESTIMATED_BITS) === 0 ? 0 : 1));
-    if (id !== 'depletion_share') return dailyValues(stored, this.dayCount, id as DailyVariable);
-    const depletion = dailyValues(stored, this.dayCount, 'root_zone_depletion');
-    const available = dailyValues(stored, this.dayCount, 'total_available_water');
-    return depletion.map((value, day) => (available[day] > 0 ? value / available[day] : Number.NaN));
-  }
+/** What a slice keeps of a run's days by period: the numbers that the map's variables are made of. */
+const KEPT: readonly { readonly id: DailyVariable | 'estimated'; readonly aggregate: Aggregate }[] = [
+  ...MAP_VARIABLES.flatMap(({ id, aggregate }) =>
+    id === 'depletion_share' || id === 'estimated_share' ? [] : [{ id: id as DailyVariable, aggregate }],
+  ),
+  { id: 'total_available_water', aggregate: 'end' },
+  { id: 'estimated', aggregate: 'sum' },
+];
 
-  rows(key: { districtId: string; runId: string }) {
-    return this.arrays.map(({ variable, set, values }) => ({
-      ...key,
-      variable,
-      period: set.kind,
-      periodCount: set.periods.length,
-      parcelCount: this.parcelCount,
-      values: new Uint8Array(values.buffer),
-    }));
+/** Names of the packed arrays of `packPeriods`, in their order. */
+export const KEPT_NAMES: readonly string[] = KEPT.map(({ id }) => id);
+
+interface Spans {
+  readonly from: Int32Array;
+  readonly to: Int32Array;
+  /** scratch: sum of the days before each day */
+  readonly running: Int32Array;
+}
+
+function sums(daily: Uint16Array, row: number, spans: Spans, into: Uint16Array, at: number): void {
+  const { running } = spans;
+  let sum = 0;
+  for (let d = 0; d < running.length - 1; d++) {
+    sum += daily[row + d];
+    running[d + 1] = sum;
+  }
+  laySums(spans, into, at);
+}
+
+function countEstimated(flags: Uint32Array, row: number, spans: Spans, into: Uint16Array, at: number): void {
+  const { running } = spans;
+  for (let d = 0; d < running.length - 1; d++) running[d + 1] = running[d] + ((flags[row + d] & ESTIMATED_BITS) === 0 ? 0 : 1);
+  laySums(spans, into, at);
+}
+
+function laySums({ from, to, running }: Spans, into: Uint16Array, at: number): void {
+  for (let p = 0; p < from.length; p++) {
+    const sum = running[to[p] + 1] - running[from[p]];
+    into[at + p] = sum;
+    into[at + from.length + p] = sum >>> 16;
   }
 }
 
-/** One period's value from days. Any missing day makes a sum missing; a mean is over the days that have a value. */
-function aggregated(series: Float64Array, period: Period, aggregate: Aggregate): number {
-  if (aggregate === 'end') return series[period.to];
-  let sum = 0;
-  let count = 0;
-  for (let day = period.from; day <= period.to; day++) {
-    if (aggregate === 'mean' && Number.isNaN(series[day])) continue;
-    sum += series[day];
-    count++;
+function ends(daily: Uint16Array, row: number, { to }: Spans, into: Uint16Array, at: number): void {
+  for (let p = 0; p < to.length; p++) {
+    into[at + p] = daily[row + to[p]];
+    into[at + to.length + p] = 0;
   }
-  return aggregate === 'mean' ? sum / count : sum;
+}
+
+/** Names of the kept arrays that a variable of the map is made of. */
+export function keptOf(variable: string): readonly string[] {
+  if (variable === 'depletion_share') return ['root_zone_depletion', 'total_available_water'];
+  return [variable === 'estimated_share' ? 'estimated' : variable];
+}
+
+/**
+ * Lays the values of some parcels into the arrays of a run, [period × parcel] for each set of periods.
+ *
+ * @param kept packed arrays of the parcels, those of `keptOf(variable)`
+ * @param position place of the first of the parcels in the run
+ */
+export function layPeriods(
+  variable: string,
+  kept: readonly Uint8Array[],
+  position: number,
+  sets: readonly PeriodSet[],
+  arrays: readonly Float32Array[],
+): void {
+  const [numbers, others] = kept.map(unpackDays);
+  const periodCount = sets.reduce((count, { periods }) => count + periods.length, 0);
+  const parcels = numbers.length / HALVES / periodCount;
+  const { aggregate } = MAP_VARIABLES.find(({ id }) => id === variable) as (typeof MAP_VARIABLES)[number];
+  const scale = variable.endsWith('_share') ? 1 : DAILY_VARIABLES[variableIndex(variable as DailyVariable)].scale;
+  let before = 0;
+  sets.forEach(({ periods }, k) => {
+    const into = arrays[k];
+    const all = into.length / periods.length;
+    periods.forEach(({ from, to }, p) => {
+      const divisor = aggregate === 'mean' ? scale * (to - from + 1) : scale;
+      for (let parcel = 0, i = p * all + position; parcel < parcels; parcel++, i++) {
+        const at = parcel * HALVES * periodCount + before + p;
+        const number = numbers[at] + 65536 * numbers[at + periodCount];
+        into[i] = others ? shareOf(number, others[at]) : number / divisor;
+      }
+    });
+    before += periods.length;
+  });
+}
+
+/** Missing where the soil holds no water. */
+function shareOf(depletion: number, available: number): number {
+  return available === 0 ? Number.NaN : depletion / available;
 }

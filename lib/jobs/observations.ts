@@ -26,7 +26,7 @@ export interface SiteKey {
 }
 
 interface ObservationsWanted {
-  /** name of a source; left out or null: every source of stations when any of them has weather, else the first grid that has */
+  /** name of a source, which may be a forecast; left out or null: every source of observed stations when any of them has weather, else the first grid that has */
   readonly source?: string | null;
   /** first and last day; left out: everything stored */
   readonly from?: string;
@@ -73,8 +73,9 @@ async function sourcesWanted(tx: Tx, districtId: string, { source, sites }: Obse
     return all.filter(({ sourceId }) => asked.has(sourceId));
   }
   if (source) return all.filter(({ name }) => name === source);
-  const stations = all.filter(({ kind }) => kind === 'stations');
-  const grid = all.find(({ kind, hasWeather }) => kind === 'grid' && hasWeather);
+  const observed = all.filter(({ role }) => role === 'observed');
+  const stations = observed.filter(({ kind }) => kind === 'stations');
+  const grid = observed.find(({ kind, hasWeather }) => kind === 'grid' && hasWeather);
   return stations.some(({ hasWeather }) => hasWeather) || !grid ? stations : [grid];
 }
 

@@ -2,12 +2,14 @@
 import type { Tx } from '../../db/connect.ts';
 import { listRunSources, type RunSource } from '../../db/queries/run-sources.ts';
 import { listSites, type SiteRow } from '../../db/queries/weather-observations.ts';
+import { listForecastSources } from '../../db/queries/weather-sources.ts';
 import { addDays } from '../base/civil-date.ts';
 import { Refused } from '../base/errors.ts';
 import { nanFromNull } from '../base/missing.ts';
 import { nearestFinder } from '../weather/gaps-neighbours.ts';
 import { REGRESSION_LIMITS } from '../weather/gaps-regression.ts';
 import type { GridShape, Site, SiteObservations } from '../weather/variable.ts';
+import { forecastIsNoSource } from './ahead-settings.ts';
 import { loadObservations } from './observations.ts';
 
 /** What a run takes its weather from. */
@@ -32,6 +34,9 @@ export async function findRunSource(tx: Tx, districtId: string, name: string | n
   const having = all.filter(({ hasWeather }) => hasWeather);
   if (having.length === 0) throw new Refused('The district has no weather yet: import stations, then their weather.');
   const named = name === null ? null : all.find((source) => source.name === name);
+  if (name !== null && !named && (await listForecastSources(tx, districtId)).some((source) => source.name === name)) {
+    throw forecastIsNoSource(name);
+  }
   if (name !== null && !named?.hasWeather) {
     const known = having.map((source) => source.name).join(', ');
     throw new Refused(`The weather source "${name}" has no weather: import some for it, or take another source (${known}).`);

@@ -1,16 +1,20 @@
 /** From the district's rows to the inputs of a season: weather completed, weights made, every parcel with its soil, method and plantings. */
 
-import type { listLibraries, listRunParcels, listSeasonPlantings } from '../../db/queries/run-inputs.ts';
+import type { listEarlierPlantings, listLibraries, listRunParcels, listSeasonPlantings } from '../../db/queries/run-inputs.ts';
 import { Refused } from '../base/errors.ts';
 import { nanFromNull } from '../base/missing.ts';
-import type { ApplicationMethod, Crop, CropCalendar, ParcelInput, SeasonInput, Soil } from '../season/types.ts';
+import type { ApplicationMethod, Crop, CropCalendar, ParcelInput, Planting, SeasonInput, SeasonSettings, Soil } from '../season/types.ts';
 import type { CompletedWeather, Site, SiteWeight } from '../weather/variable.ts';
+import type { WaterSpan } from './run-deliveries.ts';
+import type { ParcelRecords } from './run-records.ts';
 import { type RunSettings, seasonSettings } from './run-settings.ts';
 import type { ParcelWeights } from './run-weights.ts';
 
 type ParcelRow = Awaited<ReturnType<typeof listRunParcels>>[number];
 type PlantingRow = Awaited<ReturnType<typeof listSeasonPlantings>>[number];
 type LibraryRows = Awaited<ReturnType<typeof listLibraries>>;
+type SoilRow = LibraryRows['soils'][number];
+type MethodRow = LibraryRows['methods'][number];
 
 /** The libraries of a run, by code. */
 export interface Libraries {
@@ -20,8 +24,18 @@ export interface Libraries {
   readonly calendars: Readonly<Record<string, CropCalendar>>;
 }
 
-/** One parcel of a run with its tables by code: what is frozen beside the run. */
-export interface FrozenParcel {
+/** A planting with crop and calendar by code. */
+interface FrozenPlanting extends Omit<Planting, 'crop' | 'calendar'> {
+  readonly crop: string;
+  readonly calendar: string;
+}
+
+/** Members of a parcel that come from the district's records; each is there only where the run takes it. */
+const RECORDED = ['deliveries', 'efficiency', 'salinity', 'waterTable', 'initialWater', 'observedBasal'] as const;
+type Recorded = Pick<ParcelInput, (typeof RECORDED)[number]>;
+
+/** One parcel of a run with its tables by code: what is frozen beside the run. Everything in it is as JSON has it. */
+export interface FrozenParcel extends Recorded {
   readonly area: number;
   readonly latitude: number;
   readonly longitude: number;
@@ -30,23 +44,26 @@ export interface FrozenParcel {
   readonly method: string;
   readonly weights: readonly SiteWeight[];
   readonly series?: ParcelInput['series'];
-  readonly plantings: readonly {
-    readonly crop: string;
-    readonly calendar: string;
-    readonly plantingDate: string;
-    readonly harvestDate: string | null;
-    readonly cutDates: readonly string[];
-    readonly areaShare: number;
-  }[];
+  readonly plantings: readonly FrozenPlanting[];
+  /** plantings of earlier seasons that stand in the days before this one; they follow its own in the season's input */
+  readonly earlier?: readonly FrozenPlanting[];
 }
 
 export function librariesOf(rows: LibraryRows): Libraries {
   return {
-    soils: byCode(rows.soils, (row) => ({ ...row, curveNumber: nanFromNull(row.curveNumber), rootLimit: nanFromNull(row.rootLimit) })),
-    methods: byCode(rows.methods, (row) => row),
+    soils: byCode(rows.soils, soilFromRow),
+    methods: byCode(rows.methods, methodFromRow),
     crops: byCode(rows.crops, (row) => cropFromJson(row.definition)),
     calendars: byCode(rows.calendars, (row) => ({ ...(row.definition as CropCalendar), code: row.code, name: row.name })),
   };
+}
+
+function soilFromRow({ districtId: _district, source: _source, profile, ...row }: SoilRow): Soil {
+  return { ...row, curveNumber: nanFromNull(row.curveNumber), rootLimit: nanFromNull(row.rootLimit), ...profile };
+}
+
+function methodFromRow({ districtId: _district, source: _source, system, ...row }: MethodRow): ApplicationMethod {
+  return { ...row, ...system };
 }
 
 /** JSON has no NaN: a crop without a published yield response comes back with one. */
@@ -67,7 +84,10 @@ export function usableSites({ siteCount, dayCount, airTemperatureMax, referenceE
   return sites.filter((site) => reports(airTemperatureMax, site) || (referenceEt ? reports(referenceEt, site) : false));
 }
 
-/** Every parcel with its codes resolved to the district's defaults where it brings none. `soils` and `weights` are one for each parcel. */
+/**
+ * Every parcel with its codes resolved to the district's defaults where it brings none. `soils` and `weights` are one for each parcel; `records` by code,
+ * parcels without any left out.
+ */
 export function frozenParcels(options: {
   parcels: readonly ParcelRow[];
   plantings: readonly PlantingRow[];
@@ -76,11 +96,13 @@ export function frozenParcels(options: {
   weights: readonly ParcelWeights[];
   settings: RunSettings;
   defaultElevation: number;
+  records?: ReadonlyMap<string, ParcelRecords>;
 }): FrozenParcel[] {
   const plantingsOf = new Map<string, PlantingRow[]>();
   for (const row of options.plantings) plantingsOf.set(row.parcelCode, [...(plantingsOf.get(row.parcelCode) ?? []), row]);
   return options.parcels.map((parcel, index) => {
     const { weights, series } = options.weights[index];
+    const records = options.records?.get(parcel.code);
     return {
       area: parcel.area,
       latitude: parcel.latitude,
@@ -90,16 +112,28 @@ export function frozenParcels(options: {
       method: parcel.methodCode ?? options.settings.default_method,
       weights,
       ...(series ? { series } : {}),
-      plantings: (plantingsOf.get(parcel.code) ?? []).map((row) => ({
-        crop: row.cropCode,
-        calendar: row.calendarCode,
-        plantingDate: row.plantingDate,
-        harvestDate: row.harvestDate,
-        cutDates: row.cutDates,
-        areaShare: row.areaShare,
-      })),
+      plantings: (plantingsOf.get(parcel.code) ?? []).map(frozenPlanting),
+      ...(records ? recordedOf(records) : {}),
+      ...(records?.earlier ? { earlier: records.earlier.map(frozenPlanting) } : {}),
     };
   });
+}
+
+function frozenPlanting(row: PlantingRow | Awaited<ReturnType<typeof listEarlierPlantings>>[number]): FrozenPlanting {
+  return {
+    crop: row.cropCode,
+    calendar: row.calendarCode,
+    plantingDate: row.plantingDate,
+    harvestDate: row.harvestDate,
+    cutDates: row.cutDates,
+    areaShare: row.areaShare,
+    ...row.practice,
+  };
+}
+
+/** The recorded members that are there; those that are not stay away, so that the JSON of most parcels is short. */
+function recordedOf(from: Recorded): Recorded {
+  return Object.fromEntries(RECORDED.flatMap((name) => (from[name] === undefined ? [] : [[name, from[name]]])));
 }
 
 /** A parcel without an elevation of its own lies at the weighted elevation of its sites: no lapse is then applied. */
@@ -109,7 +143,12 @@ function elevationFromSites(weights: readonly SiteWeight[], sites: readonly Site
   return sum;
 }
 
-/** The numeric rooms' form of frozen parcels. @throws Refused when a code names nothing in the libraries */
+/**
+ * The numeric rooms' form of frozen parcels. Weather and start date are those of the first day stepped; `span` says how many days come before the season,
+ * and how days are watered.
+ *
+ * @throws Refused when a code names nothing in the libraries
+ */
 export function seasonInput(options: {
   startDate: string;
   settings: RunSettings;
@@ -117,8 +156,9 @@ export function seasonInput(options: {
   weather: CompletedWeather;
   libraries: Libraries;
   parcels: readonly { code: string; input: FrozenParcel }[];
+  span?: WaterSpan;
 }): SeasonInput {
-  const { libraries } = options;
+  const { libraries, span } = options;
   const parcels = options.parcels.map(
     ({ code, input }): ParcelInput => ({
       code,
@@ -130,7 +170,8 @@ export function seasonInput(options: {
       method: known(libraries.methods, input.method, 'application method', code),
       weights: input.weights,
       ...(input.series ? { series: seriesFromJson(input.series) } : {}),
-      plantings: input.plantings.map((planting) => ({
+      ...recordedOf(input),
+      plantings: [...input.plantings, ...(input.earlier ?? [])].map((planting) => ({
         ...planting,
         crop: known(libraries.crops, planting.crop, 'crop', code),
         calendar: known(libraries.calendars, planting.calendar, 'crop calendar', code),
@@ -140,11 +181,17 @@ export function seasonInput(options: {
   return {
     startDate: options.startDate,
     dayCount: options.weather.dayCount,
-    settings: seasonSettings(options.settings),
+    settings: { ...seasonSettings(options.settings), ...wateredAs(span) },
     sites: options.sites,
     weather: options.weather,
     parcels,
+    ...(span && span.leadDays > 0 ? { leadDays: span.leadDays } : {}),
   };
+}
+
+function wateredAs(span: WaterSpan | undefined): Pick<SeasonSettings, 'water' | 'recordedUntil'> {
+  if (!span) return {};
+  return { water: span.water, ...(span.recordedUntil === undefined ? {} : { recordedUntil: span.recordedUntil }) };
 }
 
 /** JSON has no NaN: a series without a kriging variance comes back with one. */

@@ -27,6 +27,8 @@ export interface WeightsWanted {
   /** the season's weather at the sites; null: weights from the places alone, before the weather is read (grids) */
   readonly weather: CompletedWeather | null;
   readonly startDate: string;
+  /** weather that variograms, trends and leave-one-out errors are made of, where that of the season has too few measured days; left out: `weather` */
+  readonly fitted?: { readonly weather: CompletedWeather; readonly startDate: string };
 }
 
 /** How weather reaches one parcel. */
@@ -58,7 +60,7 @@ export function parcelWeights(wanted: WeightsWanted): { parcels: ParcelWeights[]
   requireSuited(settings.interpolation, grid ? 'grid' : 'stations');
   const placed = placeSites(usablePlaces(wanted));
   const notes: string[] = [];
-  const plans = planSeries({ ...wanted, placed, notes });
+  const plans = planSeries({ ...wanted, ...wanted.fitted, placed, notes });
   const shared = sharedWeights(wanted, placed, notes);
   const owned = plans.filter((plan) => !plan.asShared);
   const stand = weather ? standIns(weather, placed) : null;

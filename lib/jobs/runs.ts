@@ -8,7 +8,9 @@ import { cancelWaitingRuns, findRun, findStandingSettings, insertRun, notifyRun,
 import { database } from '../access/database.ts';
 import { dayNumber } from '../base/civil-date.ts';
 import { Conflict, NotFound, Refused } from '../base/errors.ts';
+import { requireAheadSettings } from './ahead-settings.ts';
 import { enqueue } from './queue.ts';
+import { cancelBand } from './run-band.ts';
 import { DEFAULT_RUN_SETTINGS, type RunSettings } from './run-settings.ts';
 import { requireSuited, suits } from './run-weights.ts';
 
@@ -99,6 +101,7 @@ async function checkedParcelCount(tx: Tx, districtId: string, settings: RunSetti
     const known = methods.map((m) => m.code).join(', ');
     throw new Refused(`default_method "${settings.default_method}" is not an application method of this district; known: ${known}.`);
   }
+  await requireAheadSettings(tx, districtId, settings);
   const sources = (await listRunSources(tx, districtId)).map((source) => source.name);
   if (settings.source !== null && !sources.includes(settings.source)) {
     throw new Refused(`source "${settings.source}" is not a weather source of this district; known: ${sources.join(', ') || 'none yet'}.`);
@@ -107,7 +110,7 @@ async function checkedParcelCount(tx: Tx, districtId: string, settings: RunSetti
 }
 
 /**
- * Calls a run off. A run that waits ends at once; one that works ends at its next slice.
+ * Calls a run off. A run that waits ends at once; one that works ends at its next slice; of one that is finished, what is left of its band.
  *
  * @throws NotFound, or Conflict when it has already ended
  */
@@ -115,6 +118,7 @@ export async function cancelRun(districtId: string, runId: string): Promise<void
   await database().inDistrict(districtId, async (tx) => {
     const run = await findRun(tx, districtId, runId);
     if (!run) throw new NotFound(`There is no run ${runId} in this district.`);
+    if (run.state === 'done' && (await cancelBand(tx, { districtId, runId }))) return;
     if (run.state !== 'queued' && run.state !== 'running') throw new Conflict(`Run ${runId} has already ended (${run.state}).`);
     await updateGoingRun(tx, districtId, runId, { state: 'cancelled', stage: 'cancelled', cancelRequested: true, finishedAt: new Date() });
     await notifyRun(tx, districtId, runId);

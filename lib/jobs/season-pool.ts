@@ -8,9 +8,11 @@ import { availableParallelism } from 'node:os';
 import { pathToFileURL } from 'node:url';
 import { Worker } from 'node:worker_threads';
 import { RangeViolation, Refused, ShapeError } from '../base/errors.ts';
+import { keptDays } from '../season/pack.ts';
 import { DAILY_VARIABLE_COUNT, type SeasonInput, type SeasonOutput } from '../season/types.ts';
-import type { CompletedWeather } from '../weather/variable.ts';
-import type { SeasonReply } from './season-thread.ts';
+import type { SeasonReply, SeasonTask } from './season-thread.ts';
+import { sharedWeather } from './shared-weather.ts';
+import type { SliceOutput, SliceTask } from './slice-work.ts';
 
 /** Fewer parcels than this are not worth another thread. */
 const PARCELS_PER_PART = 64;
@@ -23,14 +25,20 @@ interface SeasonPool {
    * @throws as `runSeason`
    */
   run(input: SeasonInput, signal?: AbortSignal): Promise<SeasonOutput>;
+  /**
+   * Computes a slice of a run on one thread; several slices keep several threads busy. The thread takes the text of the slice over.
+   *
+   * @throws as `computeSliceOutput`
+   */
+  slice(task: SliceTask, signal?: AbortSignal): Promise<SliceOutput>;
   /** Stops the threads; seasons under way are rejected. */
   close(): Promise<void>;
 }
 
 interface Task {
-  readonly input: SeasonInput;
+  readonly task: SeasonTask;
   readonly signal: AbortSignal | undefined;
-  resolve(output: SeasonOutput): void;
+  resolve(output: SeasonOutput | SliceOutput): void;
   reject(reason: unknown): void;
 }
 
@@ -54,8 +62,12 @@ export function makeSeasonPool(size: number): SeasonPool {
       const weather = sharedWeather(input.weather);
       const parts = partsOf(input.parcels.length, Math.max(1, size));
       const slices = parts.map(([from, to]) => ({ ...input, weather, parcels: input.parcels.slice(from, to) }));
-      const outputs = await Promise.all(slices.map((slice) => threads.run(slice, signal)));
+      const outputs = await Promise.all(slices.map((part) => threads.run({ input: part }, signal) as Promise<SeasonOutput>));
       return joined(input, parts, outputs);
+    },
+    slice(task, signal) {
+      const season = { ...task.season, weather: sharedWeather(task.season.weather) };
+      return threads.run({ slice: { ...task, season } }, signal) as Promise<SliceOutput>;
     },
     async close() {
       if (shared === this) shared = null;
@@ -71,51 +83,28 @@ function partsOf(parcels: number, size: number): [number, number][] {
 
 function joined(input: SeasonInput, parts: [number, number][], outputs: SeasonOutput[]): SeasonOutput {
   if (outputs.length === 1) return outputs[0];
-  const size = DAILY_VARIABLE_COUNT * input.dayCount;
-  const daily = new Uint16Array(input.parcels.length * size);
-  const flags = new Uint32Array(input.parcels.length * input.dayCount);
+  const days = keptDays(input);
+  const daily = new Uint16Array(input.parcels.length * DAILY_VARIABLE_COUNT * days);
+  const flags = new Uint32Array(input.parcels.length * days);
+  const plantings = input.parcels.reduce((count, parcel) => count + parcel.plantings.length, 0);
+  const stageEt = new Float64Array(8 * plantings);
+  const stageDays = new Int32Array(5 * plantings);
+  let planting = 0;
   for (const [k, output] of outputs.entries()) {
-    daily.set(output.daily, parts[k][0] * size);
-    flags.set(output.flags, parts[k][0] * input.dayCount);
+    daily.set(output.daily, parts[k][0] * DAILY_VARIABLE_COUNT * days);
+    flags.set(output.flags, parts[k][0] * days);
+    stageEt.set(output.stageEt, 8 * planting);
+    stageDays.set(output.stageDays, 5 * planting);
+    planting += output.stageDays.length / 5;
   }
   return {
     daily,
     flags,
-    stageEt: new Float64Array(0),
-    stageDays: new Int32Array(0),
-    closing: [],
+    stageEt,
+    stageDays,
+    closing: outputs.flatMap(({ closing }) => closing),
     maxBalanceResidual: Math.max(...outputs.map(({ maxBalanceResidual }) => maxBalanceResidual)),
   };
-}
-
-const sharedCopies = new WeakMap<CompletedWeather, CompletedWeather>();
-
-/** The weather on shared memory; a copy is made once per weather object, so that the slices of a run share it. */
-function sharedWeather(weather: CompletedWeather): CompletedWeather {
-  if (weather.airTemperatureMax.buffer instanceof SharedArrayBuffer) return weather;
-  const known = sharedCopies.get(weather);
-  if (known) return known;
-  const onShared = (from: Float64Array): Float64Array => {
-    const into = new Float64Array(new SharedArrayBuffer(from.byteLength));
-    into.set(from);
-    return into;
-  };
-  const flags = new Uint32Array(new SharedArrayBuffer(weather.flags.byteLength));
-  flags.set(weather.flags);
-  const copy: CompletedWeather = {
-    siteCount: weather.siteCount,
-    dayCount: weather.dayCount,
-    airTemperatureMax: onShared(weather.airTemperatureMax),
-    airTemperatureMin: onShared(weather.airTemperatureMin),
-    actualVapourPressure: onShared(weather.actualVapourPressure),
-    solarRadiation: onShared(weather.solarRadiation),
-    windSpeed2m: onShared(weather.windSpeed2m),
-    precipitation: onShared(weather.precipitation),
-    referenceEt: weather.referenceEt ? onShared(weather.referenceEt) : null,
-    flags,
-  };
-  sharedCopies.set(weather, copy);
-  return copy;
 }
 
 /** A thread entry in TypeScript needs its loader registered inside the thread. Threads run in worker processes, which are never bundled. */
@@ -134,9 +123,9 @@ class Threads {
 
   constructor(private readonly size: number) {}
 
-  run(input: SeasonInput, signal?: AbortSignal): Promise<SeasonOutput> {
+  run(task: SeasonTask, signal?: AbortSignal): Promise<SeasonOutput | SliceOutput> {
     return new Promise((resolve, reject) => {
-      this.waiting.push({ input, signal, resolve, reject });
+      this.waiting.push({ task, signal, resolve, reject });
       this.pump();
     });
   }
@@ -182,7 +171,7 @@ class Threads {
     thread.ref();
     thread.on('message', onReply).on('error', stop).on('exit', onExit);
     task.signal?.addEventListener('abort', onAbort, { once: true });
-    thread.postMessage(task.input);
+    thread.postMessage(task.task);
   }
 }
 

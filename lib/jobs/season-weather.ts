@@ -22,19 +22,20 @@ export interface CompletionWanted {
 /** Weather of the season at the sites: gaps filled by the stated order (`fillGaps`), then completed by the published fallbacks. */
 export function seasonWeather(stored: SiteObservations, span: Span, options: CompletionWanted): CompletedWeather {
   const observations = coveringDays(stored, span);
-  const filled = options.fillGaps ? fillGaps(observations, options.others) : observations;
-  const whole = completeWeather(filled, options);
-  return windowOf(whole, dayNumber(span.startDate) - dayNumber(observations.startDate), span.dayCount);
+  const from = dayNumber(span.startDate) - dayNumber(observations.startDate);
+  const filled = options.fillGaps ? fillGaps(observations, options.others, { from, end: from + span.dayCount }) : observations;
+  return windowOf(completeWeather(filled, options), from, span.dayCount);
 }
 
 /**
  * Refuses weather that cannot carry a season.
  *
+ * @param stored observations; null where days to come have been told, which need none
  * @param weather of the season, with reference ET where it is carried from the sites
  * @throws {Refused} naming the days on which no site has air temperature (or reference ET, where it is carried)
  */
-export function requireEveryDay(stored: SiteObservations, weather: CompletedWeather, span: Span): void {
-  refuseUnobserved(coveringDays(stored, span), span);
+export function requireEveryDay(stored: SiteObservations | null, weather: CompletedWeather, span: Span): void {
+  if (stored) refuseUnobserved(coveringDays(stored, span), span);
   const empty = daysWithoutWeather(weather);
   if (empty.length > 0) {
     const first = dayNumber(span.startDate);

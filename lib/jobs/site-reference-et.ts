@@ -69,7 +69,7 @@ export function withReferenceEt({ weather, sites, startDate, method, defaultElev
     for (let day = 0, at = site * dayCount; day < dayCount; day++, at++) {
       if (Number.isNaN(referenceEt[at])) {
         if (Number.isNaN(weather.airTemperatureMax[at])) continue;
-        referenceEt[at] = computed(weather, at, { ...place, dayOfYear: dayOfYear(first + day) });
+        referenceEt[at] = computedReferenceEt(weather, at, { ...place, dayOfYear: dayOfYear(first + day) });
         if (values) flags[at] |= FALLBACK.referenceEtFromDailyWeather;
       }
       if (!Number.isNaN(precipitation[at])) continue;
@@ -82,7 +82,8 @@ export function withReferenceEt({ weather, sites, startDate, method, defaultElev
 
 type Place = Pick<Parameters<typeof referenceEtDay>[0], 'method' | 'surface' | 'latitude' | 'elevation' | 'dayOfYear'>;
 
-function computed(weather: CompletedWeather, at: number, place: Place): number {
+/** Reference ET of one site-day from its completed weather [mm d⁻¹]. */
+export function computedReferenceEt(weather: CompletedWeather, at: number, place: Place): number {
   return referenceEtDay(
     {
       ...place,

@@ -50,7 +50,7 @@ interface Read {
   readonly before: CheckSummary | null;
 }
 
-/** Summary of a source whose cells are not checked. */
+/** Summary of a source that is not checked: the cells of a grid, or a forecast. */
 const UNCHECKED: CheckSummary = {
   ...{ checked: false, from: null, to: null, sites: 0 },
   ...{ pyranometers: [], aridity: [], neighbours: [], places: [], moves: [] },
@@ -68,7 +68,7 @@ export async function performWeatherCheck(
 ): Promise<void> {
   const read = await database().inDistrict(districtId, (tx) => readSource(tx, districtId, sourceId));
   if (read === null) return;
-  if (read === 'grid') return database().inDistrict(districtId, (tx) => keepUnchecked(tx, districtId, sourceId));
+  if (read === 'unchecked') return database().inDistrict(districtId, (tx) => keepUnchecked(tx, districtId, sourceId));
   const { record, defaultElevation, radiationCoefficient, before } = read;
   const result = await checkedSlowly(record, {
     ...{ defaultElevation, radiationCoefficient, today },
@@ -88,11 +88,11 @@ async function checkedSlowly(record: SiteObservations, options: CheckOptions): P
   return step.value;
 }
 
-async function readSource(tx: Tx, districtId: string, sourceId: number): Promise<Read | 'grid' | null> {
+async function readSource(tx: Tx, districtId: string, sourceId: number): Promise<Read | 'unchecked' | null> {
   const source = (await listWeatherSources(tx, districtId)).find((each) => each.sourceId === sourceId);
   const district = await findWholeDistrict(tx, districtId);
   if (!source || !district) return null;
-  if (source.kind === 'grid') return 'grid';
+  if (source.kind === 'grid' || source.role === 'forecast') return 'unchecked';
   const ordinals = (await listSitesOf(tx, districtId, [sourceId])).map(({ ordinal }) => ordinal);
   const raw = await loadObservations(tx, districtId, { source: source.name, raw: true });
   const index = new Map(ordinals.map((ordinal, at) => [ordinal, at]));

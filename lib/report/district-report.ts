@@ -77,7 +77,7 @@ export function districtReport(input: DistrictReportInput): Report {
     blocks: [
       { kind: 'figures', items: keyFigures(input) },
       mapBlock(input),
-      { kind: 'bars', heading: 'Gross requirement of the parcels by delivery week', chart },
+      { kind: 'bars', heading: barsHeading(weeks), chart },
       {
         kind: 'table',
         table: canalTable(
@@ -99,6 +99,14 @@ export function districtReport(input: DistrictReportInput): Report {
       { kind: 'text', heading: 'Cautions', paragraphs: cautionTexts(REPORT_CAUTIONS) },
     ],
   };
+}
+
+function barsHeading(weeks: readonly WeekVolume[]): string {
+  const heading = 'Gross requirement of the parcels by delivery week';
+  const first = weeks.find((week) => week.forecast);
+  return first
+    ? `${heading}; open bars, from the week of ${first.start}: not wholly observed (forecast, normal or analogue weather)`
+    : heading;
 }
 
 function keyFigures({ parcels, canals, units }: DistrictReportInput) {

@@ -14,7 +14,7 @@ export interface WeekVolume {
   /** ends of an uncertainty band [m³] */
   readonly low?: number;
   readonly high?: number;
-  /** hatched when not from observed weather */
+  /** set apart when any of its days lies past the last observation */
   readonly forecast?: boolean;
 }
 

@@ -4,9 +4,11 @@
 import { type IsoDate, isIsoDate } from '../base/civil-date.ts';
 import { RangeViolation, Refused, ShapeError } from '../base/errors.ts';
 import { COMPLETED_SERIES, type SeriesWeights } from '../weather/variable.ts';
+import { checkMethodParts, checkParcelParts, checkSoilParts } from './check-ground.ts';
+import { checkCalendarParts, checkCropParts, checkPractice } from './check-planting.ts';
 import type { ApplicationMethod, Crop, CropCalendar, ParcelInput, SeasonInput, Soil } from './types.ts';
 
-/** The surface of the reference ET that drives a run; crops on another surface are refused. */
+/** The surface of the reference ET that drives a run. Crops with coefficients for the tall one are brought to it day by day (FAO-56 Eq. 68). */
 export const RUN_SURFACE = 'short';
 
 /**
@@ -33,6 +35,10 @@ export function checkSeason(input: SeasonInput): void {
   if (carried !== weather.siteCount * dayCount) {
     throw new ShapeError(`weather.referenceEt has ${carried} values: ${weather.siteCount} sites × ${dayCount} days are needed`);
   }
+  const lead = input.leadDays ?? 0;
+  if (!(Number.isInteger(lead) && lead >= 0 && lead < dayCount)) {
+    throw new RangeViolation(`lead days ${lead} must be a whole number from 0 to below the ${dayCount} days of the season`);
+  }
   within('initial depletion', settings.initialDepletion, 0, 1, 'the settings');
   within('lapse rate', settings.lapseRate, -0.02, 0.02, 'the settings');
 }
@@ -53,6 +59,7 @@ export function checkParcel(parcel: ParcelInput, siteCount: number, checked: Che
   once(parcel.soil, checked, (soil) => checkSoil(soil, where));
   once(parcel.method, checked, (method) => checkMethod(method, where));
   checkWeights(parcel, siteCount, where);
+  checkParcelParts(parcel, where);
   for (const [name, series] of Object.entries(parcel.series ?? {})) checkSeries(series, siteCount, `${name} of ${where}`);
   for (const planting of parcel.plantings) {
     const at = `${where}, ${planting.crop.name} of ${planting.plantingDate}`;
@@ -62,6 +69,7 @@ export function checkParcel(parcel: ParcelInput, siteCount: number, checked: Che
       throw new RangeViolation(`area share ${planting.areaShare} is not above 0 and at most 1 (${at})`);
     }
     checkDates(planting.plantingDate, planting.harvestDate, planting.cutDates, at);
+    checkPractice(planting, at);
   }
 }
 
@@ -89,6 +97,7 @@ function checkSoil(soil: Soil, where: string): void {
   if (!(soil.evaporationDepth > 0)) throw new RangeViolation(`evaporation depth ${soil.evaporationDepth} m must be above 0 (${at})`);
   if (!Number.isNaN(soil.curveNumber)) within('curve number', soil.curveNumber, 1, 100, at);
   if (soil.rootLimit <= 0) throw new RangeViolation(`root limit ${soil.rootLimit} m must be above 0 (${at})`);
+  checkSoilParts(soil, at);
 }
 
 function checkMethod(method: ApplicationMethod, where: string): void {
@@ -98,6 +107,7 @@ function checkMethod(method: ApplicationMethod, where: string): void {
   within('trigger fraction', method.triggerFraction, 0, 2, at);
   if (!(method.maximumDailyDepth > 0))
     throw new RangeViolation(`maximum daily depth ${method.maximumDailyDepth} mm must be above 0 (${at})`);
+  checkMethodParts(method, at);
 }
 
 function checkWeights(parcel: ParcelInput, siteCount: number, where: string): void {
@@ -128,9 +138,9 @@ function checkSeries({ weights, gradient }: SeriesWeights, siteCount: number, wh
 }
 
 function checkCrop(crop: Crop, where: string): void {
-  if (crop.surface !== RUN_SURFACE) {
+  if (crop.surface !== RUN_SURFACE && crop.surface !== 'tall') {
     throw new Refused(
-      `crop ${crop.code} has coefficients for the ${crop.surface} surface, the run is on the ${RUN_SURFACE} one (${where}): convert them (FAO-56 Eq. 67)`,
+      `crop ${crop.code} has coefficients for the ${crop.surface} surface (${where}): give them for the short (grass) or the tall (alfalfa) one`,
     );
   }
   for (const [what, value] of [
@@ -145,9 +155,11 @@ function checkCrop(crop: Crop, where: string): void {
   within('least root depth', crop.rootDepthMin, 0.05, crop.rootDepthMax, where);
   within('depletion fraction', crop.depletionFraction, 0.05, 0.95, where);
   if (!(crop.lastIrrigation >= 0)) throw new RangeViolation(`last irrigation ${crop.lastIrrigation} must not be negative (${where})`);
+  checkCropParts(crop, where);
 }
 
 function checkCalendar(calendar: CropCalendar, where: string): void {
+  checkCalendarParts(calendar, where);
   for (const lengths of calendar.laterCycle ? [calendar, calendar.laterCycle] : [calendar]) {
     const stages = [lengths.initial, lengths.development, lengths.mid, lengths.late];
     if (stages.some((stage) => !(stage >= 0)) || !(stages.reduce((a, b) => a + b) >= 1)) {

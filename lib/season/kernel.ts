@@ -3,66 +3,190 @@
  */
 import { checkParcel } from './check.ts';
 import { storedValue } from './daily-store.ts';
-import { type StripDay, type StripGround, stepDay } from './day.ts';
-import { MARK, type PackedSeason, packSeason } from './pack.ts';
-import { placeWeather } from './parcel-weather.ts';
-import { drawCurve, groundOf, layStrips, type StripPlan } from './strip-curve.ts';
+import type { DayRecord } from './day-record.ts';
+import { openingSnow, placeGroundWater } from './ground-water.ts';
+import { closingWater, openState } from './initial-water.ts';
+import { keptDays, type PackedSeason, packSeason } from './pack.ts';
+import { placeAtmosphere } from './parcel-weather.ts';
+import { sameSky } from './same-sky.ts';
+import { drawCurve, type ParcelPlan, planParcel, type StripPlan } from './strip-curve.ts';
+import { groundOf, type StripGround } from './strip-ground.ts';
 import {
   DAILY_VARIABLE_COUNT,
   DAILY_VARIABLES,
+  type InitialWater,
   MISSING_STORED,
   type ParcelInput,
   type SeasonInput,
   type SeasonOutput,
-  type Trace,
 } from './types.ts';
+import { walkStrip } from './walk.ts';
 
 /** Someone who wants the working of one day; `strip` hears about each strip of the parcel before its days are stepped. */
-interface Listener {
+export interface Listener {
+  /** day stepped, lead days counted */
   readonly day: number;
-  strip(plan: StripPlan, index: number, count: number): Trace;
+  strip(plan: StripPlan, index: number, count: number, ground: StripGround): (record: DayRecord) => void;
+}
+
+/** Rows of a whole output, and where a parcel's begin. */
+interface StoredRows {
+  readonly into: Uint16Array;
+  readonly at: number;
 }
 
 /**
  * Runs the season of every parcel.
  *
- * Weather is interpolated to the parcel, reference ET computed there, and each strip of the parcel stepped day by day (`stepDay`). Depths are over the
+ * Weather is interpolated to the parcel, reference ET computed there, and each strip of the parcel stepped day by day (`walkStrip`). Depths are over the
  * whole parcel: strips weighted by share. Depletion, TAW, RAW and Ks are means over the strips that carry a planting in the run (over the bare
- * strip where there is none); Kcb is over all.
+ * strip where there is none); Kcb is over all. Lead days are stepped, and nothing of them is kept.
  *
  * Missing: no NaN leaves; a parcel-day without weather is refused.
  *
  * @param input see `SeasonInput`
  * @param options `keep: 'double'` also returns the daily variables before rounding to storage
- * @returns daily [parcel × variable × day]
+ * @returns daily [parcel × variable × day kept]
  * @throws {RangeViolation} naming parcel and date for a value outside its limits or a day without weather
- * @throws {Refused} for a crop on another reference surface than the run
  * @throws {ShapeError} when arrays do not agree
  * Source: FAO-56 chapters 3, 7 and 8.
  */
 export function runSeason(input: SeasonInput, options: { readonly keep?: 'stored' | 'double' } = {}): SeasonOutput {
   const season = packSeason(input);
-  const days = input.dayCount;
+  const days = keptDays(input);
+  const lead = input.dayCount - days;
   const size = DAILY_VARIABLE_COUNT * days;
+  const plantings = input.parcels.reduce((count, parcel) => count + parcel.plantings.length, 0);
   const daily = new Uint16Array(input.parcels.length * size);
   const flags = new Uint32Array(input.parcels.length * days);
   const exact = options.keep === 'double' ? new Float64Array(input.parcels.length * size) : undefined;
+  const stageEt = new Float64Array(8 * plantings);
+  const stageDays = new Int32Array(5 * plantings);
+  const closing: InitialWater[] = [];
   let worst = 0;
+  let first = 0;
   for (let p = 0; p < input.parcels.length; p++) {
-    worst = Math.max(worst, walkParcel(season, input.parcels[p], null));
-    storeDaily(season.daily, daily, p * size, days);
-    flags.set(season.flags, p * days);
+    const parcel = input.parcels[p];
+    const plan = placeParcel(season, parcel);
+    const whole = exact === undefined && plan.strips.length === 1;
+    worst = Math.max(worst, walkPlaced(season, parcel, plan, null, whole ? { into: daily, at: p * size } : null));
+    if (!whole) storeDaily(season.daily, daily, p * size, days);
+    for (let d = 0, i = p * days; d < days; d++, i++) flags[i] = season.flags[lead + d];
     exact?.set(season.daily, p * size);
+    layStages(season, plan, first, stageEt, stageDays);
+    closing.push(closingWater(parcel, input.settings, season.closing, season.weather.snowWater[input.dayCount - 1]));
+    first += parcel.plantings.length;
   }
-  return {
-    daily,
-    maxBalanceResidual: worst,
-    flags,
-    dailyExact: exact,
-    stageEt: new Float64Array(0),
-    stageDays: new Int32Array(0),
-    closing: [],
-  };
+  return { daily, maxBalanceResidual: worst, flags, dailyExact: exact, stageEt, stageDays, closing };
+}
+
+/**
+ * Takes one parcel through the season: fills `season.daily` [variable × day kept], `season.flags` [day], `season.stageEt` and `season.closing`.
+ *
+ * @param listener hears the working of its day; null in a batch run
+ * @returns largest absolute balance residual of its strips and days [mm]
+ * @throws as `runSeason`
+ */
+export function walkParcel(season: PackedSeason, parcel: ParcelInput, listener: Listener | null): number {
+  return walkPlaced(season, parcel, placeParcel(season, parcel), listener, null);
+}
+
+/** Checks a parcel, puts its weather in place (that of the parcel before where it is the same) and lays its plantings on the time axis. */
+export function placeParcel(season: PackedSeason, parcel: ParcelInput): ParcelPlan {
+  checkParcel(parcel, season.input.sites.length, season.checked);
+  if (season.sky === null || !sameSky(season.sky, parcel)) {
+    season.sky = null;
+    placeAtmosphere(season, parcel);
+    season.sky = parcel;
+  }
+  placeGroundWater(season, parcel);
+  return planParcel(season, parcel);
+}
+
+function walkPlaced(
+  season: PackedSeason,
+  parcel: ParcelInput,
+  plan: ParcelPlan,
+  listener: Listener | null,
+  stored: StoredRows | null,
+): number {
+  const { strips } = plan;
+  const { walk } = season;
+  layParcelRows(season, stored);
+  season.stageEt.fill(0);
+  season.closing.length = 0;
+  walk.ground = groundOf(parcel, season.input.settings);
+  walk.stored = stored === null ? null : stored.into;
+  walk.storedAt = stored === null ? 0 : stored.at;
+  walk.daily = stored === null ? season.daily : null;
+  walk.heardDay = listener === null ? -1 : listener.day;
+  let planted = 0;
+  for (const strip of strips) if (strip.planted.length > 0) planted += strip.share;
+  let worst = 0;
+  for (let k = 0; k < strips.length; k++) {
+    const strip = strips[k];
+    openStrip(season, parcel, strip, strips, planted);
+    walk.hear = listener === null ? null : listener.strip(strip, k, strips.length, walk.ground);
+    worst = Math.max(worst, walkStrip(walk));
+    closeStrip(season, strip);
+  }
+  return worst;
+}
+
+/** Draws a strip's curves and lays its first morning in `season.walk`. */
+export function openStrip(
+  season: PackedSeason,
+  parcel: ParcelInput,
+  strip: StripPlan,
+  strips: readonly StripPlan[],
+  planted: number,
+): void {
+  const { walk, curve, input } = season;
+  const deepestRoot = drawCurve(season, parcel, strip, strips);
+  const opening = openState(parcel, input.settings, { rootDepth: curve.rootDepth[0], deepestRoot });
+  walk.deepestRoot = deepestRoot;
+  walk.depletion = opening.rootDepletion;
+  walk.below = opening.belowDepletion;
+  walk.surface = opening.surfaceDepletion;
+  walk.snow = input.settings.snow ? openingSnow(parcel) : 0;
+  walk.share = strip.share;
+  walk.stateShare = strip.planted.length > 0 ? strip.share / planted : planted > 0 ? 0 : strip.share;
+  for (const { planting, index } of strip.planted) season.walk.plantingShare[index] = strip.share / planting.areaShare;
+}
+
+function closeStrip({ walk, curve, closing, input }: PackedSeason, { share }: StripPlan): void {
+  closing.push({
+    share,
+    rootDepth: curve.rootDepth[input.dayCount - 1],
+    deepestRoot: walk.deepestRoot,
+    rootDepletion: walk.depletion,
+    belowDepletion: walk.below,
+    surfaceDepletion: walk.surface,
+  });
+}
+
+/** Rows that are the same on every strip. */
+function layParcelRows(season: PackedSeason, stored: StoredRows | null): void {
+  const { weather, daily, walk } = season;
+  const { lead } = walk;
+  const days = walk.days - lead;
+  if (stored !== null) {
+    storeRow(weather.referenceEt, lead, stored.into, stored.at, days);
+    storeRow(weather.precipitation, lead, stored.into, stored.at + 4 * days, days);
+    if (season.input.settings.snow) storeRow(weather.snowWater, lead, stored.into, stored.at + 18 * days, days);
+    return;
+  }
+  daily.fill(0);
+  for (let d = 0; d < days; d++) {
+    daily[d] = weather.referenceEt[lead + d];
+    daily[4 * days + d] = weather.precipitation[lead + d];
+    daily[18 * days + d] = weather.snowWater[lead + d];
+  }
+}
+
+/** Rounds a depth of every day to storage, as `storedValue` does. */
+function storeRow(from: Float64Array, lead: number, into: Uint16Array, at: number, days: number): void {
+  for (let d = 0; d < days; d++) into[at + d] = Math.min(MISSING_STORED - 1, from[lead + d] * 100 + 0.5);
 }
 
 /** Rounds the parcel's day rows to storage: `storedValue` of every one, written so that it costs little. */
@@ -78,108 +202,12 @@ function storeDaily(from: Float64Array, into: Uint16Array, at: number, days: num
   }
 }
 
-/**
- * Takes one parcel through the season: fills `season.daily` [variable × day] and `season.flags` [day].
- *
- * @param listener hears the working of its day; null in a batch run
- * @returns largest absolute balance residual of its strips and days [mm]
- * @throws as `runSeason`
- */
-export function walkParcel(season: PackedSeason, parcel: ParcelInput, listener: Listener | null): number {
-  checkParcel(parcel, season.input.sites.length, season.checked);
-  const strips = layStrips(season, parcel);
-  placeWeather(season, parcel);
-  layParcelRows(season);
-  let planted = 0;
-  for (const strip of strips) if (strip.planted.length > 0) planted += strip.share;
-  const ground = groundOf(parcel);
-  let worst = 0;
-  for (let k = 0; k < strips.length; k++) {
-    const plan = strips[k];
-    ground.deepestRoot = drawCurve(season, parcel, plan);
-    const trace = listener === null ? null : listener.strip(plan, k, strips.length);
-    const state = plan.planted.length > 0 ? plan.share / planted : planted > 0 ? 0 : plan.share;
-    openStrip(season, ground);
-    const shares = { share: plan.share, state, gross: plan.share / parcel.method.efficiency };
-    worst = Math.max(worst, walkStrip(season, ground, shares, listener === null ? null : { day: listener.day, trace }));
+/** Stage sums and stage days of a parcel's plantings, from the `first` planting of the output on. */
+function layStages(season: PackedSeason, plan: ParcelPlan, first: number, stageEt: Float64Array, stageDays: Int32Array): void {
+  const { lead } = season.walk;
+  for (let k = 0; k < plan.plantings.length; k++) {
+    for (let i = 0; i < 8; i++) stageEt[8 * (first + k) + i] = season.stageEt[8 * k + i];
+    const days = plan.plantings[k].stageDays;
+    for (let i = 0; i < 5; i++) stageDays[5 * (first + k) + i] = days[i] - lead;
   }
-  return worst;
-}
-
-/** How a strip counts in its parcel: by area, in the means of the soil's state, and for water as applied (area ÷ efficiency). */
-interface Shares {
-  readonly share: number;
-  readonly state: number;
-  readonly gross: number;
-}
-
-/** First morning: both stores and the surface layer at the settings' depletion, the surface wet all over when last wetted. */
-function openStrip(season: PackedSeason, ground: StripGround): void {
-  const { state, curve } = season;
-  const { initialDepletion } = season.input.settings;
-  const perMetre = 1000 * (ground.fieldCapacity - ground.wiltingPoint);
-  state.rootDepth = curve.rootDepth[0];
-  state.depletion = initialDepletion * perMetre * state.rootDepth;
-  state.belowDepletion = initialDepletion * perMetre * (ground.deepestRoot - state.rootDepth);
-  state.surfaceDepletion = initialDepletion * ground.totalEvaporable;
-  state.wettedFraction = 1;
-  state.exposedWetted = 1;
-  state.depletionFraction = curve.tableFraction[0];
-  state.irrigating = false;
-}
-
-function walkStrip(season: PackedSeason, ground: StripGround, shares: Shares, heard: { day: number; trace: Trace | null } | null): number {
-  const { weather, curve, state, day, daily } = season;
-  const { dayCount: days, settings } = season.input;
-  const heardDay = heard === null ? -1 : heard.day;
-  let worst = 0;
-  for (let d = 0; d < days; d++) {
-    const mark = curve.mark[d];
-    day.referenceEt = weather.referenceEt[d];
-    day.climate = weather.climate[d];
-    day.precipitation = weather.precipitation[d];
-    day.surfaceRunoff = weather.surfaceRunoff[d];
-    day.basal = curve.basal[d];
-    day.height = curve.height[d];
-    day.heightFactor = curve.heightFactor[d];
-    day.rootDepth = curve.rootDepth[d];
-    day.scheduleDepth = curve.scheduleDepth[d];
-    day.tableFraction = curve.tableFraction[d];
-    day.planted = (mark & MARK.planted) !== 0;
-    day.firstDay = (mark & MARK.firstDay) !== 0;
-    day.mayIrrigate = settings.irrigate && (mark & MARK.mayIrrigate) !== 0;
-    stepDay(ground, state, day, d === heardDay && heard !== null ? heard.trace : null);
-    addDay(daily, day, shares, d, days);
-    worst = Math.max(worst, Math.abs(day.residual));
-  }
-  return worst;
-}
-
-/** Rows that are the same on every strip. */
-function layParcelRows(season: PackedSeason): void {
-  const { weather, daily } = season;
-  const days = season.input.dayCount;
-  daily.fill(0);
-  daily.set(weather.referenceEt, 0);
-  daily.set(weather.precipitation, 4 * days);
-  daily.set(weather.surfaceRunoff, 5 * days);
-}
-
-/** Adds a strip's day to the parcel's rows, in the order of DAILY_VARIABLES. */
-function addDay(daily: Float64Array, day: StripDay, shares: Shares, d: number, days: number): void {
-  const { share, state } = shares;
-  daily[days + d] += share * day.cropEt;
-  daily[2 * days + d] += share * (day.transpiration + day.evaporation);
-  daily[3 * days + d] += share * day.evaporation;
-  daily[6 * days + d] += share * day.effectivePrecipitation;
-  daily[9 * days + d] += share * day.deepPercolation;
-  daily[10 * days + d] += state * day.closingDepletion;
-  daily[11 * days + d] += state * day.available;
-  daily[12 * days + d] += state * day.readilyAvailable;
-  daily[13 * days + d] += share * day.basal;
-  daily[14 * days + d] += state * day.stress;
-  daily[15 * days + d] += share * (day.closingDepletion + day.closingBelow);
-  if (day.irrigation === 0) return;
-  daily[7 * days + d] += share * day.irrigation;
-  daily[8 * days + d] += shares.gross * day.irrigation;
 }

@@ -5,8 +5,9 @@ import { type DayNumber, dayNumber, dayOfYear } from '../base/civil-date.ts';
 import { type DailyConstants, dailyConstants, emptyReferenceDay, type ReferenceDay } from '../energy/combination.ts';
 import { type SolarGeometry, solarGeometry } from '../energy/sun.ts';
 import { type Checked, checkSeason, RUN_SURFACE } from './check.ts';
-import { emptyStripDay, emptyStripState, type StripDay, type StripState } from './day.ts';
-import { DAILY_VARIABLE_COUNT, type SeasonInput } from './types.ts';
+import type { StripClosing } from './initial-water.ts';
+import { emptyWalk, type StripWalk } from './strip-walk.ts';
+import { DAILY_VARIABLE_COUNT, type ParcelInput, type SeasonInput } from './types.ts';
 
 /** Weather and what follows from it at one parcel, each [day]; overwritten by the next parcel. */
 export interface ParcelWeather {
@@ -16,6 +17,8 @@ export interface ParcelWeather {
   readonly airTemperatureMax: Float64Array;
   /** °C */
   readonly airTemperatureMin: Float64Array;
+  /** (Tmax + Tmin) / 2 [°C]; NaN on a day without temperature */
+  readonly airTemperatureMean: Float64Array;
   /** kPa */
   readonly actualVapourPressure: Float64Array;
   /** MJ m⁻² d⁻¹ */
@@ -24,7 +27,13 @@ export interface ParcelWeather {
   readonly windSpeed2m: Float64Array;
   /** mm d⁻¹ */
   readonly precipitation: Float64Array;
-  /** mm d⁻¹ */
+  /** rain and melt that reach the ground [mm d⁻¹]; precipitation where no snow is kept */
+  readonly liquid: Float64Array;
+  /** snow on the ground at the end of the day, as water [mm]; where it is above 0 neither crop nor soil take water that day */
+  readonly snowWater: Float64Array;
+  /** 1 where the ground is frozen: nothing infiltrates, and it does not evaporate */
+  readonly frozen: Uint8Array;
+  /** of `liquid` [mm d⁻¹]; with antecedent moisture by the surface layer only that of frozen days, the loop reckons the rest */
   readonly surfaceRunoff: Float64Array;
   /** % */
   readonly humidityMinimum: Float64Array;
@@ -90,6 +99,8 @@ export interface StripCurve {
   readonly covered: Float64Array;
   /** factor on Ke for mulch, 1 without */
   readonly evaporationShare: Float64Array;
+  /** share of the surface that dries and is wetted by it: what plastic leaves open, 1 without */
+  readonly openShare: Float64Array;
   /** Ks of salinity, 1 without */
   readonly saltStress: Float64Array;
   /** most that rises from the water table [mm d⁻¹], 0 without */
@@ -127,10 +138,21 @@ export interface PackedSeason {
   readonly weather: ParcelWeather;
   readonly flags: Uint32Array;
   readonly curve: StripCurve;
-  readonly state: StripState;
-  readonly day: StripDay;
-  /** the parcel's daily variables in double precision, [variable × day] */
+  /** the parcel's daily variables in double precision, [variable × day kept] */
   readonly daily: Float64Array;
+  /** ETc and ETc adj of the parcel's plantings by stage [mm], [planting × 4 × 2] */
+  readonly stageEt: Float64Array;
+  /** the parcel's strips on the last evening */
+  readonly closing: StripClosing[];
+  /** what the walk over a strip reads and writes; set anew for each strip */
+  readonly walk: StripWalk;
+  /** the parcel whose sky is in `weather`; null for none */
+  sky: ParcelInput | null;
+}
+
+/** Days of a season that are kept: all but the lead days. */
+export function keptDays({ dayCount, leadDays }: Pick<SeasonInput, 'dayCount' | 'leadDays'>): number {
+  return dayCount - (leadDays ?? 0);
 }
 
 /**
@@ -144,6 +166,10 @@ export function packSeason(input: SeasonInput): PackedSeason {
   const days = input.dayCount;
   const firstDay = dayNumber(input.startDate);
   const { present, complete } = presence(input);
+  const weather = emptyParcelWeather(days);
+  const curve = emptyCurve(days);
+  const plantings = input.parcels.reduce((most, parcel) => Math.max(most, parcel.plantings.length), 1);
+  const stageEt = new Float64Array(8 * plantings);
   return {
     input,
     firstDay,
@@ -155,12 +181,14 @@ export function packSeason(input: SeasonInput): PackedSeason {
     constants: dailyConstants(input.settings.method, RUN_SURFACE),
     reference: emptyReferenceDay(),
     mix: emptyMix(input, present),
-    weather: emptyParcelWeather(days),
+    weather,
     flags: new Uint32Array(days),
-    curve: emptyCurve(days),
-    state: emptyStripState(),
-    day: emptyStripDay(),
-    daily: new Float64Array(DAILY_VARIABLE_COUNT * days),
+    curve,
+    daily: new Float64Array(DAILY_VARIABLE_COUNT * keptDays(input)),
+    stageEt,
+    closing: [],
+    walk: emptyWalk({ input, weather, curve, stageEt, plantingShare: new Float64Array(plantings) }),
+    sky: null,
   };
 }
 
@@ -189,16 +217,21 @@ function emptyMix(input: SeasonInput, present: Uint8Array): Mix {
   return { days: input.dayCount, present, count: 0, complete: true, start, weight: perSite(), lapse: perSite(), none: perSite() };
 }
 
-function emptyParcelWeather(days: number): ParcelWeather {
+/** Weather rows of a parcel with nothing in them yet. */
+export function emptyParcelWeather(days: number): ParcelWeather {
   const row = () => new Float64Array(days);
   return {
     weightSum: row(),
     airTemperatureMax: row(),
     airTemperatureMin: row(),
+    airTemperatureMean: row(),
     actualVapourPressure: row(),
     solarRadiation: row(),
     windSpeed2m: row(),
     precipitation: row(),
+    liquid: row(),
+    snowWater: row(),
+    frozen: new Uint8Array(days),
     surfaceRunoff: row(),
     humidityMinimum: row(),
     climate: row(),
@@ -208,7 +241,8 @@ function emptyParcelWeather(days: number): ParcelWeather {
   };
 }
 
-function emptyCurve(days: number): StripCurve {
+/** Curves of a strip with nothing on them yet. */
+export function emptyCurve(days: number): StripCurve {
   const row = () => new Float64Array(days);
   return {
     basal: row(),
@@ -221,6 +255,7 @@ function emptyCurve(days: number): StripCurve {
     scheduleAvailable: row(),
     covered: row(),
     evaporationShare: row(),
+    openShare: row(),
     saltStress: row(),
     capillaryMost: row(),
     triggerShare: row(),

@@ -159,6 +159,7 @@ function uncross(season: PackedSeason, d: number): boolean {
     w.airTemperatureMax[d] = (w.airTemperatureMax[d] + w.airTemperatureMin[d]) / 2;
     w.airTemperatureMin[d] = w.airTemperatureMax[d];
   }
+  w.airTemperatureMean[d] = (w.airTemperatureMax[d] + w.airTemperatureMin[d]) / 2;
   return Number.isFinite(
     w.airTemperatureMax[d] + w.airTemperatureMin[d] + w.actualVapourPressure[d] + w.solarRadiation[d] + w.windSpeed2m[d],
   );

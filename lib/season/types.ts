@@ -173,7 +173,11 @@ export interface Crop {
  * frost-free: day after the last minimum below `threshold` [°C] in the window
  * growing-degree-days: sum above `base` from the earliest day reaches `sum` [°C d]
  */
-export type StartRule = { readonly latest: number } & (
+export type StartRule = {
+  readonly latest: number;
+  /** days from the day found to the start; negative: before it, but never before the planting date. Left out: 0 */
+  readonly offset?: number;
+} & (
   | {
       readonly kind: 'air-temperature' | 'soil-temperature';
       readonly threshold: number;
@@ -209,8 +213,8 @@ export interface CropCalendar {
   /** stages after a cut by thermal time */
   readonly laterThermal?: ThermalStages;
   readonly start?: StartRule;
-  /** season ends on the first day after `notBefore` days from the start with a minimum at or below `threshold` [°C]: killing frost */
-  readonly killingFrost?: { readonly threshold: number; readonly notBefore: number };
+  /** season ends on the first day after `notBefore` days from the start with a minimum at or below `threshold` [°C], or `after` days later: killing frost */
+  readonly killingFrost?: { readonly threshold: number; readonly notBefore: number; readonly after?: number };
   /** coefficients of single cycles of a cut forage, from the first; a cycle past the end has the last one's */
   readonly cycles?: readonly { readonly basalInitial: number; readonly basalMid: number; readonly basalEnd: number }[];
 }

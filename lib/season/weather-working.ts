@@ -3,8 +3,8 @@
  */
 
 import { quantity } from '../base/working.ts';
-import { potentialRetention } from '../crop/runoff.ts';
 import type { CarriedSeries } from '../weather/variable.ts';
+import { groundWaterSteps } from './ground-water-working.ts';
 import { lapseCorrection } from './mix.ts';
 import type { PackedSeason } from './pack.ts';
 import { type SeriesPart, seriesParts } from './series-weather.ts';
@@ -38,7 +38,7 @@ export const SITE_REFERENCE_ET_TEXT: Readonly<Record<SiteReferenceEt, string>> =
 };
 
 /**
- * Steps from the sites' values to the parcel's weather, RHmin, the climate term and runoff of a day already in `season.weather`; with the reference
+ * Steps from the sites' values to the parcel's weather, RHmin, the climate term, snow, frost and runoff of a day already in `season.weather`; with the reference
  * ET where it is carried from the sites.
  */
 export function weatherSteps(season: PackedSeason, parcel: ParcelInput, day: number): WorkingStep[] {
@@ -46,7 +46,12 @@ export function weatherSteps(season: PackedSeason, parcel: ParcelInput, day: num
   const shown = whole ? CARRIED : CARRIED.filter(({ row }) => row === 'precipitation');
   const carried = shown.map((variable) => carriedStep(season, parcel, day, variable));
   const reference = season.input.weather.referenceEt ? [referenceStep(season, parcel, day)] : [];
-  return [...carried, ...(whole ? humiditySteps(season, day) : [standardClimateStep()]), runoffStep(season, parcel, day), ...reference];
+  return [
+    ...carried,
+    ...(whole ? humiditySteps(season, day) : [standardClimateStep()]),
+    ...groundWaterSteps(season, parcel, day),
+    ...reference,
+  ];
 }
 
 /** Parts of one value: by the series' own weights, or the shared ones. */
@@ -142,22 +147,4 @@ function humiditySteps(season: PackedSeason, day: number): WorkingStep[] {
       source: 'FAO-56 Eq. 72',
     },
   ];
-}
-
-function runoffStep(season: PackedSeason, parcel: ParcelInput, day: number): WorkingStep {
-  const rain = quantity('P', season.weather.precipitation[day], 'mm');
-  const counted = season.input.settings.runoff && !Number.isNaN(parcel.soil.curveNumber);
-  const retention = counted
-    ? [quantity('CN', parcel.soil.curveNumber, '1'), quantity('S', potentialRetention(parcel.soil.curveNumber), 'mm')]
-    : [];
-  return {
-    part: 'weather',
-    symbol: 'RO',
-    name: 'Surface runoff',
-    expression: counted ? 'RO = (P − 0.2 S)² / (P + 0.8 S) where P > 0.2 S, S = 25400 / CN − 254' : 'RO = 0; no runoff is reckoned here',
-    inputs: [rain, ...retention],
-    result: season.weather.surfaceRunoff[day],
-    unit: 'mm',
-    source: 'USDA-NRCS, National Engineering Handbook 630, chapter 10',
-  };
 }

@@ -1,78 +1,147 @@
 /**
- * The working of a strip's morning, told from the numbers `stepDay` left behind; nothing is computed here.
+ * The working of a strip's morning, told from the numbers the loop left behind; nothing is computed here. The irrigation of the day has a file of its own.
  */
 import { quantity, type Trace, type WorkingStep } from '../base/working.ts';
-import type { StripDay, StripGround, WettingRecord } from './day.ts';
+import { surfaceRunoffSteps } from './ground-water-working.ts';
+import { irrigationSteps } from './irrigation-working.ts';
+import { metre, mm, one, type ToldDay } from './told-day.ts';
 
-const mm = (symbol: string, value: number) => quantity(symbol, value, 'mm');
-const one = (symbol: string, value: number) => quantity(symbol, value, '1');
-
-/** Hands the steps of a strip's morning to the recorder: roots, rain, irrigation, drainage, wetting of the surface. */
-export function recordWetting(ground: StripGround, day: StripDay, wetting: WettingRecord, trace: Trace): void {
-  for (const step of rootSteps(ground, day, wetting)) trace.step(step);
-  for (const step of rainSteps(day, wetting)) trace.step(step);
-  for (const step of irrigationSteps(ground, day, wetting)) trace.step(step);
-  for (const step of refillSteps(day, wetting)) trace.step(step);
-  trace.step(surfaceStep(ground, day, wetting));
+/** Hands the steps of a strip's morning to the recorder: roots, rain, irrigation, drainage, rise from below, wetting of the surface. */
+export function recordWetting(told: ToldDay, trace: Trace): void {
+  for (const step of rootSteps(told)) trace.step(step);
+  for (const step of runoffSteps(told)) trace.step(step);
+  for (const step of rainSteps(told)) trace.step(step);
+  for (const step of irrigationSteps(told)) trace.step(step);
+  for (const step of told.record.ponded ? pondSteps(told) : drainageSteps(told)) trace.step(step);
+  if (told.record.capillaryRise > 0) trace.step(capillaryStep(told));
+  if (!told.single) trace.step(surfaceStep(told));
 }
 
-function rootSteps(ground: StripGround, day: StripDay, wetting: WettingRecord): WorkingStep[] {
+function rootSteps(told: ToldDay): WorkingStep[] {
+  const { record } = told;
   const part = 'root-zone';
-  const depth = quantity('Zr', day.rootDepth, 'm');
-  const before = quantity('Zr, yesterday', wetting.openingRootDepth, 'm');
-  const grows = day.rootDepth >= wetting.openingRootDepth;
+  const before = mm('Dr, yesterday', record.openingDepletion);
   return [
-    {
-      part,
-      symbol: 'ΔDr',
-      name: grows ? 'Depletion of the soil that roots grew into' : 'Depletion given back by a shallower root zone',
-      expression: grows
-        ? 'ΔDr = Db (Zr − Zr,yesterday) / (Zmax − Zr,yesterday), 0 without growth'
-        : 'ΔDr = −Dr (Zr,yesterday − Zr) / Zr,yesterday',
-      inputs: [
-        depth,
-        before,
-        quantity('Zmax', ground.deepestRoot, 'm'),
-        mm('Dr, yesterday', wetting.openingDepletion),
-        mm('Db, yesterday', wetting.openingBelow),
-      ],
-      result: wetting.moved,
-      unit: 'mm',
-      source: 'FAO-56 chapter 8, text of Eq. 85',
-    },
+    availableStep(told),
+    movedStep(told),
     {
       part,
       symbol: 'Dr,0',
       name: 'Root-zone depletion at the start of the day',
       expression: 'Dr,0 = Dr,yesterday + ΔDr',
-      inputs: [mm('Dr, yesterday', wetting.openingDepletion), mm('ΔDr', wetting.moved)],
-      result: wetting.grownDepletion,
+      inputs: [before, mm('ΔDr', record.moved)],
+      result: record.grownDepletion,
       unit: 'mm',
       source: 'FAO-56 Eq. 85',
     },
     {
       part,
-      symbol: 'TAW',
-      name: 'Total available water',
-      expression: 'TAW = 1000 (θFC − θWP) Zr',
-      inputs: [quantity('θFC', ground.fieldCapacity, 'm³ m⁻³'), quantity('θWP', ground.wiltingPoint, 'm³ m⁻³'), depth],
-      result: day.available,
+      symbol: 'Db,0',
+      name: 'Depletion of the soil below the roots at the start of the day',
+      expression: 'Db,0 = Db,yesterday − ΔDr',
+      inputs: [mm('Db, yesterday', record.openingBelow), mm('ΔDr', record.moved)],
+      result: record.belowGrown,
       unit: 'mm',
-      source: 'FAO-56 Eq. 82',
+      source: 'FAO-56 chapter 8, text of Eq. 85 (root growth)',
     },
   ];
 }
 
-function rainSteps(day: StripDay, wetting: WettingRecord): WorkingStep[] {
+function availableStep({ record, curve, soil }: ToldDay): WorkingStep {
+  const step = { part: 'root-zone', symbol: 'TAW', name: 'Total available water', result: record.available, unit: 'mm' };
+  const depth = curve.rootDepth[record.day];
+  const layers = (soil.layers ?? []).filter(({ top }) => top < depth);
+  if (layers.length <= 1) {
+    const [{ fieldCapacity, wiltingPoint }] = layers.length === 1 ? layers : [soil];
+    return {
+      ...step,
+      expression: 'TAW = 1000 (θFC − θWP) Zr',
+      inputs: [quantity('θFC', fieldCapacity, 'm³ m⁻³'), quantity('θWP', wiltingPoint, 'm³ m⁻³'), metre('Zr', depth)],
+      source: 'FAO-56 Eq. 82',
+    };
+  }
+  const inputs = layers.flatMap((layer, k) => [
+    quantity(`θFC${k + 1}`, layer.fieldCapacity, 'm³ m⁻³'),
+    quantity(`θWP${k + 1}`, layer.wiltingPoint, 'm³ m⁻³'),
+    metre(`Δz${k + 1}`, (k === layers.length - 1 ? depth : layer.bottom) - layer.top),
+  ]);
+  const sum = layers.map((_, k) => `(θFC${k + 1} − θWP${k + 1}) Δz${k + 1}`).join(' + ');
+  return { ...step, expression: `TAW = 1000 [${sum}]`, inputs, source: 'FAO-56 Eq. 82, summed over the layers down to Zr' };
+}
+
+function movedStep({ record }: ToldDay): WorkingStep {
+  const { available, availableBefore } = record;
+  const step = { part: 'root-zone', symbol: 'ΔDr', result: record.moved, unit: 'mm', source: 'FAO-56 chapter 8, text of Eq. 85' };
+  const holding = [mm('TAW', available), mm('TAW, yesterday', availableBefore)];
+  if (available > availableBefore) {
+    return {
+      ...step,
+      name: 'Depletion of the soil that roots grew into',
+      expression: 'ΔDr = Db,yesterday (TAW − TAW,yesterday) / (Wmax − TAW,yesterday); Wmax: TAW to the deepest root of the run',
+      inputs: [mm('Db, yesterday', record.openingBelow), ...holding, mm('Wmax', record.deepest)],
+    };
+  }
+  if (available < availableBefore) {
+    return {
+      ...step,
+      name: 'Depletion given back by a shallower root zone',
+      expression: 'ΔDr = −Dr,yesterday (TAW,yesterday − TAW) / TAW,yesterday',
+      inputs: [mm('Dr, yesterday', record.openingDepletion), ...holding],
+    };
+  }
+  return { ...step, name: 'Depletion of the soil that roots grew into', expression: 'ΔDr = 0; the roots have not moved', inputs: [] };
+}
+
+/** Runoff where it differs from strip to strip; that of the parcel stands with its weather. */
+function runoffSteps({ record, ground, soil }: ToldDay): WorkingStep[] {
+  if (Number.isNaN(record.curveNumber)) return [];
+  return surfaceRunoffSteps({
+    curveNumber: soil.curveNumber,
+    depletion: record.openingSurface,
+    readily: ground.readilyEvaporable,
+    total: ground.totalEvaporable,
+    liquid: record.liquid,
+    runoff: record.surfaceRunoff,
+  });
+}
+
+function rainSteps({ record, rain }: ToldDay): WorkingStep[] {
   const part = 'irrigation';
+  const water = mm(rain, record.liquid);
+  const entered = mm('Pi', record.infiltration);
+  const depletion = mm('Dr,0', record.grownDepletion);
+  if (record.ponded) {
+    return [
+      {
+        part,
+        symbol: 'Dr,rain',
+        name: 'Root-zone depletion after rain and ponded water',
+        expression: `Dr,rain = max(0, Dr,0 − ${rain} − X,yesterday); the bunds hold what does not enter`,
+        inputs: [depletion, water, mm('X, yesterday', record.openingPond)],
+        result: record.rainedDepletion,
+        unit: 'mm',
+        source: 'FAO-56 Eq. 85, with a store of ponded water',
+      },
+      {
+        part,
+        symbol: 'X,rain',
+        name: 'Water above field capacity after rain',
+        expression: `X,rain = max(0, X,yesterday + ${rain} − Dr,0)`,
+        inputs: [mm('X, yesterday', record.openingPond), water, depletion],
+        result: record.pondRained,
+        unit: 'mm',
+        source: 'balance of the ponded store',
+      },
+    ];
+  }
   return [
     {
       part,
       symbol: 'Pi',
-      name: 'Rain that enters the soil',
-      expression: 'Pi = P − RO',
-      inputs: [mm('P', day.precipitation), mm('RO', day.surfaceRunoff)],
-      result: wetting.infiltration,
+      name: 'Water from the sky that enters the soil',
+      expression: `Pi = ${rain} − RO`,
+      inputs: [water, mm('RO', record.surfaceRunoff)],
+      result: record.infiltration,
       unit: 'mm',
       source: 'FAO-56 Eq. 85',
     },
@@ -81,157 +150,176 @@ function rainSteps(day: StripDay, wetting: WettingRecord): WorkingStep[] {
       symbol: 'Dr,rain',
       name: 'Root-zone depletion after rain',
       expression: 'Dr,rain = max(0, Dr,0 − Pi)',
-      inputs: [mm('Dr,0', wetting.grownDepletion), mm('Pi', wetting.infiltration)],
-      result: wetting.rainedDepletion,
+      inputs: [depletion, entered],
+      result: record.rainedDepletion,
       unit: 'mm',
       source: 'FAO-56 Eq. 85',
-    },
-  ];
-}
-
-function irrigationSteps(ground: StripGround, day: StripDay, wetting: WettingRecord): WorkingStep[] {
-  const part = 'irrigation';
-  return [
-    {
-      part,
-      symbol: 'Ds',
-      name: 'Depletion of the soil irrigation is scheduled over',
-      expression: 'Ds = Dr,rain + Db,rain (Zs − Zr) / (Zmax − Zr), Zs at least half the mature root depth',
-      inputs: [
-        mm('Dr,rain', wetting.rainedDepletion),
-        mm('Db,rain', wetting.openingBelow - wetting.moved - wetting.rainExcess + day.deepPercolation),
-        quantity('Zs', wetting.scheduleDepth, 'm'),
-        quantity('Zr', day.rootDepth, 'm'),
-        quantity('Zmax', ground.deepestRoot, 'm'),
-      ],
-      result: wetting.scheduleDepletion,
-      unit: 'mm',
-      source: 'common practice: the upper half of the mature root zone is watered while roots are shallow',
-    },
-    {
-      part,
-      symbol: 'Dc',
-      name: 'Depletion that calls for water',
-      expression: 'Dc = max(0, Ds − few,yesterday De,rain), De,rain = max(0, De,yesterday − Pi)',
-      inputs: [
-        mm('Ds', wetting.scheduleDepletion),
-        one('few,yesterday', wetting.openingExposed),
-        mm('De, yesterday', wetting.openingSurface),
-        mm('Pi', wetting.infiltration),
-      ],
-      result: wetting.drawnDepletion,
-      unit: 'mm',
-      source: 'common practice: the dryness of the bare surface does not by itself call for water',
-    },
-    {
-      part,
-      symbol: 'D,start',
-      name: 'Depletion at which an irrigation starts',
-      expression: 'D,start = f p 1000 (θFC − θWP) Zs, p of the day before (of the table on the first day)',
-      inputs: [
-        one('f', ground.triggerFraction),
-        one('p', wetting.triggerDepletionFraction),
-        quantity('θFC', ground.fieldCapacity, 'm³ m⁻³'),
-        quantity('θWP', ground.wiltingPoint, 'm³ m⁻³'),
-        quantity('Zs', wetting.scheduleDepth, 'm'),
-      ],
-      result: wetting.trigger,
-      unit: 'mm',
-      source: 'FAO-56 Eq. 83; f from the application method',
-    },
-    {
-      part,
-      symbol: 'I',
-      name: 'Net irrigation',
-      expression: irrigationText(day, wetting),
-      inputs: [
-        mm('Ds', wetting.scheduleDepletion),
-        mm('Dc', wetting.drawnDepletion),
-        mm('D,start', wetting.trigger),
-        mm('Dr,rain', wetting.rainedDepletion),
-        mm('p TAW', wetting.stressFrom),
-        mm('I max', ground.maximumDailyDepth),
-      ],
-      result: day.irrigation,
-      unit: 'mm',
-      source: 'irrigation to requirement: start at D,start or when Dr,rain passes p TAW, refill Ds, at most I max a day',
-    },
-  ];
-}
-
-function irrigationText(day: StripDay, wetting: WettingRecord): string {
-  if (day.irrigation > 0) return `I = min(Ds, I max); ${wetting.wasIrrigating ? 'goes on from yesterday' : startReason(wetting)}`;
-  if (!day.planted) return 'I = 0; nothing is planted';
-  return day.mayIrrigate
-    ? 'I = 0; Dc is below D,start and Dr,rain below p TAW, or the soil is already refilled'
-    : 'I = 0; rain-fed or past the last irrigation';
-}
-
-function startReason(wetting: WettingRecord): string {
-  return wetting.rainedDepletion > wetting.stressFrom ? 'starts: Dr,rain > p TAW, the crop would run short' : 'starts: Dc ≥ D,start';
-}
-
-function refillSteps(day: StripDay, wetting: WettingRecord): WorkingStep[] {
-  const part = 'root-zone';
-  const given = [mm('Dr,0', wetting.grownDepletion), mm('Pi', wetting.infiltration), mm('I', day.irrigation)];
-  return [
-    {
-      part,
-      symbol: 'Dr,1',
-      name: 'Root-zone depletion after wetting and drainage',
-      expression: 'Dr,1 = max(0, Dr,0 − Pi − I)',
-      inputs: given,
-      result: day.refilled,
-      unit: 'mm',
-      source: 'FAO-56 Eq. 85 and 88, drained before ET as in Example 38',
     },
     {
       part,
       symbol: 'DR',
       name: 'Rain draining out of the root zone',
       expression: 'DR = max(0, Pi − Dr,0)',
-      inputs: [mm('Pi', wetting.infiltration), mm('Dr,0', wetting.grownDepletion)],
-      result: wetting.rainExcess,
+      inputs: [entered, depletion],
+      result: record.rainExcess,
       unit: 'mm',
       source: 'FAO-56 Eq. 88',
     },
     {
       part,
       symbol: 'DP',
-      name: 'Deep percolation, past the deepest root',
-      expression: 'DP = DR − min(DR, Db)',
-      inputs: [mm('DR', wetting.rainExcess), mm('Db, before', wetting.openingBelow - wetting.moved)],
-      result: day.deepPercolation,
+      name: 'Deep percolation of rain, past the deepest root',
+      expression: 'DP = DR − min(DR, Db,0)',
+      inputs: [mm('DR', record.rainExcess), mm('Db,0', record.belowGrown)],
+      result: record.deepPercolation,
       unit: 'mm',
       source: 'FAO-56 Eq. 88, with the soil below the root zone refilled first',
     },
     {
       part,
-      symbol: 'DI',
-      name: 'Irrigation kept in the soil below the root zone',
-      expression: 'DI = max(0, I − Dr,rain)',
-      inputs: [mm('I', day.irrigation), mm('Dr,rain', wetting.rainedDepletion)],
-      result: wetting.irrigationExcess,
+      symbol: 'Db,rain',
+      name: 'Depletion of the soil below the roots after rain',
+      expression: 'Db,rain = Db,0 − (DR − DP)',
+      inputs: [mm('Db,0', record.belowGrown), mm('DR', record.rainExcess), mm('DP', record.deepPercolation)],
+      result: record.rainedBelow,
       unit: 'mm',
-      source: 'continuity; never more than the depletion there',
+      source: 'continuity',
     },
   ];
 }
 
-function surfaceStep(ground: StripGround, day: StripDay, wetting: WettingRecord): WorkingStep {
-  return {
-    part: 'surface',
-    symbol: 'De,1',
-    name: 'Surface-layer depletion after wetting',
-    expression: 'De,1 = max(0, De,yesterday − Pi − I / fw,method)',
-    inputs: [
-      mm('De, yesterday', wetting.openingSurface),
-      mm('Pi', wetting.infiltration),
-      mm('I', day.irrigation),
-      one('fw,method', ground.methodWetted),
-    ],
-    result: day.wettedSurface,
+/** Wetting without bunds: what stays, what passes the root zone, what is lost; and a pond that was let go. */
+function drainageSteps({ record }: ToldDay): WorkingStep[] {
+  const part = 'root-zone';
+  const rained = mm('Dr,rain', record.rainedDepletion);
+  const released = record.released > 0 ? [mm('X, yesterday', record.released)] : [];
+  const less = record.released > 0 ? ' − X,yesterday' : '';
+  const more = record.released > 0 ? ' + X,yesterday' : '';
+  const leached = record.leachingRequirement > 0;
+  const share = leached ? '(1 − LR) I' : 'I';
+  const inputs = [rained, mm('I', record.irrigation), ...(leached ? [one('LR', record.leachingRequirement)] : []), ...released];
+  const steps: WorkingStep[] = [
+    {
+      part,
+      symbol: 'Dr,1',
+      name: 'Root-zone depletion after wetting and drainage',
+      expression: `Dr,1 = max(0, Dr,rain − ${share}${less})${record.released > 0 ? '; the field is drained' : ''}`,
+      inputs,
+      result: record.wettedDepletion,
+      unit: 'mm',
+      source: 'FAO-56 Eq. 85 and 88, drained before ET as in Example 38',
+    },
+  ];
+  if (record.irrigation === 0 && record.released === 0) return steps;
+  steps.push({
+    part,
+    symbol: 'DI',
+    name: 'Irrigation passing the root zone',
+    expression: leached ? `DI = LR I + max(0, (1 − LR) I${more} − Dr,rain)` : `DI = max(0, I${more} − Dr,rain)`,
+    inputs,
+    result: record.irrigationExcess,
     unit: 'mm',
-    source: 'FAO-56 Eq. 77 and 79',
+    source: 'continuity; kept in the soil below as far as that is depleted',
+  });
+  return [...steps, lostStep(record)];
+}
+
+function lostStep(record: ToldDay['record'], spilled = 0): WorkingStep {
+  return {
+    part: 'root-zone',
+    symbol: 'IP',
+    name: 'Irrigation water lost below the roots',
+    expression: spilled > 0 ? 'IP = DI − min(DI, Db,rain) + SPi' : 'IP = DI − min(DI, Db,rain)',
+    inputs: [mm('DI', record.irrigationExcess), mm('Db,rain', record.rainedBelow), ...(spilled > 0 ? [mm('SPi', spilled)] : [])],
+    result: record.irrigationPercolation,
+    unit: 'mm',
+    source: 'FAO-56 Eq. 88 (irrigation part), with the soil below the root zone refilled first',
+  };
+}
+
+function pondSteps({ record, ground }: ToldDay): WorkingStep[] {
+  const part = 'root-zone';
+  const spilled = record.spill - record.surfaceRunoff;
+  const edges = [mm('pores', record.pores), mm('bund', record.bund)];
+  const steps: WorkingStep[] = [
+    {
+      part,
+      symbol: 'Dr,1',
+      name: 'Root-zone depletion after irrigation',
+      expression: 'Dr,1 = max(0, Dr,rain − I)',
+      inputs: [mm('Dr,rain', record.rainedDepletion), mm('I', record.irrigation)],
+      result: record.wettedDepletion,
+      unit: 'mm',
+      source: 'FAO-56 Eq. 85',
+    },
+  ];
+  const filled = [mm('X,rain', record.pondRained), mm('I', record.irrigation), mm('Dr,rain', record.rainedDepletion)];
+  if (record.spill > 0) {
+    steps.push({
+      part,
+      symbol: 'SP',
+      name: 'Water spilling over the bunds',
+      expression: 'SP = X,rain + max(0, I − Dr,rain) − pores − bund',
+      inputs: [...filled, ...edges],
+      result: record.spill,
+      unit: 'mm',
+      source: 'height of the bunds; up to the rain of the day it is surface runoff, beyond it irrigation water lost (SPi)',
+    });
+  }
+  steps.push(
+    {
+      part,
+      symbol: 'DI',
+      name: 'Seepage and percolation out of the ponded store',
+      expression: `DI = min(rate, X,rain + max(0, I − Dr,rain)${record.spill > 0 ? ' − SP' : ''})`,
+      inputs: [quantity('rate', ground.percolationRate, 'mm d⁻¹'), ...filled, ...(record.spill > 0 ? [mm('SP', record.spill)] : [])],
+      result: record.seepage,
+      unit: 'mm',
+      source: 'percolation rate of the puddled soil',
+    },
+    lostStep(record, spilled),
+    {
+      part,
+      symbol: 'X,1',
+      name: 'Water above field capacity before the day’s ET',
+      expression: `X,1 = X,rain + max(0, I − Dr,rain) − DI${record.spill > 0 ? ' − SP' : ''}`,
+      inputs: [...filled, mm('DI', record.seepage), ...(record.spill > 0 ? [mm('SP', record.spill)] : [])],
+      result: record.pond,
+      unit: 'mm',
+      source: 'balance of the ponded store',
+    },
+  );
+  return steps;
+}
+
+function capillaryStep({ record, curve }: ToldDay): WorkingStep {
+  return {
+    part: 'root-zone',
+    symbol: 'CR',
+    name: 'Capillary rise from the water table',
+    expression: 'CR = min(CRmax, Dr,1); after it Dr,1 is less by CR',
+    inputs: [mm('CRmax', curve.capillaryMost[record.day]), mm('Dr,1', record.wettedDepletion)],
+    result: record.capillaryRise,
+    unit: 'mm',
+    source: 'FAO-56 Eq. 85; the most that rises by Gardner 1958 and Eagleson 1978',
+  };
+}
+
+function surfaceStep({ record, ground, rain }: ToldDay): WorkingStep {
+  const step = { part: 'surface', symbol: 'De,1', name: 'Surface-layer depletion after wetting', result: record.wettedSurface, unit: 'mm' };
+  const before = mm('De, yesterday', record.openingSurface);
+  const source = 'FAO-56 Eq. 77 and 79';
+  if (record.pond > 0 || record.released > 0) {
+    return { ...step, expression: 'De,1 = 0; the surface stood under water', inputs: [before], source };
+  }
+  const entered = mm(record.ponded ? rain : 'Pi', record.infiltration);
+  if (record.irrigation === 0) {
+    return { ...step, expression: `De,1 = max(0, De,yesterday − ${entered.symbol})`, inputs: [before, entered], source };
+  }
+  return {
+    ...step,
+    expression: `De,1 = max(0, De,yesterday − ${entered.symbol} − I / fw,method)`,
+    inputs: [before, entered, mm('I', record.irrigation), one('fw,method', ground.methodWetted)],
+    source,
   };
 }

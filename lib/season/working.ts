@@ -3,17 +3,17 @@
  */
 import { isoDate } from '../base/civil-date.ts';
 import { RangeViolation } from '../base/errors.ts';
-import { quantity } from '../base/working.ts';
-import { type Cycle, developmentProgress, stageOf } from '../crop/curve.ts';
+import type { Cycle } from '../crop/curve.ts';
 import { referenceEtDay } from '../energy/reference-day.ts';
 import { type CarriedSeries, fallbackNames, type SiteWeight } from '../weather/variable.ts';
+import { recordBareDay, recordPlantedDay } from './calendar-working.ts';
 import { RUN_SURFACE } from './check.ts';
-import { recordCoefficients } from './coefficient-working.ts';
 import { walkParcel } from './kernel.ts';
 import { lapseCorrection } from './mix.ts';
-import { type PackedSeason, packSeason } from './pack.ts';
+import { keptDays, type PackedSeason, packSeason } from './pack.ts';
 import { seriesParts } from './series-weather.ts';
-import { type PlantedCycles, type StripPlan, stageClimates } from './strip-curve.ts';
+import type { PlantedCycles, StripPlan } from './strip-curve.ts';
+import { mm } from './told-day.ts';
 import {
   DAILY_VARIABLES,
   type DailyVariable,
@@ -23,7 +23,9 @@ import {
   type Working,
   type WorkingStep,
 } from './types.ts';
+import { recordUse } from './use-working.ts';
 import { weatherSteps } from './weather-working.ts';
+import { recordWetting } from './wetting-working.ts';
 
 /**
  * Derives one parcel's day: the site values with their weights and flags, every equation with the numbers put in, and the results.
@@ -32,35 +34,51 @@ import { weatherSteps } from './weather-working.ts';
  *
  * @param input the season as it was run (other parcels may be left out)
  * @param parcelIndex index into `input.parcels`
- * @param dayOffset day of the run, 0 on the start date
+ * @param dayOffset day of the run, 0 on the first day kept: the start date, where there are no lead days
  * @throws {RangeViolation} when parcel or day lie outside the input; else as `runSeason`
  */
 export function explainDay(input: SeasonInput, parcelIndex: number, dayOffset: number): Working {
   const parcel = input.parcels[parcelIndex];
   if (!parcel) throw new RangeViolation(`parcel index ${parcelIndex} is not within 0 … ${input.parcels.length - 1}`);
-  if (!(dayOffset >= 0 && dayOffset < input.dayCount)) {
-    throw new RangeViolation(`day ${dayOffset} is not within 0 … ${input.dayCount - 1} of the season that starts on ${input.startDate}`);
+  const days = keptDays(input);
+  if (!(dayOffset >= 0 && dayOffset < days)) {
+    throw new RangeViolation(`day ${dayOffset} is not within 0 … ${days - 1} of the season that starts on ${input.startDate}`);
   }
+  const day = dayOffset + input.dayCount - days;
   const season = packSeason(input);
   const weather: WorkingStep[] = [];
   const strips: WorkingStep[] = [];
   const recorder: Trace = { step: (step) => strips.push(step) };
   walkParcel(season, parcel, {
-    day: dayOffset,
-    strip(plan, index, count) {
-      const trace = count === 1 ? recorder : labelled(recorder, stripLabel(season, plan, index, dayOffset));
-      recordPlanting(season, plan, dayOffset, trace);
-      return trace;
+    day,
+    strip(plan, index, count, ground) {
+      const trace = count === 1 ? recorder : labelled(recorder, stripLabel(plan, index, day));
+      recordPlanting(season, parcel, plan, day, trace);
+      const rain = input.settings.snow ? 'Pl' : 'P';
+      const single = input.settings.coefficient === 'single';
+      return (record) => {
+        const told = {
+          record,
+          ground,
+          curve: season.curve,
+          soil: parcel.soil,
+          climate: season.weather.climate[day],
+          rain,
+          single,
+        } as const;
+        recordWetting(told, trace);
+        recordUse(told, trace);
+      };
     },
   });
-  for (const step of weatherSteps(season, parcel, dayOffset)) weather.push(step);
-  if (!input.weather.referenceEt) referenceEtDay(referenceInput(season, parcel, dayOffset), { step: (step) => weather.push(step) });
+  for (const step of weatherSteps(season, parcel, day)) weather.push(step);
+  if (!input.weather.referenceEt) referenceEtDay(referenceInput(season, parcel, day), { step: (step) => weather.push(step) });
   const results = resultsOf(season, dayOffset);
   return {
     parcel: parcel.code,
-    date: isoDate(season.firstDay + dayOffset),
-    inputs: siteInputs(season, parcel, dayOffset),
-    steps: [...weather, ...strips, ...parcelSteps(parcel, results)],
+    date: isoDate(season.firstDay + day),
+    inputs: siteInputs(season, parcel, day),
+    steps: [...weather, ...strips, ...parcelSteps(season, results)],
     results,
   };
 }
@@ -69,7 +87,7 @@ function labelled(trace: Trace, strip: string): Trace {
   return { step: (step) => trace.step({ ...step, strip }) };
 }
 
-function stripLabel(_season: PackedSeason, plan: StripPlan, index: number, day: number): string {
+function stripLabel(plan: StripPlan, index: number, day: number): string {
   const standing = plan.planted.find((planted) => findCycle(planted, day) !== null);
   const share = `${Number((plan.share * 100).toFixed(2))} % of the parcel`;
   if (standing) return `${standing.planting.crop.name} of ${standing.planting.plantingDate}, ${share}`;
@@ -80,26 +98,12 @@ function findCycle(planted: PlantedCycles, day: number): Cycle | null {
   return planted.cycles.find((cycle) => cycle.start <= day && day < cycle.end) ?? null;
 }
 
-function recordPlanting(season: PackedSeason, plan: StripPlan, day: number, trace: Trace): void {
+function recordPlanting(season: PackedSeason, parcel: ParcelInput, plan: StripPlan, day: number, trace: Trace): void {
   for (const planted of plan.planted) {
-    const cycle = findCycle(planted, day);
-    if (cycle === null) continue;
-    const dayOfCycle = day - cycle.start + 1;
-    recordCoefficients(
-      {
-        crop: planted.planting.crop,
-        cycle,
-        climates: stageClimates(season.weather, cycle),
-        dayOfCycle,
-        stage: stageOf(cycle.lengths, dayOfCycle),
-        progress: developmentProgress(cycle.lengths, dayOfCycle),
-        basal: season.curve.basal[day],
-        height: season.curve.height[day],
-        rootDepth: season.curve.rootDepth[day],
-      },
-      trace,
-    );
+    const k = planted.cycles.findIndex((cycle) => cycle.start <= day && day < cycle.end);
+    if (k >= 0) recordPlantedDay(season, parcel, planted, { k, day }, trace);
   }
+  recordBareDay(season, parcel, day, trace);
 }
 
 function referenceInput(season: PackedSeason, parcel: ParcelInput, day: number): Parameters<typeof referenceEtDay>[0] {
@@ -119,7 +123,7 @@ function referenceInput(season: PackedSeason, parcel: ParcelInput, day: number):
 }
 
 function resultsOf(season: PackedSeason, day: number): Record<DailyVariable, number> {
-  const rows = DAILY_VARIABLES.map(({ id }, v) => [id, season.daily[v * season.input.dayCount + day]] as const);
+  const rows = DAILY_VARIABLES.map(({ id }, v) => [id, season.daily[v * keptDays(season.input) + day]] as const);
   return Object.fromEntries(rows) as Record<DailyVariable, number>;
 }
 
@@ -186,24 +190,27 @@ function siteValues(season: PackedSeason, parcel: ParcelInput, site: number, at:
   return Object.fromEntries(named.filter(([, value]) => Number.isFinite(value)));
 }
 
-function parcelSteps(parcel: ParcelInput, results: Record<DailyVariable, number>): WorkingStep[] {
+/** What the strips come to together; a parcel of one strip has it in the strip's own steps. */
+function parcelSteps({ closing }: PackedSeason, results: Record<DailyVariable, number>): WorkingStep[] {
+  const several = closing.length > 1;
+  const gross: WorkingStep = {
+    part: 'irrigation',
+    symbol: 'Ig parcel',
+    name: 'Gross irrigation requirement of the parcel',
+    expression: 'Ig parcel = Σ Ig × share of the strip; the net depth I of the parcel is Σ I × share',
+    inputs: [mm('I', results.net_requirement)],
+    result: results.gross_requirement,
+    unit: 'mm',
+    source: 'definition of application efficiency',
+  };
   return [
-    {
-      part: 'irrigation',
-      symbol: 'Ig',
-      name: 'Gross irrigation requirement of the parcel',
-      expression: 'Ig = I / Ea, strips weighted by share',
-      inputs: [quantity('I', results.net_requirement, 'mm'), quantity('Ea', parcel.method.efficiency, '1')],
-      result: results.gross_requirement,
-      unit: 'mm',
-      source: 'definition of application efficiency',
-    },
+    ...(several ? [gross] : []),
     {
       part: 'balance',
       symbol: 'ETc adj',
       name: 'Crop ET of the parcel, adjusted for stress',
-      expression: 'ETc adj = T + E, strips weighted by share',
-      inputs: [quantity('T', results.adjusted_crop_et - results.evaporation, 'mm'), quantity('E', results.evaporation, 'mm')],
+      expression: `ETc adj = T + E${several ? ', strips weighted by share' : ''}`,
+      inputs: [mm('T', results.adjusted_crop_et - results.evaporation), mm('E', results.evaporation)],
       result: results.adjusted_crop_et,
       unit: 'mm',
       source: 'FAO-56 Eq. 80',

@@ -90,9 +90,14 @@ const BITS: Readonly<Record<Group, Bits>> = {
  *
  * @param observations of the sites; never changed
  * @param others observations of other sources over days of their own, in the order in which they stand in
+ * @param within days that are wanted, as offsets of the first and of the day after the last: gaps that touch none of them are left as they are. Left out: every day
  * @returns filled values, quality codes (0 where a value is still missing), bits of FALLBACK, and every gap with its figures
  */
-export function fillGaps(observations: SiteObservations, others: readonly SiteObservations[] = []): FilledObservations {
+export function fillGaps(
+  observations: SiteObservations,
+  others: readonly SiteObservations[] = [],
+  within: DayWindow = { from: 0, end: observations.dayCount },
+): FilledObservations {
   const filled = copyOf(observations);
   const near = nearestFinder(observations.sites);
   const nearOthers = others.map(({ sites }) => nearestFinder(sites));
@@ -103,7 +108,7 @@ export function fillGaps(observations: SiteObservations, others: readonly SiteOb
       const lacks = missing ?? groupMissing(observations, [variable]);
       const reporting = reportingSites(observations, variable);
       for (let site = 0; site < observations.sites.length; site++) {
-        fillSite({ observations, others, filled, near, nearOthers, group, variable, site, lacks, reporting });
+        fillSite({ observations, others, within, filled, near, nearOthers, group, variable, site, lacks, reporting });
       }
     }
   }
@@ -111,9 +116,15 @@ export function fillGaps(observations: SiteObservations, others: readonly SiteOb
   return filled;
 }
 
+interface DayWindow {
+  readonly from: number;
+  readonly end: number;
+}
+
 interface Work {
   readonly observations: SiteObservations;
   readonly others: readonly SiteObservations[];
+  readonly within: DayWindow;
   readonly filled: FilledObservations & { gaps: Gap[] };
   readonly near: ReturnType<typeof nearestFinder>;
   readonly nearOthers: readonly ReturnType<typeof nearestFinder>[];
@@ -178,7 +189,7 @@ function fillSite(work: Work): void {
     if (lacks[site * dayCount + day] === 0) continue;
     let end = day;
     while (end < dayCount && lacks[site * dayCount + end] === 1) end++;
-    fillGap(work, observed, [day, end], fallsShort);
+    if (end > work.within.from && day < work.within.end) fillGap(work, observed, [day, end], fallsShort);
     day = end;
   }
 }

@@ -1,10 +1,9 @@
 /** What is filled in time, from the record of the site itself: the limits of it, and the normal of a day. */
 import { civilFromDayNumber, type DayNumber, dayNumberOf } from '../base/civil-date.ts';
+import { NORMAL_HALF_WINDOW } from './normal-of-day.ts';
 
 /** Longest gap of temperature that is bridged by a straight line between its neighbours [d]. The product's own limit. */
 export const LONGEST_GAP_IN_TIME = 5;
-/** Days on either side of the calendar day that make up its normal. */
-const NORMAL_HALF_WINDOW = 7;
 
 /**
  * Normal of a day: mean of the observed values within ± 7 days of the same calendar day in every other year of the record.

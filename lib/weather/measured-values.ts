@@ -1,4 +1,5 @@
 /** Which values of completed weather were measured, told from the bits of what was estimated. */
+import { AHEAD_BITS } from './day-kind.ts';
 import { type CarriedSeries, FALLBACK, type Fallback } from './variable.ts';
 
 /** How the bits of a series begin. */
@@ -22,12 +23,12 @@ const MEASURED_ALL_THE_SAME: ReadonlySet<Fallback> = new Set([
   'elevationAssumed',
 ]);
 
-/** Bits under which a value of the series is no measurement. Reference ET rests on every series but rain. */
+/** Bits under which a value of the series is no measurement, a day to come included. Reference ET rests on every series but rain. */
 export function estimateBits(series: CarriedSeries): number {
   return (Object.keys(FALLBACK) as Fallback[])
     .filter((name) => name.startsWith(PREFIX[series]) && !MEASURED_ALL_THE_SAME.has(name))
     .filter((name) => series !== 'referenceEt' || !name.startsWith('precipitation'))
-    .reduce((bits, name) => bits | FALLBACK[name], 0);
+    .reduce((bits, name) => bits | FALLBACK[name], AHEAD_BITS);
 }
 
 /** 1 where the value of the series was measured, one per flag. */

@@ -1,12 +1,18 @@
 /**
- * Speed of the season kernel: parcel-days per second, stations case (8 stations, weather interpolated to every parcel, reference ET per parcel and day).
+ * Speed of the season kernel: parcel-days per second. Stations: 8 stations, weather interpolated to every parcel, reference ET per parcel and day. Grid: 25
+ * parcels in a row lie in one cell and have its weather.
  *
  *   node --import tsx test/bench/season.bench.ts [parcels …]
  *
- * Runs 10,000 and 100,000 parcels × 366 days on one and on two threads, in slices, so that memory stays bounded; and a sample of the same parcels
- * through the scalar season of test/support as a yardstick. Seeded; ratios within one run compare across machines, absolute figures do not. On a busy machine
- * look at the figure per CPU second.
+ * Runs 10,000 and 100,000 parcels × 366 days on one and on two threads, in slices, so that memory stays bounded; a sample of the same parcels through the
+ * scalar season of test/support; and, where gcc is there, the same method in C (season-yardstick.c). Seeded; ratios within one run compare across
+ * machines, absolute figures do not. On a busy machine look at the figure per CPU second: C is given per CPU second too.
  */
+import { spawnSync } from 'node:child_process';
+import { mkdtempSync, rmSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { fileURLToPath } from 'node:url';
 import { mulberry32 } from '../../lib/base/random.ts';
 import { makeSeasonPool } from '../../lib/jobs/season-pool.ts';
 import { runSeason } from '../../lib/season/kernel.ts';
@@ -18,22 +24,26 @@ const DAYS = 366;
 const SITES = 8;
 const SLICE = 2000;
 const SCALAR_PARCELS = 300;
+/** parcels in a cell of the grid case */
+const IN_CELL = 25;
 
 /** A district of `count` parcels on one crop each, with a library of 40 crops and calendars, 12 soils and 6 methods; invented. */
-function district(count: number): SeasonInput {
+function district(count: number, inCell = 1): SeasonInput {
   const random = mulberry32(1);
   const crops = Array.from({ length: 40 }, () => makeCrop(random));
   const calendars = Array.from({ length: 40 }, () => makeCalendar(random));
   const soils = Array.from({ length: 12 }, () => makeSoil(random));
   const methods = Array.from({ length: 6 }, () => makeMethod(random));
+  const makePlace = () => ({ latitude: 38 + 2 * random(), elevation: 50 + 300 * random(), weights: makeWeights(random, SITES) });
+  let place = makePlace();
   const parcels: ParcelInput[] = Array.from({ length: count }, (_, k) => {
     const crop = Math.floor(random() * 40);
+    if (k % inCell === 0) place = makePlace();
     return {
       code: `P${k}`,
       area: 10000,
-      latitude: 38 + 2 * random(),
+      ...place,
       longitude: -1.5,
-      elevation: 50 + 300 * random(),
       soil: soils[Math.floor(random() * 12)],
       method: methods[Math.floor(random() * 6)],
       plantings: [
@@ -46,7 +56,6 @@ function district(count: number): SeasonInput {
           areaShare: 1,
         },
       ],
-      weights: makeWeights(random, SITES),
     };
   });
   const settings = { method: 'fao56', initialDepletion: 0.3, lapseRate: 0.0065, irrigate: true, runoff: true } as const;
@@ -101,18 +110,41 @@ function scalar(input: SeasonInput): number {
   return (sample.length * DAYS) / (performance.now() - start) / 1000;
 }
 
-const sizes = process.argv.slice(2).map(Number);
-oneThread(district(500));
-const lines = [['parcels', 'one thread', 'per CPU second', 'pool of 1', 'pool of 2', 'two / one', 'scalar', 'kernel / scalar', 'resident']];
-for (const count of sizes.length > 0 ? sizes : [10_000, 100_000]) {
-  const input = district(count);
-  const plain = scalar(input);
-  const single = oneThread(input);
-  const one = await pooled(input, 1);
-  const two = await pooled(input, 2);
-  const resident = `${Math.round(process.memoryUsage.rss() / 1048576)} MiB`;
-  const speeds = [single.clock, single.processor, one, two].map((speed) => speed.toFixed(2));
-  lines.push([String(count), ...speeds, (two / one).toFixed(2), plain.toFixed(2), (single.clock / plain).toFixed(1), resident]);
+/** The C yardstick, built in a folder of its own; null where there is no gcc. */
+function buildYardstick(): { run(parcels: number, inCell: number): number; remove(): void } | null {
+  const folder = mkdtempSync(join(tmpdir(), 'yardstick-'));
+  const source = fileURLToPath(new URL('./season-yardstick.c', import.meta.url));
+  const program = join(folder, 'yardstick');
+  const built = spawnSync('gcc', ['-O3', '-march=native', source, '-lm', '-o', program]);
+  const remove = () => rmSync(folder, { recursive: true });
+  if (built.status !== 0) {
+    remove();
+    return null;
+  }
+  const run = (parcels: number, inCell: number) =>
+    Number(spawnSync(program, [`${parcels}`, inCell > 1 ? 'grid' : 'stations'], { encoding: 'utf8' }).stdout);
+  return { run, remove };
 }
-console.log(`season kernel, stations case, ${DAYS} days, ${SITES} stations; million parcel-days per second`);
-for (const line of lines) console.log(line.map((cell) => cell.padStart(17)).join(''));
+
+const sizes = process.argv.slice(2).map(Number);
+const yardstick = buildYardstick();
+oneThread(district(2000));
+const lines = [
+  ['case', 'parcels', 'one thread', 'per CPU s', 'C, CPU s', 'kernel / C', 'pool of 1', 'pool of 2', 'two / one', 'scalar', 'resident'],
+];
+for (const count of sizes.length > 0 ? sizes : [10_000, 100_000]) {
+  for (const inCell of [1, IN_CELL]) {
+    const input = district(count, inCell);
+    const plain = scalar(input);
+    const single = oneThread(input);
+    const compiled = yardstick === null ? Number.NaN : yardstick.run(count, inCell);
+    const one = await pooled(input, 1);
+    const two = await pooled(input, 2);
+    const resident = `${Math.round(process.memoryUsage.rss() / 1048576)} MiB`;
+    const speeds = [single.clock, single.processor, compiled, single.processor / compiled, one, two, two / one, plain];
+    lines.push([inCell > 1 ? 'grid' : 'stations', String(count), ...speeds.map((speed) => speed.toFixed(2)), resident]);
+  }
+}
+yardstick?.remove();
+console.log(`season kernel, ${DAYS} days, ${SITES} stations; million parcel-days per second`);
+for (const line of lines) console.log(line.map((cell) => cell.padStart(12)).join(''));

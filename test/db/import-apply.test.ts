@@ -83,6 +83,12 @@ const KINDS: Record<string, { staged: StagedImport; options?: Record<string, unk
     options: { replace: true },
   },
   plantings: { staged: { kind: 'plantings', plantings: [planting('8', 1, '2023-03-20'), planting('8', 2, '2023-08-01')] } },
+  'plantings with a practice': {
+    staged: {
+      kind: 'plantings',
+      plantings: [{ ...planting('8', 1, '2023-03-20'), practice: { irrigation: { kind: 'interval', days: 7 } } }],
+    },
+  },
   soils: {
     staged: {
       kind: 'soils',
@@ -242,6 +248,18 @@ describe('parcels', () => {
     expect(await rowsOf(districtId, 'select count(*)::int as n from planting')).toEqual([{ n: 4600 }]);
     await undo(own);
     expect(await rowsOf(districtId, 'select count(*)::int as n from planting')).toEqual([{ n: 0 }]);
+  });
+});
+
+describe('plantings with a practice', () => {
+  it('keep it as it was read, and lose it with the next table that says nothing of it', async () => {
+    const districtId = await settledDistrict();
+    const practice = { irrigation: { kind: 'fixed-depth', depth: 40 }, mulch: { kind: 'plastic', cover: 0.7 } } as const;
+    await apply(districtId, { kind: 'plantings', plantings: [{ ...planting('8', 1, '2023-03-20'), practice }] });
+    const stored = () => rowsOf(districtId, "select practice from planting where parcel_code = '8'");
+    expect(await stored()).toEqual([{ practice }]);
+    await apply(districtId, { kind: 'plantings', plantings: [planting('8', 1, '2023-03-20')] });
+    expect(await stored()).toEqual([{ practice: {} }]);
   });
 });
 

@@ -211,6 +211,8 @@ describe('sources', () => {
     expect(items[1]).toEqual({
       name: 'long record',
       kind: 'stations',
+      role: 'observed',
+      issued: null,
       sites: 1,
       first_month: '2018-01-01',
       last_month: '2020-12-01',

@@ -2,9 +2,12 @@
 import { describe, expect, test } from 'vitest';
 import { mulberry32 } from '../../lib/base/random.ts';
 import { runSeason } from '../../lib/season/kernel.ts';
+import { keptDays } from '../../lib/season/pack.ts';
 import { DAILY_VARIABLE_COUNT, DAILY_VARIABLES, type SeasonInput, type Working } from '../../lib/season/types.ts';
 import { explainDay } from '../../lib/season/working.ts';
+import { workOut } from '../support/pocket-calculator.ts';
 import { randomSeason } from '../support/random-season.ts';
+import { RULE_KINDS, richSeason } from '../support/rich-season.ts';
 
 /** Stored as the contract says: round(value × scale), 0 … 65534. */
 function stored(value: number, scale: number): number {
@@ -75,4 +78,52 @@ describe('explainDay', () => {
     expect(() => explainDay(input, 40, 0)).toThrow(/parcel index 40 is not within 0 … 39/);
     expect(() => explainDay(input, 0, 200)).toThrow(/day 200 is not within 0 … 199/);
   });
+});
+
+/** Parts told by the season itself; the others are tested where they are made. */
+const OWN_PARTS = ['root-zone', 'irrigation', 'surface', 'balance', 'coefficient'];
+
+describe('explainDay on every kind of season', () => {
+  const kinds = RULE_KINDS.flatMap((rule) => (['dual', 'single'] as const).map((coefficient) => [rule, coefficient] as const));
+
+  test.each(kinds)(
+    'rule %s, %s coefficients: results equal the stored values, every equation can be worked out from the page',
+    (rule, coefficient) => {
+      const symbols = new Set<string>();
+      for (const [seed, warmer] of [
+        [3, 0],
+        [4, -12],
+      ]) {
+        const input = richSeason({
+          seed,
+          parcels: 12,
+          days: 150,
+          rule,
+          warmer,
+          leadDays: seed === 3 ? 25 : undefined,
+          settings: { coefficient },
+        });
+        const days = keptDays(input);
+        const { daily } = runSeason(input);
+        for (let k = 0; k < 60; k++) {
+          const [parcel, day] = [k % 12, (k * 37 + 11) % days];
+          const working = explainDay(input, parcel, day);
+          for (const [v, { id, scale }] of DAILY_VARIABLES.entries()) {
+            const at = (parcel * DAILY_VARIABLE_COUNT + v) * days + day;
+            if (stored(working.results[id], scale) !== daily[at]) expect.fail(`${id} of parcel ${parcel}, day ${day}`);
+          }
+          if (!finiteNumbers(working)) expect.fail(`a number of the working of parcel ${parcel}, day ${day} is not finite`);
+          for (const step of working.steps) {
+            const value = OWN_PARTS.includes(step.part) ? workOut(step) : null;
+            if (value === null) continue;
+            symbols.add(step.symbol);
+            const near = Math.abs(value - step.result) <= 1e-9 * Math.max(1, Math.abs(step.result));
+            if (!near) expect.fail(`${step.expression} gives ${value}, the working ${step.result} (parcel ${parcel}, day ${day})`);
+          }
+        }
+      }
+      for (const symbol of ['TAW', 'Dr,0', 'Pi', 'Dr,rain', 'Dr,1', 'ETc', 'RAW', 'W', 'T', 'Dr', 'residual'])
+        expect(symbols).toContain(symbol);
+    },
+  );
 });

@@ -4,6 +4,7 @@ import { plantingDay } from '../../db/library/calendars.ts';
 import { cropLibrary } from '../../db/library/crops.ts';
 import { LIBRARY_METHODS } from '../../db/library/methods.ts';
 import { LIBRARY_SOILS } from '../../db/library/soils.ts';
+import { MATURE_COVER } from '../../lib/crop/canopy.ts';
 
 const library = cropLibrary();
 const crop = (code: string) => library.crops.find((each) => each.code === code);
@@ -73,6 +74,53 @@ describe('crops', () => {
     }
   });
 
+  // FAO-56 Table 12: Kc ini, mid, end (maize grain: end 0.60 to 0.35, middle taken).
+  test.each([
+    ['bean-dry', 0.4, 1.15, 0.35],
+    ['tomato', 0.6, 1.15, 0.8],
+    ['citrus-70-canopy-no-cover', 0.7, 0.65, 0.7],
+    ['rice-paddy', 1.05, 1.2, 0.75],
+  ])('single coefficients of %s', (code, initial, mid, end) => {
+    expect(crop(code)?.single).toEqual({ initial, mid, end });
+    expect(library.sources[code].single).toContain('Table 12');
+  });
+
+  // FAO-33 Table 24, recalled: vegetative, flowering, yield formation, ripening.
+  test.each([
+    ['maize-grain', { development: 0.4, mid: 1.5, late: 0.2 }],
+    ['winter-wheat-frozen-soils', { development: 0.2, mid: 0.6 }],
+    ['soybean', { development: 0.2, mid: 1 }],
+    ['potato', { initial: 0.45, development: 0.8, mid: 0.7, late: 0.2 }],
+    ['onion-dry', { development: 0.45, mid: 0.8, late: 0.3 }],
+    ['lettuce', undefined],
+  ])('response by stage of %s', (code, expected) => {
+    expect(crop(code)?.stageResponse).toEqual(expected);
+    expect(library.sources[code].stageResponse === undefined).toBe(expected === undefined);
+  });
+
+  test('ponding, canopies and tables of critical temperatures go to the crops they are for', () => {
+    const having = (member: 'paddy' | 'canopy' | 'frostTable') => library.crops.filter((each) => each[member]).map(({ code }) => code);
+    expect(having('paddy')).toEqual(['rice-paddy']);
+    expect(having('canopy')).toEqual(
+      library.crops.filter(({ type, code }) => type === 'orchard' && !code.includes('active-cover')).map(({ code }) => code),
+    );
+    expect(['citrus-50-canopy-no-cover', 'olive-40-60-cover', 'walnut'].map((code) => crop(code)?.canopy?.cover)).toEqual([
+      0.5,
+      0.5,
+      MATURE_COVER,
+    ]);
+    expect(having('frostTable').map((code) => crop(code)?.frostTable)).toEqual(['apple', 'apple', 'peach', 'peach']);
+    expect(crop('citrus-70-canopy-no-cover')?.canopy).toEqual({ cover: 0.7, height: 4 });
+  });
+
+  test('every part has a source', () => {
+    for (const each of library.crops) {
+      for (const member of ['single', 'salinity', 'stageResponse', 'paddy', 'canopy', 'dormantBasal', 'frostTable'] as const) {
+        expect(library.sources[each.code][member] !== undefined, `${each.code} ${member}`).toBe(each[member] !== undefined);
+      }
+    }
+  });
+
   // FAO-56 Table 23: threshold dS/m and slope %/(dS/m).
   test.each([
     ['maize-grain', 1.7, 12],
@@ -80,6 +128,7 @@ describe('crops', () => {
     ['bean-dry', 1, 19],
   ])('salt tolerance of %s', (code, threshold, slope) => {
     expect(library.salinity[code]).toEqual({ threshold, slope });
+    expect(crop(code)?.salinity).toEqual({ threshold, slope });
   });
 });
 
@@ -103,10 +152,43 @@ describe('calendars', () => {
     expect(calendar?.laterCycle).toEqual({ initial: 5, development: 20, mid: 10, late: 10 });
     expect(
       library.calendars
-        .filter((each) => each.calendar.laterCycle !== null)
+        .filter(({ calendar }) => calendar.laterCycle !== null && !calendar.start)
         .map((each) => each.cropCode)
         .sort(),
     ).toEqual(['alfalfa-hay', 'alfalfa-hay', 'sudan-grass-hay']);
+  });
+
+  // FAO-56 chapter 6: winter wheat at 17 °C or on 1 December, spring wheat 5 °C, maize 13 °C, alfalfa and pasture by −4 °C, pasture 7 days around.
+  test.each([
+    ['winter-wheat-frozen-soils-autumn-start', '09-01', { kind: 'air-temperature', threshold: 17, days: 10, falling: true, latest: 91 }],
+    ['spring-wheat-spring-start', '02-01', { kind: 'air-temperature', threshold: 5, days: 10, latest: 100 }],
+    ['maize-grain-spring-start', '03-01', { kind: 'air-temperature', threshold: 13, days: 10, latest: 100 }],
+    ['alfalfa-hay-frost-to-frost', '01-01', { kind: 'frost-free', threshold: -4, latest: 150 }],
+    ['pasture-rotated-grazing-frost-to-frost', '01-01', { kind: 'frost-free', threshold: -4, latest: 150, offset: -7 }],
+  ])('start of %s', (code, plantingDay, start) => {
+    expect(library.calendars.find(({ calendar }) => calendar.code === code)).toMatchObject({ plantingDay, calendar: { start } });
+  });
+
+  test('1 December is 91 days after 1 September', () => {
+    expect((Date.UTC(2023, 11, 1) - Date.UTC(2023, 8, 1)) / 86400000).toBe(91);
+  });
+
+  test('calendars by weather come after those of fixed days, so that no default changes', () => {
+    const byWeather = library.calendars.map(({ calendar }) => Boolean(calendar.start || calendar.thermal));
+    const first = byWeather.indexOf(true);
+    expect(first).toBeGreaterThan(60);
+    expect(byWeather.slice(first).every(Boolean)).toBe(true);
+    expect(byWeather.length - first).toBe(9);
+  });
+
+  // Where Table 11 prints a total that its stages do not sum to, the stages stand: sorghum 130, sesame 100, green gram 110 as printed.
+  test.each([
+    ['sorghum-grain', 125],
+    ['sesame', 110],
+    ['green-gram-and-cowpea', 100],
+  ])('stages of %s sum to %i', (code, total) => {
+    const calendar = library.calendars.find((each) => each.cropCode === code && !each.calendar.start)?.calendar;
+    expect((calendar?.initial ?? 0) + (calendar?.development ?? 0) + (calendar?.mid ?? 0) + (calendar?.late ?? 0)).toBe(total);
   });
 
   test('codes are unique and name a crop of the library', () => {

@@ -7,7 +7,8 @@ import { describe, expect, test } from 'vitest';
 import { depletionFraction, drainage, refilledDepletion, stressCoefficient, totalAvailableWater } from '../../lib/crop/root-zone.ts';
 import { potentialRetention, surfaceRunoff } from '../../lib/crop/runoff.ts';
 import { relativeYield, stressFromRelativeYield } from '../../lib/crop/yield-response.ts';
-import { emptyStripDay, emptyStripState, stepDay } from '../../lib/season/day.ts';
+import { walkStrip } from '../../lib/season/walk.ts';
+import { handStrip } from '../support/hand-strip.ts';
 import { near } from '../support/near.ts';
 
 describe('Example 36: TAW and RAW, printed in whole mm', () => {
@@ -46,42 +47,20 @@ describe('Example 37: tomato drying out', () => {
     }
   });
 
-  test('the day step of the season gives the same Dr, with Kcb 1.2, no evaporation and p held at 0.40', () => {
-    const ground = {
-      fieldCapacity: 0.32,
-      wiltingPoint: 0.12,
-      readilyEvaporable: 9,
-      totalEvaporable: 26,
-      deepestRoot: 0.8,
-      methodWetted: 1,
-      underCanopy: false,
-      maximumDailyDepth: 50,
-      triggerFraction: 1,
-    };
-    const state = Object.assign(emptyStripState(), {
-      rootDepth: 0.8,
-      depletion: 55,
-      belowDepletion: 0,
-      wettedFraction: 1,
-      depletionFraction: 0.4,
-    });
+  test('the walk of the season gives the same Dr and Ks, with Kcb 1.2, no evaporation and p held at 0.40', () => {
     // A dry surface evaporates nothing. ETc is 6 mm/d, so that a table p of 0.44 gives the example's 0.40.
-    const given = {
-      referenceEt: 5,
-      climate: 0,
-      precipitation: 0,
-      surfaceRunoff: 0,
-      basal: 1.2,
-      height: 0.6,
-      heightFactor: 0.6,
-      rootDepth: 0.8,
-    };
-    const day = Object.assign(emptyStripDay(), given, { tableFraction: 0.44, planted: true, firstDay: false, mayIrrigate: false });
+    const { walk, row } = handStrip({
+      days: 10,
+      settings: { irrigate: false },
+      weather: { referenceEt: 5 },
+      curve: { basal: 1.2, height: 0.6, rootDepth: 0.8, available: 160, tableFraction: 0.44 },
+      ground: { readilyEvaporable: 9, totalEvaporable: 26 },
+      opening: [55, 0, 26],
+    });
+    expect(walkStrip(walk)).toBeLessThan(1e-9);
     for (let k = 0; k < 10; k++) {
-      state.surfaceDepletion = 26;
-      stepDay(ground, state, day, null);
-      near(day.stress, recomputedStress[k], 0.0006);
-      near(state.depletion, printedDepletion[k], 0.06);
+      near(row('stress_coefficient')[k], recomputedStress[k], 0.0006);
+      near(row('root_zone_depletion')[k], printedDepletion[k], 0.06);
     }
   });
 });

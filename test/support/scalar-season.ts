@@ -23,6 +23,10 @@ export interface ScalarDay {
   basal_crop_coefficient: number;
   stress_coefficient: number;
   soil_water_depletion: number;
+  irrigation_percolation: number;
+  capillary_rise: number;
+  snow_water: number;
+  ponded_water: number;
 }
 
 interface Weather {
@@ -88,6 +92,10 @@ export function scalarSeason(input: SeasonInput, parcel: ParcelInput): ScalarDay
       basal_crop_coefficient: mean((x) => x.kcb),
       stress_coefficient: soil((x) => x.ks),
       soil_water_depletion: mean((x) => x.whole),
+      irrigation_percolation: 0,
+      capillary_rise: 0,
+      snow_water: 0,
+      ponded_water: 0,
     };
   });
 }
@@ -344,7 +352,8 @@ function runLand(input: SeasonInput, parcel: ParcelInput, land: Land, weather: W
     const zs = Math.max(z, Math.min(soil.rootLimit > 0 ? Math.min(half, soil.rootLimit) : half, zMax));
     const dry = dr + (zs > z ? (below * (zs - z)) / (zMax - z) : 0);
     const callsFor = Math.max(0, dry - exposed * Math.max(0, de - pi)); // the bare surface does not count
-    const starts = underWay || callsFor >= method.triggerFraction * p * perMetre * zs || dr > p * taw;
+    const runsShort = method.triggerFraction <= 1 && dr > p * taw; // above 1 it does on purpose
+    const starts = underWay || callsFor >= method.triggerFraction * p * perMetre * zs || runsShort;
     const irrigation = settings.irrigate && crop?.mayIrrigate && dry > 0.5 && starts ? Math.min(dry, method.maximumDailyDepth) : 0;
     underWay = irrigation > 0 && dry - irrigation > 0.5;
     below = Math.max(0, below - Math.max(0, irrigation - dr));

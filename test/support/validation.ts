@@ -55,7 +55,7 @@ function short(value: number): number {
 function keep(name: string, file: ValidationFile): void {
   const folder = new URL('../../lib/report/validation/', import.meta.url);
   const path = new URL(`${name}.json`, folder);
-  const text = `${JSON.stringify(file, null, 1)}\n`;
+  const text = `${JSON.stringify(file, null, 2)}\n`;
   if (process.env.UPDATE_GOLDEN === '1') {
     mkdirSync(folder, { recursive: true });
     writeFileSync(path, text);

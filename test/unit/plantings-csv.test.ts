@@ -32,6 +32,84 @@ describe('a table of plantings', () => {
     expect(findings).toEqual([]);
   });
 
+  describe('how a planting is watered and covered', () => {
+    const head = 'parcel,season,crop,planting_date';
+    const one = async (columns: string, cells: string) => {
+      const reading = await plantings(`${head},${columns}\n001,2023,maize-grain,2023-05-02,${cells}\n`);
+      return { ...reading, practice: reading.rows[0]?.practice };
+    };
+
+    test.each([
+      ['irrigation_rule', 'none', { irrigation: { kind: 'none' } }],
+      ['irrigation_rule', 'Rain-fed', { irrigation: { kind: 'none' } }],
+      ['irrigation_rule,irrigation_interval_d', 'interval,7', { irrigation: { kind: 'interval', days: 7 } }],
+      ['interval days', '10', { irrigation: { kind: 'interval', days: 10 } }],
+      ['irrigation depth (in)', '2', { irrigation: { kind: 'fixed-depth', depth: 50.8 } }],
+      ['trigger,refill', '0.6,90', { irrigation: { kind: 'depletion', trigger: 0.6, refill: 0.9 } }],
+      ['trigger', '150', { irrigation: { kind: 'depletion', trigger: 1.5 } }],
+      [
+        'irrigation_rule,irrigation_trigger,trigger_development,refill_late',
+        'deficit,1,1.4,0.5',
+        {
+          irrigation: {
+            kind: 'deficit',
+            stages: {
+              initial: { trigger: 1, refill: 1 },
+              development: { trigger: 1.4, refill: 1 },
+              mid: { trigger: 1, refill: 1 },
+              late: { trigger: 1, refill: 0.5 },
+            },
+          },
+        },
+      ],
+      ['mulch,mulch_cover', 'plastic,70', { mulch: { kind: 'plastic', cover: 0.7 } }],
+      ['mulch', 'organic', { mulch: { kind: 'organic', cover: 1 } }],
+      ['canopy_cover,canopy_height (ft)', '0.45,10', { canopy: { cover: 0.45, height: 3.048 } }],
+      ['pre_irrigation_days,pre_irrigation_depth', '14,80', { preIrrigation: { daysBefore: 14, depth: 80 } }],
+      ['pre_irrigation_days', '14', { preIrrigation: { daysBefore: 14 } }],
+      [
+        'germination',
+        '2:20; 8:15.5',
+        {
+          germination: [
+            { daysAfter: 2, depth: 20 },
+            { daysAfter: 8, depth: 15.5 },
+          ],
+        },
+      ],
+      ['mulch', 'none', undefined],
+      ['irrigation_rule', '', undefined],
+    ])('%s: %s', async (columns, cells, expected) => {
+      const { practice, findings } = await one(columns, cells);
+      expect(findings.filter(({ severity }) => severity === 'error')).toEqual([]);
+      if (expected === undefined) expect(practice).toBeUndefined();
+      else expect(practice).toEqual(expected);
+    });
+
+    test.each([
+      ['irrigation_rule', 'sometimes', 'unknown-irrigation-rule', /depletion, interval, fixed-depth, daily, deficit, none/],
+      ['irrigation_rule', 'interval', 'irrigation-rule-incomplete', /days between/],
+      ['irrigation_rule', 'fixed-depth', 'irrigation-rule-incomplete', /net depth in mm/],
+      ['irrigation_rule', 'deficit', 'irrigation-rule-incomplete', /trigger for every stage/],
+      ['irrigation_interval', '2.5', 'not-whole-days', /1 to 120 d/],
+      ['irrigation_interval', '400', 'value-out-of-range', /1 to 120 d/],
+      ['irrigation_depth', '0.2', 'value-out-of-range', /1 to 500 mm/],
+      ['mulch', 'gravel', 'unknown-mulch', /plastic, organic, none/],
+      ['mulch_cover', '0.5', 'unknown-mulch', /plastic, organic, none/],
+      ['canopy_cover', '0.5', 'canopy-incomplete', /both cover and height/],
+      ['canopy_cover,canopy_height', '0.5,90', 'value-out-of-range', /0.1 to 30 m/],
+      ['germination', '20 mm', 'not-a-germination', /days 0 to 120/],
+      ['germination', '2:900', 'not-a-germination', /1 to 500 mm/],
+    ])('%s "%s" is refused: %s', async (columns, cells, code, limit) => {
+      const reading = await one(columns, cells);
+      expect(errors(reading)).toEqual([[2, code]]);
+      const [finding] = reading.findings.filter(({ severity }) => severity === 'error');
+      expect(finding.limit).toMatch(limit);
+      expect(finding.advice).toBeTruthy();
+      expect(reading.rows).toEqual([]);
+    });
+  });
+
   test('the first calendar of the crop and its customary day stand in, with a note', async () => {
     const { rows, findings } = await plantings('parcel,crop\n001,"Maize, grain"\n', { season: '2023' });
     expect(rows[0]).toMatchObject({ calendarCode: 'maize-early', plantingDate: '2023-04-15', areaShare: 1 });

@@ -18,6 +18,9 @@ describe('season pool', () => {
     const got = await pool.run(input);
     expect(got.daily).toEqual(expected.daily);
     expect(got.flags).toEqual(expected.flags);
+    expect(got.stageEt).toEqual(expected.stageEt);
+    expect(got.stageDays).toEqual(expected.stageDays);
+    expect(got.closing).toEqual(expected.closing);
     expect(got.maxBalanceResidual).toBe(expected.maxBalanceResidual);
   });
 

@@ -214,7 +214,11 @@ describe('plantings', () => {
 
 describe('refusals', () => {
   test.each<[string, Partial<ParcelInput>, RegExp]>([
-    ['a crop on the other surface', { plantings: [planting({}, { surface: 'tall' })] }, /crop bean has coefficients for the tall surface/],
+    [
+      'a crop on an unknown surface',
+      { plantings: [planting({}, { surface: 'pan' as 'tall' })] },
+      /crop bean has coefficients for the pan surface/,
+    ],
     [
       'more than the parcel planted at once',
       { plantings: [planting({ areaShare: 0.7 }), planting({ areaShare: 0.5, plantingDate: '2024-06-01' })] },
@@ -233,6 +237,50 @@ describe('refusals', () => {
     ['a date that is none', { plantings: [planting({ plantingDate: '2024-02-30' })] }, /"2024-02-30" is not a date/],
     ['a site that is none', { weights: [{ site: 4, weight: 1 }] }, /site index 4 is not within 0 … 0/],
     ['efficiency 0', { method: { ...parcel().method, efficiency: 0 } }, /efficiency 0 is not within 0.01 … 1/],
+    [
+      'layers with a gap',
+      {
+        soil: {
+          ...parcel().soil,
+          layers: [
+            { top: 0, bottom: 0.3, fieldCapacity: 0.3, wiltingPoint: 0.1 },
+            { top: 0.4, bottom: 1, fieldCapacity: 0.3, wiltingPoint: 0.1 },
+          ],
+        },
+      },
+      /top 0.4 m must be where the layer above ends, 0.3 m \(layer 2 of soil loam/,
+    ],
+    [
+      'an efficiency curve that goes back',
+      {
+        method: {
+          ...parcel().method,
+          efficiencyByDepth: [
+            { depth: 40, efficiency: 0.6 },
+            { depth: 20, efficiency: 0.7 },
+          ],
+        },
+      },
+      /depth 20 mm of the efficiency curve must be above the one before it/,
+    ],
+    [
+      'a least depth above the greatest',
+      { method: { ...parcel().method, minimumDepth: 300 } },
+      /least depth \[mm\] 300 is not within 0 … 200/,
+    ],
+    [
+      'soil water of the first morning out of order',
+      {
+        initialWater: {
+          profile: [
+            { bottom: 0.5, depletion: 10 },
+            { bottom: 0.3, depletion: 5 },
+          ],
+        },
+      },
+      /depth 0.3 m must be below 0.5 m/,
+    ],
+    ['days without values', { deliveries: { days: [1, 2], values: [10] } }, /delivery \[mm\]: 2 days but 1 values/],
     ['no elevation', { elevation: Number.NaN }, /elevation NaN is not within -500 … 9000 \(parcel P1\)/],
   ])('%s', (_, change, message) => {
     expect(() => runSeason(season([parcel(change)]))).toThrow(message);
@@ -243,6 +291,12 @@ describe('refusals', () => {
     const input = season([parcel()]);
     input.weather.airTemperatureMin[7] = Number.NaN;
     expect(() => runSeason(input)).toThrow(/no weather for parcel P1 on 2024-05-08: none of its sites \(S1\)/);
+  });
+
+  test('lead days that leave no season', () => {
+    expect(() => runSeason(season([parcel()], { leadDays: DAYS }))).toThrow(
+      /lead days 120 must be a whole number from 0 to below the 120 days/,
+    );
   });
 
   test('weather of another length is a shape error', () => {

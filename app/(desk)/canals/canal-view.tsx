@@ -1,5 +1,8 @@
 import type { UnitSystem } from '../../../lib/base/units.ts';
+import type { BandRow } from '../../../lib/http/contract/band.ts';
 import type { ReachPeriod, RunAnswer } from '../../../lib/http/contract/run.ts';
+import { AheadPeriod } from '../../_components/ahead-period.tsx';
+import { betweenText } from '../../_components/band-words.ts';
 import { CapacityWarning } from '../../_components/capacity-warning.tsx';
 import { periodName } from '../../_components/date-words.ts';
 import { Cautions, EmptyState } from '../../_components/empty-state.tsx';
@@ -17,6 +20,8 @@ import { CapacityBar, ReachTable, shareHead } from '../../_components/reach-tabl
 interface CanalViewProps {
   readonly run: RunAnswer;
   readonly reaches: readonly ReachPeriod[];
+  /** head inflow of the period by reach; empty where the run has no band */
+  readonly band: ReadonlyMap<string, BandRow>;
   readonly choice: PeriodChoice;
   readonly query: Query;
   readonly grower: boolean;
@@ -24,7 +29,7 @@ interface CanalViewProps {
 }
 
 /** What every reach must carry in a period: warnings, line diagram, profile, table. */
-export function CanalView({ run, reaches, choice, query, grower, units }: CanalViewProps) {
+export function CanalView({ run, reaches, band, choice, query, grower, units }: CanalViewProps) {
   const period = periodName(choice.kind, choice.period);
   const long = choice.kind !== 'week';
   const shown = { reaches, units, period, long };
@@ -39,12 +44,14 @@ export function CanalView({ run, reaches, choice, query, grower, units }: CanalV
         </a>
       </PageHead>
       <PeriodPicker path="/canals" query={{ ...query, period: choice.kind }} choice={choice} />
+      <AheadPeriod ahead={run.days_ahead} period={choice.period} />
       {reaches.length === 0 ? (
         <NoReaches grower={grower} />
       ) : (
         <>
           <CapacityWarning {...shown} />
           <Headworks reaches={reaches} units={units} long={long} />
+          <HeadworksBand reaches={reaches} band={band} units={units} />
           <Section id="diagram-section" title="Line diagram">
             <ReachDiagram reaches={reaches} units={units} period={period} />
           </Section>
@@ -56,7 +63,7 @@ export function CanalView({ run, reaches, choice, query, grower, units }: CanalV
             title="Reach by reach"
             note="A reach stands under the one that feeds it. Inflow = taken by its turnouts + lost in the reach + inflow of the reaches it feeds. It is held against its capacity by the mean of its busiest seven days, because turns within a week level out single days; the peak day stands beside it."
           >
-            <ReachTable {...shown} />
+            <ReachTable {...shown} band={band} />
           </Section>
         </>
       )}
@@ -85,6 +92,18 @@ function Headworks({ reaches, units, long }: { reaches: readonly ReachPeriod[]; 
       </div>
     </dl>
   ));
+}
+
+/** How sure the diversion is, in a sentence; nothing where the run has no band. */
+function HeadworksBand({ reaches, band, units }: Pick<CanalViewProps, 'reaches' | 'band' | 'units'>) {
+  return headsOf(reaches).map(({ reach, name }) => {
+    const between = betweenText(band.get(reach), 'volume', units);
+    return between ? (
+      <p key={reach}>
+        In 8 of 10 cases the diversion at {name || reach} lies {between}. <Go href="/methods#band">How this is computed</Go>
+      </p>
+    ) : null;
+  });
 }
 
 function Big(props: { name: string; value: number | null; quantity: Quantity; units: UnitSystem }) {

@@ -1,4 +1,5 @@
 import type { Metadata } from 'next';
+import { answerBand } from '../../../lib/http/answers/band.ts';
 import { answerReaches } from '../../../lib/http/answers/run-reaches.ts';
 import { answerSummary } from '../../../lib/http/answers/summary.ts';
 import { NoRunPage } from '../../_components/empty-state.tsx';
@@ -18,5 +19,8 @@ export default async function CanalsPage({ searchParams }: PageProps) {
   const preferred = busiestWeek(weeks, (week) => week.headworks_inflow_m3);
   const choice = choosePeriod(query, run, weekStartOf(run, caller.district), { kind: 'week', preferred });
   const { items } = await answerReaches(caller, run.id, { period: choice.kind, from: choice.period.start, to: choice.period.end });
-  return <CanalView run={run} reaches={items} choice={choice} query={query} grower={caller.role === 'grower'} units={caller.units} />;
+  const band = await answerBand(caller, run.id, { level: 'reach', period: choice.kind, limit: 60_000 });
+  const banded = new Map(band.items.filter(({ start }) => start === choice.period.start).map((row) => [row.place, row]));
+  const shown = { run, reaches: items, band: banded, choice, query, units: caller.units };
+  return <CanalView {...shown} grower={caller.role === 'grower'} />;
 }

@@ -1,5 +1,6 @@
 import type { Metadata } from 'next';
-import { answerMethods, answerSoils } from '../../../lib/http/answers/land.ts';
+import { answerSoils } from '../../../lib/http/answers/land.ts';
+import { answerMethods } from '../../../lib/http/answers/methods.ts';
 import { Go } from '../../_components/go.tsx';
 import { callerInView, runInView } from '../../_components/in-view.ts';
 import { PageHead } from '../../_components/page-head.tsx';

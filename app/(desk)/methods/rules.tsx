@@ -14,6 +14,11 @@ import { percent } from '../../_components/figures.ts';
 import { Go } from '../../_components/go.tsx';
 import { Section } from '../../_components/page-head.tsx';
 import { SETTINGS, settingText } from '../../_components/run-words.ts';
+import { AheadRules } from './ahead-rules.tsx';
+import { BandRules } from './band-rules.tsx';
+import { CropRules } from './crop-rules.tsx';
+import { GroundRules } from './ground-rules.tsx';
+import { RecordRules } from './record-rules.tsx';
 
 /** What is done between the equations: weather to parcels, gaps, checks, canals, classes, and the cautions. */
 export function Rules({ run }: { run: RunAnswer | null }) {
@@ -21,8 +26,13 @@ export function Rules({ run }: { run: RunAnswer | null }) {
     <>
       <Interpolation run={run} />
       <Gaps />
+      <AheadRules />
       <QualityRules />
+      <CropRules />
+      <GroundRules />
+      <RecordRules />
       <Canals />
+      <BandRules />
       <Section id="classes" title="Classes of the map">
         <p>
           {Object.values(CLASS_METHODS).join(', ')}. Class i holds the values from its lower limit up to, but not including, its upper; the
@@ -120,7 +130,11 @@ function Interpolation({ run }: { run: RunAnswer | null }) {
           rowKey={(setting) => setting.key}
           columns={[
             { key: 'name', head: 'Setting', rowHead: true, cell: (setting) => setting.name },
-            { key: 'value', head: 'Value', cell: (setting) => settingText(run.settings[setting.key as keyof RunAnswer['settings']]) },
+            {
+              key: 'value',
+              head: 'Value',
+              cell: (setting) => settingText(run.settings[setting.key as keyof RunAnswer['settings']], setting.key),
+            },
             { key: 'help', head: 'What it does', cell: (setting) => setting.help },
           ]}
         />

@@ -1,5 +1,6 @@
 import type { UnitSystem } from '../../../lib/base/units.ts';
 import type { RunAnswer } from '../../../lib/http/contract/run.ts';
+import { AheadPeriod } from '../../_components/ahead-period.tsx';
 import { type Column, DataTable, type SortState } from '../../_components/data-table.tsx';
 import { periodName } from '../../_components/date-words.ts';
 import { figure, percent, plain, unitOf } from '../../_components/figures.ts';
@@ -30,6 +31,7 @@ export function ParcelTable({ run, choice, list, query, units }: ParcelTableProp
       <p className="small">
         {plain(list.count, 0)} {list.count === 1 ? 'parcel' : 'parcels'}, {name}, season {run.season}. <Narrowed query={query} />
       </p>
+      <AheadPeriod ahead={run.days_ahead} period={choice.period} />
       <DataTable
         caption={`Parcels, ${name}`}
         columns={columnsOf(list, units, detail)}

@@ -9,11 +9,13 @@ export interface StartRunProps {
   readonly soils: readonly Readonly<Record<string, unknown>>[];
   readonly methods: readonly Readonly<Record<string, unknown>>[];
   readonly sources: readonly string[];
+  /** names of the forecasts */
+  readonly forecasts: readonly string[];
   readonly allowed: boolean;
 }
 
 /** The form that starts a run, or what is missing before one can start. */
-export function StartRun({ district, soils, methods, sources, allowed }: StartRunProps) {
+export function StartRun({ district, soils, methods, sources, forecasts, allowed }: StartRunProps) {
   if (!allowed) return <p className="muted">Operators and managers start runs.</p>;
   const { parcels, sites } = district.counts;
   if (district.seasons.length === 0 || parcels === 0 || sites === 0) {
@@ -44,6 +46,7 @@ export function StartRun({ district, soils, methods, sources, allowed }: StartRu
         soils={soils.map(named)}
         methods={methods.map(named)}
         sources={sources}
+        forecasts={forecasts}
       />
     </Section>
   );

@@ -1,9 +1,11 @@
 import type { Metadata } from 'next';
 import { answerMembers, answerTokens } from '../../../lib/http/answers/members.ts';
+import { answerMethods } from '../../../lib/http/answers/methods.ts';
 import { callerInView, districtInView } from '../../_components/in-view.ts';
 import { PageHead } from '../../_components/page-head.tsx';
 import { DistrictFacts } from './district-facts.tsx';
 import { MemberTable } from './member-table.tsx';
+import { MethodTable } from './method-table.tsx';
 import { TokenSection } from './token-section.tsx';
 
 export const metadata: Metadata = { title: 'Settings' };
@@ -18,6 +20,7 @@ export default async function SettingsPage() {
         lead="How the district is set. Managers change it, look after its people and make tokens for its scripts."
       />
       <DistrictFacts district={district} units={caller.units} scope={caller.scope} />
+      <MethodTable methods={await answerMethods(caller)} units={caller.units} manages={manages} />
       {manages ? <MemberTable members={await answerMembers(caller)} district={district.name} self={caller.userId} /> : null}
       {manages ? <TokenSection tokens={await answerTokens(caller)} timeZone={caller.district.timeZone} /> : null}
     </div>

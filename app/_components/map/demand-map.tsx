@@ -3,10 +3,12 @@
 import { useCallback, useEffect, useMemo, useRef, useState } from 'react';
 import { flushSync } from 'react-dom';
 import type { UnitSystem } from '../../../lib/base/units.ts';
+import type { BandAnswer } from '../../../lib/http/contract/band.ts';
 import type { MapDescription } from '../../../lib/http/contract/run.ts';
 import { CAUTIONS } from '../../../lib/report/cautions.ts';
 import type { Theme } from '../../../lib/report/colour-scale.ts';
 import { figureWithUnit } from '../figures.ts';
+import { aheadInRange } from './ahead-weeks.ts';
 import { ClassControls } from './class-controls.tsx';
 import { ClassLegend } from './class-legend.tsx';
 import styles from './demand-map.module.css';
@@ -22,6 +24,7 @@ import { flowsOver, greatestFlow, type ReachWeeks } from './reach-flows.ts';
 import { rangeWords, SeasonStrip } from './season-strip.tsx';
 import { useDark, useMapAddress } from './use-map-address.ts';
 import { useAnswer, useValueStore, useWeekValues, type ValueStore } from './use-map-data.ts';
+import { weekEnds } from './week-band.ts';
 
 export interface DemandMapProps {
   readonly description: MapDescription;
@@ -85,6 +88,8 @@ export function DemandMap({ description, units }: DemandMapProps) {
   const gross = useWeekValues(store, 'gross_requirement');
   const volumes = useMemo(() => (gross.data ? weekVolumes(gross.data, area) : null), [gross.data, area]);
   const reachWeeks = useAnswer<ReachWeeks>(`/api/v1/runs/${description.run}/reach-values/weeks`);
+  const band = useAnswer<BandAnswer>(`/api/v1/runs/${description.run}/band?level=district&variable=gross_volume&period=week`);
+  const ends = useMemo(() => weekEnds(band.data, weeks), [band.data, weeks]);
   const reaches = useMemo(() => {
     if (!reachWeeks.data) return null;
     return { flows: flowsOver(reachWeeks.data, range, days), codes: reachWeeks.data.reaches, most: greatestFlow(reachWeeks.data) };
@@ -103,6 +108,7 @@ export function DemandMap({ description, units }: DemandMapProps) {
   // biome-ignore lint/correctness/useExhaustiveDependencies: forgets the picks with the variable and the choice of classes
   useEffect(() => setPicked(new Set()), [variable, choice]);
 
+  const notObserved = aheadInRange(weeks, range, description.ahead);
   const words = rangeWords(weeks, range);
   const unit = unitOfVariable(variable, units);
   const tip = (position: number) => `${codes[position]}: ${values ? writeValue(values[position], variable, units) : '…'} ${unit}`.trim();
@@ -111,7 +117,15 @@ export function DemandMap({ description, units }: DemandMapProps) {
   return (
     <div className={styles.desk} data-card={chosen !== null}>
       <h1 className="visually-hidden">Demand map</h1>
-      <SeasonStrip weeks={weeks} volumes={volumes} range={range} units={units} onRange={address.setRange} />
+      <SeasonStrip
+        weeks={weeks}
+        volumes={volumes}
+        ends={ends}
+        range={range}
+        ahead={description.ahead}
+        units={units}
+        onRange={address.setRange}
+      />
       <div className={styles.body}>
         <div className={styles.side}>
           <ParcelSearch codes={codes} onChoose={address.setChosen} />
@@ -164,7 +178,7 @@ export function DemandMap({ description, units }: DemandMapProps) {
           />
         )}
       </div>
-      <Foot values={values} area={area} variable={variable} words={words} units={units} />
+      <Foot values={values} area={area} variable={variable} words={notObserved ? `${words} (${notObserved})` : words} units={units} />
     </div>
   );
 }

@@ -2,6 +2,8 @@ import { scaleLinear } from 'd3-scale';
 import { area, line } from 'd3-shape';
 import type { UnitSystem } from '../../../lib/base/units.ts';
 import type { ParcelDay } from '../../../lib/http/contract/run.ts';
+import { isAhead } from '../../../lib/weather/day-kind.ts';
+import { aheadWords } from '../ahead-shade.tsx';
 import { monthTicks } from '../date-words.ts';
 import { figureWithUnit } from '../figures.ts';
 import type { WeekSpan } from './map-values.ts';
@@ -18,6 +20,7 @@ export function SeasonSketch({ days, span, units }: { days: readonly ParcelDay[]
   const y = scaleLinear().domain([0, most]).range([FLOW.bottom, FLOW.top]);
   const first = days.findIndex((day) => day.date >= span.start);
   const last = days.findLastIndex((day) => day.date <= span.end);
+  const firstAhead = days.findIndex(({ day_kind }) => isAhead(day_kind));
   const et = line<ParcelDay>()
     .defined((day) => day.crop_et_mm !== null)
     .x((_, index) => x(index + 0.5))
@@ -30,6 +33,7 @@ export function SeasonSketch({ days, span, units }: { days: readonly ParcelDay[]
         Irrigation <span className="key" data-water="et" />
         Crop ET <span className="key" data-water="soil" />
         Depletion
+        {firstAhead < 0 ? null : `; hatched: ${aheadWords(days).replace('From', 'from').replace(/\.$/, '')}`}
       </figcaption>
       <svg
         className="chart"
@@ -38,6 +42,16 @@ export function SeasonSketch({ days, span, units }: { days: readonly ParcelDay[]
         aria-label="The parcel's season: rain, irrigation, crop ET and root-zone depletion by day"
       >
         <rect x={x(first)} width={Math.max(2, x(last + 1) - x(first))} y={0} height={SOIL.bottom} fill="var(--accent-soft)" />
+        {firstAhead < 0 ? null : (
+          <>
+            <defs>
+              <pattern id="sketch-ahead" width="6" height="6" patternUnits="userSpaceOnUse" patternTransform="rotate(-45)">
+                <line x1="0" y1="0" x2="0" y2="6" stroke="var(--ink-2)" strokeOpacity={0.4} />
+              </pattern>
+            </defs>
+            <rect x={x(firstAhead)} width={WIDTH - x(firstAhead)} y={FLOW.top} height={SOIL.bottom - FLOW.top} fill="url(#sketch-ahead)" />
+          </>
+        )}
         <text x={0} y={10}>{`${figureWithUnit(most, 'depth', units)} a day`}</text>
         <Bars days={days} x={x} y={y} pick={(day) => day.net_requirement_mm} water="irrigation" />
         <Bars days={days} x={x} y={y} pick={(day) => day.precipitation_mm} water="rain" />

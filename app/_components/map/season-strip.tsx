@@ -7,14 +7,20 @@ import { formatVolume } from '../../../lib/report/quantity-text.ts';
 import { dateRange, dayMonth, longDate, monthName } from '../date-words.ts';
 import { inUnits, plain, unitOf } from '../figures.ts';
 import { Icon } from '../icon.tsx';
+import { type AheadWeeks, aheadInRange, weekKind } from './ahead-weeks.ts';
 import type { WeekRange, WeekSpan } from './map-values.ts';
 import styles from './season-strip.module.css';
+import { endsText, mostOf, type WeekEnds } from './week-band.ts';
 
 interface StripProps {
   readonly weeks: readonly WeekSpan[];
   /** m³ of each week; null while they are on their way */
   readonly volumes: readonly number[] | null;
+  /** ends of the band of each week; null where the run has none */
+  readonly ends?: readonly WeekEnds[] | null;
   readonly range: WeekRange;
+  /** days past the last observation; null where every week has been observed */
+  readonly ahead: AheadWeeks;
   readonly units: UnitSystem;
   readonly onRange: (range: WeekRange) => void;
 }
@@ -84,7 +90,12 @@ export function SeasonStrip(props: StripProps) {
         <h2 className={styles.said} aria-live="polite">
           {capital(rangeWords(weeks, range))}
         </h2>
-        <p className={styles.readout}>{pointed === null ? asked(volumes, range, units) : readout(weeks, volumes, pointed, units)}</p>
+        <p className={styles.readout}>
+          {pointed === null
+            ? asked(volumes, range, units) + endsText(props.ends ?? null, range, units)
+            : readout(weeks, volumes, pointed, units) + endsText(props.ends ?? null, { from: pointed, to: pointed }, units)}
+        </p>
+        <AheadSaid weeks={weeks} range={pointed === null ? range : { from: pointed, to: pointed }} ahead={props.ahead} />
         <div className={`${styles.buttons} no-print`}>
           <button
             type="button"
@@ -117,6 +128,17 @@ export function SeasonStrip(props: StripProps) {
   );
 }
 
+/** What the weeks rest on where they are not wholly observed, beside the hatch of their bars. */
+function AheadSaid({ weeks, range, ahead }: Pick<StripProps, 'weeks' | 'range' | 'ahead'>) {
+  const words = aheadInRange(weeks, range, ahead);
+  if (words === '') return null;
+  return (
+    <p className={styles.ahead}>
+      <span className={styles.aheadKey} data-kind={weekKind(weeks[range.to], ahead)} aria-hidden="true" /> {capital(words)}
+    </p>
+  );
+}
+
 function capital(text: string): string {
   return text.charAt(0).toUpperCase() + text.slice(1);
 }
@@ -132,9 +154,9 @@ function readout(weeks: readonly WeekSpan[], volumes: readonly number[] | null, 
 }
 
 /** The axis counts in thousands once a week passes ten thousand. */
-function axisOf(volumes: readonly number[], units: UnitSystem) {
+function axisOf(volumes: readonly number[], ends: readonly WeekEnds[] | null, units: UnitSystem) {
   const shown = volumes.map((volume) => inUnits(volume, 'volume', units));
-  const most = shown.reduce((a, b) => Math.max(a, b), 0);
+  const most = shown.reduce((a, b) => Math.max(a, b), mostOf(ends, units));
   const thousands = most >= 10_000 ? 1000 : 1;
   const steps = ticks(0, most || 1, 3);
   const step = steps.length > 1 ? steps[1] - steps[0] : 1;
@@ -153,7 +175,7 @@ function StripBars(props: StripProps & { onPoint: (week: number | null) => void 
   const { weeks, volumes, range, units, onRange, onPoint } = props;
   const plot = useRef<HTMLDivElement>(null);
   const anchor = useRef<number | null>(null);
-  const axis = axisOf(volumes ?? [], units);
+  const axis = axisOf(volumes ?? [], props.ends ?? null, units);
   const weekAt = (event: PointerEvent) => {
     const box = plot.current?.getBoundingClientRect();
     if (!box) return 0;
@@ -199,7 +221,9 @@ function StripBars(props: StripProps & { onPoint: (week: number | null) => void 
         aria-valuemin={1}
         aria-valuemax={weeks.length}
         aria-valuenow={range.to + 1}
-        aria-valuetext={`${rangeWords(weeks, range)}; ${asked(volumes, range, units)}`}
+        aria-valuetext={[rangeWords(weeks, range), asked(volumes, range, units), aheadInRange(weeks, range, props.ahead)]
+          .filter(Boolean)
+          .join('; ')}
         aria-describedby="strip-keys"
         onPointerDown={press}
         onPointerMove={move}
@@ -212,8 +236,14 @@ function StripBars(props: StripProps & { onPoint: (week: number | null) => void 
           <i key={mark.at} className={styles.rule} style={{ bottom: `${mark.at * 100}%` }} />
         ))}
         {weeks.map((week, index) => (
-          <span key={week.start} className={styles.week} data-on={index >= range.from && index <= range.to}>
+          <span
+            key={week.start}
+            className={styles.week}
+            data-on={index >= range.from && index <= range.to}
+            data-kind={weekKind(week, props.ahead)}
+          >
             <span className={styles.bar} style={{ height: `${((axis.shown[index] ?? 0) / axis.top) * 100}%` }} />
+            <Whisker ends={props.ends?.[index]} top={axis.top} units={units} />
           </span>
         ))}
       </div>
@@ -223,6 +253,13 @@ function StripBars(props: StripProps & { onPoint: (week: number | null) => void 
       </p>
     </div>
   );
+}
+
+/** The band of a week as a line from its low to its high end. */
+function Whisker({ ends, top, units }: { ends: WeekEnds | undefined; top: number; units: UnitSystem }) {
+  if (!ends || !(ends.high > 0)) return null;
+  const share = (volume: number) => `${(inUnits(volume, 'volume', units) / top) * 100}%`;
+  return <i className={styles.whisker} style={{ bottom: share(ends.low), height: share(ends.high - ends.low) }} />;
 }
 
 /** Month names under the weeks in which they begin. */

@@ -11,6 +11,7 @@ import type { UnitSystem } from '../../base/units.ts';
 import { capacityStatus } from '../../canal/reach-period.ts';
 import { type DistrictReportInput, districtReport, type Report } from '../../report/district-report.ts';
 import type { ParcelPeriod, ReachPeriod, RunAnswer } from '../contract/run.ts';
+import { reportBand } from './report-band.ts';
 import { answerRun } from './run.ts';
 import { eachRunParcels } from './run-parcels.ts';
 import { answerReaches } from './run-reaches.ts';
@@ -25,10 +26,11 @@ export async function answerDistrictReport(caller: Caller, runId: string, option
   const run = await answerRun(caller, runId);
   const periods: ParcelPeriod[] = [];
   for await (const page of eachRunParcels(caller, runId, { period: 'season' })) periods.push(...page);
-  const [land, summary, reaches] = await Promise.all([
+  const [land, summary, reaches, band] = await Promise.all([
     readLand(caller, runId, periods),
     answerSummary(caller, runId),
     answerReaches(caller, runId, { period: 'season' }),
+    reportBand(caller, runId, options.units),
   ]);
   return districtReport({
     district: caller.district,
@@ -39,8 +41,11 @@ export async function answerDistrictReport(caller: Caller, runId: string, option
     parcels: periods.map((row) => parcelRow(row, land.tables.get(row.parcel))),
     shapes: periods.map((row) => land.shapes.get(row.parcel) ?? []),
     canals: reaches.items.map((row) => ({ lines: land.lines.get(row.reach) ?? [], row: reachRow(row) })),
-    weeks: summary.weeks.map(({ start, end, gross_volume_m3 }) => ({ start, end, volume: nanFromNull(gross_volume_m3) })),
-    method: methodParagraphs(run),
+    weeks: summary.weeks.map(({ start, end, gross_volume_m3 }) => ({
+      ...{ start, end, volume: nanFromNull(gross_volume_m3), ...band.weeks.get(start) },
+      forecast: run.days_ahead?.first_ahead != null && end >= run.days_ahead.first_ahead,
+    })),
+    method: [...methodParagraphs(run), ...band.paragraphs],
     classMethod: 'quantile',
   });
 }
@@ -129,7 +134,17 @@ function reachRow(row: ReachPeriod): ReachRow {
   };
 }
 
-function methodParagraphs({ settings, balance }: RunAnswer): string[] {
+/** What the figures rest on past the last observation, where they do. */
+function aheadParagraphs({ days_ahead: ahead, warnings }: RunAnswer): string[] {
+  if (!ahead?.first_ahead) return [];
+  const told = warnings.filter((warning) => warning.includes(ahead.first_ahead as string) || warning.startsWith('The normals'));
+  return [
+    `${told.join(' ')} The last observation is of ${ahead.last_observed ?? 'no day'}. Figures of these days, and sums that hold them, will change as observations come in.`.trim(),
+  ];
+}
+
+function methodParagraphs(run: RunAnswer): string[] {
+  const { settings, balance } = run;
   const equation = settings.method === 'fao56' ? 'FAO-56 Eq. 6' : 'ASCE-EWRI 2005 Eq. 1';
   const weather = {
     nearest: 'the nearest site',
@@ -143,6 +158,7 @@ function methodParagraphs({ settings, balance }: RunAnswer): string[] {
   return [
     `Reference ET of a short surface by ${equation}; weather of each parcel from ${weather}, temperature corrected for elevation.`,
     `Crop ET by the dual crop coefficient (FAO-56 chapters 7 and 8) with a daily soil-water balance of each parcel.${residual}`,
+    ...aheadParagraphs(run),
     'Gross requirement is the net requirement over the application efficiency of the parcel; reach losses compound from the parcels up to the headworks.',
   ];
 }

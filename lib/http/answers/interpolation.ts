@@ -1,6 +1,7 @@
 /** Leave-one-out figures of the stations: per variable and method, with semivariograms and errors by station. */
 import type { Tx } from '../../../db/connect.ts';
 import { listSeasons } from '../../../db/queries/district-read.ts';
+import { listRunSources } from '../../../db/queries/run-sources.ts';
 import { findMonths, listWeatherSources } from '../../../db/queries/weather-observations.ts';
 import type { Caller } from '../../access/caller.ts';
 import { database } from '../../access/database.ts';
@@ -79,7 +80,8 @@ async function usualSpan(
   seasons: readonly { startDate: string; endDate: string }[],
   sourceId: number | undefined,
 ): Promise<{ from: string; to: string }> {
-  const months = await findMonths(tx, districtId, sourceId === undefined ? undefined : [sourceId]);
+  const observed = sourceId === undefined ? (await listRunSources(tx, districtId)).map((source) => source.sourceId) : [sourceId];
+  const months = await findMonths(tx, districtId, observed);
   if (!months) throw new Refused('The district has no weather yet: import stations, then their weather.');
   const last = addDays(months.last, 30);
   const newest = seasons

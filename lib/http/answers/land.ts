@@ -7,7 +7,6 @@ import {
   listCalendars,
   listCanals,
   listCrops,
-  listMethods,
   listParcels,
   listPlantings,
   listSoils,
@@ -17,9 +16,10 @@ import { database } from '../../access/database.ts';
 import { NotFound } from '../../base/errors.ts';
 import { roundOrNull } from '../../base/missing.ts';
 import { buildTree } from '../../canal/tree.ts';
-import type { CanalAnswer, CropAnswer, MethodAnswer, ParcelAnswer, PlantingAnswer, SoilAnswer } from '../contract/rest.ts';
+import type { CanalAnswer, CropAnswer, ParcelAnswer, PlantingAnswer, SoilAnswer } from '../contract/rest.ts';
 import { readCursor, writeCursor } from '../paging.ts';
 import { isStorable } from '../storable-text.ts';
+import { practiceMembers } from './practice.ts';
 
 export interface PageWanted {
   readonly limit: number;
@@ -100,6 +100,7 @@ function plantingMembers(row: Awaited<ReturnType<typeof listPlantings>>[number])
     harvest_date: row.harvestDate,
     cut_dates: row.cutDates,
     area_share: row.areaShare,
+    practice: practiceMembers(row.practice),
   };
 }
 
@@ -171,20 +172,30 @@ export async function answerSoils(caller: Caller): Promise<SoilAnswer[]> {
     total_evaporable_water_mm: row.totalEvaporableWater,
     curve_number: row.curveNumber,
     root_limit_m: row.rootLimit,
+    ...profileMembers(row.profile),
     source: row.source,
   }));
 }
 
-export async function answerMethods(caller: Caller): Promise<MethodAnswer[]> {
-  const rows = await database().inDistrict(caller.districtId, (tx) => listMethods(tx, caller.districtId));
-  return rows.map((row) => ({
-    code: row.code,
-    name: row.name,
-    efficiency: row.efficiency,
-    wetted_fraction: row.wettedFraction,
-    under_canopy: row.underCanopy,
-    maximum_daily_depth_mm: row.maximumDailyDepth,
-    trigger_fraction: row.triggerFraction,
-    source: row.source,
-  }));
+type SoilRow = Awaited<ReturnType<typeof listSoils>>[number];
+
+function profileMembers({ layers, saturation, texture, percolationRate, capillary }: SoilRow['profile']) {
+  return {
+    saturation_m3_m3: saturation ?? null,
+    texture: texture ?? ('medium' as const),
+    percolation_mm_d: percolationRate ?? null,
+    capillary: capillary
+      ? {
+          conductivity_mm_d: capillary.conductivity,
+          bubbling_head_m: capillary.bubblingHead,
+          exponent: roundOrNull(capillary.exponent, 4) ?? 0,
+        }
+      : null,
+    layers: (layers ?? []).map((layer) => ({
+      top_m: layer.top,
+      bottom_m: layer.bottom,
+      field_capacity_m3_m3: layer.fieldCapacity,
+      wilting_point_m3_m3: layer.wiltingPoint,
+    })),
+  };
 }

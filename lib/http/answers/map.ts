@@ -13,7 +13,7 @@ import { database } from '../../access/database.ts';
 import { NotFound } from '../../base/errors.ts';
 import { MAP_VARIABLES } from '../../jobs/map-arrays.ts';
 import { floatsOf } from '../../jobs/observations.ts';
-import type { MapDescription } from '../contract/run.ts';
+import type { DaysAhead, MapDescription } from '../contract/run.ts';
 import { periodsWanted, readFinishedRun } from './run.ts';
 
 export function answerMapDescription(caller: Caller, runId: string): Promise<MapDescription> {
@@ -35,10 +35,11 @@ export function answerMapDescription(caller: Caller, runId: string): Promise<Map
       bounds: (await findBounds(tx, districtId, caller.parcels)) ?? boundsOf(district.boundary),
       variables: MAP_VARIABLES.filter(({ id }) => kept.has(id)).map((variable) => ({ ...variable })),
       periods: { week: spans('week'), month: spans('month') },
+      ahead: aheadOf(run.manifest),
       parcels: await mapParcels(tx, caller, runId, version),
       reaches: await mapReaches(tx, districtId, runId),
       sites: (await listSites(tx, districtId))
-        .filter(({ kind }) => kind === 'stations')
+        .filter(({ kind, role }) => kind === 'stations' && role === 'observed')
         .map(({ code, name, longitude, latitude, elevation }) => ({
           code,
           name,
@@ -49,6 +50,14 @@ export function answerMapDescription(caller: Caller, runId: string): Promise<Map
       boundary: district.boundary ?? null,
     };
   });
+}
+
+/** Days past the last observation, from the run's manifest. */
+function aheadOf(manifest: unknown): MapDescription['ahead'] {
+  const told = (manifest as { days_ahead?: DaysAhead }).days_ahead;
+  if (!told?.first_ahead) return null;
+  const beyond = told.analogue_days > 0 ? 'analogue' : 'normal';
+  return { from: told.first_ahead, forecast_to: told.forecast?.last_day ?? null, beyond };
 }
 
 /** The version of the map at which parcels are drawn: the run's own while the history tells of parcels that have changed since, else the one in use. */

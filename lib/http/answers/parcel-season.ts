@@ -11,11 +11,13 @@ import { nullFromNaN, roundOrNull } from '../../base/missing.ts';
 import { depthToVolume } from '../../base/units.ts';
 import { geodesicDistance } from '../../geo/geodesic.ts';
 import { loadFrozenSeason } from '../../jobs/frozen-season.ts';
+import { plantingStages, type StageSpan } from '../../season/calendar.ts';
 import { DAILY_VARIABLES, type DailyVariable, type ParcelInput, type SeasonInput } from '../../season/types.ts';
 import { explainDay } from '../../season/working.ts';
 import type { CarriedSeries, SeriesWeights } from '../../weather/variable.ts';
 import type { ParcelDay, ParcelSeason, WorkingAnswer } from '../contract/run.ts';
 import { isStorable } from '../storable-text.ts';
+import { practiceMembers } from './practice.ts';
 import { dayOffset, readFinishedRun } from './run.ts';
 import { DayReader } from './run-parcels.ts';
 
@@ -55,11 +57,17 @@ export async function answerParcelSeason(caller: Caller, runId: string, code: st
       name: input.soil.name,
       field_capacity_m3_m3: input.soil.fieldCapacity,
       wilting_point_m3_m3: input.soil.wiltingPoint,
+      layers: (input.soil.layers ?? []).map((layer) => ({
+        top_m: layer.top,
+        bottom_m: layer.bottom,
+        field_capacity_m3_m3: layer.fieldCapacity,
+        wilting_point_m3_m3: layer.wiltingPoint,
+      })),
     },
-    method: { code: input.method.code, name: input.method.name, efficiency: input.method.efficiency },
+    method: { code: input.method.code, name: input.method.name, efficiency: input.efficiency ?? input.method.efficiency },
     turnout: parcel.turnoutCode,
     reach: parcel.reachCode,
-    plantings: input.plantings.map(plantingMembers),
+    plantings: plantingsOf(season),
     estimated_share: roundOrNull(new DayReader(parcel, run.dayCount).estimatedShare({ from: 0, to: run.dayCount - 1 }), 4),
     reference_et: season.settings.referenceEt ?? 'at-parcels',
     weights: sitesOf(input).map((site) => weightMembers(site, input, season)),
@@ -67,7 +75,16 @@ export async function answerParcelSeason(caller: Caller, runId: string, code: st
   };
 }
 
-function plantingMembers(planting: ParcelInput['plantings'][number]): ParcelSeason['plantings'][number] {
+/** The plantings of the season; those of earlier seasons, which end where it begins, stand in the days before it only. */
+function plantingsOf(season: SeasonInput): ParcelSeason['plantings'] {
+  const stages = plantingStages(season, 0);
+  const start = addDays(season.startDate, season.leadDays ?? 0);
+  return season.parcels[0].plantings.flatMap((planting, k) =>
+    planting.harvestDate !== null && planting.harvestDate <= start ? [] : [plantingMembers(planting, stages[k])],
+  );
+}
+
+function plantingMembers(planting: ParcelInput['plantings'][number], stages: readonly StageSpan[]): ParcelSeason['plantings'][number] {
   return {
     crop: planting.crop.code,
     crop_name: planting.crop.name,
@@ -76,6 +93,8 @@ function plantingMembers(planting: ParcelInput['plantings'][number]): ParcelSeas
     harvest_date: planting.harvestDate,
     cut_dates: [...planting.cutDates],
     area_share: planting.areaShare,
+    practice: practiceMembers(planting),
+    stages: stages.map((span) => ({ ...span })),
   };
 }
 
@@ -120,6 +139,7 @@ function parcelDays(parcel: RunParcelDays, run: RunHead): ParcelDay[] {
     const value = (variable: DailyVariable) => nullFromNaN(reader.at(variable, day));
     return {
       date: addDays(run.startDate, day),
+      day_kind: reader.dayKind(day),
       reference_et_mm: value('reference_et'),
       crop_et_mm: value('crop_et'),
       adjusted_crop_et_mm: value('adjusted_crop_et'),

@@ -112,7 +112,7 @@ export async function answerPyranometer(caller: Caller, source: string, site: st
 export function answerStations(caller: Caller): Promise<{ source: string; code: string; name: string }[]> {
   return database().inDistrict(caller.districtId, async (tx) =>
     (await listSites(tx, caller.districtId))
-      .filter(({ kind }) => kind === 'stations')
+      .filter(({ kind, role }) => kind === 'stations' && role === 'observed')
       .map(({ source, code, name }) => ({ source, code, name })),
   );
 }

@@ -210,7 +210,7 @@ export async function answerUndo(caller: Caller, correctionId: string): Promise<
 export async function answerRunCheck(caller: Caller, source: string | undefined): Promise<{ sources: string[] }> {
   const { districtId } = caller;
   const all = await database().inDistrict(districtId, (tx) => listWeatherSources(tx, districtId));
-  const wanted = all.filter(({ name }) => source === undefined || name === source);
+  const wanted = all.filter(({ name, role }) => (source === undefined ? role === 'observed' : name === source));
   if (source !== undefined && wanted.length === 0) throw new NotFound(`there is no weather source "${source}" in this district`);
   await requestWeatherCheck(
     districtId,
@@ -219,11 +219,11 @@ export async function answerRunCheck(caller: Caller, source: string | undefined)
   return { sources: wanted.map(({ name }) => name) };
 }
 
-/** The last check of every source. */
+/** The last check of every source of observations. */
 export function answerChecks(caller: Caller): Promise<CheckAnswer[]> {
   const { districtId } = caller;
   return database().inDistrict(districtId, async (tx) => {
-    const sources = await listWeatherSources(tx, districtId);
+    const sources = (await listWeatherSources(tx, districtId)).filter(({ role }) => role === 'observed');
     const checks = new Map((await listChecks(tx, districtId)).map((row) => [row.sourceId, row]));
     const counts = await countFlags(tx, districtId);
     const made = await aridityMade(tx, districtId);

@@ -15,6 +15,7 @@ import { nullFromNaN, roundOrNull } from '../../base/missing.ts';
 import { depthToVolume } from '../../base/units.ts';
 import { storedArray, storedFlags, variableIndex } from '../../season/daily-store.ts';
 import { DAILY_VARIABLES, type DailyVariable, MISSING_STORED } from '../../season/types.ts';
+import { countDayKinds, type DayKind, dayKind } from '../../weather/day-kind.ts';
 import { estimatedShare } from '../../weather/estimated-share.ts';
 import { FALLBACK, fallbackNames } from '../../weather/variable.ts';
 import type { ParcelPeriod } from '../contract/run.ts';
@@ -119,6 +120,7 @@ function parcelPeriods(
       stress_coefficient: roundOrNull(reader.mean('stress_coefficient', period), 4),
       net_volume_m3: roundOrNull(depthToVolume(net, parcel.area), 3),
       gross_volume_m3: roundOrNull(depthToVolume(gross, parcel.area), 3),
+      ...reader.dayCounts(period),
       estimated_share: roundOrNull(reader.estimatedShare(period), 4),
       fallbacks: reader.fallbacks(period),
     };
@@ -173,6 +175,17 @@ export class DayReader {
     let bits = 0;
     for (let day = from; day <= to; day++) bits |= this.flags[day];
     return fallbackNames(bits & ~FALLBACK.humidityFromDewPoint);
+  }
+
+  /** What one day rests on. */
+  dayKind(day: number): DayKind {
+    return dayKind(this.flags[day]);
+  }
+
+  /** Days of each kind. */
+  dayCounts(period: Pick<Period, 'from' | 'to'>) {
+    const { observed, filled, forecast, analogue, normal } = countDayKinds(this.flags, period);
+    return { observed_days: observed, filled_days: filled, forecast_days: forecast, analogue_days: analogue, normal_days: normal };
   }
 
   /** Share of the days on which a value of the weather was filled or estimated. */

@@ -10,6 +10,7 @@ import { Conflict, Malformed, NotFound } from '../../base/errors.ts';
 import { cancelRun, requestRun } from '../../jobs/runs.ts';
 import type { RunAnswer, RunRequest } from '../contract/run.ts';
 import { runSettings } from '../contract/run.ts';
+import { bandStateOf } from './band-state.ts';
 
 export async function answerRuns(caller: Caller, season?: string): Promise<RunAnswer[]> {
   const rows = await database().inDistrict(caller.districtId, (tx) => listRuns(tx, caller.districtId, season));
@@ -55,6 +56,8 @@ function runMembers(row: RunHead): RunAnswer {
     settings: runSettings.strip().parse(row.settings),
     manifest,
     balance: balance as RunAnswer['balance'],
+    band: bandStateOf(row),
+    days_ahead: (manifest.days_ahead ?? null) as RunAnswer['days_ahead'],
     warnings: [warnings, manifest.warnings].flat().filter((warning): warning is string => typeof warning === 'string'),
     error: row.error,
     created_at: row.createdAt.toISOString(),

@@ -6,6 +6,7 @@ import { hourlySumReferenceEt } from '../../energy/hourly-day.ts';
 import { clearSkyRadiation } from '../../energy/radiation.ts';
 import { energyBudgetDay, type ReferenceDayInput, referenceEtDay } from '../../energy/reference-day.ts';
 import { sunDay } from '../../energy/sun.ts';
+import { dayKind } from '../../weather/day-kind.ts';
 import { type CompletedWeather, fallbackNames, QUALITY, type SiteObservations, type WeatherVariable } from '../../weather/variable.ts';
 import type { SiteDay } from '../contract/rest.ts';
 import type { RecordHours, SiteRecord } from './weather-record.ts';
@@ -53,6 +54,7 @@ export function siteDay(record: SiteRecord, day: number, hourly: HourlySums): Si
   const { observed, completed, start } = record;
   return {
     date: addDays(start, day),
+    day_kind: record.site.role === 'forecast' ? 'forecast' : dayKind(completed.flags[day]) === 'observed' ? 'observed' : 'filled',
     observed: observedOn(observed, day),
     completed: completedOn(completed, day),
     quality: qualityOn(observed, day),
@@ -94,7 +96,7 @@ function completedOn(completed: CompletedWeather, day: number): SiteDay['complet
   };
 }
 
-type Derived = Omit<SiteDay, 'date' | 'observed' | 'completed' | 'quality' | 'reference_et_given_mm' | keyof HourlySums>;
+type Derived = Omit<SiteDay, 'date' | 'day_kind' | 'observed' | 'completed' | 'quality' | 'reference_et_given_mm' | keyof HourlySums>;
 
 function derived(input: Omit<ReferenceDayInput, 'method' | 'surface'>, flags: number): Derived {
   const short = { ...input, method: 'fao56', surface: 'short' } as const;

@@ -2,7 +2,7 @@
 
 import { z } from 'zod';
 import { type BlockRow, findMonths, listBlocks, listSites, type SiteRow } from '../../../db/queries/weather-observations.ts';
-import { findSite, listBlockSpans, listSitePage, listSourcesWithSites } from '../../../db/queries/weather-sources.ts';
+import { findIssueDay, findSite, listBlockSpans, listSitePage, listSourcesWithSites } from '../../../db/queries/weather-sources.ts';
 import type { Caller } from '../../access/caller.ts';
 import { database } from '../../access/database.ts';
 import { addDays, civilFromDayNumber, dayNumber, daysInMonth, isIsoDate, isoDate } from '../../base/civil-date.ts';
@@ -19,11 +19,12 @@ const CURSOR = z.tuple([z.number().int().min(-1)]);
 /** Most days of one answer. */
 const MOST_DAYS = 400;
 
-/** Stations with what they cover, from their values. Cells of grids are not among them. */
-export function answerSites(caller: Caller): Promise<SiteAnswer[]> {
+/** Stations with what they cover, from their values: of every source of observations, or of the source named, which may be a forecast. Cells of grids are not among them. */
+export function answerSites(caller: Caller, source?: string): Promise<SiteAnswer[]> {
   const { districtId } = caller;
   return database().inDistrict(districtId, async (tx) => {
-    const rows = (await listSites(tx, districtId)).filter(({ kind }) => kind === 'stations');
+    const wanted = (row: SiteRow) => (source === undefined ? row.role === 'observed' : row.source === source);
+    const rows = (await listSites(tx, districtId)).filter((row) => row.kind === 'stations' && wanted(row));
     const sourceIds = [...new Set(rows.map(({ sourceId }) => sourceId))];
     const months = sourceIds.length > 0 ? await findMonths(tx, districtId, sourceIds) : null;
     const blocks = months ? await listBlocks(tx, districtId, { from: months.first, to: addDays(months.last, 27), sourceIds }) : [];
@@ -65,7 +66,7 @@ interface SitePage {
 }
 
 /**
- * A page of sites: of the stations of all sources, or of the source named. Cells of a grid tell the months of the grid; their values are not
+ * A page of sites: of the stations of all sources of observations, or of the source named. Cells of a grid tell the months of the grid; their values are not
  * looked at, so `coverage_days` is empty.
  *
  * @throws {NotFound} for a source that is not the district's
@@ -74,7 +75,7 @@ export async function answerSitePage(caller: Caller, wanted: SitesWanted): Promi
   const source = wanted.source === undefined ? null : await findSource(caller, wanted.source);
   const [after] = readCursor(wanted.cursor, CURSOR) ?? [-1];
   if (source?.kind === 'grid') return gridPage(caller, source, { after, limit: wanted.limit });
-  const all = (await answerSites(caller)).filter((site) => source === null || site.source === source.name);
+  const all = await answerSites(caller, source?.name);
   const items = all.slice(after + 1, after + 1 + wanted.limit);
   const end = after + items.length;
   return { items, total: all.length, next_cursor: end + 1 < all.length ? writeCursor(end) : null };
@@ -124,13 +125,17 @@ export function answerSources(caller: Caller): Promise<WeatherSourceAnswer[]> {
   return database().inDistrict(districtId, async (tx) => {
     const spans = await listBlockSpans(tx, districtId);
     const sources = await listSourcesWithSites(tx, districtId);
-    return sources.map(({ sourceId, name, kind, sites }) => {
+    const issued = new Map<number, string | null>();
+    for (const { sourceId, role } of sources) if (role === 'forecast') issued.set(sourceId, await findIssueDay(tx, districtId, sourceId));
+    return sources.map(({ sourceId, name, kind, role, sites }) => {
       const own = spans.filter((span) => span.sourceId === sourceId);
       const firsts = own.map(({ first }) => first as string).sort();
       const lasts = own.map(({ last }) => last as string).sort();
       return {
         name,
         kind,
+        role,
+        issued: issued.get(sourceId) ?? null,
         sites,
         first_month: firsts[0] ?? null,
         last_month: lasts[lasts.length - 1] ?? null,

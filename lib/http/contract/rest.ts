@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { WEATHER_VARIABLES } from '../../weather/variable.ts';
 import { finding, isoDate, nullableNumber as n, role, scope, unitSystem } from './common.ts';
+import { plantingPractice } from './practice.ts';
 
 export const districtRequest = z
   .strictObject({
@@ -65,7 +66,20 @@ export const districtSummary = z
   .meta({ id: 'DistrictSummary' });
 export type DistrictSummary = z.infer<typeof districtSummary>;
 
-export const importKind = z.enum(['weather', 'stations', 'parcels', 'canals', 'turnouts', 'areas', 'soils', 'soil-areas', 'plantings', 'images']);
+export const importKind = z.enum([
+  'weather',
+  'stations',
+  'parcels',
+  'canals',
+  'turnouts',
+  'areas',
+  'soils',
+  'soil-areas',
+  'plantings',
+  'images',
+  'deliveries',
+  'measurements',
+]);
 export const importAnswer = z
   .object({
     id: z.string(),
@@ -122,6 +136,9 @@ export const siteDay = z
     }),
     /** variable → quality of an observed value that is not as measured: corrected, suspect, filled … */
     quality: z.record(z.string(), z.string()).meta({ description: 'observed values that are not as measured, and what they are' }),
+    day_kind: z
+      .enum(['observed', 'filled', 'forecast'])
+      .meta({ description: 'observed; filled (values filled or estimated); forecast, where the source is one' }),
     fallbacks: z.array(z.string()),
     reference_et_fao56_short_mm: n,
     reference_et_asce2005_short_mm: n,
@@ -208,6 +225,16 @@ export const soilAnswer = z
     total_evaporable_water_mm: z.number(),
     curve_number: n,
     root_limit_m: n,
+    saturation_m3_m3: n,
+    texture: z.enum(['coarse', 'medium', 'fine']).meta({ description: 'shifts the depletion fraction; medium unless told' }),
+    percolation_mm_d: n.meta({ description: 'seepage and percolation under ponded water' }),
+    capillary: z
+      .object({ conductivity_mm_d: z.number(), bubbling_head_m: z.number(), exponent: z.number() })
+      .nullable()
+      .meta({ description: 'how the soil lifts water from a water table' }),
+    layers: z
+      .array(z.object({ top_m: z.number(), bottom_m: z.number(), field_capacity_m3_m3: z.number(), wilting_point_m3_m3: z.number() }))
+      .meta({ description: 'from the surface down; none: one layer of the values above' }),
     source: z.string(),
   })
   .meta({ id: 'Soil' });
@@ -221,6 +248,9 @@ export const methodAnswer = z
     under_canopy: z.boolean(),
     maximum_daily_depth_mm: z.number(),
     trigger_fraction: z.number(),
+    minimum_depth_mm: n.meta({ description: 'least net depth worth an application' }),
+    flow_l_s_ha: n.meta({ description: 'flow of the system over the field; bounds the gross depth of a day' }),
+    efficiency_by_depth: z.array(z.object({ depth_mm: z.number(), efficiency: z.number() })),
     source: z.string(),
   })
   .meta({ id: 'ApplicationMethod' });
@@ -273,6 +303,7 @@ export const plantingAnswer = z
     harvest_date: isoDate.nullable(),
     cut_dates: z.array(isoDate),
     area_share: z.number(),
+    practice: plantingPractice,
   })
   .meta({ id: 'Planting' });
 

@@ -1,6 +1,14 @@
 import { z } from 'zod';
 import { DEFAULT_RUN_SETTINGS as usual } from '../../jobs/run-settings.ts';
+import { DAY_KINDS } from '../../weather/day-kind.ts';
+import { bandState } from './band.ts';
 import { isoDate, nullableNumber as n } from './common.ts';
+import { plantingPractice } from './practice.ts';
+
+export const dayKindName = z.enum(DAY_KINDS).meta({
+  description:
+    'what the day rests on: observed; filled (values filled or estimated); and past the last observation forecast, analogue (days of the analogue year) or normal (of the day)',
+});
 
 export const runSettings = z
   .strictObject({
@@ -81,6 +89,35 @@ export const runSettings = z
 const requestedSettings = runSettings.partial().extend({ interpolation: runSettings.shape.interpolation.unwrap().optional() });
 export const runRequest = z.strictObject({ season: z.string(), settings: requestedSettings.optional() }).meta({ id: 'RunRequest' });
 
+/** What a run rests on past the last observation. */
+const daysAhead = z.object({
+  last_observed: isoDate.nullable().meta({ description: 'last day with an observation at any site of the run' }),
+  first_ahead: isoDate.nullable().meta({ description: 'first day past it; null where every day has been observed' }),
+  first_beyond_forecast: isoDate.nullable().meta({ description: 'first day that rests on normals or the analogue year' }),
+  observed_days: z.number().int().meta({ description: 'days of the record, gaps filled' }),
+  forecast_days: z.number().int(),
+  analogue_days: z.number().int(),
+  normal_days: z.number().int(),
+  forecast: z
+    .object({
+      source: z.string(),
+      issued: isoDate.nullable().meta({ description: 'day on which it was last brought in' }),
+      first_day: isoDate,
+      last_day: isoDate,
+    })
+    .nullable(),
+  normals: z
+    .object({
+      years: z.number().int().meta({ description: 'years behind the normals' }),
+      of: z.string().meta({ description: 'the first and last of them' }),
+      window_days: z.number().int(),
+      rain_year: z.number().int().nullable().meta({ description: 'year whose rain lies nearest to the median, taken as it fell' }),
+    })
+    .nullable(),
+  analogue_year: z.number().int().nullable(),
+});
+export type DaysAhead = z.infer<typeof daysAhead>;
+
 export const runAnswer = z
   .object({
     id: z.string(),
@@ -109,6 +146,10 @@ export const runAnswer = z
       fallback_shares: z.record(z.string(), z.number()).optional(),
       seconds: z.number().optional(),
     }),
+    band: bandState.nullable().meta({ description: 'how sure the numbers are: where that stands; null where it was not asked for' }),
+    days_ahead: daysAhead
+      .nullable()
+      .meta({ description: 'what the run rests on past the last observation; null for runs made before it was told' }),
     warnings: z.array(z.string()),
     error: z.string().nullable(),
     created_at: z.string(),
@@ -143,6 +184,11 @@ export const parcelPeriod = z
     stress_coefficient: n.meta({ description: 'mean over the period' }),
     net_volume_m3: n,
     gross_volume_m3: n,
+    observed_days: z.number().int().meta({ description: 'days of the period on which nothing was filled or estimated' }),
+    filled_days: z.number().int().meta({ description: 'observed days with values filled or estimated' }),
+    forecast_days: z.number().int(),
+    analogue_days: z.number().int(),
+    normal_days: z.number().int(),
     estimated_share: n.meta({ description: 'share of the days whose weather was filled or estimated, 0–1' }),
     fallbacks: z.array(z.string()).meta({ description: 'what was estimated in the weather behind this row' }),
   })
@@ -152,6 +198,7 @@ export type ParcelPeriod = z.infer<typeof parcelPeriod>;
 export const parcelDay = z
   .object({
     date: isoDate,
+    day_kind: dayKindName,
     reference_et_mm: n,
     crop_et_mm: n,
     adjusted_crop_et_mm: n,
@@ -187,7 +234,15 @@ export const parcelSeason = z
     elevation_m: n,
     longitude: z.number(),
     latitude: z.number(),
-    soil: z.object({ code: z.string(), name: z.string(), field_capacity_m3_m3: z.number(), wilting_point_m3_m3: z.number() }),
+    soil: z.object({
+      code: z.string(),
+      name: z.string(),
+      field_capacity_m3_m3: z.number(),
+      wilting_point_m3_m3: z.number(),
+      layers: z
+        .array(z.object({ top_m: z.number(), bottom_m: z.number(), field_capacity_m3_m3: z.number(), wilting_point_m3_m3: z.number() }))
+        .meta({ description: 'from the surface down; none: one layer of the values above' }),
+    }),
     method: z.object({ code: z.string(), name: z.string(), efficiency: z.number() }),
     turnout: z.string().nullable(),
     reach: z.string().nullable(),
@@ -200,6 +255,19 @@ export const parcelSeason = z
         harvest_date: isoDate.nullable(),
         cut_dates: z.array(isoDate),
         area_share: z.number(),
+        practice: plantingPractice,
+        stages: z
+          .array(
+            z.object({
+              cycle: z.number().int(),
+              stage: z.enum(['initial', 'development', 'mid', 'late']),
+              start: isoDate,
+              end: isoDate,
+            }),
+          )
+          .meta({
+            description: 'growth stages as the calendar and the weather of the parcel settled them; empty for a crop that never started',
+          }),
       }),
     ),
     estimated_share: n.meta({ description: 'share of the days of the season whose weather was filled or estimated, 0–1' }),
@@ -383,6 +451,12 @@ export const mapDescription = z
       week: z.array(z.object({ start: isoDate, end: isoDate })),
       month: z.array(z.object({ start: isoDate, end: isoDate })),
     }),
+    ahead: z
+      .object({ from: isoDate, forecast_to: isoDate.nullable(), beyond: z.enum(['normal', 'analogue']) })
+      .nullable()
+      .meta({
+        description: 'days past the last observation: from when, to which day by forecast, and by what after it; null where there are none',
+      }),
     /** in map-array order; `ordinal` is the feature id (property `o`) in the tiles */
     parcels: z.object({
       ordinal: z.array(z.number().int()),

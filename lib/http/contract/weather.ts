@@ -6,6 +6,10 @@ export const weatherSourceAnswer = z
   .object({
     name: z.string(),
     kind: z.enum(['stations', 'grid']),
+    role: z.enum(['observed', 'forecast']).meta({
+      description: 'what its values are; a forecast never stands in for a measured day, and enters no normal, check or variogram',
+    }),
+    issued: isoDate.nullable().meta({ description: 'of a forecast: day on which it was last brought in; null where no import tells' }),
     sites: z.number().int().meta({ description: 'stations, or cells of the grid' }),
     first_month: isoDate.nullable().meta({ description: 'first day of the first month with weather' }),
     last_month: isoDate.nullable().meta({ description: 'first day of the last month with weather' }),

@@ -74,6 +74,10 @@ export const importOptions = z
       .optional()
       .meta({ description: 'grids: cells within this many degrees around the district are kept; one cell unless said' }),
     wholeGrid: z.boolean().nullable().optional().meta({ description: 'grids: read every cell although the district has a place' }),
+    role: z.enum(['observed', 'forecast']).nullable().optional().meta({
+      description:
+        'weather and stations: what the values are. A forecast goes into a source of its own (`source`, or "Forecast"), newest issue over older day by day; stations of the district are taken over by their code. A source of the other role refuses',
+    }),
     replace: z
       .boolean()
       .nullable()
@@ -104,7 +108,7 @@ export const createImportOperation = operation({
     'GeoJSON, zipped shapefile, GeoPackage, FlatGeobuf, GeoParquet or KML; turnouts are either.',
   scope: 'write',
   form: {
-    kind: 'stations, weather, parcels, canals, turnouts, areas, soils, soil-areas or plantings',
+    kind: 'stations, weather, parcels, canals, turnouts, areas, soils, soil-areas, plantings, deliveries, measurements or images',
     file: 'one or more files',
     options: 'ImportOptions as JSON; may be left out',
   },

@@ -41,7 +41,7 @@ export const listPlantingsOperation = operation({
   scope: 'read',
   query: { season: z.string().max(40).optional(), parcel: z.string().max(120).optional(), ...pageQuery(200, 5000) },
   answer: pageOf(plantingAnswer).meta({ id: 'PlantingPage' }),
-  table: { row: plantingAnswer },
+  table: { row: plantingAnswer, leaveOut: ['practice'] },
 });
 
 export const listCanalsOperation = operation({
@@ -84,7 +84,7 @@ export const listSoilsOperation = operation({
   scope: 'read',
   units: true,
   answer: list(soilAnswer),
-  table: { row: soilAnswer },
+  table: { row: soilAnswer, leaveOut: ['capillary', 'layers'] },
 });
 
 export const listMethodsOperation = operation({
@@ -95,5 +95,5 @@ export const listMethodsOperation = operation({
   scope: 'read',
   units: true,
   answer: list(methodAnswer),
-  table: { row: methodAnswer },
+  table: { row: methodAnswer, leaveOut: ['efficiency_by_depth'] },
 });

@@ -47,7 +47,7 @@ export const listRunsOperation = operation({
   scope: 'read',
   query: { season: z.string().max(40).optional() },
   answer: z.object({ items: z.array(runAnswer) }),
-  table: { row: runAnswer, leaveOut: ['settings', 'manifest', 'balance', 'warnings'] },
+  table: { row: runAnswer, leaveOut: ['settings', 'manifest', 'balance', 'band', 'days_ahead', 'warnings'] },
 });
 
 export const readRunOperation = operation({

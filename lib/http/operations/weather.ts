@@ -14,7 +14,7 @@ export const listSitesOperation = operation({
   tag,
   summary: 'Weather sites with what they cover',
   description:
-    'The stations of every source; `source` names one source, which may be a grid. Cells of a grid tell the months of the grid and no coverage of their own.',
+    'The stations of every source of observations; `source` names one source, which may be a grid or a forecast. Cells of a grid tell the months of the grid and no coverage of their own.',
   scope: 'read',
   query: { source: sourceName.optional(), ...pageQuery(1000, 10_000) },
   units: true,

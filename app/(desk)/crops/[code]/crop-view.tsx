@@ -1,12 +1,13 @@
 import type { UnitSystem } from '../../../../lib/base/units.ts';
 import type { CropAnswer } from '../../../../lib/http/contract/rest.ts';
 import type { ParcelPeriod } from '../../../../lib/http/contract/run.ts';
-import { CropCurve } from '../../../_components/crop-curve.tsx';
-import { calendarOf, coefficientsOf, numberOf } from '../../../_components/crop-values.ts';
+import { numberOf } from '../../../_components/crop-values.ts';
 import { DataTable } from '../../../_components/data-table.tsx';
 import { figure, plain, unitOf } from '../../../_components/figures.ts';
 import { Go } from '../../../_components/go.tsx';
 import { PageHead, Section } from '../../../_components/page-head.tsx';
+import { Calendars } from './crop-calendars.tsx';
+import { partRows } from './crop-parts.ts';
 
 const VALUES: readonly (readonly [string, string, string])[] = [
   ['basalInitial', 'Basal coefficient Kcb, initial stage', '1'],
@@ -55,71 +56,39 @@ export function CropView({ crop, grown, season, units }: CropViewProps) {
           ]}
         />
       </Section>
+      <Parts crop={crop} />
       <Calendars crop={crop} />
       <GrownOn crop={crop} grown={grown} season={season} units={units} />
     </div>
   );
 }
 
-function sourceOf(crop: CropAnswer, key: string): string {
-  return crop.sources[key] ?? (Number.isNaN(numberOf(crop, key)) ? 'not listed' : 'not stated');
-}
-
-function Calendars({ crop }: { crop: CropAnswer }) {
-  if (crop.calendars.length === 0) return <Section title="Calendars">No calendar: a planting of this crop needs one.</Section>;
+function Parts({ crop }: { crop: CropAnswer }) {
+  const rows = partRows(crop);
+  if (rows.length === 0) return null;
   return (
-    <Section id="calendars" title="Calendars" note="Curves before the adjustment to the climate of the season (FAO-56 Eq. 70).">
-      <CalendarTable crop={crop} />
-      <div className="columns">
-        {crop.calendars.map((calendar) => {
-          const { lengths, later } = calendarOf(calendar);
-          const coefficients = coefficientsOf(crop);
-          return (
-            <div key={calendar.code} className="stack">
-              <CropCurve id={`curve-${calendar.code}`} title={calendar.name} lengths={lengths} coefficients={coefficients} />
-              {later ? (
-                <CropCurve
-                  id={`curve-${calendar.code}-later`}
-                  title={`${calendar.name}, after a cut`}
-                  lengths={later}
-                  coefficients={coefficients}
-                />
-              ) : null}
-            </div>
-          );
-        })}
-      </div>
+    <Section
+      id="parts"
+      title="Single coefficients, response, salt and stand"
+      note="Used where a run or a planting asks for them: single coefficients, yield by stage, salinity, canopies, ponding. Values marked recalled have not been re-read in their source."
+    >
+      <DataTable
+        caption={`Further values of ${crop.name}`}
+        rows={rows}
+        rowKey={({ key }) => key}
+        columns={[
+          { key: 'term', head: 'Value', rowHead: true, cell: ({ term }) => term },
+          { key: 'value', head: 'Number', numeric: true, cell: ({ value }) => plain(value, 2) },
+          { key: 'unit', head: 'Unit', cell: ({ unit }) => unit },
+          { key: 'source', head: 'Source', wide: true, cell: ({ source }) => source },
+        ]}
+      />
     </Section>
   );
 }
 
-function CalendarTable({ crop }: { crop: CropAnswer }) {
-  const stage = (key: 'initial' | 'development' | 'mid' | 'late', head: string) => ({
-    key,
-    head,
-    unit: 'd',
-    numeric: true,
-    cell: (calendar: CropAnswer['calendars'][number]) => {
-      const { lengths, later } = calendarOf(calendar);
-      return later ? `${lengths[key]}, then ${later[key]}` : lengths[key];
-    },
-  });
-  return (
-    <DataTable
-      caption={`Calendars of ${crop.name}`}
-      rows={crop.calendars}
-      rowKey={(calendar) => calendar.code}
-      columns={[
-        { key: 'name', head: 'Calendar', rowHead: true, cell: (calendar) => calendar.name },
-        { key: 'planting', head: 'Usual planting', cell: (calendar) => calendar.planting_day ?? 'as recorded' },
-        stage('initial', 'Initial'),
-        stage('development', 'Development'),
-        stage('mid', 'Mid-season'),
-        stage('late', 'Late'),
-        { key: 'source', head: 'Source', cell: (calendar) => calendar.source },
-      ]}
-    />
-  );
+function sourceOf(crop: CropAnswer, key: string): string {
+  return crop.sources[key] ?? (Number.isNaN(numberOf(crop, key)) ? 'not listed' : 'not stated');
 }
 
 function GrownOn({ crop, grown, season, units }: CropViewProps) {

@@ -1,5 +1,6 @@
 import type { UnitSystem } from '../../../../lib/base/units.ts';
 import type { ParcelDay, ParcelSeason } from '../../../../lib/http/contract/run.ts';
+import { dayKindWord } from '../../../_components/ahead-shade.tsx';
 import { type Column, DataTable, FiguresBelow } from '../../../_components/data-table.tsx';
 import { fallbackText } from '../../../_components/fallback-words.tsx';
 import { figure, plain, sumOf, unitOf } from '../../../_components/figures.ts';
@@ -80,6 +81,7 @@ function columnsOf(season: ParcelSeason, units: UnitSystem, run: string | null):
       cell: (day) => <Go href={hrefWith(`${path}/${day.date}`, {}, { run })}>{day.date}</Go>,
       total: 'Season',
     },
+    { key: 'kind', head: 'Rests on', oneLine: true, cell: (day) => dayKindWord(day.day_kind) },
     ...SUMS.map((each) => depth(each, true)),
     {
       key: 'volume',

@@ -1,10 +1,11 @@
 import type { Metadata } from 'next';
 import type { Caller } from '../../../../lib/access/caller.ts';
 import { NotFound } from '../../../../lib/base/errors.ts';
+import { answerBand } from '../../../../lib/http/answers/band.ts';
 import { answerImages } from '../../../../lib/http/answers/images.ts';
-import { answerCrops } from '../../../../lib/http/answers/land.ts';
 import { answerParcelHistory } from '../../../../lib/http/answers/parcel-history.ts';
 import { answerParcelSeason } from '../../../../lib/http/answers/parcel-season.ts';
+import { answerDeliveries, answerMeasurements } from '../../../../lib/http/answers/records.ts';
 import { answerYields } from '../../../../lib/http/answers/yields.ts';
 import type { ParcelHistoryAnswer } from '../../../../lib/http/contract/land-places.ts';
 import { NoRunPage } from '../../../_components/empty-state.tsx';
@@ -23,21 +24,27 @@ export default async function ParcelPage({ params, searchParams }: PageProps<'co
   const [caller, { code }, query] = await Promise.all([callerInView(), params, searchParams]);
   const run = await runAsked(caller, query);
   if (!run) return <NoRunPage />;
-  const [season, crops, history, yields, images] = await Promise.all([
+  const banded = { level: 'parcel', place: decoded(code), limit: 100 } as const;
+  const recorded = { from: run.start_date, to: run.end_date, parcel: decoded(code), limit: 400 };
+  const [season, history, yields, images, bandSeason, bandWeeks, deliveries, measurements] = await Promise.all([
     orNotFound(answerParcelSeason(caller, run.id, decoded(code))),
-    answerCrops(caller),
     historyOf(caller, decoded(code)),
     orNotFound(answerYields(caller, run.id, { parcel: decoded(code), limit: 1 })),
     answerImages(caller, { from: run.start_date, to: run.end_date, parcel: decoded(code), limit: 200 }),
+    orNotFound(answerBand(caller, run.id, { ...banded, period: 'season' })),
+    orNotFound(answerBand(caller, run.id, { ...banded, period: 'week' })),
+    answerDeliveries(caller, recorded),
+    answerMeasurements(caller, { ...recorded, from: '1900-01-01' }),
   ]);
   return (
     <ParcelView
       run={run}
       season={season}
-      crops={crops}
       history={history}
       yields={yields.items}
       images={images.items}
+      records={{ deliveries: deliveries.items, measurements: measurements.items, mayWrite: caller.scope !== 'read' }}
+      band={{ season: bandSeason, weeks: bandWeeks }}
       query={query}
       weekStart={weekStartOf(run, caller.district)}
       units={caller.units}

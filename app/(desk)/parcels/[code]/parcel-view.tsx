@@ -1,8 +1,9 @@
 import type { IsoDate } from '../../../../lib/base/civil-date.ts';
 import type { UnitSystem } from '../../../../lib/base/units.ts';
+import type { BandAnswer } from '../../../../lib/http/contract/band.ts';
 import type { ImageRow } from '../../../../lib/http/contract/images.ts';
 import type { ParcelHistoryAnswer } from '../../../../lib/http/contract/land-places.ts';
-import type { CropAnswer } from '../../../../lib/http/contract/rest.ts';
+import type { DeliveryAnswer, MeasurementAnswer } from '../../../../lib/http/contract/records.ts';
 import type { ParcelDay, ParcelSeason, RunAnswer } from '../../../../lib/http/contract/run.ts';
 import type { PlantingYieldRow } from '../../../../lib/http/contract/yields.ts';
 import { CalendarStrip } from '../../../_components/calendar-strip.tsx';
@@ -11,6 +12,7 @@ import { dateRange, longDate } from '../../../_components/date-words.ts';
 import { Cautions, EmptyState } from '../../../_components/empty-state.tsx';
 import { EstimatedShare, FallbackShares, FallbackWords, fallbackSharesOf } from '../../../_components/fallback-words.tsx';
 import { Section } from '../../../_components/page-head.tsx';
+import { ParcelBand } from '../../../_components/parcel-band.tsx';
 import { choosePeriod } from '../../../_components/period-choice.ts';
 import { PeriodPicker } from '../../../_components/period-picker.tsx';
 import { hrefWith, one, type Query } from '../../../_components/query.ts';
@@ -18,6 +20,7 @@ import { SiteWeights } from '../../../_components/site-weights.tsx';
 import { SoilGauge } from '../../../_components/soil-gauge.tsx';
 import { WaterChain } from '../../../_components/water-chain.tsx';
 import { DayTable } from './day-table.tsx';
+import { FieldRecords } from './field-records.tsx';
 import { GroundHistory } from './ground-history.tsx';
 import { ImageTable } from './image-table.tsx';
 import { ParcelHead } from './parcel-head.tsx';
@@ -27,17 +30,22 @@ import { YieldTable } from './yield-table.tsx';
 interface ParcelViewProps {
   readonly run: RunAnswer;
   readonly season: ParcelSeason;
-  readonly crops: readonly CropAnswer[];
   readonly history: ParcelHistoryAnswer;
   readonly yields: readonly PlantingYieldRow[];
   readonly images: readonly ImageRow[];
+  readonly records: {
+    readonly deliveries: readonly DeliveryAnswer[];
+    readonly measurements: readonly MeasurementAnswer[];
+    readonly mayWrite: boolean;
+  };
+  readonly band: { readonly season: BandAnswer; readonly weeks: BandAnswer };
   readonly query: Query;
   readonly weekStart: number;
   readonly units: UnitSystem;
 }
 
 /** Everything about one parcel in one season. */
-export function ParcelView({ run, season, crops, history, yields, images, query, weekStart, units }: ParcelViewProps) {
+export function ParcelView({ run, season, history, yields, images, records, band, query, weekStart, units }: ParcelViewProps) {
   if (season.days.length === 0)
     return <EmptyState title={`Parcel ${season.parcel} has no days in this run`}>Run the season again.</EmptyState>;
   const path = `/parcels/${encodeURIComponent(season.parcel)}`;
@@ -74,9 +82,11 @@ export function ParcelView({ run, season, crops, history, yields, images, query,
         <DailyChart days={season.days} units={units} marked={day.date} />
         <DayTable season={season} units={units} run={one(query, 'run') ?? null} />
       </Section>
-      <Plantings season={season} crops={crops} />
+      <ParcelBand season={band.season} weeks={band.weeks} days={season.days} date={day.date} units={units} />
+      <Plantings season={season} units={units} />
       <YieldTable rows={yields} units={units} />
       <ImageTable images={images} used={run.settings.observed_cover} />
+      <FieldRecords run={run} season={season} {...records} units={units} />
       <Section
         id="weather"
         title="Where the weather comes from"
@@ -92,7 +102,7 @@ export function ParcelView({ run, season, crops, history, yields, images, query,
   );
 }
 
-function Plantings({ season, crops }: { season: ParcelSeason; crops: readonly CropAnswer[] }) {
+function Plantings({ season, units }: { season: ParcelSeason; units: UnitSystem }) {
   if (season.plantings.length === 0) {
     return (
       <Section id="plantings" title="Plantings">
@@ -102,8 +112,8 @@ function Plantings({ season, crops }: { season: ParcelSeason; crops: readonly Cr
   }
   return (
     <Section id="plantings" title="Plantings">
-      <CalendarStrip season={season} crops={crops} />
-      <PlantingTable plantings={season.plantings} />
+      <CalendarStrip season={season} />
+      <PlantingTable plantings={season.plantings} units={units} />
     </Section>
   );
 }

@@ -1,4 +1,5 @@
 import type { Metadata } from 'next';
+import { districtBand } from '../../../../lib/http/answers/band.ts';
 import { answerRun } from '../../../../lib/http/answers/run.ts';
 import { callerInView } from '../../../_components/in-view.ts';
 import { orNotFound } from '../../../_components/or-not-found.ts';
@@ -10,5 +11,7 @@ export const metadata: Metadata = { title: 'Run' };
 export default async function RunPage({ params }: PageProps<'id'>) {
   const [caller, { id }] = await Promise.all([callerInView(), params]);
   const run = await orNotFound(answerRun(caller, id));
-  return <RunView run={run} timeZone={caller.district.timeZone} units={caller.units} mayCancel={caller.scope !== 'read'} />;
+  const band = run.state === 'done' ? await districtBand(caller, id) : null;
+  const shown = { run, band, timeZone: caller.district.timeZone, units: caller.units };
+  return <RunView {...shown} mayCancel={caller.scope !== 'read'} />;
 }

@@ -2,6 +2,7 @@ import type { UnitSystem } from '../../../../lib/base/units.ts';
 import type { RunAnswer } from '../../../../lib/http/contract/run.ts';
 import { DataTable, FactList } from '../../../_components/data-table.tsx';
 import { dateRange, moment } from '../../../_components/date-words.ts';
+import { DistrictBand, type DistrictBandFigures } from '../../../_components/district-band.tsx';
 import { EstimatedShare, FallbackShares } from '../../../_components/fallback-words.tsx';
 import { plain, significant } from '../../../_components/figures.ts';
 import { Go } from '../../../_components/go.tsx';
@@ -9,16 +10,19 @@ import { PageHead, Section } from '../../../_components/page-head.tsx';
 import { ReportLinks } from '../../../_components/report-links.tsx';
 import { RunProgress } from '../../../_components/run-progress.tsx';
 import { isOver, SETTINGS, STATES, settingText } from '../../../_components/run-words.ts';
+import { RestedOn } from './rested-on.tsx';
 
 interface RunViewProps {
   readonly run: RunAnswer;
+  /** null until the run is done */
+  readonly band: DistrictBandFigures | null;
   readonly timeZone: string;
   readonly units: UnitSystem;
   readonly mayCancel: boolean;
 }
 
 /** One run: what it was asked, what it rested on, and whether its books close. */
-export function RunView({ run, timeZone, units, mayCancel }: RunViewProps) {
+export function RunView({ run, band, timeZone, units, mayCancel }: RunViewProps) {
   return (
     <div className="page">
       <PageHead title={`Run of season ${run.season}`} lead={leadOf(run, timeZone)} crumbs={[['/runs', 'Runs']]}>
@@ -48,11 +52,13 @@ export function RunView({ run, timeZone, units, mayCancel }: RunViewProps) {
         </Section>
       ) : null}
       {run.state === 'done' ? <Checks run={run} /> : null}
+      {band ? <DistrictBand {...band} units={units} /> : null}
       {run.state === 'done' ? (
         <Section id="downloads" title="Downloads">
           <ReportLinks run={run.id} units={units} />
         </Section>
       ) : null}
+      <RestedOn run={run} units={units} />
       <Settings run={run} />
       <Manifest manifest={run.manifest} />
     </div>
@@ -96,7 +102,11 @@ function Settings({ run }: { run: RunAnswer }) {
         rowKey={(setting) => setting.key}
         columns={[
           { key: 'name', head: 'Setting', rowHead: true, cell: (setting) => setting.name },
-          { key: 'value', head: 'Value', cell: (setting) => settingText(run.settings[setting.key as keyof RunAnswer['settings']]) },
+          {
+            key: 'value',
+            head: 'Value',
+            cell: (setting) => settingText(run.settings[setting.key as keyof RunAnswer['settings']], setting.key),
+          },
           { key: 'help', head: 'What it does', cell: (setting) => setting.help },
         ]}
       />

@@ -1,6 +1,7 @@
 import type { UnitSystem } from '../../../../lib/base/units.ts';
 import type { SiteAnswer, SiteDay } from '../../../../lib/http/contract/rest.ts';
 import { WEATHER_VARIABLES, type WeatherVariable } from '../../../../lib/weather/variable.ts';
+import { dayKindWord } from '../../../_components/ahead-shade.tsx';
 import { type Column, DataTable, FiguresBelow } from '../../../_components/data-table.tsx';
 import { fallbackText } from '../../../_components/fallback-words.tsx';
 import { figure, type Maybe, plain, type Quantity, unitOf } from '../../../_components/figures.ts';
@@ -54,6 +55,7 @@ function columnsOf(site: SiteAnswer, days: readonly SiteDay[], range: DayRange, 
       oneLine: true,
       cell: (day) => <Go href={`${hrefWith(path, {}, { ...range, source: site.source, day: day.date })}#budget`}>{day.date}</Go>,
     },
+    { key: 'kind', head: 'Rests on', oneLine: true, cell: (day) => dayKindWord(day.day_kind) },
     inReaders('tmax', 'Maximum', 'temperature', (day) => day.completed.air_temperature_max_c),
     inReaders('tmin', 'Minimum', 'temperature', (day) => day.completed.air_temperature_min_c),
     fixed('ea', 'Vapour pressure', 'kPa', (day) => day.completed.vapour_pressure_kpa),

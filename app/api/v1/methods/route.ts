@@ -1,4 +1,4 @@
-import { answerMethods } from '../../../../lib/http/answers/land.ts';
+import { answerMethods } from '../../../../lib/http/answers/methods.ts';
 import { listMethodsOperation } from '../../../../lib/http/operations/land.ts';
 import { route } from '../../../../lib/http/route.ts';
 

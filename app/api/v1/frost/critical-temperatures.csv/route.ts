@@ -1,0 +1,1 @@
+export { GET } from '../critical-temperatures/route.ts';
