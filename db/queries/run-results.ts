@@ -13,7 +13,7 @@ const PART = 'part/';
 /** Rows of `run_value` that an array too large for one statement goes through. */
 const PIECE = 'piece/';
 /** Larger arrays go to the database in pieces: a statement holds its bytes three times over. */
-const MOST_AT_ONCE = 32 * 1024 * 1024;
+const MOST_AT_ONCE = 16 * 1024 * 1024;
 
 type PeriodName = (typeof runValue.$inferInsert)['period'];
 const numbered = (prefix: string, number: number) => `${prefix}${String(number).padStart(6, '0')}` as PeriodName;

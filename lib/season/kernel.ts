@@ -162,6 +162,7 @@ function closeStrip({ walk, curve, closing, input }: PackedSeason, { share }: St
     rootDepletion: walk.depletion,
     belowDepletion: walk.below,
     surfaceDepletion: walk.surface,
+    percolation: walk.percolated,
   });
 }
 

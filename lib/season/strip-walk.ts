@@ -33,6 +33,8 @@ export interface StripWalk {
   below: number;
   surface: number;
   snow: number;
+  /** left behind: water that went below the deepest root, with what still stands in a pond [mm] */
+  percolated: number;
   /** lower edge of the soil below the root zone [m]; not read by the walk */
   deepestRoot: number;
   /** rows in double precision, added to, [variable × day kept]; null where `stored` takes them */
@@ -70,6 +72,7 @@ export function emptyWalk(
     below: unset,
     surface: unset,
     snow: unset,
+    percolated: unset,
     deepestRoot: unset,
     daily: null,
     stored: null,

@@ -67,6 +67,7 @@ export function walkStrip(walk: StripWalk): number {
   let goal = 0;
   let owed = 0;
   let worst = 0;
+  let percolated = 0;
   let stageOpen = -1;
   let stageSum = 0;
   let stageAdjusted = 0;
@@ -351,6 +352,7 @@ export function walkStrip(walk: StripWalk): number {
 
     availableBefore = available;
     snowBefore = snow;
+    percolated += deepPercolation + irrigationPercolation;
     if (d < lead) continue;
     const adjusted = transpiration + evaporation;
     const stageAt = planted ? 8 * planting + 2 * stageRow[d] : -1;
@@ -442,6 +444,7 @@ export function walkStrip(walk: StripWalk): number {
   walk.depletion = depletion;
   walk.below = below;
   walk.surface = surface;
+  walk.percolated = percolated + pond;
   return worst;
 }
 

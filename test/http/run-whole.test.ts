@@ -10,6 +10,7 @@ import { GET as runParcels } from '../../app/api/v1/runs/[id]/parcels/route.ts';
 import { GET as readRun } from '../../app/api/v1/runs/[id]/route.ts';
 import { GET as summary } from '../../app/api/v1/runs/[id]/summary/route.ts';
 import { POST as createRun } from '../../app/api/v1/runs/route.ts';
+import { saveRunValue } from '../../db/queries/run-results.ts';
 import { runParcel, runValue } from '../../db/schema/run.ts';
 import { site, weatherBlock, weatherSource } from '../../db/schema/weather.ts';
 import { stopQueue } from '../../lib/jobs/queue.ts';
@@ -146,5 +147,28 @@ describe('a whole run', () => {
     const volume = seasons.reduce((total: number, row: { gross_volume_m3: number }) => total + row.gross_volume_m3, 0);
     expect(Math.abs(district.gross_volume_m3 - volume)).toBeLessThan(0.1 + 1e-5 * volume);
     expect(by_canal.reduce((total: number, row: { area_ha: number }) => total + row.area_ha, 0)).toBeCloseTo(7, 6);
+  });
+
+  it('keeps an array too large for one statement whole, and again over itself', async () => {
+    const values = Uint8Array.from({ length: 40 * 1024 * 1024 }, (_, i) => (i * 2654435761) >>> 24);
+    const row = {
+      districtId: made.a.id,
+      runId,
+      variable: 'probe',
+      period: 'week',
+      periodCount: 1,
+      parcelCount: values.length / 4,
+      values,
+    } as const;
+    const probe = and(eq(runValue.runId, runId), eq(runValue.variable, 'probe'));
+    const stored = await fresh.db.inDistrict(made.a.id, async (tx) => {
+      await saveRunValue(tx, { ...row, values: values.slice().reverse() });
+      await saveRunValue(tx, row);
+      const rows = await tx.select().from(runValue).where(probe);
+      await tx.delete(runValue).where(probe);
+      return rows;
+    });
+    expect(stored.map(({ period }) => period)).toEqual(['week']);
+    expect(Buffer.compare(stored[0].values, values)).toBe(0);
   });
 });

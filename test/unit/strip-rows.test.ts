@@ -260,6 +260,8 @@ describe('practice', () => {
     const plastic = drawn({ mulch: { kind: 'plastic', cover: 0.6 } });
     expect([plastic.evaporationShare[SOWN - 1], plastic.evaporationShare[SOWN], plastic.evaporationShare[END]]).toEqual([1, 0.4, 1]);
     expect(drawn({ mulch: { kind: 'organic', cover: 0.5 } }).evaporationShare[SOWN]).toBe(0.75);
+    expect([plastic.openShare[SOWN - 1], plastic.openShare[SOWN]]).toEqual([1, 0.4]);
+    expect(drawn({ mulch: { kind: 'organic', cover: 0.5 } }).openShare[SOWN]).toBe(1);
   });
 
   test('rows that a strip touched are put back for the next', () => {

@@ -40,7 +40,8 @@ export function GroundRules() {
         </li>
         <li>
           Carry-over: soil water is handed from season to season as one profile per parcel, its strips weighted by area. Soil below the
-          deepest root of a strip is taken to be as the season found it, and water above field capacity to have drained.
+          deepest root of a strip is as the season found it, refilled from above by what percolated past the roots, down to 3 m; water above
+          field capacity has drained.
         </li>
         <li>
           Salt: stress by FAO-56 Eq. 91, which holds while yield falls by less than half; leaching requirement ECw / (5 ECe − ECw) with the
