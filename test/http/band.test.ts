@@ -238,7 +238,9 @@ describe('the band of a run', () => {
     const parcels = await kept('parcel', 'gross_requirement', 'week');
     await plan(() => ({ parts: 2, parcels_per_part: 2 }));
     await workOn<BandJob & JobData>('run-band', workOnBand, { concurrency: 2 });
-    await expect.poll(async () => (await json(await readRun(request(base, { token })))).band.state, { timeout: 40_000 }).toBe('done');
+    await expect
+      .poll(async () => (await json(await readRun(request(base, { token })))).band, { timeout: 40_000 })
+      .toMatchObject({ state: 'done' });
     expect(await kept('parcel', 'gross_requirement', 'week')).toEqual(parcels);
     await stopQueue();
   });

@@ -211,7 +211,7 @@ describe('a run over filled days', () => {
     expect(run.state).toBe('done');
     expect(run.balance.estimated_share).toBeCloseTo(5 / 14, 9);
     expect(run.balance.fallback_shares.temperatureFromNeighbour).toBeCloseTo(5 / 14, 9);
-    expect(run.manifest).toMatchObject({ kernel_version: '2', reference_et: 'at-parcels', weather_source: 'stations' });
+    expect(run.manifest).toMatchObject({ kernel_version: '3', reference_et: 'at-parcels', weather_source: 'stations' });
     const { items } = await json(await runParcels(request(`${base}/parcels?period=season`, { token })));
     for (const item of items) expect(item.estimated_share).toBeCloseTo(5 / 14, 4);
     const days = await json(await runParcels(request(`${base}/parcels?period=day&from=2024-04-04&to=2024-04-05&parcel=P-1`, { token })));
