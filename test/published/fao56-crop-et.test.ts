@@ -23,10 +23,15 @@ import {
   wettedSurfaceDepletion,
 } from '../../lib/crop/surface-layer.ts';
 import { saturationVapourPressure } from '../../lib/energy/humidity.ts';
-import { near } from '../support/near.ts';
+import { validation } from '../support/validation.ts';
+
+const check = validation(import.meta.url, {
+  title: 'Crop coefficients, chapters 6 and 7, Annexes 7 and 8 of FAO-56',
+  source: 'Allen, Pereira, Raes & Smith (1998), FAO Irrigation and Drainage Paper 56',
+});
 
 function recomputed(actual: number, expected: number): void {
-  near(actual, expected, Math.max(0.005, Math.abs(expected) * 0.001));
+  check.held(actual, expected, Math.max(0.005, Math.abs(expected) * 0.001), { provenance: 'recomputed' });
 }
 
 describe('Kc ini (Annex 7)', () => {
@@ -37,7 +42,7 @@ describe('Kc ini (Annex 7)', () => {
   test('Example 7-1: ETo 5, every 3.5 days; light value recomputed, because the print omits the exponential term (0.57)', () => {
     const wetting = { interval: 3.5, referenceEt: 5 };
     recomputed(initialCoefficientLight(wetting), 0.533);
-    near(initialCoefficientHeavy(wetting, 'coarse'), 0.75, 0.005);
+    check.held(initialCoefficientHeavy(wetting, 'coarse'), 0.75, 0.005);
     recomputed(initialCoefficient(wetting, 'coarse', 20), 0.605);
     recomputed(initialCoefficient(wetting, 'coarse', 20) * 5, 3.03);
   });
@@ -59,7 +64,7 @@ describe('Climate adjustment (Eq. 62, 65, 70)', () => {
     ['Box 15, dry bean at Kimberly', 1.15, 2.2, 30, 0.4, 1.187],
     ['Example 29, Kcb mid of the bean', 1.1, 2.2, 30, 0.4, 1.137],
   ])('%s, recomputed', (_, table, wind, humidity, height, expected) => {
-    near(adjustedCoefficient(table, wind, humidity, height), expected, 0.0006);
+    check.held(adjustedCoefficient(table, wind, humidity, height), expected, 0.0006);
   });
 
   test('limits of Eq. 62: wind above 6 and humidity below 20 count as the limit', () => {
@@ -67,7 +72,7 @@ describe('Climate adjustment (Eq. 62, 65, 70)', () => {
     expect(climateTerm(0.2, 95)).toBe(climateTerm(1, 80));
   });
 
-  test('Eq. 68: alfalfa over grass at Kimberly, printed 1.24', () => near(tallToShortRatio(2.2, 30), 1.24, 0.001));
+  test('Eq. 68: alfalfa over grass at Kimberly, printed 1.24', () => check.held(tallToShortRatio(2.2, 30), 1.24, 0.001));
 });
 
 describe('Coefficient curve (Eq. 66)', () => {
@@ -79,7 +84,7 @@ describe('Coefficient curve (Eq. 66)', () => {
     [40, 0.774],
     [70, 1.19],
     [95, 0.56],
-  ])('Example 28, day %i, recomputed', (day, expected) => near(stageCoefficient(bean, single, day), expected, 0.0006));
+  ])('Example 28, day %i, recomputed', (day, expected) => check.held(stageCoefficient(bean, single, day), expected, 0.0006));
 
   test.each([
     [12, 0.15],
@@ -87,7 +92,7 @@ describe('Coefficient curve (Eq. 66)', () => {
     [65, 1.14],
     [90, 0.695],
   ])('Example 30, day %i, recomputed from Kcb 0.15/1.14/0.25', (day, expected) => {
-    near(stageCoefficient(bean, { initial: 0.15, mid: 1.14, end: 0.25 }, day), expected, 0.0006);
+    check.held(stageCoefficient(bean, { initial: 0.15, mid: 1.14, end: 0.25 }, day), expected, 0.0006);
   });
 
   test('Fig. 36: ten-day means from end-of-day values, recomputed (the print is half a day later)', () => {
@@ -98,11 +103,11 @@ describe('Coefficient curve (Eq. 66)', () => {
     for (let decade = 0; decade < 10; decade++) {
       let sum = 0;
       for (let k = 1; k <= 10; k++) sum += stageCoefficient(bean, single, decade * 10 + k);
-      near(sum / 10, expected[decade], 0.0006);
-      near(sum / 10, printed[decade], 0.025);
+      check.held(sum / 10, expected[decade], 0.0006);
+      check.held(sum / 10, printed[decade], 0.025);
       season += sum * referenceEt[decade];
     }
-    near(season, 368, 2); // mm; the sum of the printed decades
+    check.held(season, 368, 2); // mm; the sum of the printed decades
   });
 
   test('Fig. 35: southern Idaho alfalfa, green-up J 90, cuts at J 165, 210, 255 (recomputed from the printed lengths)', () => {
@@ -121,7 +126,7 @@ describe('Dual coefficient (Eq. 71–77)', () => {
     expect(total).toBeLessThanOrEqual(22);
   });
 
-  test('Example 35: TEW 18 of sandy loam with FC 0.23, WP 0.10, Ze 0.1', () => near(totalEvaporableWater(0.23, 0.1, 0.1), 18, 0.5));
+  test('Example 35: TEW 18 of sandy loam with FC 0.23, WP 0.10, Ze 0.1', () => check.held(totalEvaporableWater(0.23, 0.1, 0.1), 18, 0.5));
 
   test('Example 31: bare loam drying for ten days, De and ETc day by day', () => {
     const printedDepletion = [4.73, 9.45, 13.98, 16.57, 18.04, 18.88, 19.36, 19.64, 19.79, 19.88];
@@ -131,8 +136,8 @@ describe('Dual coefficient (Eq. 71–77)', () => {
       const reduction = evaporationReduction(depletion, 9, 20);
       const coefficient = evaporationCoefficient({ reduction, basal: 0.15, maximum: 1.2, exposedWetted: 1 });
       depletion = driedSurfaceDepletion(depletion, coefficient * 4.5, 1, 20);
-      near(depletion, printedDepletion[k], 0.01);
-      near((0.15 + coefficient) * 4.5, cropEt[k], 0.0055);
+      check.held(depletion, printedDepletion[k], 0.01);
+      check.held((0.15 + coefficient) * 4.5, cropEt[k], 0.0055);
     }
   });
 
@@ -156,9 +161,9 @@ describe('Dual coefficient (Eq. 71–77)', () => {
 
   test('Example 34: drip under the canopy, fw 0.3', () => {
     const exposedWetted = exposedWettedFraction(covered, 0.3, true);
-    near(exposedWetted, 0.1948, 0.0005);
+    check.held(exposedWetted, 0.1948, 0.0005);
     const evaporation = evaporationCoefficient({ ...cotton, exposedWetted });
-    near(evaporation, 0.2533, 0.0005);
+    check.held(evaporation, 0.2533, 0.0005);
     recomputed(0.9 + evaporation, 1.153);
   });
 
@@ -177,7 +182,7 @@ describe('Dual coefficient (Eq. 71–77)', () => {
       [5.2, 0.86, 17.67, 0.053, 2.36, 18, 2.3],
     ];
     const maximum = coefficientMaximum(0.3, climateTerm(1.6, 35), heightFactor(0.3));
-    near(maximum, 1.21, 0.0051); // printed
+    check.held(maximum, 1.21, 0.0051); // printed
     let depletion = wettedSurfaceDepletion(18, 0, 40, 0.8);
     for (const [k, [referenceEt, exposedWetted, closing, coefficient, cropEt, printedClosing, printedEt]] of rows.entries()) {
       if (k === 5) depletion = wettedSurfaceDepletion(depletion, 6, 0, 0.8);
@@ -185,11 +190,11 @@ describe('Dual coefficient (Eq. 71–77)', () => {
       const limits = { reduction: evaporationReduction(depletion, 8, 18), basal, maximum, exposedWetted };
       const evaporation = evaporationCoefficient(limits);
       depletion = driedSurfaceDepletion(depletion, evaporation * referenceEt, exposedWetted, 18);
-      near(depletion, closing, 0.02);
-      near(evaporation, coefficient, 0.005);
-      near((basal + evaporation) * referenceEt, cropEt, 0.01);
-      near(depletion, printedClosing, 0.7);
-      near((basal + evaporation) * referenceEt, printedEt, 0.25);
+      check.held(depletion, closing, 0.02);
+      check.held(evaporation, coefficient, 0.005);
+      check.held((basal + evaporation) * referenceEt, cropEt, 0.01);
+      check.held(depletion, printedClosing, 0.7);
+      check.held((basal + evaporation) * referenceEt, printedEt, 0.25);
     }
   });
 });
@@ -204,26 +209,26 @@ describe('Annex 8: dry bean, Kimberly 1974', () => {
     ['16 May', 13.3, 2.2175, -5, 4.1, 19.062, 27.57, 1.2207, 0.2099, 0.2247, 0.921, 19.993, 1.536],
   ])('%s, recomputed', (_, tmax, wind, dewPoint, referenceEt, opening, humidity, maximum, reduction, coefficient, e, closing, cropEt) => {
     const rh = relativeHumidityMinimum(saturationVapourPressure(dewPoint), saturationVapourPressure(tmax));
-    near(rh, humidity, 0.01);
+    check.held(rh, humidity, 0.01);
     const height = plantHeight(0.15, mid, 0.4, 0);
-    near(height, 0.0528, 0.0001);
+    check.held(height, 0.0528, 0.0001);
     const limit = coefficientMaximum(0.15, climateTerm(0.9 * wind, rh), heightFactor(height));
-    near(limit, maximum, 0.0001);
+    check.held(limit, maximum, 0.0001);
     const kr = evaporationReduction(opening, 8, 22);
-    near(kr, reduction, 0.0001);
+    check.held(kr, reduction, 0.0001);
     // The spreadsheet keeps fc at 0.01 or more, so that few is 0.99 on bare ground; Eq. 76 itself gives fc 0 there.
     const evaporation = evaporationCoefficient({ reduction: kr, basal: 0.15, maximum: limit, exposedWetted: 0.99 });
-    near(evaporation, coefficient, 0.0001);
-    near(evaporation * referenceEt, e, 0.001);
-    near(driedSurfaceDepletion(opening, evaporation * referenceEt, 0.99, 22), closing, 0.001);
-    near((0.15 + evaporation) * referenceEt, cropEt, 0.001);
+    check.held(evaporation, coefficient, 0.0001);
+    check.held(evaporation * referenceEt, e, 0.001);
+    check.held(driedSurfaceDepletion(opening, evaporation * referenceEt, 0.99, 22), closing, 0.001);
+    check.held((0.15 + evaporation) * referenceEt, cropEt, 0.001);
   });
 
   test('stages from 22 May: development J 167, mid J 192, late J 222, harvest J 242; root depth 0.2 → 0.8 m (Eq. 8-1)', () => {
     const [cycle] = cyclesOf({ start: 142, harvest: Infinity, lengths, later: null, cuts: [], repeats: false, runEnd: 366 });
     expect([cycle.start, cycle.start + 25, cycle.start + 50, cycle.start + 80, cycle.end]).toEqual([142, 167, 192, 222, 242]);
     const depth = (day: number) => growingRootDepth(0.2, 0.8, developmentProgress(lengths, day - 142 + 1));
-    near(160 * depth(142) * 0.7, 22.4, 1e-9); // printed initial RAW [mm], 160 mm/m and 70 %
-    near(160 * depth(200) * 0.45, 57.6, 1e-9); // printed mid-season RAW, 45 %
+    check.held(160 * depth(142) * 0.7, 22.4, 1e-9); // printed initial RAW [mm], 160 mm/m and 70 %
+    check.held(160 * depth(200) * 0.45, 57.6, 1e-9); // printed mid-season RAW, 45 %
   });
 });

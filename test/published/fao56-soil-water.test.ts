@@ -9,7 +9,12 @@ import { potentialRetention, surfaceRunoff } from '../../lib/crop/runoff.ts';
 import { relativeYield, stressFromRelativeYield } from '../../lib/crop/yield-response.ts';
 import { walkStrip } from '../../lib/season/walk.ts';
 import { handStrip } from '../support/hand-strip.ts';
-import { near } from '../support/near.ts';
+import { validation } from '../support/validation.ts';
+
+const check = validation(import.meta.url, {
+  title: 'Soil water, stress, runoff and yield: Examples 36, 37, 44 and the curve number',
+  source: 'FAO-56 chapter 8; NEH 630 chapter 10, TR-55; FAO-33',
+});
 
 describe('Example 36: TAW and RAW, printed in whole mm', () => {
   test.each([
@@ -24,9 +29,9 @@ describe('Example 36: TAW and RAW, printed in whole mm', () => {
     ['maize, silty clay', 120, 1.2, 0.55, 144, 79],
   ])('%s', (_, perMetre, depth, fraction, available, readily) => {
     const total = totalAvailableWater(0.1 + perMetre / 1000, 0.1, depth);
-    near(total, available, 1e-9);
+    check.held(total, available, 1e-9);
     // At ETc 5 mm/d the table value of p stands.
-    near(depletionFraction(fraction, 5) * total, readily, 0.51);
+    check.held(depletionFraction(fraction, 5) * total, readily, 0.51);
   });
 });
 
@@ -40,10 +45,10 @@ describe('Example 37: tomato drying out', () => {
     let depletion = 55;
     for (let k = 0; k < 10; k++) {
       const stress = stressCoefficient(depletion, available, 0.4);
-      near(stress, recomputedStress[k], 0.0006);
-      near(stress, printedStress[k], 0.0051);
+      check.held(stress, recomputedStress[k], 0.0006);
+      check.held(stress, printedStress[k], 0.0051);
       depletion += stress * 1.2 * 5;
-      near(depletion, printedDepletion[k], 0.06);
+      check.held(depletion, printedDepletion[k], 0.06);
     }
   });
 
@@ -59,8 +64,8 @@ describe('Example 37: tomato drying out', () => {
     });
     expect(walkStrip(walk)).toBeLessThan(1e-9);
     for (let k = 0; k < 10; k++) {
-      near(row('stress_coefficient')[k], recomputedStress[k], 0.0006);
-      near(row('root_zone_depletion')[k], printedDepletion[k], 0.06);
+      check.held(row('stress_coefficient')[k], recomputedStress[k], 0.0006);
+      check.held(row('root_zone_depletion')[k], printedDepletion[k], 0.06);
     }
   });
 });
@@ -80,7 +85,7 @@ describe('Depletion fraction (Table 22, footnote)', () => {
     [0.5, 2.5, 0.6],
     [0.8, 0, 0.8],
     [0.2, 12, 0.1],
-  ])('p %f at ETc %f → %f', (table, cropEt, expected) => near(depletionFraction(table, cropEt), expected, 1e-12));
+  ])('p %f at ETc %f → %f', (table, cropEt, expected) => check.held(depletionFraction(table, cropEt), expected, 1e-12));
 });
 
 describe('Curve number (NRCS)', () => {
@@ -88,12 +93,12 @@ describe('Curve number (NRCS)', () => {
     ['TR-55 example, CN 70, 6.0 in', 70, 6, 2.81],
     ['TR-55 example, CN 75, 6.0 in', 75, 6, 3.28],
   ])('%s', (_, curveNumber, inches, expected) => {
-    near(surfaceRunoff(inches * 25.4, potentialRetention(curveNumber)) / 25.4, expected, 0.005);
+    check.held(surfaceRunoff(inches * 25.4, potentialRetention(curveNumber)) / 25.4, expected, 0.005);
   });
 
   test('CN 78, 75 mm: S 71.64, Q 27.82 mm (recomputed)', () => {
-    near(potentialRetention(78), 71.64, 0.005);
-    near(surfaceRunoff(75, potentialRetention(78)), 27.82, 0.005);
+    check.held(potentialRetention(78), 71.64, 0.005);
+    check.held(surfaceRunoff(75, potentialRetention(78)), 27.82, 0.005);
   });
 
   const depths = [1, 1.4, 2, 3, 4, 5, 6, 8, 10];
@@ -105,13 +110,14 @@ describe('Curve number (NRCS)', () => {
     [98, [0.79, 1.18, 1.77, 2.77, 3.77, 4.76, 5.76, 7.76, 9.76]],
   ])('TR-55 Table 2-1 layout, CN %i, inches (recomputed)', (curveNumber, expected) => {
     for (const [k, depth] of depths.entries()) {
-      near(surfaceRunoff(depth * 25.4, potentialRetention(curveNumber)) / 25.4, expected[k], 0.0051);
+      check.held(surfaceRunoff(depth * 25.4, potentialRetention(curveNumber)) / 25.4, expected[k], 0.0051);
     }
   });
 });
 
 describe('Yield (Eq. 90, 103)', () => {
-  test('Example 44: 1100 of 1800 kg/ha with Ky 1.15 → Ks 0.66', () => near(stressFromRelativeYield(1.15, 1100 / 1800), 0.6618, 0.0001));
+  test('Example 44: 1100 of 1800 kg/ha with Ky 1.15 → Ks 0.66', () =>
+    check.held(stressFromRelativeYield(1.15, 1100 / 1800), 0.6618, 0.0001));
 
-  test('Eq. 90 undoes Eq. 103 on the same example', () => near(relativeYield(1.15, 0.6618, 1), 1100 / 1800, 0.0001));
+  test('Eq. 90 undoes Eq. 103 on the same example', () => check.held(relativeYield(1.15, 0.6618, 1), 1100 / 1800, 0.0001));
 });
