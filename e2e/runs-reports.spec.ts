@@ -9,7 +9,7 @@ import { expect, test } from './support.ts';
 /** The bytes that the form of a document downloads. */
 async function downloaded(page: Page, file: string): Promise<Buffer> {
   const form = page.locator(`form[action$="/reports/${file}"]`);
-  const [download] = await Promise.all([page.waitForEvent('download'), form.locator('button').click()]);
+  const [download] = await Promise.all([page.waitForEvent('download', { timeout: 60_000 }), form.locator('button').click()]);
   return readFileSync(await download.path());
 }
 
