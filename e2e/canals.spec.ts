@@ -99,7 +99,10 @@ test('reaches that cannot carry the week are named, and no other', async ({ page
 test('the CSV has every reach of every week, with the numbers of the table', async ({ page, api }) => {
   const { run, week, weeks } = await busiestWeek(api);
   await page.goto('/canals');
-  const [download] = await Promise.all([page.waitForEvent('download', { timeout: 60_000 }), page.locator('a[href*="reports/reaches.csv"]').first().click()]);
+  const [download] = await Promise.all([
+    page.waitForEvent('download', { timeout: 60_000 }),
+    page.locator('a[href*="reports/reaches.csv"]').first().click(),
+  ]);
   const rows = parse(readFileSync(await download.path(), 'utf8'), { columns: true, bom: true }) as Record<string, string>[];
   const reaches = await reachesOf(api, run, week);
   expect(rows.length).toBe(reaches.length * weeks.length);

@@ -103,7 +103,10 @@ test('a day outside the run is refused in words', async ({ page, api }) => {
 test('the daily CSV is RFC 4180 and adds up to the season on the screen', async ({ page, api }) => {
   const { season } = await thirstiest(api);
   await page.goto(`/parcels/${season.parcel}`);
-  const [download] = await Promise.all([page.waitForEvent('download', { timeout: 60_000 }), page.getByRole('link', { name: /csv/i }).first().click()]);
+  const [download] = await Promise.all([
+    page.waitForEvent('download', { timeout: 60_000 }),
+    page.getByRole('link', { name: /csv/i }).first().click(),
+  ]);
   const text = readFileSync(await download.path(), 'utf8');
   const rows = parse(text, { columns: true, bom: true, relax_column_count: false }) as Record<string, string>[];
   expect(rows.map((row) => row.date)).toEqual(season.days.map((day) => day.date));

@@ -89,6 +89,11 @@ function linksOf(season: ParcelSeason, units: UnitSystem): readonly Link[] {
       area,
     );
   const mm = unitOf('depth', units);
+  const rises = season.days.some((day) => (day.capillary_rise_mm ?? 0) > 0);
+  const loses = season.days.some((day) => (day.irrigation_percolation_mm ?? 0) > 0);
+  const link = (name: string, note: string, water: Water, pick: (day: ParcelDay) => Maybe): Link => {
+    return { name, note, water, part: 'balance', unit: mm, value: depth(pick) };
+  };
   return [
     {
       name: 'Reference ET',
@@ -130,9 +135,20 @@ function linksOf(season: ParcelSeason, units: UnitSystem): readonly Link[] {
       unit: mm,
       value: depth((day) => day.effective_precipitation_mm),
     },
+    ...(rises ? [link('Capillary rise', 'from the water table', 'soil', (day) => day.capillary_rise_mm)] : []),
+    ...(loses
+      ? [
+          link(
+            'Irrigation lost below the roots',
+            'leaching, seepage, more than the soil takes',
+            'irrigation',
+            (day) => day.irrigation_percolation_mm,
+          ),
+        ]
+      : []),
     {
       name: 'Drawn from the soil',
-      note: 'crop ET, adjusted − effective rain − net requirement; below 0: refilled',
+      note: 'crop ET, adjusted − effective rain − capillary rise − net requirement + what of it is lost; below 0: refilled',
       water: 'soil',
       part: 'balance',
       unit: mm,
@@ -198,7 +214,12 @@ function steadyFlow(flow: number, units: UnitSystem): string {
 function soilDrawn(days: readonly ParcelDay[]): number {
   const given = (value: number | null) => value ?? Number.NaN;
   return days.reduce(
-    (sum, day) => sum + given(day.adjusted_crop_et_mm) - given(day.effective_precipitation_mm) - given(day.net_requirement_mm),
+    (sum, day) =>
+      sum +
+      given(day.adjusted_crop_et_mm) -
+      given(day.effective_precipitation_mm) -
+      (day.capillary_rise_mm ?? 0) -
+      (given(day.net_requirement_mm) - (day.irrigation_percolation_mm ?? 0)),
     0,
   );
 }

@@ -19,6 +19,8 @@ export interface Spread {
   readonly count: number;
   readonly min: number;
   readonly median: number;
+  /** nine values in ten lie at or below it: a slip of the pen does not move it */
+  readonly high: number;
   readonly max: number;
 }
 
@@ -26,7 +28,8 @@ export interface Spread {
 export function spreadOf(values: readonly number[]): Spread {
   const sorted = values.filter((v) => Number.isFinite(v) && v > -998 && v !== -99.9 && v !== 9999 && v !== 99999).sort((a, b) => a - b);
   const count = sorted.length;
-  return { count, min: sorted[0] ?? Number.NaN, median: sorted[count >> 1] ?? Number.NaN, max: sorted[count - 1] ?? Number.NaN };
+  const at = (index: number) => sorted[index] ?? Number.NaN;
+  return { count, min: at(0), median: at(count >> 1), high: at(Math.floor(0.9 * (count - 1))), max: at(count - 1) };
 }
 
 /**
@@ -49,10 +52,10 @@ function format(value: number): string {
 type Guess = (spread: Spread, us: boolean, role: WeatherValueRole) => [string, number];
 
 const GUESSES: Partial<Record<UnitKind, Guess>> = {
-  temperature: ({ min, max, median }, us) => {
+  temperature: ({ min, max, high, median }, us) => {
     if (min > 180 && max < 350) return ['K', 0.9];
-    if (max > 60 || (median > 45 && max > 50)) return ['°F', 0.8];
-    if (us && max > 50) return ['°F', 0.5];
+    if (high > 60 || (median > 45 && max > 50)) return ['°F', 0.8];
+    if (us && high > 50) return ['°F', 0.5];
     return ['°C', us ? 0.6 : 0.8];
   },
   share: ({ max }) => (max <= 1.05 ? ['fraction', 0.8] : ['%', 0.9]),

@@ -27,6 +27,8 @@ export interface DeliveriesTold {
   readonly days_before: number;
   /** first day of the season that goes by the rule of its plantings; null when every day is recorded */
   readonly rule_from: string | null;
+  /** the last days of the record, where few parcels have any water in them; null where the record goes on for many */
+  readonly thin: { readonly days: number; readonly parcels: number } | null;
 }
 
 /**
@@ -64,9 +66,21 @@ export async function waterSpan(
   const told: DeliveriesTold = {
     ...{ days: sum.rows, parcels: sum.parcels, volume_m3: sum.volume, first_day: sum.first, last_day: sum.last, days_before: before },
     rule_from: water === 'recorded' || ruleFrom > run.endDate ? null : ruleFrom,
+    thin: water === 'recorded' || sum.last === null ? null : await thinEnd(tx, districtId, run, sum.last, sum.parcels),
   };
   if (water === 'recorded') return { span: { leadDays: lead.days, water }, told };
   return { span: { leadDays: lead.days, water, recordedUntil: dayNumber(ruleFrom) - dayNumber(lead.startDate) }, told };
+}
+
+/** Days at the end of the record that are looked at, and the share of its parcels that should have a delivery in them. Common practice, no source. */
+const END_DAYS = 30;
+const END_SHARE = 0.1;
+
+async function thinEnd(tx: Tx, districtId: string, run: { startDate: string }, last: string, parcels: number) {
+  const earliest = addDays(last, 1 - END_DAYS);
+  const [, from] = [earliest, run.startDate].sort();
+  const end = await sumDeliveries(tx, { districtId, from, to: last });
+  return end.parcels < END_SHARE * parcels ? { days: dayNumber(last) - dayNumber(from) + 1, parcels: end.parcels } : null;
 }
 
 /**

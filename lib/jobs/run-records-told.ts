@@ -40,6 +40,12 @@ export function recordWarnings({ initial_state: start, deliveries }: RecordsTold
   if (deliveries && start.rule === 'spin-up' && start.lead_days > 0 && deliveries.days_before === 0) {
     warnings.push(`No delivery is recorded in the ${start.lead_days} days before the season: the soil was spun up without irrigation.`);
   }
+  if (deliveries?.thin) {
+    const { parcels, days } = deliveries.thin;
+    warnings.push(
+      `The last ${days} days of the record of deliveries rest on ${parcels} of ${deliveries.parcels} parcels with water recorded: every other parcel goes without water on them. Check the last deliveries, or record a 0 where nothing was given.`,
+    );
+  }
   if (deliveries && deliveries.days === 0) warnings.push('No delivery is recorded yet: every day goes by the rules of the plantings.');
   return warnings;
 }

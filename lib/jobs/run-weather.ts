@@ -71,6 +71,7 @@ export async function planWeather(tx: Tx, wanted: WeatherWanted): Promise<Planne
   requireSize(sites.length * run.dayCount, sites.length);
   const record = await runRecord(tx, districtId, { source, stored, cells });
   const lastObserved = await findLastObserved(record, stored);
+  if (settings.ahead === 'refuse' && lastObserved !== null) refuseAhead(run, lastObserved);
   const days = settings.ahead === 'refuse' || lastObserved === null ? null : daysToCome(run, lastObserved);
   const kind = referenceEtOf(settings.reference_et, source, {
     ...(await variablesOf(record, stored, days ? lastObserved : null)),
@@ -104,6 +105,15 @@ export async function planWeather(tx: Tx, wanted: WeatherWanted): Promise<Planne
     from: stored.startDate,
     to: addDays(stored.startDate, stored.dayCount - 1),
   };
+}
+
+/** A run that refuses days to come takes none, not even as gaps of the record. */
+function refuseAhead({ startDate, dayCount }: WeatherWanted['run'], lastObserved: string): void {
+  const end = addDays(startDate, dayCount - 1);
+  if (lastObserved >= end) return;
+  throw new Refused(
+    `The season runs to ${end}, the weather on record to ${lastObserved}, and the setting "ahead" refuses days to come. Import the days that are missing, or choose "normal" or "analogue".`,
+  );
 }
 
 function districtOf({ district }: WeatherWanted) {

@@ -115,7 +115,7 @@ function keyFigures({ parcels, canals, units }: DistrictReportInput) {
   const over = canals.filter(({ row }) => row.status === 'over').length;
   const delivered = head ? head.demandBelow / head.headInflow : Number.NaN;
   return [
-    { label: 'Irrigated area', value: formatArea(all.area, units) },
+    { label: 'Area of the parcels', value: formatArea(all.area, units) },
     { label: 'Parcels', value: numberText(all.parcelCount, 0, units) },
     { label: 'Crop ET', value: formatDepth(all.cropEt, units) },
     { label: 'Net requirement', value: formatVolume(all.netVolume, units) },

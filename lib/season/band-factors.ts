@@ -1,7 +1,7 @@
 /**
  * The errors behind a band, as factors on what a season is computed from.
  *
- * Every factor is lognormal with median 1: factor = exp(σ z), σ² = ln(1 + cv²), z standard normal, drawn by strata over the members. Where a deviation
+ * Every factor is lognormal with mean 1: factor = exp(σ z − σ² / 2), σ² = ln(1 + cv²), z standard normal, drawn by strata over the members. Where a deviation
  * is 0 the factor is exactly 1. What shares an error shares its z:
  *
  * weather: one z per day for all parcels, on reference ET; from day to day z(d) = ρ z(d − 1) + √(1 − ρ²) ε(d)
@@ -51,7 +51,7 @@ export const NO_FIELD_ERRORS: FieldErrors = {
 };
 
 /**
- * σ of the lognormal distribution with median 1 and this coefficient of variation.
+ * σ of the lognormal distribution with this coefficient of variation.
  *
  * @example logDeviation(0) // 0
  * Source: σ² = ln(1 + cv²), a property of the distribution.
@@ -78,7 +78,7 @@ export function weatherFactors(seed: number, members: number, { deviation, persi
     const sigma = logDeviation(deviation[day]);
     for (let m = 0; m < members; m++) {
       z[m] = kept * z[m] + news * fresh[m];
-      factors[m * days + day] = Math.exp(sigma * z[m]);
+      factors[m * days + day] = Math.exp(sigma * z[m] - 0.5 * sigma * sigma);
     }
   }
   return factors;
@@ -113,18 +113,21 @@ export function factorSource(seed: number, members: number, errors: FieldErrors)
     shared.set(name, made);
     return made;
   };
-  const fill = (into: Float64Array, parts: ErrorParts, sharedName: string, ownName: string): Float64Array => {
+  /** @param mean 1: the factor has mean 1; −1: what is divided by it has */
+  const fill = (into: Float64Array, parts: ErrorParts, mean: 1 | -1, sharedName: string, ownName: string): Float64Array => {
     const [sharedSigma, ownSigma] = [logDeviation(parts.shared), logDeviation(parts.own)];
     const common = deviates(sharedName);
     if (ownSigma > 0) stratifiedNormal(seededStream(seed, ownName), own);
-    for (let m = 0; m < members; m++) into[m] = Math.exp(sharedSigma * common[m] + (ownSigma > 0 ? ownSigma * own[m] : 0));
+    const shift = 0.5 * mean * (sharedSigma * sharedSigma + ownSigma * ownSigma);
+    for (let m = 0; m < members; m++) into[m] = Math.exp(sharedSigma * common[m] + (ownSigma > 0 ? ownSigma * own[m] : 0) - shift);
     return into;
   };
   return {
     of({ code, method, soil }) {
-      fill(efficiency, errors.efficiency, `efficiency ${method}`, `efficiency of ${code}`);
-      fill(available, errors.available, `available ${soil}`, `available of ${code}`);
-      const basal = (crop: string) => fill(new Float64Array(members), errors.coefficient, `coefficient ${crop}`, `coefficient of ${code}`);
+      fill(efficiency, errors.efficiency, -1, `efficiency ${method}`, `efficiency of ${code}`);
+      fill(available, errors.available, 1, `available ${soil}`, `available of ${code}`);
+      const basal = (crop: string) =>
+        fill(new Float64Array(members), errors.coefficient, 1, `coefficient ${crop}`, `coefficient of ${code}`);
       return { efficiency, available, basal };
     },
   };

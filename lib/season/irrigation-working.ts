@@ -79,7 +79,8 @@ function soilLook({ record, curve, single }: ToldDay): WorkingStep[] {
     ],
     result: record.calling,
     unit: 'mm',
-    source: 'common practice: the dryness of the bare surface does not by itself call for water',
+    source:
+      'common practice: the dryness of the bare surface is left out of Dc; it calls for water only where it leaves the root zone beyond p TAW',
   };
   const trigger: WorkingStep = {
     part,

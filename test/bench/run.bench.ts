@@ -173,7 +173,7 @@ async function makeDistrict(parcels: number): Promise<string> {
       from generate_series(0, ${Math.ceil(parcels / PARCELS_ON_A_REACH) - 1}::int) k`;
     await sql`insert into parcel (district_id, code, ordinal, reach_code, soil_code, area_m2, elevation_m, longitude, latitude, west, south, east, north, geometry)
       select ${id}, 'P' || lpad(k::text, 8, '0'), k, 'R' || k / ${PARCELS_ON_A_REACH}::int, s.codes[1 + k % array_length(s.codes, 1)],
-        20000 + (k * 7919) % 80000, 700 + (k * 31) % 200, x, y, x, y, x + 0.001, y + 0.001, '{}'
+        20000 + (k::bigint * 7919) % 80000, 700 + (k * 31) % 200, x, y, x, y, x + 0.001, y + 0.001, '{}'
       from generate_series(0, ${parcels}::int - 1) k, lateral (select -116 + (k % 1000) * 0.001 as x, 43 + (k / 1000) * 0.001 as y) place,
         (select array_agg(code order by code) as codes from soil where district_id = ${id}) s`;
     await sql`insert into planting (district_id, parcel_code, season_code, sequence, crop_code, calendar_code, planting_date)

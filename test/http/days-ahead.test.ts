@@ -250,11 +250,11 @@ describe('a season in progress', () => {
     expect((await response.json()).detail).toMatch(/needs an analogue_year/);
   });
 
-  it('without days ahead: what follows the last observation is filled as a gap, by the normal of the temperature alone', async () => {
-    const { days } = await json(await daily(request(`${await runOf({ ahead: 'refuse' })}/parcels/P-1/daily`, { token })));
-    expect(days.slice(7).map((one: { day_kind: string }) => one.day_kind)).toEqual(Array(7).fill('filled'));
-    expect(days[12].fallbacks).toContain('temperatureFromNormal');
-    expect(days[12].precipitation_mm).toBe(0);
+  it('refused, a season that runs past the last observation fails in words', async () => {
+    expect(await read(await runOf({ ahead: 'refuse' }))).toMatchObject({
+      state: 'failed',
+      error: expect.stringMatching(/weather on record to \d{4}-\d{2}-\d{2}.*"ahead" refuses days to come.*Import the days/s),
+    });
   });
 
   it('normals of reference ET carried from the site are means of the reference ET of the years', async () => {

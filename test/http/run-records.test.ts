@@ -156,7 +156,16 @@ describe('a season as recorded', () => {
     expect(lost[9]).toBeGreaterThan(50);
     expect(sum(lost)).toBeCloseTo(lost[5] + lost[9], 9);
     expect(recorded.answer.manifest.records.deliveries).toEqual({
-      ...{ days: 3, parcels: 2, volume_m3: 5000, first_day: '2024-04-06', last_day: '2024-04-10', days_before: 0, rule_from: null },
+      ...{
+        days: 3,
+        parcels: 2,
+        volume_m3: 5000,
+        first_day: '2024-04-06',
+        last_day: '2024-04-10',
+        days_before: 0,
+        rule_from: null,
+        thin: null,
+      },
     });
   });
 

@@ -42,17 +42,18 @@ describe('ensemble', () => {
     expect(volumes).toHaveLength(3 * 7 * 2);
   });
 
-  /** gross = 70 / factor: quantiles of the lognormal distribution with cv 0.1, σ = √ln 1.01 = 0.099752, decile 1.28155. */
+  /** gross = 70 / factor, of mean 70: quantiles of the lognormal distribution with cv 0.1, σ = √ln 1.01 = 0.099752, decile 1.28155. */
   it('has the quantiles of the distribution it draws from', () => {
     const errors = { ...NO_FIELD_ERRORS, efficiency: { shared: 0.1, own: 0 } };
     const { parcels, demand, volumes } = runEnsemble(season(1), wanted(errors, 500, [0]), TEN_A_DAY);
-    near(parcels[0], 70 * Math.exp(-1.28155 * 0.099752), 0.1);
-    near(parcels[2], 70, 0.1);
-    near(parcels[4], 70 * Math.exp(1.28155 * 0.099752), 0.1);
+    const median = Math.exp(-0.5 * 0.099752 ** 2);
+    near(parcels[0], 70 * median * Math.exp(-1.28155 * 0.099752), 0.1);
+    near(parcels[2], 70 * median, 0.1);
+    near(parcels[4], 70 * median * Math.exp(1.28155 * 0.099752), 0.1);
     const [first] = volumes; // member 0, week 0, over 2 ha
     near(first, 7 * demand[0], 0.001 * Math.abs(first));
     const daily = Array.from({ length: 500 }, (_, m) => 10 + (demand[m * DAYS] * 1000) / 20_000).sort((a, b) => a - b);
-    near(daily[450], 10 * Math.exp(1.28155 * 0.099752), 0.05);
+    near(daily[450], 10 * median * Math.exp(1.28155 * 0.099752), 0.05);
   });
 
   it('gives a parcel the same numbers whichever others are asked for', () => {

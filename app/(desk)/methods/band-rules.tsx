@@ -17,8 +17,9 @@ export function BandRules() {
           distribution once. The seed is a setting of the run; the same seed gives the same band, whatever machine computes it.
         </li>
         <li>
-          Each error is a factor with a lognormal distribution of median 1, σ² = ln(1 + cv²). Every member is a season of its own: the soil
-          water of a parcel answers to the errors day by day, and irrigations move with it.
+          Each error is a factor with a lognormal distribution of mean 1, σ² = ln(1 + cv²), so that errors which even out leave a sum where
+          it was. Every member is a season of its own: the soil water of a parcel answers to the errors day by day, and irrigations move
+          with it.
         </li>
         <li>
           Weather: one error per day on reference ET, shared by all parcels, which remembers the day before: z(d) = ρ z(d − 1) + √(1 − ρ²)

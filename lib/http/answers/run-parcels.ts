@@ -113,6 +113,8 @@ function parcelPeriods(
       net_requirement_mm: nullFromNaN(net),
       gross_requirement_mm: nullFromNaN(gross),
       deep_percolation_mm: sum('deep_percolation'),
+      irrigation_percolation_mm: sum('irrigation_percolation'),
+      capillary_rise_mm: sum('capillary_rise'),
       surface_runoff_mm: sum('surface_runoff'),
       root_zone_depletion_mm: end('root_zone_depletion'),
       total_available_water_mm: end('total_available_water'),

@@ -26,4 +26,28 @@ export const plantingPractice = z
     germination: z.array(z.object({ days_after: z.number().int(), depth_mm: z.number() })),
   })
   .meta({ id: 'PlantingPractice' });
+/** The same in columns of a table, under the names that an import of plantings takes; null where nothing was said. */
+export const practiceColumns = z.object({
+  irrigation_rule: z.string().nullable(),
+  irrigation_trigger: n,
+  irrigation_refill: n,
+  irrigation_interval_d: n,
+  irrigation_depth_mm: n,
+  trigger_initial: n,
+  refill_initial: n,
+  trigger_development: n,
+  refill_development: n,
+  trigger_mid: n,
+  refill_mid: n,
+  trigger_late: n,
+  refill_late: n,
+  mulch: z.string().nullable(),
+  mulch_cover: n,
+  canopy_cover: n,
+  canopy_height_m: n,
+  pre_irrigation_days: n,
+  pre_irrigation_depth_mm: n,
+  germination: z.string().nullable().meta({ description: 'days after planting and net mm with a colon between, divided by semicolons' }),
+});
+
 export type PlantingPracticeAnswer = z.infer<typeof plantingPractice>;

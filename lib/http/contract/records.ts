@@ -6,6 +6,9 @@ export type { RecordsTold } from '../../jobs/run-records-told.ts';
 /** Most water of a day over a parcel, gross [mm]; as in files. */
 export const MOST_DELIVERED = 600;
 
+/** Days that a record can be of: a slip in the year is refused. */
+const recordDay = isoDate.refine((date) => date >= '1950-01-01' && date <= '2100-12-31', { message: 'a day from 1950 to 2100' });
+
 /** Water put on a parcel on a day, as the district recorded it. */
 export const deliveryRow = z
   .object({
@@ -20,7 +23,7 @@ export type DeliveryAnswer = z.infer<typeof deliveryRow>;
 export const deliveryRequest = z
   .strictObject({
     parcel: z.string().min(1).max(120),
-    date: isoDate,
+    date: recordDay,
     volume_m3: z.number().min(0).max(6e7).optional(),
     gross_depth_mm: z.number().min(0).max(MOST_DELIVERED).optional(),
   })
@@ -61,7 +64,7 @@ export type MeasurementAnswer = z.infer<typeof measurementRow>;
 export const measurementRequest = z
   .strictObject({
     parcel: z.string().min(1).max(120),
-    date: isoDate,
+    date: recordDay,
     quantity,
     soil_depth_m: depth.default(0),
     value: z.number(),

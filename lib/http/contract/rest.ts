@@ -40,7 +40,15 @@ export const districtAnswer = z
   .meta({ id: 'District' });
 export type DistrictAnswer = z.infer<typeof districtAnswer>;
 export const seasonRequest = z
-  .strictObject({ code: z.string().min(1).max(40), name: z.string().optional(), start_date: isoDate, end_date: isoDate })
+  .strictObject({
+    code: z
+      .string()
+      .max(40)
+      .regex(/^[^\s/\\?#%](?:[^/\\?#%]*[^\s/\\?#%])?$/u, 'neither begins nor ends with a blank, and holds no / \\ ? # or %'),
+    name: z.string().optional(),
+    start_date: isoDate,
+    end_date: isoDate,
+  })
   .meta({ id: 'SeasonRequest' });
 
 export const seasonAnswer = z.object({ code: z.string(), name: z.string(), start_date: isoDate, end_date: isoDate }).meta({ id: 'Season' });

@@ -71,9 +71,16 @@ export const runSettings = z
     }),
     analogue_year: z.number().int().min(1900).max(2200).nullable().default(usual.analogue_year),
     forecast_source: z.string().nullable().default(usual.forecast_source),
-    band_members: z.number().int().min(0).max(500).default(usual.band_members).meta({
-      description: 'members of the ensemble behind P10, P50 and P90; 0 for no band',
-    }),
+    band_members: z
+      .number()
+      .int()
+      .min(0)
+      .max(500)
+      .refine((members) => members === 0 || members >= 20, 'takes 0, for no band, or 20 to 500')
+      .default(usual.band_members)
+      .meta({
+        description: 'members of the ensemble behind P10, P50 and P90; 0 for no band',
+      }),
     band_seed: z.number().int().min(0).max(2147483647).default(usual.band_seed),
     default_soil: z.string().default(usual.default_soil),
     default_method: z.string().default(usual.default_method),
@@ -177,6 +184,8 @@ export const parcelPeriod = z
     net_requirement_mm: n,
     gross_requirement_mm: n,
     deep_percolation_mm: n,
+    irrigation_percolation_mm: n,
+    capillary_rise_mm: n,
     surface_runoff_mm: n,
     root_zone_depletion_mm: n.meta({ description: 'at the end of the period' }),
     total_available_water_mm: n,
@@ -214,6 +223,12 @@ export const parcelDay = z
     readily_available_water_mm: n,
     basal_crop_coefficient: n,
     stress_coefficient: n,
+    irrigation_percolation_mm: n.meta({
+      description: 'irrigation lost below the roots: leaching, seepage of ponded fields, more than the soil takes',
+    }),
+    capillary_rise_mm: n,
+    snow_water_mm: n.meta({ description: 'snow on the ground at the end of the day, as water' }),
+    ponded_water_mm: n.meta({ description: 'water above field capacity in a ponded field at the end of the day' }),
     soil_water_depletion_mm: n.meta({
       description:
         'of the whole parcel, to the deepest root of the season; closes the day with effective rain, net requirement and adjusted crop ET',

@@ -1,5 +1,7 @@
 import { z } from 'zod';
+import { practiceRow } from '../answers/practice.ts';
 import { pageOf } from '../contract/common.ts';
+import { practiceColumns } from '../contract/practice.ts';
 import { canalAnswer, cropAnswer, methodAnswer, parcelAnswer, plantingAnswer, soilAnswer } from '../contract/rest.ts';
 import { operation } from '../operation.ts';
 import { pageQuery } from '../paging.ts';
@@ -41,7 +43,12 @@ export const listPlantingsOperation = operation({
   scope: 'read',
   query: { season: z.string().max(40).optional(), parcel: z.string().max(120).optional(), ...pageQuery(200, 5000) },
   answer: pageOf(plantingAnswer).meta({ id: 'PlantingPage' }),
-  table: { row: plantingAnswer, leaveOut: ['practice'] },
+  // in the columns that an import takes, so that a table that went out comes in again whole
+  table: {
+    row: plantingAnswer.omit({ practice: true }).extend(practiceColumns.shape),
+    rows: ({ items }: { items: z.infer<typeof plantingAnswer>[] }) =>
+      items.map(({ practice, ...rest }) => ({ ...rest, ...practiceRow(practice) })),
+  },
 });
 
 export const listCanalsOperation = operation({

@@ -19,13 +19,17 @@ const SUMS: readonly (readonly [DepthKey, string])[] = [
   ['effective_precipitation_mm', 'Effective rain'],
   ['net_requirement_mm', 'Net requirement'],
   ['gross_requirement_mm', 'Gross requirement'],
-  ['deep_percolation_mm', 'Deep percolation'],
+  ['deep_percolation_mm', 'Deep percolation of rain'],
+  ['irrigation_percolation_mm', 'Irrigation lost below the roots'],
+  ['capillary_rise_mm', 'Capillary rise'],
 ];
 const STATES: readonly (readonly [DepthKey, string])[] = [
   ['root_zone_depletion_mm', 'Root-zone depletion'],
   ['readily_available_water_mm', 'RAW'],
   ['total_available_water_mm', 'TAW'],
   ['soil_water_depletion_mm', 'Depletion of all soil'],
+  ['snow_water_mm', 'Snow, as water'],
+  ['ponded_water_mm', 'Water above field capacity'],
 ];
 
 /** Most days that are worth the paper. */

@@ -44,7 +44,7 @@ export function YieldTable({ rows, units }: { rows: readonly PlantingYieldRow[];
     <Section
       id="yield"
       title="What shortage of water costs"
-      note="Share of the crop’s water that it did not get, stage by stage, and the yield that is left of a full one by the published response factors (FAO-56 Eq. 90, FAO-33). Water only: nutrients, pests, frost and harvest are left out. A crop that reaches beyond the run counts with its part within it."
+      note="Share of the crop’s water that it did not get, stage by stage, and the yield that is left of a full one by the published response factors (FAO-56 Eq. 90, FAO-33). Water (and salt, where the run has it) only: nutrients, pests, frost and harvest are left out. In a run with salt the shortage holds the salt’s too; read the season’s factor then. A crop that reaches beyond the run counts with its part within it."
     >
       <DataTable caption="Relative yield" columns={columns} rows={rows} rowKey={(row) => String(row.planting)} />
     </Section>
