@@ -64,7 +64,8 @@ async function planRun(tx: Tx, { districtId, runId }: RunJob): Promise<number> {
   const settings: RunSettings = { ...asked, reference_et: planned.referenceEt };
   const sliceCount = Math.ceil(places.length / SLICE_PARCELS);
   await replaceSlices(tx, districtId, runId, sliceCount);
-  const laid = await layParcels(tx, { run, district, settings, library, places, planned, records });
+  const intolerant = new Set<string>();
+  const laid = await layParcels(tx, { run, district, settings, library, places, planned, records, intolerant });
   const { sites, weather } = planned;
   const packed = await packFrozenSeason({ startDate, span: records.span, settings, sites, weather, libraries: laid.libraries });
   const canal = { reaches: await listReaches(tx, districtId), turnouts: await listTurnouts(tx, districtId) };
@@ -84,6 +85,7 @@ async function planRun(tx: Tx, { districtId, runId }: RunJob): Promise<number> {
       weekStart: district.weekStart,
       weather: planned,
       records: records.told(),
+      intolerant,
     }),
   });
   if (going) return sliceCount;
@@ -99,6 +101,8 @@ interface Laying {
   readonly places: readonly { readonly longitude: number; readonly latitude: number }[];
   readonly planned: PlannedWeather;
   readonly records: RunRecords;
+  /** takes the names of crops grown whose salt tolerance is not known */
+  readonly intolerant: Set<string>;
 }
 
 /**
@@ -133,13 +137,17 @@ type ParcelPage = Awaited<ReturnType<typeof listRunParcelPage>>;
 
 async function freezePage(
   tx: Tx,
-  { run, district, settings, planned, records, libraries }: Laying & { readonly libraries: Libraries },
+  { run, district, settings, planned, records, libraries, intolerant }: Laying & { readonly libraries: Libraries },
   page: { readonly from: number; readonly parcels: ParcelPage; readonly soils: readonly string[] },
 ): Promise<{ json: string; line: string }[]> {
   const { parcels, soils, from } = page;
   const { sites, weather } = planned;
   const codes = parcels.map(({ code }) => code);
   const plantings = await listPlantingsOf(tx, run.districtId, run.seasonCode, codes);
+  for (const { cropCode } of plantings) {
+    const crop = libraries.crops[cropCode];
+    if (crop && !crop.salinity) intolerant.add(crop.name);
+  }
   const frozen = frozenParcels({
     ...{ parcels, plantings, sites, soils, settings },
     weights: planned.weights.slice(from, from + parcels.length),
@@ -171,6 +179,7 @@ function manifestOf(parts: {
   weekStart: number;
   weather: PlannedWeather;
   records: RecordsTold;
+  intolerant: ReadonlySet<string>;
 }) {
   return {
     kernel_version: KERNEL_VERSION,
@@ -179,7 +188,7 @@ function manifestOf(parts: {
     weather_from: parts.weather.from,
     weather_to: parts.weather.to,
     days_ahead: parts.weather.ahead,
-    warnings: [...parts.weather.warnings, ...recordWarnings(parts.records)],
+    warnings: [...parts.weather.warnings, ...recordWarnings(parts.records), ...saltWarnings(parts.settings, parts.intolerant)],
     weather_sites: parts.weather.sites.length,
     reference_et: parts.weather.referenceEt,
     interpolation: parts.weather.record,
@@ -189,6 +198,18 @@ function manifestOf(parts: {
     canals_sha256: sha256(JSON.stringify(parts.canal)),
     settings_sha256: sha256(JSON.stringify(parts.settings)),
   };
+}
+
+/** Most crops named in a warning. */
+const NAMED = 6;
+
+function saltWarnings({ salinity }: RunSettings, intolerant: ReadonlySet<string>): string[] {
+  if (salinity === 'off' || intolerant.size === 0) return [];
+  const names = [...intolerant].sort();
+  const more = names.length > NAMED ? ` and ${names.length - NAMED} more` : '';
+  return [
+    `Salt is left out for crops whose tolerance FAO-56 Table 23 does not list: ${names.slice(0, NAMED).join('; ')}${more}. They have neither salt stress nor a leaching requirement.`,
+  ];
 }
 
 function sha256(content: string | Uint8Array): string {

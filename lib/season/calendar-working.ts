@@ -13,6 +13,7 @@ import { type CycleCurve, cycleCurve, tableCoefficients } from './cycle-curve.ts
 import { bareStageOf } from './initial-wetting.ts';
 import type { PackedSeason } from './pack.ts';
 import { ruleWords } from './rule-words.ts';
+import { riseSteps, saltSteps } from './salt-working.ts';
 import { degreeDaySums, type PlantedCycles, stagesOfCycle } from './stage-days.ts';
 import type { ParcelInput, StartRule, ThermalStages, Trace, WorkingStep } from './types.ts';
 
@@ -46,6 +47,8 @@ export function recordPlantedDay(
   const table = { mulch: planted.planting.mulch, basalTable: tableCoefficients(crop, planted.planting.calendar, at.k) };
   recordCoefficients({ crop, cycle, drawn, single, ...table, dayOfCycle, stage, progress, ...rows }, trace);
   for (const step of overlaySteps(season, parcel, planted, day)) trace.step(step);
+  for (const step of saltSteps(season, parcel, planted.planting, day)) trace.step(step);
+  for (const step of riseSteps(season, parcel, day)) trace.step(step);
 }
 
 /** What comes before the curve: start, degree days, frost, and where the coefficients are from. */

@@ -90,11 +90,18 @@ function Counts({ loaded, units }: { loaded: LoadedFrost; units: UnitSystem }) {
           </dd>
         </div>
       </dl>
-      <p>
-        {figureWithUnit(area_at_risk_ha, 'area', units)} at risk. Sprinkled all at once they would draw {flow} ({other}) and{' '}
-        {figureWithUnit(sprinkling_volume_m3, 'volume', units)} through the night
-        {beyond_table > 0 ? `, without ${plain(beyond_table, 0)} plantings that are beyond the printed rates` : ''}.
-      </p>
+      {sprinkling_flow_l_s > 0 || beyond_table === 0 ? (
+        <p>
+          {figureWithUnit(area_at_risk_ha, 'area', units)} at risk. Sprinkled all at once they would draw {flow} ({other}) and{' '}
+          {figureWithUnit(sprinkling_volume_m3, 'volume', units)} through the night
+          {beyond_table > 0 ? `, without ${plain(beyond_table, 0)} plantings that are beyond the printed rates` : ''}.
+        </p>
+      ) : (
+        <p>
+          {figureWithUnit(area_at_risk_ha, 'area', units)} at risk. The night is colder or windier than the printed rates of sprinkling go:
+          water cannot be relied on to protect them, and may cool them instead.
+        </p>
+      )}
     </>
   );
 }

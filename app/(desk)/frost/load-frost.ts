@@ -47,6 +47,8 @@ export async function loadFrost(caller: Caller, query: Query): Promise<LoadedFro
     const date = one(query, 'date') ?? usual;
     if (!date) return { refusal: 'The district has no weather yet.', nights, asked };
     asked = frostAsked(query, date);
+    const wrong = wrongEntry(query);
+    if (wrong) return { refusal: wrong, nights, asked };
     const night = await answerFrost(caller, { ...asked, limit: Number.MAX_SAFE_INTEGER });
     const atRisk = night.items.filter(({ risk }) => risk !== null && risk !== 'none').toSorted(worstFirst);
     const drawn = night.items.slice(0, MOST_DRAWN).map(({ parcel }) => parcel);
@@ -64,10 +66,31 @@ function worstFirst(a: FrostRow, b: FrostRow): number {
   return place(a) - place(b) || margin(a) - margin(b);
 }
 
+/** Entries of an evening of one's own, with what each takes in the units it is written in. */
+const ENTRIES: readonly { readonly key: string; readonly name: string; readonly metric: Limits; readonly us: Limits }[] = [
+  { key: 'temperature', name: 'Air temperature at sunset', metric: [-40, 50, '°C'], us: [-40, 122, '°F'] },
+  { key: 'dew', name: 'Dew point at sunset', metric: [-50, 40, '°C'], us: [-58, 104, '°F'] },
+  { key: 'wind', name: 'Wind', metric: [0, 40, 'm/s'], us: [0, 90, 'mph'] },
+  { key: 'cloud', name: 'Cloud', metric: [0, 100, '%'], us: [0, 100, '%'] },
+];
+
+type Limits = readonly [low: number, high: number, unit: string];
+
+/** The first entry that is no number within its limits, in words; null when all are. */
+function wrongEntry(query: Query): string | null {
+  for (const { key, name, metric, us } of ENTRIES) {
+    const text = one(query, key);
+    const [low, high, unit] = one(query, 'in') === 'us' ? us : metric;
+    if (text === undefined || text === '' || (Number(text) >= low && Number(text) <= high)) continue;
+    return `${name} "${text.slice(0, 20)}" is not a number from ${low} to ${high} ${unit}: correct it above.`;
+  }
+  return null;
+}
+
 /** What the address asks for, with an evening of the reader's own in the units it was written in. */
 export function frostAsked(query: Query, date: string): FrostAsked {
   const us = one(query, 'in') === 'us';
-  const number = (key: string) => (one(query, key) === undefined ? undefined : Number(one(query, key)));
+  const number = (key: string) => (one(query, key) ? Number(one(query, key)) : undefined);
   const degrees = (key: string) => change(number(key), us ? celsiusFromFahrenheit : same);
   const cloud = number('cloud');
   return {
