@@ -2,10 +2,10 @@
 import { and, asc, desc, eq, lt, sql } from 'drizzle-orm';
 import type { Tx } from '../connect.ts';
 import { district } from '../schema/district.ts';
-import { crop, cropCalendar, parcel, planting, reach, season, turnout } from '../schema/land.ts';
+import { crop, cropCalendar, reach, season, turnout } from '../schema/land.ts';
 import { run, runParcel } from '../schema/run.ts';
 import { textArray } from './district-read.ts';
-import { listMethods, listSoils, PARCEL_JOINS_AND_PLACE, REACH_COLUMNS } from './land-read.ts';
+import { listMethods, listSoils, REACH_COLUMNS } from './land-read.ts';
 
 export async function findDistrict(tx: Tx, districtId: string) {
   const [row] = await tx.select().from(district).where(eq(district.districtId, districtId));
@@ -20,48 +20,11 @@ export async function findSeason(tx: Tx, districtId: string, code: string) {
   return row ?? null;
 }
 
-/** Parcels in map order, without their shapes. */
-export function listRunParcels(tx: Tx, districtId: string) {
-  return tx
-    .select({
-      code: parcel.code,
-      ordinal: parcel.ordinal,
-      ...PARCEL_JOINS_AND_PLACE,
-      soilShares: parcel.soilShares,
-    })
-    .from(parcel)
-    .where(eq(parcel.districtId, districtId))
-    .orderBy(asc(parcel.ordinal));
-}
-
-export function listSeasonPlantings(tx: Tx, districtId: string, seasonCode: string) {
-  return tx
-    .select()
-    .from(planting)
-    .where(and(eq(planting.districtId, districtId), eq(planting.seasonCode, seasonCode)))
-    .orderBy(asc(planting.parcelCode), asc(planting.sequence));
-}
-
 export function listSeasonDates(tx: Tx, districtId: string) {
   return tx
     .select({ code: season.code, startDate: season.startDate, endDate: season.endDate })
     .from(season)
     .where(eq(season.districtId, districtId));
-}
-
-/** Plantings of another season on some parcels. */
-export function listEarlierPlantings(tx: Tx, districtId: string, wanted: { season: string; codes: readonly string[] }) {
-  return tx
-    .select()
-    .from(planting)
-    .where(
-      and(
-        eq(planting.districtId, districtId),
-        eq(planting.seasonCode, wanted.season),
-        sql`${planting.parcelCode} = any(${textArray(wanted.codes)})`,
-      ),
-    )
-    .orderBy(asc(planting.parcelCode), asc(planting.sequence));
 }
 
 /** The standing run of the latest season that ends before a day; null where none stands. */

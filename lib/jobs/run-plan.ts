@@ -1,6 +1,7 @@
 /** From the district's rows to the inputs of a season: weather completed, weights made, every parcel with its soil, method and plantings. */
 
-import type { listEarlierPlantings, listLibraries, listRunParcels, listSeasonPlantings } from '../../db/queries/run-inputs.ts';
+import type { listLibraries } from '../../db/queries/run-inputs.ts';
+import type { listPlantingsOf, listRunParcelPage } from '../../db/queries/run-land.ts';
 import { Refused } from '../base/errors.ts';
 import { nanFromNull } from '../base/missing.ts';
 import type { ApplicationMethod, Crop, CropCalendar, ParcelInput, Planting, SeasonInput, SeasonSettings, Soil } from '../season/types.ts';
@@ -10,8 +11,8 @@ import type { ParcelRecords } from './run-records.ts';
 import { type RunSettings, seasonSettings } from './run-settings.ts';
 import type { ParcelWeights } from './run-weights.ts';
 
-type ParcelRow = Awaited<ReturnType<typeof listRunParcels>>[number];
-type PlantingRow = Awaited<ReturnType<typeof listSeasonPlantings>>[number];
+type ParcelRow = Awaited<ReturnType<typeof listRunParcelPage>>[number];
+type PlantingRow = Awaited<ReturnType<typeof listPlantingsOf>>[number];
 type LibraryRows = Awaited<ReturnType<typeof listLibraries>>;
 type SoilRow = LibraryRows['soils'][number];
 type MethodRow = LibraryRows['methods'][number];
@@ -119,7 +120,7 @@ export function frozenParcels(options: {
   });
 }
 
-function frozenPlanting(row: PlantingRow | Awaited<ReturnType<typeof listEarlierPlantings>>[number]): FrozenPlanting {
+function frozenPlanting(row: PlantingRow): FrozenPlanting {
   return {
     crop: row.cropCode,
     calendar: row.calendarCode,

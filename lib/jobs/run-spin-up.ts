@@ -1,6 +1,7 @@
 /** The days stepped before a season, so that the soil has settled, or to carry it over from the season before. */
 import type { Tx } from '../../db/connect.ts';
-import { listEarlierPlantings, listSeasonDates } from '../../db/queries/run-inputs.ts';
+import { listSeasonDates } from '../../db/queries/run-inputs.ts';
+import { listPlantingsOf } from '../../db/queries/run-land.ts';
 import { listBlocks } from '../../db/queries/weather-observations.ts';
 import { addDays, dayNumber, isoDate } from '../base/civil-date.ts';
 import { findRunSource } from './run-observations.ts';
@@ -58,7 +59,7 @@ function hasValue({ values, siteCount, dayCount }: { values: Uint8Array; siteCou
 }
 
 /** A planting of an earlier season as it stands in the days before a season. */
-export type EarlierPlanting = Awaited<ReturnType<typeof listEarlierPlantings>>[number];
+export type EarlierPlanting = Awaited<ReturnType<typeof listPlantingsOf>>[number];
 
 /**
  * Plantings of earlier seasons that stand in the days before a season, by parcel.
@@ -95,7 +96,7 @@ export async function earlierPlantings(
   let start = wanted.startDate;
   for (const season of seasons) {
     if (season.endDate >= start) continue;
-    const rows = await listEarlierPlantings(tx, districtId, { season: season.code, codes: wanted.codes });
+    const rows = await listPlantingsOf(tx, districtId, season.code, wanted.codes);
     for (const row of rows) {
       const ended = ends.get(row.parcelCode);
       const limit = ended !== undefined && ended < start ? ended : start;

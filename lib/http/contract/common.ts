@@ -43,3 +43,16 @@ export function pageOf<T extends z.ZodType>(item: T) {
 
 const number = z.number().nullable();
 export const nullableNumber = number;
+
+/** One equation of a working with its numbers put in, as the code evaluated it. */
+export const workingStep = z.object({
+  part: z.string(),
+  symbol: z.string(),
+  name: z.string(),
+  expression: z.string(),
+  inputs: z.array(z.object({ symbol: z.string(), value: number, unit: z.string() })),
+  result: number,
+  unit: z.string(),
+  source: z.string(),
+  strip: z.string().optional(),
+});

@@ -1,6 +1,6 @@
 /** Answers about frost nights: stations, plantings at risk, water for protection. Differences of temperature are in kelvin, which `units=us` leaves alone. */
 import { z } from 'zod';
-import { isoDate, nullableNumber as n } from './common.ts';
+import { isoDate, nullableNumber as n, workingStep } from './common.ts';
 
 export const FROST_RISKS = ['severe', 'damaging', 'possible', 'none'] as const;
 
@@ -124,19 +124,7 @@ export const frostWorkingAnswer = z
     planting: z.number().int(),
     date: isoDate,
     row: frostRow,
-    steps: z.array(
-      z.object({
-        part: z.string(),
-        symbol: z.string(),
-        name: z.string(),
-        expression: z.string(),
-        inputs: z.array(z.object({ symbol: z.string(), value: n, unit: z.string() })),
-        result: n,
-        unit: z.string(),
-        source: z.string(),
-        strip: z.string().optional(),
-      }),
-    ),
+    steps: z.array(workingStep),
     cautions: z.array(z.string()),
   })
   .meta({ id: 'FrostWorking' });

@@ -2,7 +2,7 @@ import { z } from 'zod';
 import { DEFAULT_RUN_SETTINGS as usual } from '../../jobs/run-settings.ts';
 import { DAY_KINDS } from '../../weather/day-kind.ts';
 import { bandState } from './band.ts';
-import { isoDate, nullableNumber as n } from './common.ts';
+import { isoDate, nullableNumber as n, workingStep } from './common.ts';
 import { plantingPractice } from './practice.ts';
 
 export const dayKindName = z.enum(DAY_KINDS).meta({
@@ -324,19 +324,7 @@ export const workingAnswer = z
         fallbacks: z.array(z.string()),
       }),
     ),
-    steps: z.array(
-      z.object({
-        part: z.string(),
-        symbol: z.string(),
-        name: z.string(),
-        expression: z.string(),
-        inputs: z.array(z.object({ symbol: z.string(), value: n, unit: z.string() })),
-        result: n,
-        unit: z.string(),
-        source: z.string(),
-        strip: z.string().optional(),
-      }),
-    ),
+    steps: z.array(workingStep),
     results: z.record(z.string(), n),
     stored: z.record(z.string(), n).meta({ description: 'the same variables as stored by the run' }),
   })
