@@ -106,15 +106,6 @@ export interface BandWanted {
   readonly period: 'week' | 'month' | 'season';
 }
 
-/** Variables and periods a run keeps a band of. */
-export function listBandKinds(tx: Tx, key: RunKey): Promise<BandWanted[]> {
-  return tx
-    .select({ level: runBand.level, variable: runBand.variable, period: runBand.period })
-    .from(runBand)
-    .where(and(bandsOf(key), sql`${runBand.level} <> ${PART}`))
-    .orderBy(runBand.level, runBand.variable, runBand.period) as Promise<BandWanted[]>;
-}
-
 /**
  * The band of some places in a row, Float32 LE [quantile × period × place asked for]; null when the run has none. The array is taken out of its
  * storage once and cut there.

@@ -2,9 +2,6 @@
  * The frost that ends a growing season.
  */
 
-/** Minimum at which alfalfa and pasture stop growing [°C]. Source: FAO-56 chapter 6 (growing seasons from the last to the first −4 °C). */
-export const FORAGE_KILLING_FROST = -4;
-
 export interface KillingFrost {
   /** °C */
   readonly threshold: number;

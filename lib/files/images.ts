@@ -183,6 +183,8 @@ interface Image {
 interface Placed {
   readonly parcel: number;
   readonly shape: CellShape;
+  /** cells whose centre lies inside, or the one it takes */
+  readonly cells: number;
   /** the one cell of a parcel that holds no centre */
   readonly only: readonly [number, number] | null;
 }
@@ -191,12 +193,7 @@ interface Placed {
 async function addImage(image: Image, work: Work, tally: Tally, findings: FindingList): Promise<string> {
   const [height, width] = image.band.shape;
   const placed = work.parcels.map((ground, parcel) => placedOn(ground, parcel, image.toCell));
-  const within = placed.filter(({ shape, only }) => {
-    const [left, right, top, bottom] = only
-      ? [only[0], only[0], only[1], only[1]]
-      : [shape.columnFrom, shape.columnTo, shape.rowFrom, shape.rowTo];
-    return right >= 0 && left < width && bottom >= 0 && top < height;
-  });
+  const within = placed.filter((each) => rightOf(each) >= 0 && leftOf(each) < width && bottomOf(each) >= 0 && topOf(each) < height);
   if (within.length === 0) {
     findings.error({
       code: 'image-outside-district',
@@ -207,7 +204,10 @@ async function addImage(image: Image, work: Work, tally: Tally, findings: Findin
     return '';
   }
   const columns = [
-    Math.max(0, Math.min(...within.map(leftOf))),
+    Math.max(
+      0,
+      within.reduce((least, each) => Math.min(least, leftOf(each)), width),
+    ),
     Math.min(
       width - 1,
       within.reduce((most, each) => Math.max(most, rightOf(each)), 0),
@@ -230,7 +230,7 @@ async function addImage(image: Image, work: Work, tally: Tally, findings: Findin
     const strips = { raw, row, count, column: columns[0], span };
     for (const each of within) addRows(each, strips, { scaling, quantity: work.quantity }, tally);
   }
-  for (const { parcel, shape, only } of within) tally.all[parcel] = Math.max(tally.all[parcel], only ? 1 : cellCount(shape));
+  for (const { parcel, cells } of within) tally.all[parcel] = Math.max(tally.all[parcel], cells);
   return scaling.words;
 }
 
@@ -241,9 +241,10 @@ const bottomOf = ({ shape, only }: Placed) => only?.[1] ?? shape.rowTo;
 
 function placedOn({ geometry }: Ground, parcel: number, toCell: ToCell): Placed {
   const shape = cellShape(geometry, toCell);
-  if (cellCount(shape) > 0) return { parcel, shape, only: null };
+  const cells = cellCount(shape);
+  if (cells > 0) return { parcel, shape, cells, only: null };
   const [column, row] = toCell(...pointInside(geometry));
-  return { parcel, shape, only: [Math.round(column), Math.round(row)] };
+  return { parcel, shape, cells: 1, only: [Math.round(column), Math.round(row)] };
 }
 
 function cellCount(shape: CellShape): number {
